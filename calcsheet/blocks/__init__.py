@@ -1,0 +1,8 @@
+"""Blocks of a calculation notebook: a live view over a step, and its static twin in the saved file."""
+
+from __future__ import annotations
+
+from calcsheet.blocks.blocks import JobCard, ModePlot, ModeSolver, ParticipationSummary
+from calcsheet.blocks.storeytable import StoreyTable
+
+__all__ = ["JobCard", "ModePlot", "ModeSolver", "ParticipationSummary", "StoreyTable"]

@@ -1,0 +1,216 @@
+"""What every block is: a view of a step of a job, shown in a cell by a live widget and its static twin."""
+
+from __future__ import annotations
+
+import os
+from collections.abc import Mapping
+from typing import Any, ClassVar
+
+from IPython.core.getipython import get_ipython
+from IPython.display import DisplayHandle, display
+
+from calcsheet.blocks.twin import bundle, held_up, images
+from calcsheet.blocks.widgets import LiveWidget, Message, ViewWidget, front
+from calcsheet.render.figure import Drawing
+from calcsheet.render.registry import VIEWS
+from calcsheet.render.view import Rendered, View
+from calcsheet.steps.graph import Job
+from calcsheet.steps.serial import fingerprint
+from calcsheet.steps.step import Payload
+
+STATIC = "CALCSHEET_STATIC"
+"""Environment variable: "1" leaves the live widgets out, as when a record is issued."""
+
+
+class Block:
+    """A view of a step.
+
+    Parameters
+    ----------
+    job : Job
+        The job.
+    key : str
+        Key of the step in it.
+    **options
+        Options of the view.
+    """
+
+    view_name: ClassVar[str]
+
+    def __init__(self, job: Job, key: str, **options: Any) -> None:
+        self.job = job
+        self.key = key
+        self.view: View = VIEWS[self.view_name]
+        self.options = self.view.chosen(options)
+
+    @property
+    def payload(self) -> Payload:
+        """The step's present payload: state, inputs, result, worked lines, cautions, evidence."""
+        return self.job.payload(self.key)
+
+    def __repr__(self) -> str:
+        payload = self.payload
+        return f"{type(self).__name__}({payload['state']}{': ' + payload['why'] if payload['why'] else ''})"
+
+    def shown(self) -> Shown:
+        """A new display of this block."""
+        return Shown(self)
+
+    def _ipython_display_(self) -> None:
+        place = (self.job.folder.path, _cell(), type(self).__name__, self.key)
+        before = _SHOWN.pop(place, None)
+        if before is not None:
+            before.close()
+        shown = _SHOWN[place] = self.shown()
+        shown.open()
+
+
+class Shown:
+    """One display of a block in one cell; a `Listener` of the job.
+
+    Parameters
+    ----------
+    block : Block
+        The block.
+    """
+
+    def __init__(self, block: Block) -> None:
+        self.block = block
+        self.options = dict(block.options)  # the live view's own; the twin keeps the block's
+        self.widget: LiveWidget | None = None
+        self.handle: DisplayHandle | None = None
+        self.source = fingerprint(_source())
+
+    def open(self) -> None:
+        """Show widget and twin below each other, and listen to the job from now on."""
+        if os.environ.get(STATIC) != "1":
+            self.widget = self.make_widget()
+            self.show_numbers()
+            display(self.widget)
+        self.show_figures()
+        self.block.job.listen(self)
+
+    def close(self) -> None:
+        """Give up widget and listening: the cell shows another display now."""
+        self.block.job.leave(self)
+        if self.widget is not None:
+            self.widget.close()
+
+    # ---- live ------------------------------------------------------------------------------------------------------
+
+    def make_widget(self) -> LiveWidget:
+        return ViewWidget(self.answer, block=self.block.view_name)
+
+    def answer(self, message: Message) -> str | None:
+        """Do what the page asks; the sentence that says why not, where it can't be done."""
+        if message["op"] != "choose":
+            return f"{message['op']}: not known to this block"
+        try:
+            self.options = self.block.view.chosen(self.options | {message["key"]: message["value"]})
+        except ValueError as error:
+            return str(error)
+        self.show_numbers()
+        self.show_live_figures(self.drawings(self.options))
+        return None
+
+    def show_numbers(self) -> None:
+        if self.widget is None:
+            return
+        payload, job = self.block.payload, self.block.job
+        choices = [
+            {
+                "key": c.key,
+                "label": c.label,
+                "value": self.options[c.key],
+                "options": [{"value": v, "label": text} for v, text in c.options.items()],
+            }
+            for c in self.block.view.choices
+        ]
+        if payload["state"] != "ok":
+            note = {"kind": payload["state"], "text": payload["why"]}
+            self.widget.set_trait("note", note)
+        else:
+            with self.widget.hold_sync():
+                self.widget.set_trait("note", {})
+                self.widget.set_trait("choices", choices)
+                self.widget.set_trait("html", self.rendered(self.options).html)
+        self.widget.set_trait("revision", job.revision)
+
+    def show_live_figures(self, drawings: tuple[Drawing, ...]) -> None:
+        if self.widget is not None:
+            revision = self.block.job.revision
+            self.widget.set_trait(
+                "figures", [{"name": d.name, "alt": d.alt, "svg": d.svg, "revision": revision} for d in drawings]
+            )
+
+    # ---- twin ------------------------------------------------------------------------------------------------------
+
+    def show_figures(self) -> None:
+        block, payloads = self.block, self.block.job.payloads()
+        payload = payloads[block.key]
+        drawings: tuple[Drawing, ...] = ()
+        if payload["state"] == "ok":
+            rendered = self.rendered(block.options)
+            drawings = rendered.draw()
+            html = rendered.html + images(drawings)
+            self.show_live_figures(drawings if self.options == block.options else self.drawings(self.options))
+        else:
+            html = held_up(payload)
+        self.keep(self.twin(payload, payloads, html))
+
+    def twin(self, payload: Payload, payloads: Mapping[str, Payload], html: str) -> dict[str, Any]:
+        block, job = self.block, self.block.job
+        return bundle(
+            block.view,
+            block.key,
+            payload,
+            block.options,
+            html,
+            source=self.source,
+            revision=job.revision,
+            **self.carried(payloads),
+        )
+
+    def carried(self, payloads: Mapping[str, Payload]) -> dict[str, Any]:
+        """What this twin carries for the whole notebook."""
+        return {}
+
+    def keep(self, data: dict[str, Any]) -> None:
+        if self.handle is None:
+            self.handle = display(data, raw=True, display_id=True)
+        else:
+            self.handle.update(data, raw=True)
+
+    def rendered(self, options: Mapping[str, Any]) -> Rendered:
+        return self.block.view.render(self.block.job.payloads(), self.block.key, options)
+
+    def drawings(self, options: Mapping[str, Any]) -> tuple[Drawing, ...]:
+        return self.rendered(options).draw() if self.block.payload["state"] == "ok" else ()
+
+
+class ShownCard(Shown):
+    """The job card's display: its twin carries the payloads of the whole job, and the style sheet of all twins."""
+
+    def carried(self, payloads: Mapping[str, Payload]) -> dict[str, Any]:
+        return {"style": front("calcsheet.css", "twin.css"), "payloads": payloads}
+
+
+_SHOWN: dict[tuple[object, ...], Shown] = {}
+
+
+def _cell() -> object:
+    """The notebook cell that is running: by its id where the front end tells it, else by its count."""
+    shell = get_ipython()
+    if shell is None:
+        return None
+    parent = getattr(shell, "parent_header", None) or {}
+    kernel = getattr(shell, "kernel", None)
+    if kernel is not None:
+        parent = kernel.get_parent("shell")
+    return parent.get("metadata", {}).get("cellId") or shell.execution_count
+
+
+def _source() -> str:
+    """Source of the cell that is running."""
+    shell = get_ipython()
+    return "" if shell is None else str(shell.history_manager.input_hist_raw[-1]).rstrip("\n")

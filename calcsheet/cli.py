@@ -1,0 +1,116 @@
+"""The command line: new, issue, demo."""
+
+from __future__ import annotations
+
+import shutil
+import sys
+from pathlib import Path
+from typing import Any
+
+import click
+
+from calcsheet import __version__
+from calcsheet.resources import DEMO, TEMPLATES, templates
+from calcsheet.resources import folder as shipped
+
+INPUTS = ("job.toml", "*.csv", "calc.ipynb")
+"""What a job starts from; records are made, not copied."""
+
+EXAMPLES = """\b
+Examples:
+  calcsheet new tower             a job folder from the planar template
+  calcsheet issue tower           execute its notebook and issue the record
+  calcsheet demo                  copy the demonstration job and issue it
+"""
+
+
+class _Refusal(click.ClickException):
+    """One sentence on stderr, exit code 2."""
+
+    exit_code = 2
+
+    def show(self, file: Any = None) -> None:
+        click.echo(f"calcsheet: {self.message}", err=True)
+
+
+class _Group(click.Group):
+    """Commands whose errors are one sentence: no traceback, whatever the engineer's files hold."""
+
+    def invoke(self, ctx: click.Context) -> Any:
+        from calcsheet.errors import REFUSALS
+
+        try:
+            return super().invoke(ctx)
+        except REFUSALS as error:
+            raise _Refusal(" ".join(str(error).split())) from None
+        except OSError as error:
+            raise _Refusal(f"{error.strerror or error}: {error.filename}" if error.filename else str(error)) from None
+
+
+@click.group(cls=_Group, epilog=EXAMPLES, context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(__version__, prog_name="calcsheet")
+def main() -> None:
+    """Natural modes of multi-storey buildings: calculated in a notebook, issued as a record that can be checked."""
+
+
+@main.command(epilog="\b\nExamples:\n  calcsheet new tower\n  calcsheet new tower --template planar\n")
+@click.argument("folder", type=click.Path(path_type=Path))
+@click.option("--template", default="planar", show_default=True, help="Template of the notebook.")
+def new(folder: Path, template: str) -> None:
+    """Make a job folder FOLDER: job card, storey table, notebook."""
+    if template not in templates():
+        raise _Refusal(f'no template "{template}"; must be {" or ".join(templates())}')
+    _copied(shipped(TEMPLATES) / template, folder)
+    click.echo(f"{folder} is ready: {', '.join(sorted(path.name for path in folder.iterdir()))}.")
+    click.echo(f"Open it:   jupyter lab {folder / 'calc.ipynb'}")
+    click.echo('           (without JupyterLab: python -m pip install "jupyterlab>=4" first)')
+    click.echo(f"Issue it:  calcsheet issue {folder}")
+
+
+@main.command(
+    epilog="\b\nExamples:\n  calcsheet issue tower\n  calcsheet issue tower --to html\n  calcsheet issue tower --to pdf --paper letter\n"
+)
+@click.argument("folder", type=click.Path(path_type=Path))
+@click.option("--to", "to", type=click.Choice(["html", "pdf"]), multiple=True, help="Kind wanted; both where omitted.")
+@click.option("--paper", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Paper size.")
+def issue(folder: Path, to: tuple[str, ...], paper: str) -> None:
+    """Execute the notebook of job FOLDER in a fresh kernel and issue its record under FOLDER/issued/."""
+    if not folder.is_dir():
+        raise _Refusal(f"no folder {folder}; `calcsheet new {folder}` makes one")
+    _issued(folder, to or None, paper)
+
+
+@main.command(epilog="\b\nExamples:\n  calcsheet demo\n  calcsheet demo look-here\n")
+@click.argument("folder", type=click.Path(path_type=Path), default=Path("calcsheet-demo"))
+def demo(folder: Path) -> None:
+    """Copy the demonstration job to FOLDER (calcsheet-demo where omitted) and issue its record."""
+    _copied(shipped(DEMO), folder)
+    _issued(folder, None, "a4")
+    click.echo(f"Open the job:  jupyter lab {folder / 'calc.ipynb'}")
+
+
+def _copied(source: Path, folder: Path) -> None:
+    if folder.exists() and (not folder.is_dir() or any(folder.iterdir())):
+        raise _Refusal(f"{folder} is there already and not empty; name a new folder")
+    folder.mkdir(parents=True, exist_ok=True)
+    for pattern in INPUTS:
+        for path in sorted(source.glob(pattern)):
+            shutil.copyfile(path, folder / path.name)
+
+
+def _issued(folder: Path, to: tuple[str, ...] | None, paper: str) -> None:
+    from rich.progress import BarColumn, Progress, TextColumn
+
+    from calcsheet.record.issue import issue as issue_record
+
+    columns = (TextColumn("executing"), BarColumn(30), TextColumn("cell {task.completed:.0f} of {task.total:.0f}"))
+    with Progress(*columns, transient=True, disable=not sys.stderr.isatty()) as bar:
+        task = bar.add_task("cells", total=None)
+        done = issue_record(
+            folder, to=to, paper=paper, progress=lambda cell, cells: bar.update(task, completed=cell, total=cells)  # type: ignore[arg-type]
+        )
+    click.echo(f"Issued, status {done.status}:")
+    for path in done.files:
+        click.echo(f"  {path}")
+    if done.note:
+        click.echo(f"Note: {done.note}.", err=True)

@@ -1,0 +1,109 @@
+"""A model as everything downstream sees it: degrees of freedom, levels, directions, influence vectors."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from calcsheet.core.arrays import Array, Frozen, positive
+from calcsheet.core.errors import ModelError
+from calcsheet.core.storeys import Lateral, Storeys
+
+
+@dataclass(frozen=True, eq=False)
+class Model(Frozen):
+    """A building reduced to N degrees of freedom on L levels, fixed at the effective base.
+
+    Parameters
+    ----------
+    level : tuple of str
+        Names of the levels, lowest first, L of them.
+    height : (L,) array
+        Height of each level above the effective base [m].
+    mass : (N,) array
+        Mass [t], or rotational inertia [t·m²], of each degree of freedom.
+    level_of : tuple of int
+        The level, from 0, that each degree of freedom belongs to.
+    direction : tuple of str
+        Directions of excitation, d of them, such as ("x",).
+    influence : (d, N) array
+        Displacement of each degree of freedom when the base moves by 1 in each direction, ι.
+    lateral : Chain, StiffnessMatrix or FlexibilityMatrix
+        Lateral stiffness, of N degrees of freedom.
+
+    Raises
+    ------
+    ModelError
+        A mass that is not finite and above zero, or arrays that do not fit each other.
+    """
+
+    level: tuple[str, ...]
+    height: Array
+    mass: Array
+    level_of: tuple[int, ...]
+    direction: tuple[str, ...]
+    influence: Array
+    lateral: Lateral
+
+    def __post_init__(self) -> None:
+        super().__post_init__()
+        object.__setattr__(self, "mass", positive(self.mass, "mass", [self.level[i] for i in self.level_of]))
+        for what, size in (("mass", self.mass.size), ("influence", self.influence.shape[1])):
+            if size != self.lateral.size:
+                raise ModelError(what, f"{size} entries", f"must have {self.lateral.size}, as the lateral stiffness has")
+
+    @property
+    def size(self) -> int:
+        """Number of degrees of freedom, N."""
+        return int(self.mass.size)
+
+    @property
+    def levels(self) -> int:
+        """Number of levels, L."""
+        return len(self.level)
+
+    def by_level(self, values: Array) -> Array:
+        """Sums over the degrees of freedom of each level, (L, …), of values (N, …)."""
+        sums = np.zeros((self.levels, *values.shape[1:]))
+        np.add.at(sums, np.asarray(self.level_of), values)
+        return sums
+
+
+def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
+    """The models of a building: a planar one for each direction that the stiffness set gives.
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+    stiffness : str
+        Name of the stiffness set.
+
+    Returns
+    -------
+    tuple of Model
+        One translation a level each, x before y.
+
+    Raises
+    ------
+    ModelError
+        No such set, or a stiffness of another size than the levels.
+    """
+    found = [s for s in storeys.stiffness if s.name == stiffness]
+    if not found:
+        names = " or ".join(f'"{s.name}"' for s in storeys.stiffness)
+        raise ModelError("stiffness set", f'got "{stiffness}"', f"must be {names}")
+    n = len(storeys.level)
+    return tuple(
+        Model(
+            level=storeys.level,
+            height=storeys.elevation - storeys.base_elevation,
+            mass=storeys.mass,
+            level_of=tuple(range(n)),
+            direction=(direction,),
+            influence=np.ones((1, n)),
+            lateral=lateral,
+        )
+        for direction, lateral in sorted(found[0].lateral.items())
+    )

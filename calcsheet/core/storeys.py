@@ -1,0 +1,88 @@
+"""What a storey table says, in core units (m, kN, t), from the effective base up."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from calcsheet.core.arrays import Array
+from calcsheet.core.chain import Chain
+from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+
+Lateral = Chain | StiffnessMatrix | FlexibilityMatrix
+
+
+@dataclass(frozen=True, eq=False)
+class LevelBelow:
+    """A level at or below the effective base: listed, outside the model and its mass shares.
+
+    Parameters
+    ----------
+    level : str
+        Name of the level.
+    elevation : float
+        Elevation [m].
+    mass : float
+        Mass [t], 0 or above.
+    """
+
+    level: str
+    elevation: float
+    mass: float
+
+
+@dataclass(frozen=True, eq=False)
+class StiffnessSet:
+    """A named set of lateral stiffnesses with the ground it stands on.
+
+    Parameters
+    ----------
+    name : str
+        Name of the set, such as "cracked".
+    ground : str
+        Why these values: the engineer's words.
+    lateral : mapping of str to Chain, StiffnessMatrix or FlexibilityMatrix
+        Lateral stiffness by direction, "x" and "y" (one or both).
+    """
+
+    name: str
+    ground: str
+    lateral: Mapping[str, Lateral]
+
+
+@dataclass(frozen=True, eq=False)
+class Storeys:
+    """A building as its storey table gives it.
+
+    Parameters
+    ----------
+    base : str
+        Name of the effective base: a level's name, or "base" for the foot of the lowest storey.
+    base_elevation : float
+        Elevation of the effective base [m].
+    level : tuple of str
+        Levels above the effective base, lowest first, n of them.
+    elevation : (n,) array
+        Elevation of each level [m].
+    storey_height : (n,) array
+        Height of the storey below each level [m].
+    mass : (n,) array
+        Mass of each level [t].
+    below : tuple of LevelBelow
+        Levels at or below the effective base, lowest first.
+    stiffness : tuple of StiffnessSet
+        The named sets.
+    forces, drifts : str
+        Names of the sets that serve forces and drifts.
+    """
+
+    base: str
+    base_elevation: float
+    level: tuple[str, ...]
+    elevation: Array
+    storey_height: Array
+    mass: Array
+    below: tuple[LevelBelow, ...]
+    stiffness: tuple[StiffnessSet, ...]
+    forces: str
+    drifts: str

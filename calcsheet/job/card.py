@@ -1,0 +1,311 @@
+"""The job card, job.toml: who, what, in which units, on which basis.
+
+The description of each field is what its error says is allowed.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+import re
+import tomllib
+from collections.abc import Iterator, Mapping, Sequence
+from typing import Annotated, Any, Literal, get_args
+
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
+
+from calcsheet.job.errors import InputError
+
+FILE = "job.toml"
+CHAIN = "storey chain"
+
+DIRECTIONS = ("x", "y")
+_NOT_BLANK = r"\S"
+
+
+class _Table(BaseModel):
+    model_config = ConfigDict(frozen=True, extra="forbid", strict=True, allow_inf_nan=False)
+
+
+Text = Annotated[str, Field(description="a text")]
+Filled = Annotated[str, Field(pattern=_NOT_BLANK, description="a text that is not blank")]
+Date = Annotated[dt.date, Field(description="a date without quotation marks, such as 2026-01-31")]
+MaybeDate = Annotated[dt.date | None, Field(description="a date without quotation marks, such as 2026-01-31")]
+Factor = Annotated[Annotated[float, Field(gt=0)] | None, Field(description="a number above 0")]
+Sentence = Annotated[
+    Annotated[str, Field(pattern=_NOT_BLANK)] | None,
+    Field(description="a sentence that ties this direction to the drawings' grid"),
+]
+FileName = Annotated[
+    Annotated[str, Field(pattern=r"^[^\s./\\:][^/\\:]*$")] | None,
+    Field(description='the name of a file in the job folder, such as "stiffness_x.csv"'),
+]
+
+
+class Identity(_Table):
+    """What the calculation is: table [job]."""
+
+    project: Filled
+    title: Filled
+    number: Filled
+    revision: Annotated[
+        str,
+        Field(
+            pattern=r"^\w([\w. -]*\w)?$",
+            description="a text of letters, digits, points, hyphens, underscores, spaces: it names a folder",
+        ),
+    ]
+    date: Date
+    reason: Text = ""
+    purpose: Text = ""
+
+
+class Person(_Table):
+    """Somebody who signs: table [people.…]. A blank name is a line left open."""
+
+    name: Text = ""
+    initials: Text = ""
+    qualification: Text = ""
+    registration: Text = ""
+    date: MaybeDate = None
+
+
+class Author(Person):
+    """Who prepared the calculation: table [people.prepared]."""
+
+    name: Filled
+
+
+class People(_Table):
+    """Who prepared, checks and approves: table [people]."""
+
+    prepared: Author = Field(description="a table [people.prepared] with a name")
+    checked: Person = Field(Person(), description="a table [people.checked]")
+    approved: Person = Field(Person(), description="a table [people.approved]")
+
+
+class System(_Table):
+    """Table [units]."""
+
+    system: Literal["SI", "US"] = Field(description='"SI" or "US"')
+
+
+class Levels(_Table):
+    """Table [levels]: elevation of the lowest storey's foot [m or ft]; the effective base ("": that foot)."""
+
+    base_elevation: float = Field(description="a number, in m (SI) or ft (US)")
+    effective_base: Text = ""
+
+
+class Directions(_Table):
+    """Table [directions]: a sentence for each direction that is analysed, tying it to the drawings' grid."""
+
+    x: Sentence = None
+    y: Sentence = None
+
+    @property
+    def analysed(self) -> tuple[str, ...]:
+        """The directions that have a sentence."""
+        return tuple(d for d in DIRECTIONS if getattr(self, d) is not None)
+
+
+class ModelChoice(_Table):
+    """Table [model]: how the lateral stiffness is given, and the file of each matrix."""
+
+    kind: Literal["storey chain", "stiffness matrix", "flexibility matrix"] = Field(
+        description='"storey chain", "stiffness matrix" or "flexibility matrix"'
+    )
+    x: FileName = None
+    y: FileName = None
+
+    @property
+    def files(self) -> Mapping[str, str]:
+        """The file of each direction's matrix."""
+        return {d: name for d in DIRECTIONS if (name := getattr(self, d)) is not None}
+
+
+class SetBasis(_Table):
+    """A stiffness set, table [stiffness.NAME]: factors on the stiffnesses given, or own values."""
+
+    ground: Text = ""
+    factor: Factor = None
+    factor_x: Factor = None
+    factor_y: Factor = None
+    own: bool = Field(False, description="true or false")
+
+    def factor_of(self, direction: str) -> float | None:
+        """The factor of a direction, None where there is none."""
+        along = self.factor_x if direction == "x" else self.factor_y
+        return along if self.factor is None else self.factor
+
+
+class Serves(_Table):
+    """Table [serves]: the stiffness set that serves forces, and the one that serves drifts."""
+
+    forces: Filled
+    drifts: Filled
+
+
+class Assumption(_Table):
+    """One of [[assumptions]]: text, ground, and by whom or when it is to be confirmed ("": it needn't be)."""
+
+    text: Filled
+    ground: Text = ""
+    confirm_by: Text = ""
+
+
+class Origin(_Table):
+    """Where a table comes from: an entry of [origins] by file name."""
+
+    source: Text = ""
+    revision: Text = ""
+    date: MaybeDate = None
+    note: Text = ""
+
+
+def _as_tuple(value: object) -> object:
+    return tuple(value) if isinstance(value, list) else value
+
+
+class Card(_Table):
+    """The job card, whole."""
+
+    format: int = Field(ge=1, le=1, description="1, the format that this version reads")
+    job: Identity = Field(description="a table [job]")
+    people: People = Field(description="a table [people.prepared] with a name")
+    units: System = Field(description="a table [units]")
+    levels: Levels = Field(description="a table [levels]")
+    directions: Directions = Field(description="a table [directions]")
+    model: ModelChoice = Field(description="a table [model]")
+    stiffness: Mapping[str, SetBasis] = Field(
+        min_length=1, description="a table [stiffness.NAME] for each set"
+    )
+    serves: Serves = Field(description="a table [serves]")
+    assumptions: Annotated[tuple[Assumption, ...], BeforeValidator(_as_tuple)] = Field(
+        (), description="tables [[assumptions]]"
+    )
+    origins: Mapping[str, Origin] = Field({}, description="a table for each file")
+    answers: Mapping[str, str] = Field({}, description="a text for each caution")
+
+
+def parse_card(text: str) -> Card:
+    """Read a job card from its text.
+
+    Raises
+    ------
+    InputError
+        The first thing wrong with it, by line or dotted key.
+    """
+    return card_of(parse_toml(text))
+
+
+def card_of(values: Mapping[str, Any]) -> Card:
+    """Read a job card from the values of its TOML; errors as in `parse_card`."""
+    try:
+        card = Card.model_validate(values)
+    except ValidationError as error:
+        raise _plain(error.errors()[0]) from None
+    for wrong in _contradictions(card):
+        raise wrong
+    return card
+
+
+def parse_toml(text: str) -> dict[str, Any]:
+    """Read TOML, refusing (InputError) by line what is none."""
+    try:
+        return tomllib.loads(text)
+    except (ValueError, RecursionError) as error:
+        located = re.fullmatch(r"(.*) \(at (line \d+|end of document).*\)", str(error), re.DOTALL)
+        what, place = located.groups() if located else (str(error), "")
+        if place == "end of document":
+            place = f"line {len(text.splitlines())}"
+        raise InputError(FILE, place, what[:1].lower() + what[1:], "must be TOML") from None
+
+
+def dotted(keys: Sequence[str | int]) -> str:
+    """Return keys joined by points, quoted where they need it: `stiffness."half cracked".factor`."""
+    return ".".join(str(key) if re.fullmatch(r"[\w-]+", str(key), re.ASCII) else f'"{key}"' for key in keys)
+
+
+def _plain(error: Any) -> InputError:
+    """One sentence for one of pydantic's errors."""
+    place: list[str | int] = []
+    kind: Any = Card
+    allowed = "a table"
+    for key in error["loc"]:
+        fields = kind.model_fields if isinstance(kind, type) and issubclass(kind, BaseModel) else None
+        if fields is not None and key not in fields:  # an unknown key
+            return InputError(
+                FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}"
+            )
+        place.append(key)
+        if fields is not None:
+            kind, allowed = fields[key].annotation, fields[key].description or allowed
+        else:
+            kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
+            allowed = "a text" if kind is str else "a table"
+    found = "missing" if error["type"] == "missing" else f"got {_shown(error['input'])}"
+    return InputError(FILE, dotted(place), found, f"must be {allowed}")
+
+
+def shorten(text: str) -> str:
+    """Return a text short enough for a message."""
+    return text if len(text) <= 60 else f"{text[:59]}…"
+
+
+def _shown(value: object) -> str:
+    match value:
+        case bool():
+            return "true" if value else "false"
+        case str():
+            return f'"{shorten(value)}"'
+        case int() | float() | dt.date() | dt.time():
+            return shorten(str(value))
+        case dict():
+            return "a table"
+        case _:
+            return "a list"
+
+
+def _contradictions(card: Card) -> Iterator[InputError]:
+    """What is right key by key, and wrong together."""
+    analysed = card.directions.analysed
+    if not analysed:
+        yield InputError(FILE, "directions", "neither x nor y", "must have a sentence for x, y or both")
+    chain = card.model.kind == CHAIN
+    for d in DIRECTIONS:
+        if chain and d in card.model.files:
+            found = f'got "{card.model.files[d]}"'
+            yield InputError(FILE, f"model.{d}", found, f'must be left out with kind "{CHAIN}"')
+        if not chain and d in analysed and d not in card.model.files:
+            allowed = f"must be {ModelChoice.model_fields[d].description}"
+            yield InputError(FILE, f"model.{d}", "missing", allowed)
+    for name, basis in card.stiffness.items():
+        yield from _basis(name, basis, analysed, chain)
+    names = " or ".join(f'"{name}"' for name in card.stiffness)
+    for purpose in ("forces", "drifts"):
+        if (name := getattr(card.serves, purpose)) not in card.stiffness:
+            allowed = f"must name a set under [stiffness]: {names}"
+            yield InputError(FILE, f"serves.{purpose}", f'got "{name}"', allowed)
+    prepared, checked = card.people.prepared.name, card.people.checked.name
+    if checked.strip().casefold() == prepared.strip().casefold():
+        found = f'got "{checked}", who prepared it'
+        yield InputError(FILE, "people.checked.name", found, "must be another person")
+
+
+def _basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: bool) -> Iterator[InputError]:
+    where = dotted(["stiffness", name])
+    if not name.strip() or set(name) & set("[]"):
+        yield InputError(FILE, where, f'got the name "{name}"', "must be a name without square brackets")
+    along = [f for f in (basis.factor_x, basis.factor_y) if f is not None]
+    given = {"factor": basis.factor is not None, "factor_x or factor_y": bool(along), "own": basis.own}
+    if sum(given.values()) != 1:
+        found = " and ".join(word for word, is_given in given.items() if is_given) or "no factor"
+        allowed = "must have one of: factor, factor_x and factor_y, own = true"
+        yield InputError(FILE, where, f"has {found}", allowed)
+    elif along:
+        for d in analysed:
+            if basis.factor_of(d) is None:
+                yield InputError(FILE, f"{where}.factor_{d}", "missing", "must be a number above 0")
+    if basis.own and not chain:
+        allowed = f'must be left out unless model.kind is "{CHAIN}"'
+        yield InputError(FILE, f"{where}.own", "got true", allowed)

@@ -1,0 +1,141 @@
+"""The job folder: its files read together, saved one by one, and watched for changes by others."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+from calcsheet.job import card as job_card
+from calcsheet.job import storeyfile, textfile
+from calcsheet.job.card import CHAIN, Card, parse_card
+from calcsheet.job.errors import InputError
+from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.table import TextTable, parse_table
+from calcsheet.job.textfile import Encoding, Stamp, TextFile
+
+
+@dataclass(frozen=True, eq=False)
+class JobFiles:
+    """The files of a job folder as they were read or last saved.
+
+    Parameters
+    ----------
+    card : Card
+        The job card.
+    card_text : str
+        Its text.
+    card_encoding : Encoding
+        How that text is held in bytes.
+    reading : StoreyReading
+        The storey table, with its problems or the storeys.
+    matrices : mapping of str to TextTable
+        By direction, the tables of given matrices.
+    stamps : mapping of str to Stamp
+        By file name, the state of each file on disk.
+    """
+
+    card: Card
+    card_text: str
+    card_encoding: Encoding
+    reading: StoreyReading
+    matrices: Mapping[str, TextTable]
+    stamps: Mapping[str, Stamp]
+
+    @property
+    def problems(self) -> tuple[str, ...]:
+        """All that keeps the storeys from being read, a sentence each."""
+        return tuple(problem.message for problem in self.reading.problems)
+
+
+@dataclass(frozen=True)
+class JobFolder:
+    """A job folder.
+
+    Parameters
+    ----------
+    path : Path
+        The folder.
+    """
+
+    path: Path
+
+    def load(self) -> JobFiles:
+        """Read the job card, the storey table and the matrices that the card names.
+
+        Raises
+        ------
+        InputError
+            A file is missing or no text, the card has an error, or a table has no cells. What is wrong in the
+            cells is listed in the reading instead.
+        """
+        card_file = self._read(job_card.FILE, f"`calcsheet new {self.path}` makes one")
+        card = parse_card(card_file.text)
+        stamps = {job_card.FILE: card_file.stamp}
+        storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
+        matrices = {
+            d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
+            for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
+        }
+        reading = read_storeys(storeys, card, matrices)
+        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps)
+
+    def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
+        """Write the storey table, whatever is wrong in its cells, and read it anew.
+
+        Parameters
+        ----------
+        files : JobFiles
+            The files as last read or saved.
+        table : TextTable
+            The edited table.
+        overwrite : bool
+            Write over what somebody else has changed on disk since.
+
+        Raises
+        ------
+        ConflictError
+            The file was changed on disk since, unless `overwrite`.
+        NotSavedError
+            It can't be written.
+        """
+        stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
+        return replace(files, reading=read_storeys(table, files.card, files.matrices), stamps=stamps)
+
+    def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
+        """Write the job card and read everything anew under it.
+
+        A text that is no valid card is refused (InputError) and not saved; the other arguments and errors are
+        those of `save_storeys`.
+        """
+        card = parse_card(text)
+        content = files.card_encoding.encode(text, job_card.FILE)
+        stamps = self._write(job_card.FILE, content, files.stamps, overwrite)
+        if card.model != files.card.model:
+            return self.load()
+        reading = read_storeys(files.reading.table, card, files.matrices)
+        return replace(files, card=card, card_text=text, reading=reading, stamps=stamps)
+
+    def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
+        """Return the names of the files that are no longer on disk as they were read or saved."""
+        return tuple(
+            name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp
+        )
+
+    def _write(
+        self, name: str, content: bytes, stamps: Mapping[str, Stamp], overwrite: bool
+    ) -> Mapping[str, Stamp]:
+        path = self.path / name
+        expected = textfile.stamp(path) if overwrite else stamps[name]
+        return {**stamps, name: textfile.write(path, content, expected)}
+
+    def _read(self, name: str, remedy: str) -> TextFile:
+        path = self.path / name
+        if not path.is_file():
+            raise InputError("", "", f"no {name} in {self.path}", remedy)
+        return textfile.read(path)
+
+    def _table(self, name: str, remedy: str, stamps: dict[str, Stamp]) -> TextTable:
+        source = self._read(name, remedy)
+        stamps[name] = source.stamp
+        return parse_table(source, name)

@@ -1,0 +1,155 @@
+"""What headings say: ``stiffness x cracked [kN/m]`` is a quantity, a direction, a set and a unit."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+from dataclasses import dataclass, replace
+
+from calcsheet.job.card import CHAIN, DIRECTIONS, Card
+from calcsheet.job.errors import InputError
+from calcsheet.job.table import TextTable
+from calcsheet.units import Unit, UnitError, allowed_units, display, parse_unit
+
+LEVEL = "level"
+QUANTITIES = {"storey height": "length", "elevation": "elevation", "mass": "mass", "weight": "weight"}
+"""The headings that stand for one quantity, and that quantity in the unit table."""
+
+
+@dataclass(frozen=True)
+class Column:
+    """One column of a storey table.
+
+    Parameters
+    ----------
+    key : str
+        The heading without its unit, spelled as this program spells it; "column 7" where it isn't known.
+    heading : str
+        The heading as written.
+    quantity : str or None
+        Its quantity in the unit table; None for names and for what isn't known.
+    unit : Unit or None
+        Its unit; None also where the heading's unit is refused.
+    direction : str or None
+        "x" or "y".
+    set_name : str or None
+        The stiffness set whose own values these are.
+    used : bool
+        Whether the calculation reads it.
+    """
+
+    key: str
+    heading: str
+    quantity: str | None = None
+    unit: Unit | None = None
+    direction: str | None = None
+    set_name: str | None = None
+    used: bool = False
+
+
+@dataclass(frozen=True)
+class Headings:
+    """The columns of a table, what is wrong with them (by column key, if any), and what is worth knowing."""
+
+    columns: tuple[Column, ...]
+    problems: tuple[tuple[str | None, InputError], ...]
+    notices: tuple[str, ...]
+
+
+def split_heading(heading: str) -> tuple[str, str | None]:
+    """Return a heading's name, its spaces levelled, and its unit, None where it has no square brackets."""
+    found = re.fullmatch(r"([^\[\]]*)\[([^\[\]]*)\]\s*", heading)
+    name, unit = found.groups() if found else (heading, None)
+    return " ".join(name.split()), unit.strip() if unit is not None else None
+
+
+def heading_unit(file: str, heading: str, unit: str | None, quantity: str) -> Unit:
+    """Return the unit that a heading gives for a quantity, refusing (InputError) any other."""
+    where = f'heading "{heading}"'
+    if not unit:
+        allowed = f"must give its unit in square brackets: {allowed_units(quantity)}"
+        raise InputError(file, where, "no unit", allowed)
+    try:
+        return parse_unit(unit, quantity)
+    except UnitError as error:
+        raise InputError(file, where, error.found, error.allowed) from None
+
+
+def read_headings(table: TextTable, card: Card) -> Headings:
+    """Return the columns of a storey table, every problem with them, and notices of what isn't used."""
+    columns: list[Column] = []
+    problems: list[tuple[str | None, InputError]] = []
+    notices: list[str] = []
+    for i, heading in enumerate(table.headings):
+        name, unit = split_heading(heading)
+        column = _known(name, heading, card)
+        if column is None:
+            columns.append(Column(f"column {i + 1}", heading))
+            if heading.strip() or any(cells[i].strip() for cells in table.rows):
+                notices.append(f'{table.file}, column "{heading}" isn\'t known: not used, and kept')
+            continue
+        twin = next((k for k, other in enumerate(columns) if other.key == column.key), None)
+        try:
+            if twin is not None:
+                column = replace(column, key=f"column {i + 1}", used=False)
+                found = f"given in columns {twin + 1} and {i + 1}"
+                raise InputError(table.file, f'heading "{heading}"', found, "must be given once")
+            if column.quantity is not None:
+                column = replace(column, unit=heading_unit(table.file, heading, unit, column.quantity))
+            elif unit is not None:
+                allowed = f'must be "{LEVEL}" alone'
+                raise InputError(table.file, f'heading "{heading}"', f"a unit, [{unit}]", allowed)
+        except InputError as error:
+            problems.append((column.key, error))
+        if not column.used and twin is None:
+            notices.append(f'{table.file}, column "{heading}" isn\'t used by this model, and is kept')
+        columns.append(column)
+    problems += [(None, error) for error in _missing(table.file, {c.key for c in columns}, card)]
+    return Headings(tuple(columns), tuple(problems), tuple(notices))
+
+
+def needed_stiffness(card: Card) -> dict[str, tuple[str, str | None]]:
+    """Return the stiffness columns needed: key -> direction, set (None: what factors apply to)."""
+    if card.model.kind != CHAIN:
+        return {}
+    sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
+    return {stiffness_key(d, name): (d, name) for name in sets for d in card.directions.analysed}
+
+
+def stiffness_key(direction: str, set_name: str | None) -> str:
+    """Return the key of a stiffness column."""
+    return f"stiffness {direction}" + (f" {set_name}" if set_name else "")
+
+
+def _known(name: str, heading: str, card: Card) -> Column | None:
+    wanted = name.casefold()
+    if wanted == LEVEL:
+        return Column(LEVEL, heading, used=True)
+    if wanted in QUANTITIES:
+        return Column(wanted, heading, QUANTITIES[wanted], used=True)
+    for d in DIRECTIONS:
+        for set_name in (None, *(name for name, basis in card.stiffness.items() if basis.own)):
+            key = stiffness_key(d, set_name)
+            if wanted == " ".join(key.split()).casefold():
+                used = key in needed_stiffness(card)
+                return Column(key, heading, "stiffness", None, d, set_name, used)
+    return None
+
+
+def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
+    def written(key: str, quantity: str) -> str:
+        return f'"{key} [{display(quantity, card.units.system).symbol}]"'
+
+    if LEVEL not in keys:
+        yield InputError(file, "", f'no column "{LEVEL}"', "must have one")
+    for pair in (("storey height", "elevation"), ("mass", "weight")):
+        both = [written(key, QUANTITIES[key]) for key in pair]
+        if keys.isdisjoint(pair):
+            yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")
+        elif keys.issuperset(pair):
+            yield InputError(file, "", f"columns {' and '.join(both)}", "must have exactly one of them")
+    for key, (d, name) in needed_stiffness(card).items():
+        if key not in keys:
+            own = f" and stiffness.{name} has own values" if name else ""
+            why = f"must have it, since {d} is analysed{own} (job.toml)"
+            yield InputError(file, "", f"no column {written(key, 'stiffness')}", why)

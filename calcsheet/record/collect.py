@@ -1,0 +1,144 @@
+"""What a notebook holds for a record: the engineer's words, the blocks in their order, and the payloads."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import Any
+
+from nbformat import NotebookNode
+
+from calcsheet.blocks.twin import FORMAT, MIME
+from calcsheet.record.errors import RecordError
+from calcsheet.render.registry import VIEWS
+from calcsheet.steps.graph import Job
+from calcsheet.steps.registry import STEPS
+from calcsheet.steps.serial import fingerprint
+from calcsheet.steps.step import Payload
+
+
+@dataclass(frozen=True)
+class Words:
+    """A markdown cell: its source and attachments."""
+
+    source: str
+    attachments: Mapping[str, Mapping[str, str]] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class Shown:
+    """A block: name of its view, key of its step, options."""
+
+    view: str
+    step: str
+    options: Mapping[str, Any]
+
+
+@dataclass(frozen=True)
+class Own:
+    """A cell of the engineer's own: its source and its outputs, as nbformat has them. It is not replayed."""
+
+    source: str
+    outputs: tuple[NotebookNode, ...]
+
+
+@dataclass(frozen=True)
+class Content:
+    """What a notebook holds for a record.
+
+    Parameters
+    ----------
+    parts : tuple of Words, Shown and Own
+        In the notebook's own order.
+    payloads : mapping of str to payload
+        The job's steps, by key, upstream first; all "ok".
+    """
+
+    parts: tuple[Words | Shown | Own, ...]
+    payloads: Mapping[str, Payload]
+
+
+def collect(notebook: NotebookNode) -> Content:
+    """Take a record's content from an executed notebook.
+
+    Raises
+    ------
+    RecordError
+        No job card, a step that is refused or waiting, a cell that was changed and not run again, or outputs that do
+        not belong together.
+    """
+    payloads = _payloads(notebook)
+    for key, payload in payloads.items():
+        if payload["state"] != "ok":
+            raise RecordError(f"{STEPS[payload['kind']].title}, step \"{key}\", is {payload['state']}: {payload['why']}")
+    parts: list[Words | Shown | Own] = []
+    for number, cell in enumerate(notebook.cells, 1):
+        if cell.cell_type == "markdown" and cell.source.strip():
+            parts.append(Words(cell.source, cell.get("attachments", {})))
+        elif cell.cell_type == "code" and cell.source.strip():
+            parts += _of_code(number, cell, payloads)
+    return Content(tuple(parts), payloads)
+
+
+def refuse_stale(content: Content, folder: Path) -> None:
+    """Refuse content whose inputs are no longer those of the job folder.
+
+    Raises
+    ------
+    RecordError
+        Naming the table that has changed since the notebook was run.
+    """
+    now = Job(folder.resolve()).payloads()
+    for key in ("card", "storeys"):
+        if now[key]["state"] != "ok":
+            raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
+        if fingerprint(now[key]["inputs"]) != fingerprint(content.payloads[key]["inputs"]):
+            file = "job.toml" if key == "card" else "storeys.csv or job.toml"
+            raise RecordError(f"the notebook is stale: {file} changed since it was run; run all its cells and save it")
+
+
+def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
+    found = None
+    for cell in notebook.cells:
+        for output in cell.get("outputs", ()):
+            data = output.get("data", {}).get(MIME)
+            if data is not None and data["format"] != FORMAT:
+                raise RecordError(f"the notebook was run by another version of calcsheet (twin format {data['format']})")
+            if data is not None and "payloads" in data:
+                found = data["payloads"]
+    if found is None:
+        raise RecordError("the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells")
+    return dict(found)
+
+
+def _of_code(number: int, cell: NotebookNode, payloads: Mapping[str, Payload]) -> list[Shown | Own]:
+    shown, others = [], []
+    for output in cell.outputs:
+        if output.output_type == "error":
+            raise RecordError(f"cell {number} failed when the notebook was run: {output.ename}: {output.evalue}")
+        data = output.get("data", {}).get(MIME)
+        if data is not None:
+            shown.append(_shown(number, cell, data, payloads))
+        elif "application/vnd.jupyter.widget-view+json" not in output.get("data", {}):
+            others.append(output)
+    if shown and not others:
+        return list(shown)
+    if not others and _is_set_up(cell.source):
+        return []
+    return [Own(cell.source, tuple(others)), *shown]
+
+
+def _is_set_up(source: str) -> bool:
+    """Whether a cell only imports: nothing that a checker needs."""
+    return all(line.startswith(("import ", "from ", "#")) or not line.strip() for line in source.splitlines())
+
+
+def _shown(number: int, cell: NotebookNode, data: Mapping[str, Any], payloads: Mapping[str, Payload]) -> Shown:
+    if data["view"] not in VIEWS or data["step"] not in payloads:
+        raise RecordError(f'cell {number} shows "{data["view"]}" of step "{data["step"]}", which this record has not')
+    if data["source"] != fingerprint(cell.source.rstrip("\n")):
+        raise RecordError(f"the notebook is stale: cell {number} was changed and not run again")
+    if data["fingerprint"] != fingerprint(payloads[data["step"]]):
+        raise RecordError(f"the notebook is stale: cell {number} shows older results than the job card holds; run all cells")
+    return Shown(data["view"], data["step"], data["options"])

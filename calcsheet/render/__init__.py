@@ -1,0 +1,1 @@
+"""Payloads to tables, figures and numbers: the same for screen and record."""

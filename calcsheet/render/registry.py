@@ -1,0 +1,14 @@
+"""Every view by its name."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+from calcsheet.render.card import CARD
+from calcsheet.render.modes import MODES
+from calcsheet.render.participation import PARTICIPATION
+from calcsheet.render.plot import PLOT
+from calcsheet.render.storeys import STOREYS
+from calcsheet.render.view import View
+
+VIEWS: Mapping[str, View] = {view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION)}

@@ -1,0 +1,84 @@
+"""View of the storey table."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from html import escape
+from typing import Any
+
+from calcsheet.render.numbers import number
+from calcsheet.render.table import facts, table, values, words
+from calcsheet.render.view import Rendered, View, system_of
+from calcsheet.steps.step import Payload
+
+
+def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]) -> Rendered:
+    system, payload = system_of(payloads), payloads[key]
+    given, sums = payload["inputs"], payload["result"]
+    roof_first = list(range(len(given["level"])))[::-1]
+    columns = [
+        words("level", [given["level"][i] for i in roof_first]),
+        values("elevation", given["elevation"], "elevation", system, f"/{key}/inputs/elevation", order=roof_first, as_given=True),
+        values(
+            "storey height",
+            given["storey_height"],
+            "length",
+            system,
+            f"/{key}/inputs/storey_height",
+            order=roof_first,
+            as_given=True,
+        ),
+        values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=roof_first, as_given=True),
+        values("mass at and above", sums["mass_above"], "mass", system, f"/{key}/result/mass_above", order=roof_first),
+    ]
+    matrices = []
+    for i, named in enumerate(given["stiffness"]):
+        for direction, lateral in named["lateral"].items():
+            at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", f"stiffness {direction}"
+            if len(given["stiffness"]) > 1:
+                title += f", {named['name']}"
+            if lateral["kind"] == "storey chain":
+                columns.append(values(title, lateral["storey"], "stiffness", system, f"{at}/storey", order=roof_first, as_given=True))
+            else:
+                matrices.append(_matrix(f"{lateral['kind']} {direction}, {named['name']}", given["level"], lateral, system, at))
+    rows = [
+        ("total mass above the base", number(sums["mass"], "mass", system, f"/{key}/result/mass")),
+        ("total weight above the base", number(sums["weight"], "weight", system, f"/{key}/result/weight")),
+        ("height above the base", number(sums["height"], "length", system, f"/{key}/result/height")),
+        (
+            f"effective base: {given['base'] or 'foot of the lowest storey'}",
+            "elevation " + number(given["base_elevation"], "elevation", system, f"/{key}/inputs/base_elevation"),
+        ),
+    ]
+    rows += [
+        (f'stiffness set "{named["name"]}"', escape(_serves(named["name"], given) + (named["ground"] or "no ground given")))
+        for named in given["stiffness"]
+    ]
+    below = _below(given["below"], system, key) if given["below"] else ""
+    return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
+
+
+def _serves(name: str, given: Mapping[str, Any]) -> str:
+    served = [purpose for purpose in ("forces", "drifts") if given[purpose] == name]
+    return f"serves {' and '.join(served)}; " if served else ""
+
+
+def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
+    order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
+    columns = [words("level", [below[i]["level"] for i in order])]
+    for name, field in (("elevation", "elevation"), ("mass", "mass")):
+        columns.append(values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True))
+    return table(columns, kind="values", caption="At or below the effective base: outside the model and its mass shares")
+
+
+def _matrix(title: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
+    quantity = "stiffness" if lateral["kind"] == "stiffness matrix" else "flexibility"
+    order = list(range(len(levels)))[::-1]
+    columns = [words("level", [levels[i] for i in order])]
+    for j in order:
+        entries = [row[j] for row in lateral["matrix"]]
+        columns.append(values(levels[j], entries, quantity, system, f"{at}/matrix/{{}}/{j}", order=order, as_given=True))
+    return table(columns, kind="values", caption=title)
+
+
+STOREYS = View("storeys", "Storey table", "storeys", render)

@@ -1,0 +1,72 @@
+"""Worked lines, cautions and evidence as tables: the parts that every step's payload has."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from html import escape
+from typing import Any
+
+from calcsheet.render.numbers import exponent, number
+from calcsheet.render.table import Column, table, words
+
+Located = tuple[str, dict[str, Any]]
+"""A part of a payload with the JSON pointer of its step."""
+
+
+def filled(template: str, numbers: Iterable[Mapping[str, Any]], system: str, step: str) -> str:
+    """HTML of a text with places ``{0}`` … for numbers of the step at JSON pointer `step`."""
+    shown = [number(n["value"], n["quantity"], system, f"{step}/{n['at']}") for n in numbers]
+    return escape(template, quote=False).format(*shown)
+
+
+def worked(lines: Iterable[Located], system: str) -> str:
+    """Table of worked lines."""
+    rows = list(lines)
+    results = (number(n["value"], n["quantity"], system, f"{at}/{n['at']}") for at, line in rows for n in [line["result"]])
+    return table(
+        (
+            words("quantity", [line["quantity"] for _, line in rows]),
+            words("relation", [line["relation"] for _, line in rows]),
+            Column(
+                "with values",
+                tuple(filled(line["substitution"], line["numbers"], system, at) for at, line in rows),
+                numeric=False,
+            ),
+            Column("result", tuple(results)),
+            words("reference", [line["reference"] for _, line in rows]),
+        ),
+        kind="lines",
+    )
+
+
+def evidence(found: Iterable[Located]) -> str:
+    """Table of evidence; `found` holds each figure with its own JSON pointer."""
+    rows = list(found)
+    verdicts = [
+        '<span class="passes">passes</span>' if e["within"] else '<span class="exceeds">exceeds</span>' for _, e in rows
+    ]
+    return table(
+        (
+            words("evidence", [e["what"] for _, e in rows]),
+            words("measure", [e["relation"] for _, e in rows]),
+            Column("figure", tuple(exponent(e["value"], f"{at}/value") for at, e in rows)),
+            Column("limit", tuple(exponent(e["limit"], f"{at}/limit") for at, e in rows)),
+            Column("", tuple(verdicts), numeric=False),
+        ),
+        kind="evidence",
+        marked=[i for i, (_, e) in enumerate(rows) if not e["within"]],
+    )
+
+
+def cautions(raised: Iterable[Located], answers: Mapping[str, str], system: str) -> str:
+    """List of cautions with the job's answers."""
+    items = []
+    for at, caution in raised:
+        answer = answers.get(caution["key"], "").strip()
+        open_ = caution["answer"] and not answer
+        said = f'<p class="answer"><b>Answer:</b> {escape(answer)}</p>' if answer else ""
+        if open_:
+            said = f'<p class="answer"><b>Needs an answer</b> under <code>{escape(caution["key"])}</code></p>'
+        kind = "caution needs-answer" if open_ else "caution"
+        items.append(f'<li class="{kind}">{filled(caution["text"], caution["numbers"], system, at)}{said}</li>')
+    return f'<ul class="cautions">{"".join(items)}</ul>' if items else "<p>None.</p>"

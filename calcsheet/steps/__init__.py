@@ -1,0 +1,1 @@
+"""Stages of the calculation: typed inputs to typed results, with worked lines, cautions and evidence."""

@@ -1,0 +1,291 @@
+"""The job as one object: its files, its steps, and who is told when they change.
+
+State lives here and nowhere else; blocks and records are views. One lock guards it, one pass brings every step up to
+date, and listeners hear of it afterwards: all numbers first, then all figures, the newest state winning.
+"""
+
+from __future__ import annotations
+
+import threading
+from collections.abc import Callable
+from dataclasses import dataclass, field, replace
+from pathlib import Path
+from typing import Any, ClassVar, Protocol
+
+from calcsheet.job.errors import ConflictError, InputError, NotSavedError
+from calcsheet.job.folder import JobFiles, JobFolder
+from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.table import TextTable
+from calcsheet.steps.registry import STEPS
+from calcsheet.steps.serial import to_json
+from calcsheet.steps.step import Payload, Step, calculated, done, unfinished
+
+LISTED = 3
+"""Problems quoted where a step says why it can't be done; the others are counted."""
+
+
+class Listener(Protocol):
+    """Somebody who shows the job."""
+
+    def show_numbers(self) -> None:
+        """Show the present numbers: quick."""
+
+    def show_figures(self) -> None:
+        """Draw the present figures, and what is kept of them."""
+
+
+@dataclass(frozen=True)
+class Status:
+    """How the storey table in memory stands to its file.
+
+    Parameters
+    ----------
+    kind : str
+        "saved", "conflict" (another edit is on disk) or "error" (can't be written or read).
+    text : str
+        The same in words.
+    """
+
+    kind: str
+    text: str
+
+
+@dataclass
+class _Node:
+    step: Step
+    needs: dict[str, str]
+    inputs: Any
+    payload: Payload = field(default_factory=dict)
+    upstream: tuple[Payload, ...] = ()
+
+
+class Job:
+    """A job folder open in this process.
+
+    Use `Job.open`: it gives the same object for the same folder.
+
+    Parameters
+    ----------
+    path : Path
+        The folder.
+    """
+
+    _opened: ClassVar[dict[Path, Job]] = {}
+    _opening: ClassVar[threading.Lock] = threading.Lock()
+
+    def __init__(self, path: Path) -> None:
+        self.folder = JobFolder(path)
+        self.lock = threading.RLock()
+        self.revision = 0
+        self.status = Status("error", "not read yet")
+        self.files: JobFiles | None = None
+        self._problem = ""
+        self._unsaved = False
+        self._nodes: dict[str, _Node] = {}
+        self._listeners: list[Listener] = []
+        self._telling = threading.RLock()
+        self._told = 0
+        self._nodes["card"] = _Node(STEPS["card"], {}, None)
+        self._nodes["storeys"] = _Node(STEPS["storeys"], {}, None)
+        self.load()
+
+    @classmethod
+    def open(cls, folder: str | Path) -> Job:
+        """The job of a folder; read anew where its files changed on disk and nothing here is unsaved."""
+        path = Path(folder).resolve()
+        with cls._opening:
+            job = cls._opened.get(path)
+            if job is None:
+                job = cls._opened[path] = cls(path)
+                return job
+        if not job._unsaved and (job.files is None or job.folder.changed_on_disk(job.files)):
+            job.load()
+        return job
+
+    # ---- steps -----------------------------------------------------------------------------------------------------
+
+    def attach(self, kind: str, inputs: Any, needs: dict[str, str] | None = None, key: str | None = None) -> str:
+        """Add a step, or give one that is there new inputs, and bring the job up to date.
+
+        Parameters
+        ----------
+        kind : str
+            Kind of the step.
+        inputs : object
+            Its inputs.
+        needs : dict of str to str, optional
+            Key of the step that serves each kind needed; that kind's own name where omitted.
+        key : str, optional
+            Name of the step in this job; its kind where omitted.
+
+        Returns
+        -------
+        str
+            The key.
+        """
+        key = key or kind
+        with self.lock:
+            step = STEPS[kind]
+            served = {k: (needs or {}).get(k, k) for k in step.needs}
+            missing = [k for k in served.values() if k not in self._nodes]
+            if missing:
+                raise KeyError(f"{step.title} needs {', '.join(missing)}, which this job has not yet")
+            if key in self._nodes and self._nodes[key].step is not step:
+                raise KeyError(f'"{key}" is another step of this job: {self._nodes[key].step.title}')
+            if key in self._nodes:
+                self._nodes[key].needs, self._nodes[key].inputs = served, inputs
+            else:
+                self._nodes[key] = _Node(step, served, inputs)
+            self._update()
+        self._tell()
+        return key
+
+    def payload(self, key: str) -> Payload:
+        """The present payload of a step."""
+        with self.lock:
+            return self._nodes[key].payload
+
+    def payloads(self) -> dict[str, Payload]:
+        """The present payloads of all steps by key, upstream first."""
+        with self.lock:
+            return {key: node.payload for key, node in self._nodes.items()}
+
+    # ---- files -----------------------------------------------------------------------------------------------------
+
+    def load(self) -> None:
+        """Read the files from disk; what is unsaved here is given up."""
+        with self.lock:
+            self._unsaved = False
+            try:
+                self.files, self._problem = self.folder.load(), ""
+                self.status = Status("saved", f"{self.files.reading.table.file}: as on disk")
+            except InputError as error:
+                self._problem = str(error)
+                self.status = Status("error", self._problem)
+            self._update()
+        self._tell()
+
+    def edit(self, change: Callable[[StoreyReading], TextTable]) -> None:
+        """Edit the storey table and write it through to its file.
+
+        Parameters
+        ----------
+        change : callable
+            From the table as read to the table wanted.
+
+        Raises
+        ------
+        InputError
+            The edit itself is refused; nothing has changed. A cell that it leaves wrong is no such case: it is saved,
+            and the storeys say what is wrong.
+        """
+        with self.lock:
+            self._save(change(self._read().reading), overwrite=False)
+        self._tell()
+
+    def keep(self) -> None:
+        """Write the table in memory over what is on disk."""
+        with self.lock:
+            self._save(self._read().reading.table, overwrite=True)
+        self._tell()
+
+    def look(self) -> None:
+        """See whether somebody else changed the files on disk, and say so."""
+        with self.lock:
+            if self.files is None or self.status.kind == "conflict":
+                return
+            changed = self.folder.changed_on_disk(self.files)
+            if not changed:
+                return
+            self.status = Status("conflict", f"{' and '.join(changed)}: changed on disk since read here")
+            self._update()
+        self._tell()
+
+    def _read(self) -> JobFiles:
+        if self.files is None or self._problem:
+            raise InputError("", "", self._problem or "the job can't be read", "put that right first")
+        return self.files
+
+    def _save(self, table: TextTable, overwrite: bool) -> None:
+        files = self._read()
+        try:
+            self.files = self.folder.save_storeys(files, table, overwrite)
+            self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
+        except NotSavedError as error:
+            reading = read_storeys(table, files.card, files.matrices)
+            self.files, self._unsaved = replace(files, reading=reading), True
+            self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
+        self._update()
+
+    # ---- one pass --------------------------------------------------------------------------------------------------
+
+    def _update(self) -> None:
+        """Bring every step up to date, upstream first; the lock is held."""
+        self.revision += 1
+        for key, node in self._nodes.items():
+            upstream = tuple(self._nodes[k].payload for k in node.needs.values())
+            if key in ("card", "storeys"):
+                node.payload = self._from_files(key, node)
+                continue
+            held_up = next((p for p in upstream if p["state"] != "ok"), None)
+            if held_up is not None:
+                why = held_up["why"]
+                if held_up["state"] == "refused":
+                    why = f"waits for {STEPS[held_up['kind']].title.lower()}: {why}"
+                node.payload = unfinished(node.step, node.needs, "waiting", why, node.inputs)
+            elif not self._current(node, upstream):
+                served = tuple(done(STEPS[p["kind"]], p) for p in upstream)
+                node.payload = calculated(node.step, node.needs, node.inputs, served)
+            node.upstream = upstream
+
+    def _current(self, node: _Node, upstream: tuple[Payload, ...]) -> bool:
+        """Whether a step's payload was calculated from these very inputs."""
+        same = len(upstream) == len(node.upstream) and all(a is b for a, b in zip(upstream, node.upstream, strict=True))
+        return same and node.payload["needs"] == node.needs and node.payload["inputs"] == to_json(node.inputs)
+
+    def _from_files(self, key: str, node: _Node) -> Payload:
+        if self._problem or self.files is None:
+            state = "refused" if key == "card" else "waiting"
+            return unfinished(node.step, {}, state, self._problem if key == "card" else f"waits for job card: {self._problem}")
+        if key == "card":
+            node.inputs = self.files.card
+        else:
+            if self.status.kind != "saved":
+                return unfinished(node.step, {}, "refused", self.status.text)
+            problems = self.files.problems
+            if problems:
+                more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+                return unfinished(node.step, {}, "refused", "; ".join(problems[:LISTED]) + more)
+            node.inputs = self.files.reading.storeys
+        if node.payload and node.payload["state"] == "ok" and node.payload["inputs"] == to_json(node.inputs):
+            return node.payload
+        return calculated(node.step, {}, node.inputs, ())
+
+    # ---- listeners -------------------------------------------------------------------------------------------------
+
+    def listen(self, listener: Listener) -> None:
+        """Tell `listener` of every change from now on."""
+        with self.lock:
+            self._listeners.append(listener)
+
+    def leave(self, listener: Listener) -> None:
+        """Tell `listener` no more."""
+        with self.lock:
+            self._listeners = [other for other in self._listeners if other is not listener]
+
+    def _tell(self) -> None:
+        """Show the newest state everywhere; a pass that falls behind gives way to the next."""
+        with self._telling:
+            while True:
+                with self.lock:
+                    revision, listeners = self.revision, list(self._listeners)
+                if self._told == revision:
+                    return
+                for listener in listeners:
+                    listener.show_numbers()
+                for listener in listeners:
+                    if self.revision != revision:
+                        break
+                    listener.show_figures()
+                else:
+                    self._told = revision

@@ -1,0 +1,199 @@
+from __future__ import annotations
+
+import datetime as dt
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from calcsheet.job.card import card_of, dotted, parse_card, parse_toml
+from calcsheet.job.errors import InputError
+
+MATRIX = ('"storey chain"', '"stiffness matrix"\nx = "kx.csv"\ny = "ky.csv"')
+
+
+def refusal(card, *changes: tuple[str, str]) -> str:
+    with pytest.raises(InputError) as caught:
+        card(*changes)
+    return str(caught.value)
+
+
+def test_the_card_is_read(card):
+    got = card()
+    assert got.job.project == "Larch Yard"
+    assert got.job.date == dt.date(2026, 1, 31)
+    assert got.people.prepared.initials == "AW"
+    assert got.people.approved.name == ""
+    assert got.levels.base_elevation == 0.0
+    assert got.directions.analysed == ("x", "y")
+    assert [basis.factor_of("x") for basis in got.stiffness.values()] == [1.0, 0.5]
+    assert got.assumptions[0].confirm_by == ""
+    assert got.origins["storeys.csv"].date == dt.date(2026, 1, 2)
+    assert got.model.files == {}
+
+
+def test_a_card_of_matrices_and_factors_by_direction(card):
+    got = card(MATRIX, ("factor = 0.5", "factor_x = 0.5\nfactor_y = 0.7"))
+    assert got.model.files == {"x": "kx.csv", "y": "ky.csv"}
+    assert got.stiffness["cracked"].factor_of("y") == 0.7
+
+
+def test_one_direction_alone(card):
+    got = card(('y = "y runs along grid A"\n', ""), ("factor = 0.5", "factor_x = 0.5"))
+    assert got.directions.analysed == ("x",)
+
+
+def test_a_card_does_not_change(card):
+    with pytest.raises(ValueError, match="frozen"):
+        card().job.title = "other"
+
+
+REVISION = "must be a text of letters, digits, points, hyphens, underscores, spaces: it names a folder"
+DATE = "must be a date without quotation marks, such as 2026-01-31"
+BASIS = "must have one of: factor, factor_x and factor_y, own = true"
+FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "message"),
+    [
+        ('"SI"', '"metric"', 'units.system: got "metric"; must be "SI" or "US"'),
+        ('system = "SI"', "", 'units.system: missing; must be "SI" or "US"'),
+        ('[units]\nsystem = "SI"\n', "", "units: missing; must be a table [units]"),
+        ("[job]", "[[job]]", "job: got a list; must be a table [job]"),
+        ("format = 1", "format = 2", "format: got 2; must be 1, the format that this version reads"),
+        ("format = 1", "format = true", "format: got true; must be 1, the format that this version reads"),
+        ("title =", "titel =", "job.title: missing; must be a text that is not blank"),
+        (
+            "reason =",
+            "raeson =",
+            "job.raeson: unknown key; must be one of project, title, number, revision, date, reason, purpose",
+        ),
+        ("2026-01-31", '"2026-01-31"', f'job.date: got "2026-01-31"; {DATE}'),
+        ("2026-01-31", "2026-01-31T10:00:00", f"job.date: got 2026-01-31 10:00:00; {DATE}"),
+        ('revision = "1"', "revision = 1", f"job.revision: got 1; {REVISION}"),
+        ('revision = "1"', 'revision = "a/b"', f'job.revision: got "a/b"; {REVISION}'),
+        ('revision = "1"', 'revision = ".."', f'job.revision: got ".."; {REVISION}'),
+        ('"A. Writer"', '" "', 'people.prepared.name: got " "; must be a text that is not blank'),
+        (
+            'name = ""',
+            'name = "a. writer"',
+            'people.checked.name: got "a. writer", who prepared it; must be another person',
+        ),
+        (
+            "base_elevation = 0",
+            "base_elevation = inf",
+            "levels.base_elevation: got inf; must be a number, in m (SI) or ft (US)",
+        ),
+        (
+            "base_elevation = 0",
+            'base_elevation = "0"',
+            'levels.base_elevation: got "0"; must be a number, in m (SI) or ft (US)',
+        ),
+        (
+            'x = "x runs along grid 1"\ny = "y runs along grid A"',
+            "",
+            "directions: neither x nor y; must have a sentence for x, y or both",
+        ),
+        (
+            '"x runs along grid 1"',
+            '""',
+            'directions.x: got ""; must be a sentence that ties this direction to the drawings\' grid',
+        ),
+        (
+            '"storey chain"',
+            '"stick"',
+            'model.kind: got "stick"; must be "storey chain", "stiffness matrix" or "flexibility matrix"',
+        ),
+        (
+            '"storey chain"',
+            '"storey chain"\nx = "k.csv"',
+            'model.x: got "k.csv"; must be left out with kind "storey chain"',
+        ),
+        ('"storey chain"', '"stiffness matrix"', f"model.x: missing; {FILE}"),
+        ('"storey chain"', '"stiffness matrix"\nx = "../k.csv"', f'model.x: got "../k.csv"; {FILE}'),
+        ("factor = 0.5", "factor = -1", "stiffness.cracked.factor: got -1; must be a number above 0"),
+        ("factor = 0.5", "factor = nan", "stiffness.cracked.factor: got nan; must be a number above 0"),
+        ("factor = 0.5", "", f"stiffness.cracked: has no factor; {BASIS}"),
+        ("factor = 0.5", "factor = 1\nown = true", f"stiffness.cracked: has factor and own; {BASIS}"),
+        ("factor = 0.5", "factor_x = 0.5", "stiffness.cracked.factor_y: missing; must be a number above 0"),
+        (
+            "factor = 0.5",
+            "fcator = 0.5",
+            "stiffness.cracked.fcator: unknown key; must be one of ground, factor, factor_x, factor_y, own",
+        ),
+        (
+            "[stiffness.cracked]",
+            '[stiffness."x [m]"]',
+            'stiffness."x [m]": got the name "x [m]"; must be a name without square brackets',
+        ),
+        (
+            'drifts = "cracked"',
+            'drifts = "c"',
+            'serves.drifts: got "c"; must name a set under [stiffness]: "uncracked" or "cracked"',
+        ),
+        (
+            'text = "Fixed at the raft"',
+            "text = 3",
+            "assumptions.0.text: got 3; must be a text that is not blank",
+        ),
+        ("[[assumptions]]", "[assumptions]", "assumptions: got a table; must be tables [[assumptions]]"),
+        ('source = "mass take-off"', "source = 3", 'origins."storeys.csv".source: got 3; must be a text'),
+        ("[answers]", '[answers]\n"light roof" = 3', 'answers."light roof": got 3; must be a text'),
+        ("[answers]", "[answers", "line 52: expected ']' at the end of a table declaration; must be TOML"),
+        ("[serves]", "[serves", "line 41: expected ']' at the end of a table declaration; must be TOML"),
+        ("2026-01-31", "2026-02-30", "line 9: invalid date or datetime; must be TOML"),
+    ],
+)
+def test_refusals(card, old, new, message):
+    assert refusal(card, (old, new)) == f"job.toml, {message}"
+
+
+def test_matrices_have_no_sets_of_own_values(card):
+    message = refusal(card, MATRIX, ("factor = 0.5", "own = true"))
+    assert message == (
+        'job.toml, stiffness.cracked.own: got true; must be left out unless model.kind is "storey chain"'
+    )
+
+
+def test_long_values_are_cut_in_messages(card):
+    assert refusal(card, ('"SI"', f'"{"S" * 500}"')) == (
+        f'job.toml, units.system: got "{"S" * 59}…"; must be "SI" or "US"'
+    )
+
+
+@pytest.mark.parametrize("text", ["a = " + "[" * 5000, "a = " + "1" * 5000])
+def test_hostile_text_is_refused(text):
+    with pytest.raises(InputError, match=r"^job\.toml: .*; must be TOML$"):
+        parse_toml(text)
+
+
+def test_dotted_keys_are_quoted_where_needed():
+    assert dotted(["origins", "storeys.csv", 0, "a-b_c"]) == 'origins."storeys.csv".0.a-b_c'
+
+
+@given(st.text(max_size=80))
+def test_any_text_is_refused_in_one_sentence(text):
+    with pytest.raises(InputError, match="^job.toml"):
+        parse_card(text)
+
+
+values = st.recursive(
+    st.booleans() | st.integers() | st.floats() | st.text() | st.dates() | st.datetimes() | st.times(),
+    lambda inner: st.lists(inner, max_size=2) | st.dictionaries(st.text(), inner, max_size=2),
+    max_leaves=4,
+)
+
+
+@given(st.data(), values)
+def test_a_key_of_any_type_is_read_or_refused(card_text, data, value):
+    table = card = parse_toml(card_text)
+    key = data.draw(st.sampled_from(sorted(table)))
+    while isinstance(table[key], dict) and table[key] and data.draw(st.booleans()):
+        table = table[key]
+        key = data.draw(st.sampled_from(sorted(table)))
+    table[data.draw(st.sampled_from([key, "other"]))] = value
+    try:
+        card_of(card)
+    except InputError as error:
+        assert str(error).startswith("job.toml, ")

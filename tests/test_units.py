@@ -1,0 +1,105 @@
+from __future__ import annotations
+
+import pint
+import pytest
+
+from calcsheet.units import DISPLAY, STANDARD_GRAVITY, UNITS, UnitError, allowed_units, display, parse_unit
+
+CORE = {
+    "length": "m",
+    "elevation": "m",
+    "displacement": "m",
+    "mass": "tonne",
+    "weight": "kN",
+    "force": "kN",
+    "stiffness": "kN/m",
+    "flexibility": "m/kN",
+    "moment": "kN*m",
+    "energy": "kJ",
+    "acceleration": "m/s**2",
+    "period": "s",
+    "frequency": "1/s",
+    "circular frequency": "rad/s",
+    "share": "",
+    "ratio": "",
+    "modal energy": "1/s**2",
+    "mass times length squared": "tonne*m**2",
+    "participation": "tonne**0.5",
+    "normalised shape": "tonne**-0.5",
+}
+REGISTRY = pint.UnitRegistry()
+
+
+PINT = {
+    "t": "tonne",
+    "t·m²": "tonne*m**2",
+    "%": "percent",
+    "Hz": "1/s",  # pint's hertz counts turns, in radians
+    "s⁻²": "s**-2",
+    "√t": "tonne**0.5",
+    "√(kip·s²/ft)": "(kip*s**2/ft)**0.5",
+    "1/√t": "tonne**-0.5",
+    "1/√(kip·s²/ft)": "(kip*s**2/ft)**-0.5",
+    "": "dimensionless",
+}
+
+
+def in_core(symbol: str, quantity: str) -> float:
+    """The factor of a unit by pint, which knows nothing of the table."""
+    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2"))
+    return REGISTRY.Quantity(1.0, spelled).to(CORE[quantity] or "dimensionless").magnitude
+
+
+@pytest.mark.parametrize(("quantity", "unit"), [(q, u) for q, units in UNITS.items() for u in units])
+def test_units_of_headings_agree_with_pint(quantity, unit):
+    assert unit.factor == pytest.approx(in_core(unit.symbol, quantity), rel=1e-12)
+
+
+@pytest.mark.parametrize(("quantity", "system"), [(q, s) for q in DISPLAY for s in ("SI", "US")])
+def test_units_shown_agree_with_pint(quantity, system):
+    shown = display(quantity, system)
+    assert shown.factor == pytest.approx(in_core(shown.symbol, quantity), rel=1e-12)
+    assert shown.of(3.0 * shown.factor) == pytest.approx(3.0, rel=1e-15)
+    assert shown.digits in (3, 4)
+
+
+def test_gravity_is_pints():
+    assert REGISTRY.Quantity(1.0, "standard_gravity").to("m/s**2").magnitude == STANDARD_GRAVITY
+
+
+@pytest.mark.parametrize(
+    "spelled", ["kip·s²/in", "kip s2/in", "kip*s^2/in", "kip-s²/in", "kip s^2/in", " kips × s² / in "]
+)
+def test_spellings_of_a_mass(spelled):
+    assert parse_unit(spelled, "mass") == parse_unit("kip·s²/in", "mass")
+
+
+def test_pounds_of_force():
+    assert parse_unit("lb", "weight") == parse_unit("lbf", "weight")
+    assert parse_unit("lb/in", "stiffness").symbol == "lbf/in"
+
+
+@pytest.mark.parametrize(
+    ("text", "quantity", "message"),
+    [
+        (
+            "kN",
+            "mass",
+            '"kN" is a unit of weight, not of mass; must be t, kg, kip·s²/ft or kip·s²/in',
+        ),
+        ("furlong", "length", '"furlong" is no unit of length; must be m, cm, mm, ft or in'),
+        ("", "length", "names no unit; must be m, cm, mm, ft or in"),
+        ("mN", "weight", '"mN" is no unit of weight; must be kN, MN, N, kip or lbf'),
+    ],
+)
+def test_refusals(text, quantity, message):
+    with pytest.raises(UnitError) as caught:
+        parse_unit(text, quantity)
+    assert str(caught.value) == message
+
+
+def test_every_unit_is_named_as_allowed_and_read_back():
+    for quantity, units in UNITS.items():
+        for unit in units:
+            assert unit.symbol in allowed_units(quantity)
+            assert parse_unit(unit.symbol, quantity) == unit
