@@ -74,6 +74,8 @@ class Storeys:
         The named sets.
     forces, drifts : str
         Names of the sets that serve forces and drifts.
+    given : {"mass", "weight"}
+        What the table gave; the other follows from it.
     """
 
     base: str
@@ -86,3 +88,4 @@ class Storeys:
     stiffness: tuple[StiffnessSet, ...]
     forces: str
     drifts: str
+    given: str = "mass"

@@ -29,6 +29,8 @@ class Totals(Frozen):
         Height of the top level above the effective base [m].
     mass_above : (n,) array
         Mass at and above each level [t].
+    weight_of_level : (n,) array
+        Weight of each level [kN].
     """
 
     mass: float = field(metadata=agrees(rtol=1e-12))
@@ -36,6 +38,7 @@ class Totals(Frozen):
     mass_below: float = field(metadata=agrees(rtol=1e-12))
     height: float = field(metadata=agrees(rtol=1e-12))
     mass_above: Array = field(metadata=agrees(rtol=1e-12))
+    weight_of_level: Array = field(metadata=agrees(rtol=1e-12))
 
 
 def totals(storeys: Storeys) -> Totals:
@@ -57,4 +60,5 @@ def totals(storeys: Storeys) -> Totals:
         mass_below=float(sum(level.mass for level in storeys.below)),
         height=float(storeys.elevation[-1] - storeys.base_elevation),
         mass_above=above,
+        weight_of_level=storeys.mass * GRAVITY,
     )

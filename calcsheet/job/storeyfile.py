@@ -273,6 +273,7 @@ class _Reader:
             stiffness=stiffness,
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
+            given="mass" if "mass" in self.values else "weight",
         )
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:

@@ -7,6 +7,7 @@ import sys
 import tempfile
 from collections.abc import Callable
 from pathlib import Path
+from typing import Any
 
 from jupyter_client.kernelspec import KernelSpec, KernelSpecManager
 from jupyter_client.manager import AsyncKernelManager
@@ -31,6 +32,16 @@ class _Here(KernelSpecManager):
         return KernelSpec(argv=command, language="python", display_name="Python")
 
 
+class _Manager(AsyncKernelManager):
+    """Starts a kernel that nobody else on the machine can reach, where the system has sockets as files."""
+
+    def __init__(self, **traits: Any) -> None:
+        super().__init__(**traits | {"kernel_spec_manager": _Here()})
+        if os.name == "posix":
+            self._sockets = tempfile.TemporaryDirectory(prefix="calcsheet-")
+            self.transport, self.ip = "ipc", str(Path(self._sockets.name) / "kernel")
+
+
 def execute(notebook: NotebookNode, folder: Path, progress: Progress = lambda cell, cells: None) -> None:
     """Execute a notebook in place, in a fresh kernel with the job folder as its working directory.
 
@@ -49,24 +60,9 @@ def execute(notebook: NotebookNode, folder: Path, progress: Progress = lambda ce
         A cell fails: the message quotes it.
     """
     code = [i for i, cell in enumerate(notebook.cells) if cell.cell_type == "code"]
-    with tempfile.TemporaryDirectory(prefix="calcsheet-") as sockets:
-        _execute(notebook, folder, _manager(sockets), progress, code)
-
-
-def _manager(sockets: str) -> AsyncKernelManager:
-    """A manager of a kernel that nobody else on the machine can reach, where the system has sockets as files."""
-    manager = AsyncKernelManager(kernel_spec_manager=_Here())
-    if os.name == "posix":
-        manager.transport, manager.ip = "ipc", str(Path(sockets) / "kernel")
-    return manager
-
-
-def _execute(
-    notebook: NotebookNode, folder: Path, manager: AsyncKernelManager, progress: Progress, code: list[int]
-) -> None:
     client = NotebookClient(
         notebook,
-        km=manager,
+        kernel_manager_class=_Manager,
         timeout=None,
         store_widget_state=False,
         record_timing=False,

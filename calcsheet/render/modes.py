@@ -65,5 +65,5 @@ def _shares(title: str, model: Mapping[str, Any], field: str, levels: list[str],
 
 
 MODES = View(
-    "modes", "Natural modes", "modes", render, (Choice("energy", "energy shares", {"hidden": "hidden", "shown": "shown"}),)
+    "modes", "Periods", "modes", render, (Choice("energy", "energy shares", {"hidden": "hidden", "shown": "shown"}),)
 )

@@ -29,8 +29,8 @@ def decimals_given(values: Sequence[float]) -> int:
 
 
 def text(value: float, decimals: int) -> str:
-    """A number to a fixed number of decimals, thousands apart by a thin space, with a true minus sign."""
-    shown = f"{value:,.{decimals}f}".replace(",", "\u2009")
+    """A number to a fixed number of decimals, thousands apart by a narrow space that never breaks, with a true minus sign."""
+    shown = f"{value:,.{decimals}f}".replace(",", "\u202f")
     if float(f"{value:.{decimals}f}") == 0.0:
         return shown.lstrip("-")
     return shown.replace("-", "\u2212")

@@ -67,16 +67,17 @@ def _running_share(ax: Any, part: Mapping[str, Any]) -> None:
     ax.bar(modes, 100.0 * np.array(part["share"]), width=0.6, color="#c9d3df", edgecolor=INK, linewidth=0.6)
     ax.step(modes, cumulative, where="mid", color=INK, linewidth=1.4)
     ax.axhline(target, color=GREY, linewidth=0.8, linestyle=(0, (4, 2)))
-    ax.text(modes[-1] + 0.45, target - 1.5, f"target {target:g} %", ha="right", va="top", fontsize=8, color="black")
+    ax.text(modes[-1] + 0.5, target - 1.5, f"target {target:g} %", ha="right", va="top", fontsize=8, color="black")
     if needed is not None:
         ax.plot(needed, cumulative[needed - 1], marker="D", markersize=5, color=RUST, linestyle="none")
         ax.annotate(
             f"mode {needed}: {cumulative[needed - 1]:.1f} %",
             (needed, cumulative[needed - 1]),
-            xytext=(6, -12 if needed < len(modes) else -14),
+            xytext=(8, -24),
             textcoords="offset points",
             ha="left" if needed < 0.7 * len(modes) else "right",
             fontsize=8,
+            arrowprops={"arrowstyle": "-", "color": RUST, "linewidth": 0.6, "shrinkB": 3},
         )
     if len(modes) <= NUMBERED:
         ax.set_xticks(modes)
@@ -87,4 +88,4 @@ def _running_share(ax: Any, part: Mapping[str, Any]) -> None:
     quiet(ax)
 
 
-PARTICIPATION = View("participation", "Participation", "participation", render)
+PARTICIPATION = View("participation", "Participating mass", "participation", render)

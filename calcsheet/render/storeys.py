@@ -7,7 +7,7 @@ from html import escape
 from typing import Any
 
 from calcsheet.render.numbers import number
-from calcsheet.render.table import facts, table, values, words
+from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
 from calcsheet.steps.step import Payload
 
@@ -28,7 +28,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             order=roof_first,
             as_given=True,
         ),
-        values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=roof_first, as_given=True),
+        *_masses(given, sums, system, key, roof_first),
         values("mass at and above", sums["mass_above"], "mass", system, f"/{key}/result/mass_above", order=roof_first),
     ]
     matrices = []
@@ -58,6 +58,19 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
 
 
+def _masses(
+    given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]
+) -> list[Column]:
+    """Mass as given; or weight as given, with the mass that follows from it."""
+    if given["given"] == "mass":
+        return [values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=order, as_given=True)]
+    at = f"/{key}/result/weight_of_level"
+    return [
+        values("weight", sums["weight_of_level"], "weight", system, at, order=order, as_given=True),
+        values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=order),
+    ]
+
+
 def _serves(name: str, given: Mapping[str, Any]) -> str:
     served = [purpose for purpose in ("forces", "drifts") if given[purpose] == name]
     return f"serves {' and '.join(served)}; " if served else ""
@@ -68,7 +81,7 @@ def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
     columns = [words("level", [below[i]["level"] for i in order])]
     for name, field in (("elevation", "elevation"), ("mass", "mass")):
         columns.append(values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True))
-    return table(columns, kind="values", caption="At or below the effective base: outside the model and its mass shares")
+    return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 
 
 def _matrix(title: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:

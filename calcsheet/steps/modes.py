@@ -120,12 +120,12 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
         )
     for group in modes.close:
         if group not in modes.repeated:
-            numbers = tuple(Number(float(modes.period[g - 1]), "period", f"{at}/period/{g - 1}") for g in group)
-            places = ", ".join(f"{{{i}}}" for i in range(len(group)))
+            ends = (group[0], group[-1])
+            numbers = tuple(Number(float(modes.period[g - 1]), "period", f"{at}/period/{g - 1}") for g in ends)
             cautions.append(
                 Caution(
                     f"close-modes-{name}-{group[0]}",
-                    f"Modes {_listed(group)} in {name} are close (T = {places}, each above {CLOSE:g} of the one before): "
+                    f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one before): "
                     "peak values are to be combined with their correlation, not by the root of the sum of squares.",
                     numbers,
                 )

@@ -64,7 +64,7 @@ def _lines(part: Participation, at: str) -> list[Line]:
     of = f"mode 1, {part.direction}"
     return [
         Line(
-            f"Participation factor, {of}, φ = 1 at the top",
+            f"Participation factor, {of} (φ₁ = 1 at the top)",
             "Γ₁ = Σ m φ₁ / Σ m φ₁²",
             "{0} / {1}",
             (excitation, mass),

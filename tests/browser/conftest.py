@@ -58,7 +58,8 @@ class Sheet:
         self.page, self.lab, self.path, self.flavour = page, lab, path, flavour
 
     def open(self) -> Sheet:
-        self.page.goto(f"{self.lab.url}/{ADDRESS[self.flavour]}/{self.path}", timeout=SLOW)
+        # "reset" keeps JupyterLab from opening the notebooks of earlier tests as well
+        self.page.goto(f"{self.lab.url}/{ADDRESS[self.flavour]}/{self.path}?reset", timeout=SLOW)
         self.page.locator(".jp-Notebook .jp-Cell").first.wait_for(timeout=SLOW)
         self.page.wait_for_function("window.jupyterapp !== undefined", timeout=SLOW)
         return self
@@ -84,7 +85,8 @@ class Sheet:
     def cells(self) -> list[str]:
         """Source of the notebook's cells as the page holds them."""
         return self.page.evaluate(
-            "() => [...window.jupyterapp.shell.currentWidget.content.model.cells].map(c => c.sharedModel.source)"
+            "() => [...window.jupyterapp.shell.currentWidget.content.model.cells]"
+            ".map(cell => cell.sharedModel.source)"
         )
 
     def stop_kernels(self) -> None:
