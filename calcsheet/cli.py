@@ -5,13 +5,16 @@ from __future__ import annotations
 import shutil
 import sys
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import click
 
 from calcsheet import __version__
 from calcsheet.resources import DEMO, TEMPLATES, templates
 from calcsheet.resources import folder as shipped
+
+if TYPE_CHECKING:
+    from calcsheet.record.page import Paper
 
 INPUTS = ("job.toml", "*.csv", "calc.ipynb")
 """What a job starts from; records are made, not copied."""
@@ -21,6 +24,14 @@ Examples:
   calcsheet new tower             a job folder from the planar template
   calcsheet issue tower           execute its notebook and issue the record
   calcsheet demo                  copy the demonstration job and issue it
+"""
+
+
+ISSUE_EXAMPLES = """\b
+Examples:
+  calcsheet issue tower
+  calcsheet issue tower --to html
+  calcsheet issue tower --to pdf --paper letter
 """
 
 
@@ -67,13 +78,11 @@ def new(folder: Path, template: str) -> None:
     click.echo(f"Issue it:  calcsheet issue {folder}")
 
 
-@main.command(
-    epilog="\b\nExamples:\n  calcsheet issue tower\n  calcsheet issue tower --to html\n  calcsheet issue tower --to pdf --paper letter\n"
-)
+@main.command(epilog=ISSUE_EXAMPLES)
 @click.argument("folder", type=click.Path(path_type=Path))
 @click.option("--to", "to", type=click.Choice(["html", "pdf"]), multiple=True, help="Kind wanted; both where omitted.")
 @click.option("--paper", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Paper size.")
-def issue(folder: Path, to: tuple[str, ...], paper: str) -> None:
+def issue(folder: Path, to: tuple[str, ...], paper: Paper) -> None:
     """Execute the notebook of job FOLDER in a fresh kernel and issue its record under FOLDER/issued/."""
     if not folder.is_dir():
         raise _Refusal(f"no folder {folder}; `calcsheet new {folder}` makes one")
@@ -98,7 +107,7 @@ def _copied(source: Path, folder: Path) -> None:
             shutil.copyfile(path, folder / path.name)
 
 
-def _issued(folder: Path, to: tuple[str, ...] | None, paper: str) -> None:
+def _issued(folder: Path, to: tuple[str, ...] | None, paper: Paper) -> None:
     from rich.progress import BarColumn, Progress, TextColumn
 
     from calcsheet.record.issue import issue as issue_record
@@ -107,7 +116,10 @@ def _issued(folder: Path, to: tuple[str, ...] | None, paper: str) -> None:
     with Progress(*columns, transient=True, disable=not sys.stderr.isatty()) as bar:
         task = bar.add_task("cells", total=None)
         done = issue_record(
-            folder, to=to, paper=paper, progress=lambda cell, cells: bar.update(task, completed=cell, total=cells)  # type: ignore[arg-type]
+            folder,
+            to=to,
+            paper=paper,
+            progress=lambda cell, cells: bar.update(task, completed=cell, total=cells),
         )
     click.echo(f"Issued, status {done.status}:")
     for path in done.files:

@@ -57,11 +57,13 @@ class Block:
         return Shown(self)
 
     def _ipython_display_(self) -> None:
-        place = (self.job.folder.path, _cell(), type(self).__name__, self.key)
-        before = _SHOWN.pop(place, None)
-        if before is not None:
-            before.close()
-        shown = _SHOWN[place] = self.shown()
+        cell, run = _running()
+        if cell not in _SHOWN or _SHOWN[cell][0] != run:
+            for before in _SHOWN.pop(cell, (run, []))[1]:
+                before.close()
+            _SHOWN[cell] = (run, [])
+        shown = self.shown()
+        _SHOWN[cell][1].append(shown)
         shown.open()
 
 
@@ -83,12 +85,13 @@ class Shown:
 
     def open(self) -> None:
         """Show widget and twin below each other, and listen to the job from now on."""
-        if os.environ.get(STATIC) != "1":
-            self.widget = self.make_widget()
-            self.show_numbers()
-            display(self.widget)
-        self.show_figures()
-        self.block.job.listen(self)
+        with self.block.job.telling:
+            if os.environ.get(STATIC) != "1":
+                self.widget = self.make_widget()
+                self.show_numbers()
+                display(self.widget)
+            self.show_figures()
+            self.block.job.listen(self)
 
     def close(self) -> None:
         """Give up widget and listening: the cell shows another display now."""
@@ -105,18 +108,22 @@ class Shown:
         """Do what the page asks; the sentence that says why not, where it can't be done."""
         if message["op"] != "choose":
             return f"{message['op']}: not known to this block"
-        try:
-            self.options = self.block.view.chosen(self.options | {message["key"]: message["value"]})
-        except ValueError as error:
-            return str(error)
-        self.show_numbers()
-        self.show_live_figures(self.drawings(self.options))
+        with self.block.job.telling:
+            try:
+                self.options = self.block.view.chosen(self.options | {message["key"]: message["value"]})
+            except ValueError as error:
+                return str(error)
+            self.show_numbers()
+            revision, payloads = self.block.job.now()
+            if payloads[self.block.key]["state"] == "ok":
+                self.show_live_figures(self.rendered(payloads, self.options).draw(), revision)
         return None
 
     def show_numbers(self) -> None:
         if self.widget is None:
             return
-        payload, job = self.block.payload, self.block.job
+        revision, payloads = self.block.job.now()
+        payload = payloads[self.block.key]
         choices = [
             {
                 "key": c.key,
@@ -133,12 +140,11 @@ class Shown:
             with self.widget.hold_sync():
                 self.widget.set_trait("note", {})
                 self.widget.set_trait("choices", choices)
-                self.widget.set_trait("html", self.rendered(self.options).html)
-        self.widget.set_trait("revision", job.revision)
+                self.widget.set_trait("html", self.rendered(payloads, self.options).html)
+        self.widget.set_trait("revision", revision)
 
-    def show_live_figures(self, drawings: tuple[Drawing, ...]) -> None:
+    def show_live_figures(self, drawings: tuple[Drawing, ...], revision: int) -> None:
         if self.widget is not None:
-            revision = self.block.job.revision
             self.widget.set_trait(
                 "figures", [{"name": d.name, "alt": d.alt, "svg": d.svg, "revision": revision} for d in drawings]
             )
@@ -146,29 +152,22 @@ class Shown:
     # ---- twin ------------------------------------------------------------------------------------------------------
 
     def show_figures(self) -> None:
-        block, payloads = self.block, self.block.job.payloads()
+        block = self.block
+        revision, payloads = block.job.now()
         payload = payloads[block.key]
-        drawings: tuple[Drawing, ...] = ()
         if payload["state"] == "ok":
-            rendered = self.rendered(block.options)
+            rendered = self.rendered(payloads, block.options)
             drawings = rendered.draw()
             html = rendered.html + images(drawings)
-            self.show_live_figures(drawings if self.options == block.options else self.drawings(self.options))
+            live = drawings if self.options == block.options else self.rendered(payloads, self.options).draw()
+            self.show_live_figures(live, revision)
         else:
             html = held_up(payload)
-        self.keep(self.twin(payload, payloads, html))
-
-    def twin(self, payload: Payload, payloads: Mapping[str, Payload], html: str) -> dict[str, Any]:
-        block, job = self.block, self.block.job
-        return bundle(
-            block.view,
-            block.key,
-            payload,
-            block.options,
-            html,
-            source=self.source,
-            revision=job.revision,
-            **self.carried(payloads),
+        carried = self.carried(payloads)
+        self.keep(
+            bundle(
+                block.view, block.key, payload, block.options, html, source=self.source, revision=revision, **carried
+            )
         )
 
     def carried(self, payloads: Mapping[str, Payload]) -> dict[str, Any]:
@@ -181,11 +180,8 @@ class Shown:
         else:
             self.handle.update(data, raw=True)
 
-    def rendered(self, options: Mapping[str, Any]) -> Rendered:
-        return self.block.view.render(self.block.job.payloads(), self.block.key, options)
-
-    def drawings(self, options: Mapping[str, Any]) -> tuple[Drawing, ...]:
-        return self.rendered(options).draw() if self.block.payload["state"] == "ok" else ()
+    def rendered(self, payloads: Mapping[str, Payload], options: Mapping[str, Any]) -> Rendered:
+        return self.block.view.render(payloads, self.block.key, options)
 
 
 class ShownCard(Shown):
@@ -195,19 +191,19 @@ class ShownCard(Shown):
         return {"style": front("calcsheet.css", "twin.css"), "payloads": payloads}
 
 
-_SHOWN: dict[tuple[object, ...], Shown] = {}
+_SHOWN: dict[object, tuple[object, list[Shown]]] = {}
+"""What each cell shows, and the run that showed it."""
 
 
-def _cell() -> object:
-    """The notebook cell that is running: by its id where the front end tells it, else by its count."""
+def _running() -> tuple[object, object]:
+    """The notebook cell that is running, by its id where the front end tells it, and this run of it."""
     shell = get_ipython()
     if shell is None:
-        return None
-    parent = getattr(shell, "parent_header", None) or {}
+        return None, None
     kernel = getattr(shell, "kernel", None)
-    if kernel is not None:
-        parent = kernel.get_parent("shell")
-    return parent.get("metadata", {}).get("cellId") or shell.execution_count
+    parent = (getattr(shell, "parent_header", None) if kernel is None else kernel.get_parent("shell")) or {}
+    cell = parent.get("metadata", {}).get("cellId") or shell.execution_count
+    return cell, parent.get("header", {}).get("msg_id") or shell.execution_count
 
 
 def _source() -> str:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from numbers import Integral, Real
 from pathlib import Path
 
 from calcsheet.blocks.block import Block, Shown, ShownCard
@@ -68,7 +69,7 @@ class ModeSolver(Block):
         energy: str = "hidden",
         name: str = "modes",
     ) -> None:
-        options = ModesOptions(keep=keep, share=share, stiffness=stiffness)
+        options = ModesOptions(keep=_count(keep), share=_share(share), stiffness=stiffness)
         key = storeys.job.attach("modes", options, {"storeys": storeys.key}, name)
         super().__init__(storeys.job, key, energy=energy)
 
@@ -116,4 +117,17 @@ class ParticipationSummary(Block):
     def __init__(self, modes: ModeSolver, *, share: float | None = None) -> None:
         needs = {"storeys": modes.payload["needs"]["storeys"], "modes": modes.key}
         key = "participation" if modes.key == "modes" else f"participation of {modes.key}"
-        super().__init__(modes.job, modes.job.attach("participation", ParticipationOptions(share), needs, key))
+        options = ParticipationOptions(None if share is None else _share(share))
+        super().__init__(modes.job, modes.job.attach("participation", options, needs, key))
+
+
+def _share(share: float) -> float:
+    if not isinstance(share, Real) or not 0.0 < share <= 1.0:
+        raise ValueError(f"share: got {share!r}; must be a number above 0 and at most 1")
+    return float(share)
+
+
+def _count(keep: int | None) -> int | None:
+    if keep is not None and (not isinstance(keep, Integral) or keep < 1):
+        raise ValueError(f"keep: got {keep!r}; must be a number of modes, or None for all")
+    return None if keep is None else int(keep)

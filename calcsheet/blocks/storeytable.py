@@ -87,8 +87,6 @@ class ShownTable(Shown):
                 job.edit(lambda reading: _edited(reading, message, self._place(reading, message["row"])))
         except InputError as error:
             return str(error)
-        except ValueError:
-            return "this row is no longer in the table"
         return None
 
     def show_numbers(self) -> None:
@@ -96,21 +94,17 @@ class ShownTable(Shown):
             return
         job = self.block.job
         with job.lock:
-            files, status, payload = job.files, job.status, self.block.payload
-        if files is None:
-            self.widget.set_trait("status", {"kind": "error", "text": status.text})
-            return
+            revision, files, status, payload = job.revision, job.files, job.status, self.block.payload
+            table = {} if files is None else self._table(files.reading, payload)
         kind, words = status.kind, status.text
         if kind == "saved" and payload["state"] == "refused":
             kind, words = "waiting", f"{words}, but not calculated: {payload['why']}"
         with self.widget.hold_sync():
-            with job.lock:
-                table = self._table(files.reading, payload)
             self.widget.set_trait("table", table)
             self.widget.set_trait("status", {"kind": kind, "text": words})
-            self.widget.set_trait("revision", job.revision)
+            self.widget.set_trait("revision", revision)
 
-    def show_live_figures(self, drawings: Any) -> None:
+    def show_live_figures(self, drawings: Any, revision: int) -> None:
         """A table has none."""
 
     def _table(self, reading: StoreyReading, payload: dict[str, Any]) -> dict[str, Any]:
@@ -148,7 +142,11 @@ class ShownTable(Shown):
     def _place(self, reading: StoreyReading, row: str | None) -> int | None:
         """Index of the row that has an id; the job's lock is held."""
         self._carry_ids(list(reading.levels))
-        return None if row is None else self._ids.index(row)
+        if row is None:
+            return None
+        if row not in self._ids:
+            raise InputError("", "", "this row is no longer in the table", "type into the table as it now stands")
+        return self._ids.index(row)
 
     def _carry_ids(self, levels: list[str]) -> None:
         """Give every row that stays the id it had, and a new one to every row that has come."""

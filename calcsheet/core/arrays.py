@@ -26,7 +26,13 @@ class Frozen:
 
 
 def readonly(values: ArrayLike) -> Array:
-    """Return a read-only double precision copy of `values`."""
+    """Return a read-only double precision copy.
+
+    Parameters
+    ----------
+    values : array_like
+        The numbers, of any shape.
+    """
     array = np.array(values, dtype=np.float64)
     array.setflags(write=False)
     return array
@@ -80,6 +86,8 @@ class Agreement:
         With `group`: the field whose values multiply these before they are summed.
     squared : bool
         With `group`: squares are summed.
+    running : bool
+        With `group`: the field is a running sum, compared at the last mode of each group.
     """
 
     rtol: float = 0.0
@@ -89,8 +97,15 @@ class Agreement:
     group: str | None = None
     weight: str | None = None
     squared: bool = False
+    running: bool = False
 
 
 def agrees(**how: Any) -> dict[str, Agreement]:
-    """Metadata for a result field: see `Agreement` for the arguments."""
+    """Metadata for a result field.
+
+    Parameters
+    ----------
+    **how
+        What `Agreement` takes.
+    """
     return {"agrees": Agreement(**how)}

@@ -37,7 +37,19 @@ class Bounds(Frozen):
 
 
 def rayleigh_quotient(model: Model, shape: Array) -> float:
-    """φᵀKφ/φᵀMφ of a shape (N,), at or above ω₁² [s^-2]."""
+    """φᵀKφ/φᵀMφ, at or above ω₁² [s^-2].
+
+    Parameters
+    ----------
+    model : Model
+        N degrees of freedom.
+    shape : (N,) array
+        Any shape φ but zero, to any scale.
+
+    Notes
+    -----
+    R. W. Clough, J. Penzien, Dynamics of Structures, on Rayleigh's method (from memory).
+    """
     return float(model.lateral.energy(shape[:, None])[0, 0] / (shape @ (model.mass * shape)))
 
 

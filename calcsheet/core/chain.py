@@ -110,12 +110,15 @@ class Chain(Frozen):
 
     def drift(self, u: Array) -> Array:
         """Storey drifts (Bu), (n, …), of displacements u, (n, …)."""
-        return np.diff(u, axis=0, prepend=np.zeros((1, *u.shape[1:])))
+        drift = u.copy()
+        drift[1:] -= u[:-1]
+        return drift
 
     def force(self, u: Array) -> Array:
         """Restoring forces Ku, (n, m) [kN], of displacements u, (n, m) [m]."""
-        shear = self.storey[:, None] * self.drift(u)
-        return shear - np.vstack([shear[1:], np.zeros((1, u.shape[1]))])
+        force = self.storey[:, None] * self.drift(u)
+        force[:-1] -= force[1:]  # storey shears, less those of the storeys above
+        return force
 
     def displacement(self, f: Array) -> Array:
         """Displacements K⁻¹f, (n, m) [m], of forces f, (n, m) [kN]: sums only, no cancellation for positive f."""
@@ -140,7 +143,7 @@ class Chain(Frozen):
         pivots = np.empty((2 * self.size, shift.size))
         pivots[0] = -shift
         with np.errstate(divide="ignore"):  # a pivot of exactly 0 gives -inf next: the count stays right
-            for i, square in enumerate(self._golub_kahan(mass) ** 2):
-                np.divide(-square, pivots[i], out=pivots[i + 1])
+            for i, square in enumerate((-(self._golub_kahan(mass) ** 2)).tolist()):
+                np.divide(square, pivots[i], out=pivots[i + 1])
                 pivots[i + 1] -= shift
         return (pivots < 0.0).sum(axis=0) - float(self.size)

@@ -88,7 +88,11 @@ def evidence_of_modes(model: Model, modes: Modes, bounds: Bounds) -> tuple[Evide
         _evidence("residual", "residual of each pair", "max ‖Kψ − ω²Mψ‖/ω²", residual, 1e-8),
         _evidence("bounds", "first frequency between its bounds", "Dunkerley ≤ ω₁ ≤ Rayleigh", outside, 1e-10),
         _evidence(
-            "sturm", "frequencies missed or doubled by the Sturm count", "count in ω(1 ± 10⁻⁸)", _miscounted(model, omega), 0.0
+            "sturm",
+            "frequencies missed or doubled by the Sturm count",
+            "count in ω(1 ± 10⁻⁸)",
+            _miscounted(model, omega),
+            0.0,
         ),
         _evidence(
             "second-route",
@@ -101,7 +105,17 @@ def evidence_of_modes(model: Model, modes: Modes, bounds: Bounds) -> tuple[Evide
 
 
 def evidence_of_participation(part: Participation, kept: int, size: int) -> tuple[Evidence, ...]:
-    """Evidence that effective masses add up: only where all `size` modes are `kept`, else none."""
+    """Evidence that effective masses add up: only where all modes are kept, else none.
+
+    Parameters
+    ----------
+    part : Participation
+        Participation in one direction.
+    kept : int
+        Number of modes kept.
+    size : int
+        Number of degrees of freedom.
+    """
     if kept < size:
         return ()
     gap = abs(part.effective_mass.sum() / part.total_mass - 1.0)
@@ -113,12 +127,14 @@ def _miscounted(model: Model, omega: Array) -> float:
     """Number of bracket ends, below and above each frequency, where the inertia count differs from the list."""
     ends = np.concatenate([omega * (1.0 - BRACKET), omega * (1.0 + BRACKET)])
     counted = model.lateral.count_below(model.mass, ends)
-    listed = (omega[None, :] < ends[:, None]).sum(axis=1)
+    listed = np.searchsorted(omega, ends)
     wrong = counted != listed
     if omega.size < model.size:
         # a group that is cut by the number of modes kept has more members above
         last = ends > omega[-1]
-        wrong &= ~(last & (counted > listed) & (model.lateral.count_below(model.mass, ends * (1 - 2 * BRACKET)) <= listed))
+        wrong &= ~(
+            last & (counted > listed) & (model.lateral.count_below(model.mass, ends * (1 - 2 * BRACKET)) <= listed)
+        )
     return float(wrong.sum())
 
 

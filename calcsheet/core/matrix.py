@@ -35,7 +35,9 @@ class _Matrix(Frozen):
         super().__post_init__()
         a = self.matrix
         if a.ndim != 2 or a.shape[0] != a.shape[1] or a.size == 0:
-            raise ModelError(self.quantity, f"an array of shape {a.shape}", "must be square, a row and a column a level")
+            raise ModelError(
+                self.quantity, f"an array of shape {a.shape}", "must be square, a row and a column a level"
+            )
         if not np.isfinite(a).all():
             i, j = np.argwhere(~np.isfinite(a))[0] + 1
             raise ModelError(f"{self.quantity}, entry ({i}, {j}) from the base", f"{a[i - 1, j - 1]}", "must be finite")
@@ -63,7 +65,7 @@ class _Matrix(Frozen):
     @property
     def asymmetry(self) -> float:
         """Largest |A - Aᵀ| over the largest |A|."""
-        return float(np.abs(self.matrix - self.matrix.T).max() / np.abs(self.matrix).max())
+        return float(np.abs(self.matrix - self.matrix.T).max() / (np.abs(self.matrix).max() or 1.0))
 
     @property
     def symmetric(self) -> Array:

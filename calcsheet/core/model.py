@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -48,10 +49,18 @@ class Model(Frozen):
 
     def __post_init__(self) -> None:
         super().__post_init__()
-        object.__setattr__(self, "mass", positive(self.mass, "mass", [self.level[i] for i in self.level_of]))
-        for what, size in (("mass", self.mass.size), ("influence", self.influence.shape[1])):
+        for what, size in (
+            ("mass", self.mass.size),
+            ("level_of", len(self.level_of)),
+            ("influence", self.influence.shape[-1]),
+        ):
             if size != self.lateral.size:
-                raise ModelError(what, f"{size} entries", f"must have {self.lateral.size}, as the lateral stiffness has")
+                raise ModelError(
+                    what, f"{size} entries", f"must have {self.lateral.size}, as the lateral stiffness has"
+                )
+        if self.height.shape != (self.levels,):
+            raise ModelError("height", f"{self.height.size} entries", f"must have {self.levels}, one a level")
+        object.__setattr__(self, "mass", positive(self.mass, "mass [t]", [self.level[i] for i in self.level_of]))
 
     @property
     def size(self) -> int:
@@ -62,6 +71,12 @@ class Model(Frozen):
     def levels(self) -> int:
         """Number of levels, L."""
         return len(self.level)
+
+    @cached_property
+    def level_mass(self) -> Array:
+        """Translational mass of each level, (L,) [t], the mean of its directions."""
+        moving = np.abs(self.influence).max(axis=0) > 0.0
+        return self.by_level(np.where(moving, self.mass, 0.0)) / np.maximum(self.by_level(moving.astype(float)), 1.0)
 
     def by_level(self, values: Array) -> Array:
         """Sums over the degrees of freedom of each level, (L, …), of values (N, …)."""

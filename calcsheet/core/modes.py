@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from itertools import pairwise
 from typing import Literal
 
 import numpy as np
@@ -136,9 +137,9 @@ def groups(omega: Array, gap: float) -> tuple[tuple[int, ...], ...]:
     gap : float
         Largest (ω_j - ω_i)/ω_i of neighbours in a group; for close periods T_j > 0.9 T_i it is 1/0.9 - 1.
     """
-    starts = np.flatnonzero(np.concatenate([[True], np.diff(omega) >= gap * omega[:-1]]))
-    ends = np.append(starts[1:], omega.size)
-    return tuple(tuple(range(int(a) + 1, int(b) + 1)) for a, b in zip(starts, ends, strict=True) if b - a > 1)
+    apart = np.flatnonzero(np.diff(omega) >= gap * omega[:-1]) + 1
+    edges = pairwise([0, *apart.tolist(), omega.size])
+    return tuple(tuple(range(a + 1, b + 1)) for a, b in edges if b - a > 1)
 
 
 def scaled(psi: Array, to: Scale) -> Array:
@@ -170,10 +171,7 @@ def _signs(model: Model, shapes: Array) -> Array:
     Rotations count scaled by the radius of gyration, the square root of inertia over translational mass.
     """
     moving = np.abs(model.influence).max(axis=0) > 0.0
-    translational = model.by_level(np.where(moving, model.mass, 0.0)) / np.maximum(
-        model.by_level(moving.astype(float)), 1.0
-    )
-    gyration = np.sqrt(model.mass / translational[np.asarray(model.level_of)])
+    gyration = np.sqrt(model.mass / model.level_mass[np.asarray(model.level_of)])
     size = np.where(moving, 1.0, gyration)[:, None] * np.abs(shapes)
     largest = size >= (1.0 - TIE) * size.max(axis=0)
     last = size.shape[0] - 1 - np.argmax(largest[::-1], axis=0)
@@ -181,11 +179,9 @@ def _signs(model: Model, shapes: Array) -> Array:
 
 
 def _local(model: Model, kinetic: Array) -> tuple[LocalMode, ...]:
-    moving = np.abs(model.influence).max(axis=0) > 0.0
-    mass = model.by_level(np.where(moving, model.mass, 0.0))
-    ratio = mass / mass.mean()
-    found = []
-    for mode, level in enumerate(np.argmax(kinetic, axis=0)):
-        if kinetic[level, mode] > LOCAL_ENERGY and ratio[level] < LOCAL_MASS:
-            found.append(LocalMode(mode + 1, model.level[level], float(kinetic[level, mode]), float(ratio[level])))
-    return tuple(found)
+    ratio = model.level_mass / model.level_mass.mean()
+    most, energy = kinetic.argmax(axis=0), kinetic.max(axis=0)
+    return tuple(
+        LocalMode(int(i) + 1, model.level[most[i]], float(energy[i]), float(ratio[most[i]]))
+        for i in np.flatnonzero((energy > LOCAL_ENERGY) & (ratio[most] < LOCAL_MASS))
+    )

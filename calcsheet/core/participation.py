@@ -42,11 +42,13 @@ class Participation(Frozen):
     target : float
         Share of the total mass to be reached.
     needed : int or None
-        Number of modes, from the first, whose shares reach the target; None where those kept do not.
+        Number of modes, from the first, whose shares reach the target, repeated ones counted together; None where
+        those kept do not.
     significant : tuple of int
-        Modes, from 1, with a share above `SINGLE`.
+        Modes, from 1, with a share above `SINGLE`; repeated ones share theirs.
     first_excitation, first_mass : float
-        φᵀMι and φᵀMφ of the first shape scaled to 1 at the top level [t]; both 0 where the top does not move.
+        φᵀMι and φᵀMφ of the first shape scaled to 1 at the top level [t]; both 0 where the top does not move, or
+        the first shape is one choice of many.
     """
 
     direction: str
@@ -57,7 +59,7 @@ class Participation(Frozen):
     gamma_roof: Array = field(metadata=agrees(group="omega", atol=1e-7))
     effective_mass: Array = field(metadata=agrees(group="omega", rtol=1e-8))
     share: Array = field(metadata=agrees(group="omega", atol=1e-9))
-    cumulative: Array = field(metadata=agrees(atol=1e-8))
+    cumulative: Array = field(metadata=agrees(group="omega", running=True, atol=1e-8))
     effective_height: Array = field(metadata=agrees(group="omega", weight="effective_mass", atol=1e-7))
     target: float
     needed: int | None
@@ -104,10 +106,17 @@ def participation(model: Model, modes: Modes, direction: str, target: float = 0.
     effective = gamma**2
     share = effective / total
     cumulative = np.cumsum(share)
-    reached = np.flatnonzero(cumulative >= target * (1.0 - 1e-12))
+    together = share.copy()
+    last = np.arange(1, share.size + 1)
+    for group in modes.repeated:
+        members = slice(group[0] - 1, group[-1])
+        together[members] = share[members].sum()
+        last[members] = group[-1]
+    reached = last[cumulative >= target * (1.0 - 1e-12)]
     top = int(np.flatnonzero(iota)[-1])
     at_top = modes.psi[top, 0]
-    moves = abs(at_top) > TIE * np.abs(modes.psi[:, 0]).max()
+    alone = not any(1 in group for group in modes.repeated)
+    moves = alone and abs(at_top) > TIE * np.abs(modes.psi[:, 0]).max()
     return Participation(
         direction=direction,
         omega=modes.omega,
@@ -120,8 +129,8 @@ def participation(model: Model, modes: Modes, direction: str, target: float = 0.
         cumulative=cumulative,
         effective_height=np.divide(moment, gamma, out=np.zeros_like(gamma), where=gamma != 0.0),
         target=target,
-        needed=int(reached[0]) + 1 if reached.size else None,
-        significant=tuple(int(i) + 1 for i in np.flatnonzero(share > SINGLE)),
+        needed=int(reached[0]) if reached.size else None,
+        significant=tuple(int(i) + 1 for i in np.flatnonzero(together > SINGLE)),
         first_excitation=float(gamma[0] / at_top) if moves else 0.0,
         first_mass=float(1.0 / at_top**2) if moves else 0.0,
     )

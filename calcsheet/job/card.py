@@ -176,9 +176,7 @@ class Card(_Table):
     levels: Levels = Field(description="a table [levels]")
     directions: Directions = Field(description="a table [directions]")
     model: ModelChoice = Field(description="a table [model]")
-    stiffness: Mapping[str, SetBasis] = Field(
-        min_length=1, description="a table [stiffness.NAME] for each set"
-    )
+    stiffness: Mapping[str, SetBasis] = Field(min_length=1, description="a table [stiffness.NAME] for each set")
     serves: Serves = Field(description="a table [serves]")
     assumptions: Annotated[tuple[Assumption, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[assumptions]]"
@@ -234,9 +232,7 @@ def _plain(error: Any) -> InputError:
     for key in error["loc"]:
         fields = kind.model_fields if isinstance(kind, type) and issubclass(kind, BaseModel) else None
         if fields is not None and key not in fields:  # an unknown key
-            return InputError(
-                FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}"
-            )
+            return InputError(FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}")
         place.append(key)
         if fields is not None:
             kind, allowed = fields[key].annotation, fields[key].description or allowed

@@ -103,9 +103,7 @@ def row_index(reading: StoreyReading, row: int | str) -> int:
     if isinstance(row, int):
         if 0 <= row < len(reading.rows):
             return row
-        raise InputError(
-            reading.table.file, "", f"no row {row}", f"must be from 0 to {len(reading.rows) - 1}"
-        )
+        raise InputError(reading.table.file, "", f"no row {row}", f"must be from 0 to {len(reading.rows) - 1}")
     if row in reading.levels:
         return reading.levels.index(row)
     names = ", ".join(f'"{name}"' for name in reading.levels if name)

@@ -118,13 +118,9 @@ class JobFolder:
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
-        return tuple(
-            name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp
-        )
+        return tuple(name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp)
 
-    def _write(
-        self, name: str, content: bytes, stamps: Mapping[str, Stamp], overwrite: bool
-    ) -> Mapping[str, Stamp]:
+    def _write(self, name: str, content: bytes, stamps: Mapping[str, Stamp], overwrite: bool) -> Mapping[str, Stamp]:
         path = self.path / name
         expected = textfile.stamp(path) if overwrite else stamps[name]
         return {**stamps, name: textfile.write(path, content, expected)}

@@ -10,9 +10,7 @@ MARKS = (".", ",")
 """The two decimal marks."""
 
 _GROUP = r"[{other}\u0020\u00a0\u2009\u202f'’]"
-_GROUPED = (
-    rf"[+-]?[1-9][0-9]{{{{0,2}}}}(?P<t>{_GROUP})[0-9]{{{{3}}}}(?:(?P=t)[0-9]{{{{3}}}})*(?:{{mark}}[0-9]*)?"
-)
+_GROUPED = rf"[+-]?[1-9][0-9]{{{{0,2}}}}(?P<t>{_GROUP})[0-9]{{{{3}}}}(?:(?P=t)[0-9]{{{{3}}}})*(?:{{mark}}[0-9]*)?"
 _PLAIN = r"[+-]?(?:[0-9]+(?:{mark}[0-9]*)?|{mark}[0-9]+)(?:[eE][+-]?[0-9]+)?"
 _PATTERN = {
     mark: re.compile(f"{_PLAIN}|{_GROUPED}".format(mark=re.escape(mark), other=other))

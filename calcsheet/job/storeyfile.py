@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -77,9 +78,7 @@ class StoreyReading:
         return tuple(cells[: len(self.columns)] for cells in self.table.rows)
 
 
-def read_storeys(
-    table: TextTable, card: Card, matrices: Mapping[str, TextTable] | None = None
-) -> StoreyReading:
+def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable] | None = None) -> StoreyReading:
     """Read a storey table.
 
     Parameters
@@ -230,7 +229,7 @@ class _Reader:
             self.refuse(row, "elevation", InputError(self.table.file, self.where(row), found, allowed))
 
         rows = list(numbers)
-        for above, row in zip(rows, rows[1:], strict=False):
+        for above, row in pairwise(rows):
             if numbers[row] >= numbers[above]:
                 refuse(row, f"must be below {written(above)}, that of {self.where(above)} above it")
         if rows[-1] == self.rows[-1] and numbers[rows[-1]] <= self.foot:

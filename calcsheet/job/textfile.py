@@ -159,9 +159,7 @@ def write(path: Path, content: bytes, expected: Stamp | None) -> Stamp:
             "close it there and save again",
         ) from None
     except OSError as error:
-        raise NotSavedError(
-            path.name, "", f"not saved ({error.strerror})", "mend this and save again"
-        ) from None
+        raise NotSavedError(path.name, "", f"not saved ({error.strerror})", "mend this and save again") from None
     return Stamp.of(content)
 
 

@@ -71,7 +71,7 @@ def collect(notebook: NotebookNode) -> Content:
     payloads = _payloads(notebook)
     for key, payload in payloads.items():
         if payload["state"] != "ok":
-            raise RecordError(f"{STEPS[payload['kind']].title}, step \"{key}\", is {payload['state']}: {payload['why']}")
+            raise RecordError(f'{STEPS[payload["kind"]].title}, step "{key}", is {payload["state"]}: {payload["why"]}')
     parts: list[Words | Shown | Own] = []
     for number, cell in enumerate(notebook.cells, 1):
         if cell.cell_type == "markdown" and cell.source.strip():
@@ -104,11 +104,15 @@ def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
         for output in cell.get("outputs", ()):
             data = output.get("data", {}).get(MIME)
             if data is not None and data["format"] != FORMAT:
-                raise RecordError(f"the notebook was run by another version of calcsheet (twin format {data['format']})")
+                raise RecordError(
+                    f"the notebook was run by another version of calcsheet (twin format {data['format']})"
+                )
             if data is not None and "payloads" in data:
                 found = data["payloads"]
     if found is None:
-        raise RecordError("the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells")
+        raise RecordError(
+            "the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells"
+        )
     return dict(found)
 
 
@@ -140,5 +144,7 @@ def _shown(number: int, cell: NotebookNode, data: Mapping[str, Any], payloads: M
     if data["source"] != fingerprint(cell.source.rstrip("\n")):
         raise RecordError(f"the notebook is stale: cell {number} was changed and not run again")
     if data["fingerprint"] != fingerprint(payloads[data["step"]]):
-        raise RecordError(f"the notebook is stale: cell {number} shows older results than the job card holds; run all cells")
+        raise RecordError(
+            f"the notebook is stale: cell {number} shows older results than the job card holds; run all cells"
+        )
     return Shown(data["view"], data["step"], data["options"])

@@ -130,7 +130,10 @@ def _headline(payloads: Payloads) -> Iterator[Fact]:
                 yield Fact(f"First period in {model['name']}{named}", f"T₁ = {period}, f₁ = {frequency}")
         if payload["kind"] == "participation":
             for i, part in enumerate(payload["result"]["directions"]):
-                yield Fact(f"Modes for the target share in {part['direction']}", _reached(part, f"/{key}/result/directions/{i}", system))
+                yield Fact(
+                    f"Modes for the target share in {part['direction']}",
+                    _reached(part, f"/{key}/result/directions/{i}", system),
+                )
 
 
 def _reached(part: Mapping[str, Any], at: str, system: str) -> str:
@@ -151,7 +154,9 @@ def _headline_section(payloads: Payloads) -> str:
     asked = sum(c["answer"] for p in payloads.values() for c in p["cautions"])
     raised = sum(len(p["cautions"]) for p in payloads.values())
     rows = [(fact.label, fact.html) for fact in _headline(payloads)]
-    rows.append(("Evidence", f'{kept} of {len(figures)} figures within their limits: <span class="{verdict}">{verdict}</span>'))
+    rows.append(
+        ("Evidence", f'{kept} of {len(figures)} figures within their limits: <span class="{verdict}">{verdict}</span>')
+    )
     rows.append(("Cautions", f'<a href="#cautions">{raised}</a>, of which {asked} ask for an answer'))
     rows.append(("Torsion", '<span class="not-assessed">not assessed</span>: x and y are planar models'))
     rows.append(("Design demand, drift, second order", '<span class="not-assessed">not assessed</span> in this record'))

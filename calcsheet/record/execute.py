@@ -67,7 +67,9 @@ def execute(notebook: NotebookNode, folder: Path, progress: Progress = lambda ce
         store_widget_state=False,
         record_timing=False,
         resources={"metadata": {"path": str(folder)}},
-        on_cell_start=lambda cell, cell_index: progress(code.index(cell_index) + 1, len(code)) if cell_index in code else None,
+        on_cell_start=lambda cell, cell_index: (
+            progress(code.index(cell_index) + 1, len(code)) if cell_index in code else None
+        ),
     )
     try:
         client.execute(env={**os.environ, STATIC: "1"})

@@ -24,9 +24,7 @@ class RecordExporter(Exporter):
     def _file_extension_default(self) -> str:
         return ".html"
 
-    def from_notebook_node(
-        self, nb: NotebookNode, resources: Any = None, **kwargs: Any
-    ) -> tuple[str, dict[str, Any]]:
+    def from_notebook_node(self, nb: NotebookNode, resources: Any = None, **kwargs: Any) -> tuple[str, dict[str, Any]]:
         """Convert a notebook.
 
         Parameters

@@ -107,9 +107,7 @@ def _executed(folder: Path, progress: Progress) -> nbformat.NotebookNode:
     return notebook
 
 
-def _built(
-    content: Content, target: Path, kinds: Sequence[str], paper: Paper, engine: str, note: str
-) -> Issued:
+def _built(content: Content, target: Path, kinds: Sequence[str], paper: Paper, engine: str, note: str) -> Issued:
     """Build the files in a folder beside the target and move it into place."""
     record = record_of(content)
     job = content.payloads["card"]["inputs"]["job"]

@@ -12,8 +12,8 @@ import bleach
 from calcsheet.record.collect import Own
 
 TAGS = frozenset(
-    "a abbr b br caption code col colgroup div em h3 h4 h5 h6 hr i li ol p pre s small span strong sub sup table tbody td "
-    "tfoot th thead tr u ul".split()
+    "a abbr b br caption code col colgroup div em h3 h4 h5 h6 hr i li ol p pre s small span strong sub sup table tbody "
+    "td tfoot th thead tr u ul".split()
 )
 IMAGES = ("image/png", "image/jpeg")
 COLOUR_CODES = re.compile(r"\x1b\[[0-9;]*m")
@@ -45,7 +45,10 @@ def _output(output: Mapping[str, Any]) -> str:
             return f'<p><img alt="{words}" src="data:{kind};base64,{"".join(str(data[kind]).split())}"></p>'
     if "text/html" in data:
         return bleach.clean(
-            NOT_WORDS.sub("", data["text/html"]), tags=TAGS, attributes={"td": ["colspan", "rowspan"], "th": ["colspan", "rowspan"]}, strip=True
+            NOT_WORDS.sub("", data["text/html"]),
+            tags=TAGS,
+            attributes={"td": ["colspan", "rowspan"], "th": ["colspan", "rowspan"]},
+            strip=True,
         )
     return _text(str(data.get("text/plain", "[an output that can\u2019t be printed]")))
 

@@ -123,8 +123,8 @@ def _loads(name: str) -> bool:
 
 
 def _weasyprint(html: str, attachments: Attachments, moment: datetime.datetime) -> bytes:
-    from weasyprint import HTML, Attachment  # noqa: PLC0415
-    from weasyprint.urls import FatalURLFetchingError, URLFetcher, URLFetcherResponse  # noqa: PLC0415
+    from weasyprint import HTML, Attachment
+    from weasyprint.urls import FatalURLFetchingError, URLFetcher, URLFetcherResponse
 
     class DataOnly(URLFetcher):
         def fetch(self, url: str, headers: dict[str, str] | None = None) -> URLFetcherResponse:
@@ -152,7 +152,7 @@ def _weasyprint(html: str, attachments: Attachments, moment: datetime.datetime) 
 
 
 def _plutoprint(html: str, attachments: Attachments, moment: datetime.datetime) -> bytes:
-    import plutoprint  # noqa: PLC0415
+    import plutoprint
 
     refused: list[str] = []
 

@@ -4,7 +4,9 @@ from __future__ import annotations
 
 import io
 import re
-from collections.abc import Sequence
+import threading
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from dataclasses import dataclass
 from html import escape
 
@@ -49,6 +51,8 @@ STYLE = {
 }
 FAMILY = "'Source Sans 3', 'Source Sans 3 Record', 'DejaVu Sans', 'Helvetica Neue', Arial, sans-serif"
 
+_DRAWING = threading.RLock()
+
 
 @dataclass(frozen=True)
 class Drawing:
@@ -72,9 +76,14 @@ class Drawing:
     svg: str
 
 
-def styled() -> object:
-    """Context in which figures are built: the style holds for them, and nothing outside is touched."""
-    return matplotlib.rc_context(STYLE)  # type: ignore[arg-type]
+@contextmanager
+def styled() -> Iterator[None]:
+    """Context in which figures are built: the style holds for them, and nothing outside is touched.
+
+    matplotlib keeps its style for the whole process, so one thread draws at a time.
+    """
+    with _DRAWING, matplotlib.rc_context(STYLE):
+        yield
 
 
 def blank(height: float) -> Figure:
@@ -90,9 +99,7 @@ def svg(figure: Figure, title: str) -> str:
     drawn = drawn[drawn.index("<svg") :]
     drawn = re.sub(r"<metadata>.*?</metadata>", "", drawn, flags=re.DOTALL)
     drawn = drawn.replace("'DejaVu Sans'", FAMILY.replace('"', "'"))
-    return re.sub(r"<svg ", '<svg role="img" ', drawn, count=1).replace(
-        ">", f"><title>{escape(title)}</title>", 1
-    )
+    return re.sub(r"<svg ", '<svg role="img" ', drawn, count=1).replace(">", f"><title>{escape(title)}</title>", 1)
 
 
 def quiet(axes: Axes) -> None:

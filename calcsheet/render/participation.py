@@ -40,13 +40,13 @@ def _summary(part: Mapping[str, Any], system: str, at: str) -> str:
     else:
         reached = number(part["cumulative"][needed - 1], "share", system, f"{at}/cumulative/{needed - 1}")
         count = "Mode 1 alone reaches" if needed == 1 else f"Modes 1 to {needed} reach"
-        said = f"<p>{count} the target of {target} of the mass in {name}: {reached}, the row marked.</p>"
+        said = f"<p>{count} the target of {target} of the mass in {name}: {reached} (row of mode {needed}, marked).</p>"
     marked = [] if needed is None else [needed - 1]
     return table(columns, kind="values", caption=f"Participation in {name}", marked=marked) + said
 
 
 def _drawn(directions: list[dict[str, Any]]) -> Drawing:
-    with styled():  # type: ignore[attr-defined]
+    with styled():
         figure = blank(2.5)
         axes = figure.subplots(1, len(directions), sharey=True, squeeze=False)[0]
         figure.subplots_adjust(left=0.09, right=0.985, bottom=0.2, top=0.89, wspace=0.08)
@@ -58,7 +58,12 @@ def _drawn(directions: list[dict[str, Any]]) -> Drawing:
         for d in directions
     )
     caption = "Effective mass by mode (bars) and its running sum (steps), with the target."
-    return Drawing("running-share", caption, f"{caption} Target {directions[0]['target'] * 100:g} %: {words}.", svg(figure, caption))
+    return Drawing(
+        "running-share",
+        caption,
+        f"{caption} Target {directions[0]['target'] * 100:g} %: {words}.",
+        svg(figure, caption),
+    )
 
 
 def _running_share(ax: Any, part: Mapping[str, Any]) -> None:

@@ -10,7 +10,7 @@ import numpy as np
 from calcsheet.core.modes import scaled
 from calcsheet.render.figure import GREY, LINES, Drawing, blank, quiet, styled, svg
 from calcsheet.render.numbers import decimals_for, text
-from calcsheet.render.table import Column, table, values, words
+from calcsheet.render.table import table, values, words
 from calcsheet.render.view import Choice, Rendered, View, system_of
 from calcsheet.steps.step import Payload
 from calcsheet.units import display
@@ -26,8 +26,15 @@ SCALES = {"largest": "largest = 1", "roof": "top level = 1", "mass": "ψᵀMψ =
 def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]) -> Rendered:
     storeys = payloads[payloads[key]["needs"]["storeys"]]["inputs"]
     system, models = system_of(payloads), payloads[key]["result"]["models"]
-    parts = [] if options["values"] == "hidden" else [_ordinates(m, i, storeys, system, key, options) for i, m in enumerate(models)]
-    return Rendered("".join(parts), lambda: tuple(_drawn(m, storeys, system, options["normalise"], key, i) for i, m in enumerate(models)))
+    parts = (
+        []
+        if options["values"] == "hidden"
+        else [_ordinates(m, i, storeys, system, key, options) for i, m in enumerate(models)]
+    )
+    return Rendered(
+        "".join(parts),
+        lambda: tuple(_drawn(m, storeys, system, options["normalise"], key, i) for i, m in enumerate(models)),
+    )
 
 
 def _ordinates(
@@ -55,14 +62,14 @@ def _drawn(
     shapes = np.array(model["modes"]["psi"])
     drawn = _drawn_count(model)
     at_scale = scaled(shapes, normalise)[:, :drawn]  # type: ignore[arg-type]
-    still = np.isnan(at_scale).any(axis=0)
+    still = np.asarray(np.isnan(at_scale).any(axis=0))
     at_scale = np.where(still, scaled(shapes, "largest")[:, :drawn], at_scale)
     periods = [text(t, decimals_for([t], 3)) for t in model["modes"]["period"][:drawn]]
     name = model["name"]
     named = len(storeys["level"]) <= LABELLED
     labels = text_heights(elevation, storeys, how.digits) if named else ["0000"]
     left = 0.05 + 0.0105 * max(map(len, labels))  # room for the labels and the axis's title, without a layout pass
-    with styled():  # type: ignore[attr-defined]
+    with styled():
         figure = blank(3.5)
         axes = figure.subplots(1, drawn, sharey=True, squeeze=False)[0]
         figure.subplots_adjust(left=left, right=0.985, bottom=0.12, top=0.86, wspace=0.12)
@@ -89,10 +96,13 @@ def _drawn(
 
 
 def text_heights(elevation: np.ndarray, storeys: Mapping[str, Any], digits: int) -> list[str]:
-    """Labels of the levels, "name  elevation", the base first."""
+    """Labels of the levels, "name, elevation", the base first."""
     places = max(2, decimals_for([float(np.abs(elevation).max())], digits))
     names = [storeys["base"] or "base", *storeys["level"]]
-    return [f"{name if len(name) <= 14 else name[:13] + chr(8230)}  {text(float(e), places)}" for name, e in zip(names, elevation, strict=True)]
+    return [
+        f"{name if len(name) <= 14 else name[:13] + chr(8230)}\u2002\u2002{text(float(e), places)}"
+        for name, e in zip(names, elevation, strict=True)
+    ]
 
 
 PLOT = View(

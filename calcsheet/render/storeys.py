@@ -18,7 +18,15 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     roof_first = list(range(len(given["level"])))[::-1]
     columns = [
         words("level", [given["level"][i] for i in roof_first]),
-        values("elevation", given["elevation"], "elevation", system, f"/{key}/inputs/elevation", order=roof_first, as_given=True),
+        values(
+            "elevation",
+            given["elevation"],
+            "elevation",
+            system,
+            f"/{key}/inputs/elevation",
+            order=roof_first,
+            as_given=True,
+        ),
         values(
             "storey height",
             given["storey_height"],
@@ -38,9 +46,15 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             if len(given["stiffness"]) > 1:
                 title += f", {named['name']}"
             if lateral["kind"] == "storey chain":
-                columns.append(values(title, lateral["storey"], "stiffness", system, f"{at}/storey", order=roof_first, as_given=True))
+                columns.append(
+                    values(
+                        title, lateral["storey"], "stiffness", system, f"{at}/storey", order=roof_first, as_given=True
+                    )
+                )
             else:
-                matrices.append(_matrix(f"{lateral['kind']} {direction}, {named['name']}", given["level"], lateral, system, at))
+                matrices.append(
+                    _matrix(f"{lateral['kind']} {direction}, {named['name']}", given["level"], lateral, system, at)
+                )
     rows = [
         ("total mass above the base", number(sums["mass"], "mass", system, f"/{key}/result/mass")),
         ("total weight above the base", number(sums["weight"], "weight", system, f"/{key}/result/weight")),
@@ -51,16 +65,17 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         ),
     ]
     rows += [
-        (f'stiffness set "{named["name"]}"', escape(_serves(named["name"], given) + (named["ground"] or "no ground given")))
+        (
+            f'stiffness set "{named["name"]}"',
+            escape(_serves(named["name"], given) + (named["ground"] or "no ground given")),
+        )
         for named in given["stiffness"]
     ]
     below = _below(given["below"], system, key) if given["below"] else ""
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
 
 
-def _masses(
-    given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]
-) -> list[Column]:
+def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]) -> list[Column]:
     """Mass as given; or weight as given, with the mass that follows from it."""
     if given["given"] == "mass":
         return [values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=order, as_given=True)]
@@ -80,7 +95,9 @@ def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
     order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
     columns = [words("level", [below[i]["level"] for i in order])]
     for name, field in (("elevation", "elevation"), ("mass", "mass")):
-        columns.append(values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True))
+        columns.append(
+            values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True)
+        )
     return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 
 
@@ -90,7 +107,9 @@ def _matrix(title: str, levels: list[str], lateral: Mapping[str, Any], system: s
     columns = [words("level", [levels[i] for i in order])]
     for j in order:
         entries = [row[j] for row in lateral["matrix"]]
-        columns.append(values(levels[j], entries, quantity, system, f"{at}/matrix/{{}}/{j}", order=order, as_given=True))
+        columns.append(
+            values(levels[j], entries, quantity, system, f"{at}/matrix/{{}}/{j}", order=order, as_given=True)
+        )
     return table(columns, kind="values", caption=title)
 
 

@@ -77,7 +77,9 @@ def values(
     return Column(heading(name, quantity, system), tuple(cells))
 
 
-def table(columns: Sequence[Column], *, kind: str, caption: str = "", marked: Sequence[int] = (), foot: str = "") -> str:
+def table(
+    columns: Sequence[Column], *, kind: str, caption: str = "", marked: Sequence[int] = (), foot: str = ""
+) -> str:
     """HTML of a table.
 
     Parameters

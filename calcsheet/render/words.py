@@ -22,7 +22,9 @@ def filled(template: str, numbers: Iterable[Mapping[str, Any]], system: str, ste
 def worked(lines: Iterable[Located], system: str) -> str:
     """Table of worked lines."""
     rows = list(lines)
-    results = (number(n["value"], n["quantity"], system, f"{at}/{n['at']}") for at, line in rows for n in [line["result"]])
+    results = (
+        number(n["value"], n["quantity"], system, f"{at}/{n['at']}") for at, line in rows for n in [line["result"]]
+    )
     return table(
         (
             words("quantity", [line["quantity"] for _, line in rows]),

@@ -88,9 +88,14 @@ def _ruled(rule: Agreement, old: Any, new: Any, a: Any, b: Any, at: str) -> Iter
             yield at, f"{a.max():.3g}", f"{b.max():.3g}", f"must both be at most {rule.below:g}"
         return
     if rule.subspace is not None:
-        apart = _angles(a, b, getattr(old, rule.subspace))
+        apart = _apart(a, b, getattr(old, rule.subspace))
         if apart > rule.atol:
-            yield at, "shapes", f"shapes apart by {apart:.2g}", f"must span the same within {rule.atol:g}"
+            yield (
+                at,
+                "shapes",
+                f"shapes apart by {apart:.2g}",
+                f"must be the same basis, but for turns, within {rule.atol:g}",
+            )
         return
     if rule.group is not None:
         sums = _summed(rule, old, getattr(old, rule.group)), _summed(rule, new, getattr(old, rule.group))
@@ -109,9 +114,14 @@ def _split(omega: Array) -> list[list[int]]:
     return [grouped.get(i, [i]) for i in range(omega.size) if i not in inside]
 
 
-def _angles(a: Array, b: Array, omega: Array) -> float:
-    """Largest sine of the angles between the spans of each group's columns."""
-    return max(float(np.sin(linalg.subspace_angles(a[:, g], b[:, g]).max())) for g in _split(omega))
+def _apart(a: Array, b: Array, omega: Array) -> float:
+    """Largest entry, relative, by which each group's columns differ once turned onto each other: their scale counts."""
+
+    def gap(old: Array, new: Array) -> float:
+        turn, _ = linalg.orthogonal_procrustes(new, old)
+        return float(np.abs(new @ turn - old).max() / np.abs(old).max())
+
+    return max(gap(a[:, g], b[:, g]) for g in _split(omega))
 
 
 def _summed(rule: Agreement, record: Any, omega: Array) -> Callable[[Array], Array]:
@@ -119,6 +129,8 @@ def _summed(rule: Agreement, record: Any, omega: Array) -> Callable[[Array], Arr
     weight = getattr(record, rule.weight) if rule.weight else np.ones(omega.size)
 
     def total(values: Array) -> Array:
+        if rule.running:
+            return values[..., [g[-1] for g in _split(omega)]]
         terms = (values**2 if rule.squared else values) * weight
         return np.stack([terms[..., g].sum(axis=-1) for g in _split(omega)], axis=-1)
 

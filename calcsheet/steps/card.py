@@ -58,14 +58,22 @@ def run(card: Card) -> Outcome:
     cautions = list(GENERAL)
     for i in waiting:
         assumption = card.assumptions[i - 1]
-        cautions.append(Caution(f"to-confirm-{i}", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}."))
+        cautions.append(
+            Caution(f"to-confirm-{i}", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.")
+        )
     for name in ("storeys.csv", *card.model.files.values()):
         if not (name in card.origins and card.origins[name].source.strip()):
-            cautions.append(Caution(f"no-origin-{name}", f"{plain(name)}: the origin of its values is not stated.", answer=True))
+            cautions.append(
+                Caution(f"no-origin-{name}", f"{plain(name)}: the origin of its values is not stated.", answer=True)
+            )
     for name, basis in card.stiffness.items():
         if not basis.ground.strip():
             cautions.append(
-                Caution(f"no-ground-{name}", f'Stiffness set "{plain(name)}": the ground of its values is not stated.', answer=True)
+                Caution(
+                    f"no-ground-{name}",
+                    f'Stiffness set "{plain(name)}": the ground of its values is not stated.',
+                    answer=True,
+                )
             )
     return Outcome(CardResult(waiting), cautions=tuple(cautions))
 

@@ -6,11 +6,14 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
+import re
 import threading
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Any, ClassVar, Protocol
+
+import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
@@ -18,8 +21,10 @@ from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
-from calcsheet.steps.step import Payload, Step, calculated, done, unfinished
+from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinished
 
+KEY = re.compile(r"\w([\w. -]*\w)?")
+"""Names that steps may have: they stand in JSON pointers."""
 LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
 
@@ -76,6 +81,7 @@ class Job:
     def __init__(self, path: Path) -> None:
         self.folder = JobFolder(path)
         self.lock = threading.RLock()
+        self.telling = threading.RLock()  # held while anything is shown; never taken by who holds the other
         self.revision = 0
         self.status = Status("error", "not read yet")
         self.files: JobFiles | None = None
@@ -83,7 +89,6 @@ class Job:
         self._unsaved = False
         self._nodes: dict[str, _Node] = {}
         self._listeners: list[Listener] = []
-        self._telling = threading.RLock()
         self._told = 0
         self._nodes["card"] = _Node(STEPS["card"], {}, None)
         self._nodes["storeys"] = _Node(STEPS["storeys"], {}, None)
@@ -122,20 +127,30 @@ class Job:
         -------
         str
             The key.
+
+        Raises
+        ------
+        ValueError
+            A name that can't be used, a need that isn't there, or inputs that can't be kept; nothing has changed.
         """
         key = key or kind
+        if not KEY.fullmatch(key):
+            raise ValueError(
+                f'name of a step: got "{key}"; must be of letters, digits, points, hyphens, underscores, spaces'
+            )
+        to_json(inputs)  # what can't be kept is refused before anything changes
         with self.lock:
-            step = STEPS[kind]
+            step, before = STEPS[kind], self._nodes.get(key)
             served = {k: (needs or {}).get(k, k) for k in step.needs}
             missing = [k for k in served.values() if k not in self._nodes]
             if missing:
-                raise KeyError(f"{step.title} needs {', '.join(missing)}, which this job has not yet")
-            if key in self._nodes and self._nodes[key].step is not step:
-                raise KeyError(f'"{key}" is another step of this job: {self._nodes[key].step.title}')
-            if key in self._nodes:
-                self._nodes[key].needs, self._nodes[key].inputs = served, inputs
-            else:
+                raise ValueError(f"{step.title} needs {', '.join(missing)}, which this job has not yet")
+            if before is not None and before.step is not step:
+                raise ValueError(f'"{key}" is another step of this job: {before.step.title}')
+            if before is None:
                 self._nodes[key] = _Node(step, served, inputs)
+            else:
+                self._nodes[key] = replace(before, needs=served, inputs=inputs)
             self._update()
         self._tell()
         return key
@@ -147,8 +162,12 @@ class Job:
 
     def payloads(self) -> dict[str, Payload]:
         """The present payloads of all steps by key, upstream first."""
+        return self.now()[1]
+
+    def now(self) -> tuple[int, dict[str, Payload]]:
+        """The present revision and its payloads."""
         with self.lock:
-            return {key: node.payload for key, node in self._nodes.items()}
+            return self.revision, {key: node.payload for key, node in self._nodes.items()}
 
     # ---- files -----------------------------------------------------------------------------------------------------
 
@@ -184,10 +203,14 @@ class Job:
         self._tell()
 
     def keep(self) -> None:
-        """Write the table in memory over what is on disk."""
+        """Write the table in memory over what is on disk; what else changed there is read."""
         with self.lock:
             self._save(self._read().reading.table, overwrite=True)
-        self._tell()
+            others = not self._unsaved and self.folder.changed_on_disk(self._read())
+        if others:
+            self.load()
+        else:
+            self._tell()
 
     def look(self) -> None:
         """See whether somebody else changed the files on disk, and say so."""
@@ -235,7 +258,7 @@ class Job:
                 node.payload = unfinished(node.step, node.needs, "waiting", why, node.inputs)
             elif not self._current(node, upstream):
                 served = tuple(done(STEPS[p["kind"]], p) for p in upstream)
-                node.payload = calculated(node.step, node.needs, node.inputs, served)
+                node.payload = _calculated(node, served)
             node.upstream = upstream
 
     def _current(self, node: _Node, upstream: tuple[Payload, ...]) -> bool:
@@ -246,7 +269,9 @@ class Job:
     def _from_files(self, key: str, node: _Node) -> Payload:
         if self._problem or self.files is None:
             state = "refused" if key == "card" else "waiting"
-            return unfinished(node.step, {}, state, self._problem if key == "card" else f"waits for job card: {self._problem}")
+            return unfinished(
+                node.step, {}, state, self._problem if key == "card" else f"waits for job card: {self._problem}"
+            )
         if key == "card":
             node.inputs = self.files.card
         else:
@@ -259,7 +284,7 @@ class Job:
             node.inputs = self.files.reading.storeys
         if node.payload and node.payload["state"] == "ok" and node.payload["inputs"] == to_json(node.inputs):
             return node.payload
-        return calculated(node.step, {}, node.inputs, ())
+        return _calculated(node, ())
 
     # ---- listeners -------------------------------------------------------------------------------------------------
 
@@ -275,7 +300,7 @@ class Job:
 
     def _tell(self) -> None:
         """Show the newest state everywhere; a pass that falls behind gives way to the next."""
-        with self._telling:
+        with self.telling:
             while True:
                 with self.lock:
                     revision, listeners = self.revision, list(self._listeners)
@@ -289,3 +314,14 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:
+    """The payload of a step; refused, not left as it was, where its numbers leave the range of the machine."""
+    try:
+        with np.errstate(all="ignore"):  # what isn't finite is refused
+            return calculated(node.step, node.needs, node.inputs, upstream)
+    except (ArithmeticError, ValueError) as error:
+        return unfinished(
+            node.step, node.needs, "refused", f"can't be calculated from these numbers: {error}", node.inputs
+        )

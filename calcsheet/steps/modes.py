@@ -125,8 +125,8 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
             cautions.append(
                 Caution(
                     f"close-modes-{name}-{group[0]}",
-                    f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one before): "
-                    "peak values are to be combined with their correlation, not by the root of the sum of squares.",
+                    f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one "
+                    "before): peak values are to be combined with their correlation, not by the root of the sum of squares.",
                     numbers,
                 )
             )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcsheet.core.evidence import evidence_of_participation
+from calcsheet.core.evidence import Evidence, evidence_of_participation
 from calcsheet.core.model import models_of
 from calcsheet.core.participation import SINGLE, Participation, participation
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
@@ -40,7 +40,10 @@ class ParticipationResult:
 
 def run(options: ParticipationOptions, storeys: Done, modes: Done) -> Outcome:
     target = modes.inputs.share if options.share is None else options.share
-    parts, lines, cautions, evidence = [], [], [], []
+    parts: list[Participation] = []
+    lines: list[Line] = []
+    cautions: list[Caution] = []
+    evidence: list[Evidence] = []
     for model, found in zip(models_of(storeys.inputs, modes.result.stiffness), modes.result.models, strict=True):
         for direction in model.direction:
             part = participation(model, found.modes, direction, target)

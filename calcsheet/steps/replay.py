@@ -33,7 +33,11 @@ def _replayed(key: str, payload: Payload, payloads: Mapping[str, Payload]) -> li
         here = "unknown" if step is None else f"version {step.version}"
         return [
             Difference(
-                key, "version", f"{payload['kind']} version {payload['version']}", here, "needs a calcsheet that knows it"
+                key,
+                "version",
+                f"{payload['kind']} version {payload['version']}",
+                here,
+                "needs a calcsheet that knows it",
             )
         ]
     if payload["state"] != "ok":

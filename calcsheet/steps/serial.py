@@ -28,7 +28,8 @@ def to_json(value: Any) -> Any:
     if isinstance(value, BaseModel):
         return value.model_dump(mode="json")
     if dataclasses.is_dataclass(value) and not isinstance(value, type):
-        tag = {"kind": value.kind} if hasattr(type(value), "kind") else {}
+        kind = getattr(type(value), "kind", None)
+        tag = {} if kind is None else {"kind": kind}
         return tag | {f.name: to_json(getattr(value, f.name)) for f in dataclasses.fields(value)}
     if isinstance(value, np.ndarray):
         if not np.isfinite(value).all():

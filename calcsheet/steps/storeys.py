@@ -40,10 +40,11 @@ def _jumps(what: str, values: list[float], levels: tuple[str, ...], at: str, qua
     for i in range(1, len(values)):
         ratio = values[i] / values[i - 1]
         if max(ratio, 1.0 / ratio) >= JUMP:
+            here, there = plain(levels[i]), plain(levels[i - 1])
             cautions.append(
                 Caution(
                     f"jump-{what.replace(' ', '-')}-{levels[i]}",
-                    f'{plain(what[0].upper() + what[1:])}: {{0}} at level "{plain(levels[i])}" beside {{1}} at level "{plain(levels[i - 1])}"; '
+                    f'{plain(what[0].upper() + what[1:])}: {{0}} at level "{here}" beside {{1}} at level "{there}"; '
                     "check value and unit.",
                     (Number(values[i], quantity, f"{at}/{i}"), Number(values[i - 1], quantity, f"{at}/{i - 1}")),
                 )

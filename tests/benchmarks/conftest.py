@@ -1,0 +1,35 @@
+"""Planar models from masses and stiffnesses alone."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+
+import numpy as np
+import pytest
+
+from calcsheet.core.chain import Chain
+from calcsheet.core.model import Model
+from calcsheet.core.storeys import Lateral
+
+Planar = Callable[..., Model]
+
+
+@pytest.fixture(scope="session")
+def planar() -> Planar:
+    """Build a model of one translation a level, lowest first; a sequence of stiffnesses makes a chain."""
+
+    def build(
+        mass: Sequence[float], lateral: Lateral | Sequence[float], height: Sequence[float] | None = None
+    ) -> Model:
+        n = len(mass)
+        return Model(
+            level=tuple(f"L{i + 1}" for i in range(n)),
+            height=np.arange(1.0, n + 1.0) if height is None else np.asarray(height, dtype=float),
+            mass=np.asarray(mass, dtype=float),
+            level_of=tuple(range(n)),
+            direction=("x",),
+            influence=np.ones((1, n)),
+            lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
+        )
+
+    return build
