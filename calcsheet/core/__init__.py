@@ -5,10 +5,11 @@
 
 from __future__ import annotations
 
-from typing import NamedTuple
+from dataclasses import dataclass
 
 
-class Formula(NamedTuple):
+@dataclass(frozen=True)
+class Formula:
     """An entry of the index.
 
     Parameters

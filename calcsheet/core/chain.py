@@ -135,7 +135,7 @@ class Chain(Frozen):
         return self.storey[:, None] * self.drift(u) ** 2
 
     def count_below(self, mass: Array, omega: Array) -> Array:
-        """Number of frequencies below each of `omega`, (s,), by the Sturm sequence.
+        """Number of frequencies below each of `omega`, (s,) [rad/s], for `mass`, (n,) [t], by the Sturm sequence.
 
         The sequence runs over the Golub-Kahan tridiagonal, so that its counts too are right to relative accuracy.
         """

@@ -107,7 +107,7 @@ class StiffnessMatrix(_Matrix):
     quantity: ClassVar[str] = "lateral stiffness matrix [kN/m]"
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
-        """Frequencies (keep,) [rad/s] and mass-normalised shapes (n, keep) of the first modes."""
+        """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""
         root = np.sqrt(mass)
         scaled = self.symmetric / root[:, None] / root
         if self.size > DENSE_UP_TO and keep * 4 < self.size:
@@ -127,7 +127,7 @@ class StiffnessMatrix(_Matrix):
         return linalg.cho_solve(linalg.cho_factor(self.symmetric), f)
 
     def count_below(self, mass: Array, omega: Array) -> Array:
-        """Number of frequencies below each of `omega`, (s,): the inertia of K - ω²M."""
+        """Number of frequencies below each of `omega`, (s,) [rad/s], for `mass`, (n,) [t]: inertia of K - ω²M."""
         root = np.sqrt(mass)
         scaled = self.symmetric / root[:, None] / root
         return np.array([_negative(scaled - w * w * np.eye(self.size)) for w in omega], dtype=float)
@@ -152,7 +152,7 @@ class FlexibilityMatrix(_Matrix):
     quantity: ClassVar[str] = "lateral flexibility matrix [m/kN]"
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
-        """Frequencies (keep,) [rad/s] and mass-normalised shapes (n, keep) of the first modes."""
+        """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""
         n, root = self.size, np.sqrt(mass)
         scaled = self.symmetric * root[:, None] * root
         if n > DENSE_UP_TO and keep * 4 < n:
@@ -172,7 +172,10 @@ class FlexibilityMatrix(_Matrix):
         return self.symmetric @ f
 
     def count_below(self, mass: Array, omega: Array) -> Array:
-        """Number of frequencies below each of `omega`, (s,): the inertia of ω⁻²I - M^(1/2)FM^(1/2)."""
+        """Number of frequencies below each of `omega`, (s,) [rad/s], for `mass`, (n,) [t].
+
+        It is the inertia of ω⁻²I - M^(1/2)FM^(1/2).
+        """
         root = np.sqrt(mass)
         scaled = self.symmetric * root[:, None] * root
         return np.array([_negative(np.eye(self.size) / (w * w) - scaled) for w in omega], dtype=float)

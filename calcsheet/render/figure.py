@@ -49,7 +49,6 @@ STYLE = {
     "ytick.major.width": 0.6,
     "path.simplify": False,
 }
-FAMILY = "'Source Sans 3', 'Source Sans 3 Record', 'DejaVu Sans', 'Helvetica Neue', Arial, sans-serif"
 
 _DRAWING = threading.RLock()
 
@@ -98,7 +97,7 @@ def svg(figure: Figure, title: str) -> str:
     drawn = buffer.getvalue()
     drawn = drawn[drawn.index("<svg") :]
     drawn = re.sub(r"<metadata>.*?</metadata>", "", drawn, flags=re.DOTALL)
-    drawn = drawn.replace("'DejaVu Sans'", FAMILY.replace('"', "'"))
+    drawn = drawn.replace("'DejaVu Sans'", "'DejaVu Sans', sans-serif")
     return re.sub(r"<svg ", '<svg role="img" ', drawn, count=1).replace(">", f"><title>{escape(title)}</title>", 1)
 
 

@@ -1,0 +1,313 @@
+"""An invented job in a folder, and IPython without a kernel to run its cells in."""
+
+from __future__ import annotations
+
+import contextlib
+import io
+from collections.abc import Callable, Iterator, Sequence
+from html.parser import HTMLParser
+from pathlib import Path
+from typing import Any
+
+import comm
+import nbformat
+import pytest
+from comm.base_comm import BaseComm
+from IPython.core.interactiveshell import InteractiveShell
+from traitlets.config import Config
+
+from calcsheet.blocks import block as blocks
+from calcsheet.steps.graph import Job
+
+CARD = """\
+format = 1
+[job]
+project = "Heron Row"
+title = "Modes of the frames"
+number = "HR/S 21"
+revision = "A"
+date = 2026-03-09
+reason = "First issue"
+purpose = "Periods and shares of the frames."
+[people.prepared]
+name = "Odile Quist"
+initials = "OQ"
+date = 2026-03-09
+[people.checked]
+name = "Remy Aalto"
+initials = "RA"
+[units]
+system = "SI"
+[levels]
+base_elevation = 1.2
+effective_base = ""
+[directions]
+x = "Along grids 1 to 4."
+y = "Along grids A to C."
+[model]
+kind = "storey chain"
+[stiffness.gross]
+factor = 1.0
+ground = "gross sections"
+[stiffness.cracked]
+factor_x = 0.6
+factor_y = 0.5
+ground = "cracked beams"
+[serves]
+forces = "cracked"
+drifts = "gross"
+[[assumptions]]
+text = "Floors are rigid."
+ground = "solid slabs"
+[origins]
+"storeys.csv" = { source = "take-off", revision = "B", date = 2026-02-27 }
+[answers]
+"""
+STOREYS = """\
+level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m]
+Roof,2.95,141.5,88000,97000
+4,3.3,236,139500,128000
+3,3.3,244.25,152000,141000
+2,3.65,251,160500,150000
+1,4.4,268.75,171000,158500
+"""
+US_CARD = (
+    CARD.replace('system = "SI"', 'system = "US"')
+    .replace("base_elevation = 1.2", "base_elevation = -12.5")
+    .replace('effective_base = ""', 'effective_base = "Plaza"')
+)
+US_STOREYS = """\
+level,elevation [ft],weight [kip],stiffness x [kip/in],stiffness y [kip/in]
+Roof,62.5,310.5,505,560
+5,51.25,498,790,715
+4,39.75,520.75,865,800
+3,28.25,533,910,856
+2,16.5,561,980,905
+Plaza,0,870,,
+"""
+CELLS = (
+    "from calcsheet import JobCard, ModePlot, ModeSolver, ParticipationSummary, StoreyTable",
+    'job = JobCard(".")\njob',
+    "storeys = StoreyTable(job)\nstoreys",
+    'modes = ModeSolver(storeys, share=0.9, energy="shown")\nmodes',
+    'ModePlot(modes, normalise="largest", values="shown")',
+    "ParticipationSummary(modes)",
+)
+"""Code cells of a whole calculation."""
+
+
+def changed(text: str, changes: Sequence[tuple[str, str]]) -> str:
+    for old, new in changes:
+        assert old in text
+        text = text.replace(old, new, 1)
+    return text
+
+
+@pytest.fixture
+def job_folder(tmp_path: Path) -> Callable[..., Path]:
+    """Writes a job folder: pieces of its card and of its storey table replaced, in SI or US units."""
+
+    def write(
+        card: Sequence[tuple[str, str]] = (),
+        storeys: Sequence[tuple[str, str]] = (),
+        *,
+        us: bool = False,
+        name: str = "heron row",
+        files: dict[str, str] | None = None,
+    ) -> Path:
+        folder = tmp_path / name
+        folder.mkdir()
+        (folder / "job.toml").write_text(changed(US_CARD if us else CARD, card), encoding="utf-8")
+        (folder / "storeys.csv").write_text(changed(US_STOREYS if us else STOREYS, storeys), encoding="utf-8")
+        for file, text in (files or {}).items():
+            (folder / file).write_text(text, encoding="utf-8")
+        return folder
+
+    return write
+
+
+@pytest.fixture
+def cells() -> tuple[str, ...]:
+    return CELLS
+
+
+def notebook_of(sources: Sequence[str], kernel: str = "python3") -> nbformat.NotebookNode:
+    """A notebook not run: sources that begin with "#" and a blank are words, the others code."""
+    v4 = nbformat.v4
+    made = [v4.new_markdown_cell(s) if s.startswith("# ") else v4.new_code_cell(s) for s in sources]
+    spec = {"name": kernel, "display_name": kernel, "language": "python"}
+    return v4.new_notebook(cells=made, metadata={"kernelspec": spec})
+
+
+@pytest.fixture
+def new_notebook() -> Callable[..., nbformat.NotebookNode]:
+    return notebook_of
+
+
+class Link(BaseComm):
+    """A widget's link to the page: it keeps what is sent, and hands in what the page says."""
+
+    def __init__(self, *args: Any, **kwargs: Any) -> None:
+        self.sent: list[dict[str, Any]] = []
+        super().__init__(*args, **kwargs)
+
+    def publish_msg(self, msg_type: str, data: Any = None, *args: Any, **kwargs: Any) -> None:
+        self.sent.append({"type": msg_type, **(data or {})})
+
+    @property
+    def replies(self) -> list[dict[str, Any]]:
+        return [m["content"] for m in self.sent if m.get("method") == "custom"]
+
+    def say(self, **content: Any) -> dict[str, Any]:
+        """Say something to Python; its reply."""
+        before = len(self.replies)
+        content = {"seq": before, **content}
+        self.handle_msg({"content": {"data": {"method": "custom", "content": content}}, "buffers": []})
+        (reply,) = self.replies[before:]
+        assert reply.get("seq", reply.get("n")) == content.get("n", content["seq"])
+        return reply
+
+
+class Shell:
+    """IPython without a kernel: runs cells and keeps what each shows, as a notebook's page would."""
+
+    def __init__(self) -> None:
+        self.outputs: dict[str, list[dict[str, Any]]] = {}
+        self.by_id: dict[str, dict[str, Any]] = {}
+        self.published = 0
+        config = Config({"HistoryManager": {"enabled": False, "hist_file": ":memory:"}})
+        self.ipython = InteractiveShell.instance(config=config)
+        self.ipython.display_pub.publish = self.publish
+        self._cell, self._runs = "", 0
+
+    def publish(self, data: Any, metadata: Any = None, *, transient: Any = None, update: bool = False, **_: Any) -> None:
+        self.published += 1
+        name = (transient or {}).get("display_id")
+        if update:
+            self.by_id[name]["data"] = data
+            return
+        output = {"output_type": "display_data", "data": data, "metadata": metadata or {}}
+        self.outputs[self._cell].append(output)
+        if name:
+            self.by_id[name] = output
+
+    def run(self, source: str, cell: str = "") -> list[dict[str, Any]]:
+        """Run a cell, again where its id is that of one run before; its outputs."""
+        self._runs += 1
+        self._cell = cell or f"cell-{self._runs}"
+        header = {"metadata": {"cellId": self._cell}, "header": {"msg_id": f"run-{self._runs}"}}
+        self.ipython.parent_header = header
+        self.outputs[self._cell] = []
+        with contextlib.redirect_stdout(io.StringIO()) as said:
+            result = self.ipython.run_cell(source, store_history=True)
+        if result.error_in_exec or result.error_before_exec:
+            raise result.error_in_exec or result.error_before_exec
+        if said.getvalue():
+            stream = {"output_type": "stream", "name": "stdout", "text": said.getvalue()}
+            self.outputs[self._cell].append(stream)
+        return self.outputs[self._cell]
+
+    def __getitem__(self, name: str) -> Any:
+        return self.ipython.user_ns[name]
+
+    def twin(self, cell: str) -> dict[str, Any]:
+        """Data of the one twin that a cell shows now."""
+        (data,) = (o["data"] for o in self.outputs[cell] if "text/html" in o.get("data", {}))
+        return data
+
+    def executed(self, sources: Sequence[str]) -> nbformat.NotebookNode:
+        """A notebook of these cells, run one after another."""
+        notebook = notebook_of(sources)
+        for i, cell in enumerate(notebook.cells):
+            if cell.cell_type == "code":
+                self.run(cell.source, f"executed-{i}")
+        for i, cell in enumerate(notebook.cells):
+            if cell.cell_type == "code":
+                cell.outputs = [nbformat.from_dict(o) for o in self.outputs[f"executed-{i}"]]
+        return notebook
+
+
+@pytest.fixture
+def shell(monkeypatch: pytest.MonkeyPatch) -> Iterator[Shell]:
+    """IPython in this process, its widgets linked to nobody."""
+    links: list[Link] = []
+
+    def linked(*args: Any, **kwargs: Any) -> Link:
+        links.append(Link(*args, **kwargs))
+        return links[-1]
+
+    comms = comm.base_comm.CommManager()
+    monkeypatch.setattr(comm, "create_comm", linked)
+    monkeypatch.setattr(comm, "get_comm_manager", lambda: comms)
+    monkeypatch.setattr(blocks, "_SHOWN", {})
+    monkeypatch.setattr(Job, "_opened", {})
+    monkeypatch.delenv(blocks.STATIC, raising=False)
+    InteractiveShell.clear_instance()
+    made = Shell()
+    made.links = links
+    yield made
+    made.ipython.reset(new_session=False)
+    InteractiveShell.clear_instance()
+
+
+@pytest.fixture
+def static(shell: Shell, monkeypatch: pytest.MonkeyPatch) -> Shell:
+    """The same, twins alone, as when a record is issued."""
+    monkeypatch.setenv(blocks.STATIC, "1")
+    return shell
+
+
+@pytest.fixture
+def in_folder(monkeypatch: pytest.MonkeyPatch, job_folder: Callable[..., Path]) -> Path:
+    """The job's folder, and the working directory of this test."""
+    folder = job_folder()
+    monkeypatch.chdir(folder)
+    return folder
+
+
+class Document(HTMLParser):
+    """What stands in an HTML document: tags with attributes, words, tables and numbers with their pointers."""
+
+    VOID = frozenset("area base br col embed hr img input link meta source track wbr".split())
+
+    def __init__(self, html: str) -> None:
+        super().__init__()
+        self.tags: list[tuple[str, dict[str, str | None]]] = []
+        self.numbers: list[tuple[str, str]] = []
+        self.words = ""
+        self.headings: list[str] = []
+        self.script = ""
+        self._open: list[str] = []
+        self._pointer: str | None = None
+        self.feed(html)
+
+    def handle_starttag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
+        self.tags.append((tag, dict(attrs)))
+        if tag not in self.VOID:
+            self._open.append(tag)
+        if tag == "data":
+            self.numbers.append((dict(attrs)["value"] or "", ""))
+        if tag in ("h1", "h2", "h3", "h4"):
+            self.headings.append("")
+
+    def handle_endtag(self, tag: str) -> None:
+        if tag in self._open:
+            while self._open.pop() != tag:
+                pass
+
+    def handle_data(self, data: str) -> None:
+        if "script" in self._open:
+            self.script += data
+        if {"script", "style", "svg"} & {*self._open}:
+            return
+        self.words += data
+        if "data" in self._open:
+            at, shown = self.numbers[-1]
+            self.numbers[-1] = at, shown + (f"^{data}" if "sup" in self._open else data)
+        if self._open and self._open[-1] in ("h1", "h2", "h3", "h4"):
+            self.headings[-1] += data
+
+
+@pytest.fixture
+def document() -> Callable[[str], Document]:
+    return Document
