@@ -68,7 +68,7 @@ class ShownTable(Shown):
     def __init__(self, block: Block) -> None:
         super().__init__(block)
         self._ids: list[str] = []
-        self._levels: list[str] = []
+        self._rows: list[tuple[str, ...]] = []
         self._fresh = (f"row-{i}" for i in itertools.count(1))
 
     def make_widget(self) -> LiveWidget:
@@ -108,7 +108,7 @@ class ShownTable(Shown):
         """A table has none."""
 
     def _table(self, reading: StoreyReading, payload: dict[str, Any]) -> dict[str, Any]:
-        self._carry_ids(list(reading.levels))
+        self._carry_ids(list(reading.rows))
         errors: dict[int, dict[str, str]] = {}
         for problem in reading.problems:
             if problem.row is not None:
@@ -141,23 +141,22 @@ class ShownTable(Shown):
 
     def _place(self, reading: StoreyReading, row: str | None) -> int | None:
         """Index of the row that has an id; the job's lock is held."""
-        self._carry_ids(list(reading.levels))
+        self._carry_ids(list(reading.rows))
         if row is None:
             return None
         if row not in self._ids:
             raise InputError("", "", "this row is no longer in the table", "type into the table as it now stands")
         return self._ids.index(row)
 
-    def _carry_ids(self, levels: list[str]) -> None:
+    def _carry_ids(self, rows: list[tuple[str, ...]]) -> None:
         """Give every row that stays the id it had, and a new one to every row that has come."""
-        if len(levels) == len(self._levels):
-            ids = self._ids
-        else:
+        if len(rows) != len(self._rows):
             ids = []
-            for tag, i, i_end, j, j_end in SequenceMatcher(None, self._levels, levels, autojunk=False).get_opcodes():
+            for tag, i, i_end, j, j_end in SequenceMatcher(None, self._rows, rows, autojunk=False).get_opcodes():
                 kept = self._ids[i:i_end] if tag in ("equal", "replace") else []
-                ids += kept[: j_end - j] + [next(self._fresh) for _ in range(j_end - j - len(kept[: j_end - j]))]
-        self._ids, self._levels = list(ids), levels
+                ids += kept[: j_end - j] + [next(self._fresh) for _ in range(j_end - j - len(kept))]
+            self._ids = ids
+        self._rows = rows
 
 
 def _edited(reading: StoreyReading, message: Message, row: int | None) -> Any:

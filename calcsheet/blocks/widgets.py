@@ -75,7 +75,8 @@ class TableWidget(LiveWidget):
     """A table with an input in each editable cell.
 
     Messages: ``set`` and ``paste`` (row, key, text), ``insert`` (row: below it; None: at the top), ``delete`` (row),
-    ``load`` and ``keep`` (the answers to a conflict).
+    ``load`` and ``keep`` (the answers to a conflict), ``look`` (whether the file was changed by somebody else; sent when
+    the engineer comes to the table or back to the page).
 
     Attributes
     ----------

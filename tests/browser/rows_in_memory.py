@@ -24,6 +24,7 @@ START = [
 ]
 numbers = count(1)
 seen = []
+looks = []
 handles = []
 
 
@@ -59,8 +60,11 @@ def table():
 
 
 def answer(message):
-    seen.append(message)
     op = message["op"]
+    if op == "look":
+        looks.append(message)
+        return None
+    seen.append(message)
     if op == "set" and message["text"] == "777":
         return "storeys.csv is open in another program; not saved"
     if op == "set":
@@ -72,6 +76,7 @@ def answer(message):
     elif op == "paste":
         paste(place(message["row"]), message["key"], message["text"])
     renew()
+    return None
 
 
 def paste(top, key, text):
@@ -86,6 +91,7 @@ def choose(message):
     if message["value"] == "none":
         return "one shape at least must be shown"
     view.choices = [{**view.choices[0], "value": message["value"]}]
+    return None
 
 
 def svg():
@@ -99,9 +105,7 @@ def svg():
 
 def shares():
     total = sum(float(row["mass"]) for row in rows)
-    lines = "".join(
-        f"<tr><th>{row['level']}</th><td>{100 * float(row['mass']) / total:.2f}</td></tr>" for row in rows
-    )
+    lines = "".join(f"<tr><th>{row['level']}</th><td>{100 * float(row['mass']) / total:.2f}</td></tr>" for row in rows)
     return (
         f'<p id="total">{total:.1f} t</p><table class="values"><thead><tr><th>level</th><th>share [%]</th></tr>'
         f"</thead><tbody>{lines}</tbody></table>"

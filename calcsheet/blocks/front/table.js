@@ -205,7 +205,11 @@ function render({ model, el, signal }) {
 
   addFirst.addEventListener("click", () => ask({ op: "insert", row: null }, () => focusBeside(null), `${item()} not added`));
 
-  body.addEventListener("focusin", (event) => event.target.cell && link.ping());
+  // The file may have been edited elsewhere: Python is asked to look whenever the engineer comes to the table, or back
+  // to the page. From cell to cell a ping is enough to know that somebody listens.
+  const look = () => link.send({ op: "look" }, () => {});
+  window.addEventListener("focus", look, { signal });
+  body.addEventListener("focusin", (event) => (body.contains(event.relatedTarget) ? link.ping() : look()));
 
   body.addEventListener("focusout", (event) => {
     // Another window took the focus: the engineer is reading a drawing, half-way through a number.
