@@ -9,10 +9,33 @@ import importlib
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from calcsheet.blocks import JobCard, ModePlot, ModeSolver, ParticipationSummary, StoreyTable
+    from calcsheet.blocks import (
+        DemandSpectrum,
+        DriftCheck,
+        JobCard,
+        ModalTable,
+        ModePlot,
+        ModeSolver,
+        ParticipationSummary,
+        StaticComparison,
+        StoreyActions,
+        StoreyTable,
+    )
 
 __version__ = "0.1.0"
-__all__ = ["JobCard", "ModePlot", "ModeSolver", "ParticipationSummary", "StoreyTable", "__version__"]
+__all__ = [
+    "DemandSpectrum",
+    "DriftCheck",
+    "JobCard",
+    "ModalTable",
+    "ModePlot",
+    "ModeSolver",
+    "ParticipationSummary",
+    "StaticComparison",
+    "StoreyActions",
+    "StoreyTable",
+    "__version__",
+]
 
 
 def __getattr__(name: str) -> Any:

@@ -47,15 +47,28 @@ class _Refusal(click.ClickException):
 class _Group(click.Group):
     """Commands whose errors are one sentence: no traceback, whatever the engineer's files hold."""
 
+    def parse_args(self, ctx: click.Context, args: list[str]) -> list[str]:
+        try:
+            return super().parse_args(ctx, args)
+        except click.NoSuchOption as error:
+            raise _misused(error) from None
+
     def invoke(self, ctx: click.Context) -> Any:
         from calcsheet.errors import REFUSALS
 
         try:
             return super().invoke(ctx)
+        except click.UsageError as error:
+            raise _misused(error) from None
         except REFUSALS as error:
             raise _Refusal(" ".join(str(error).split())) from None
         except OSError as error:
             raise _Refusal(f"{error.strerror or error}: {error.filename}" if error.filename else str(error)) from None
+
+
+def _misused(error: click.UsageError) -> _Refusal:
+    command = error.ctx.command_path if error.ctx else "calcsheet"
+    return _Refusal(f"{error.format_message().rstrip('.?')}; `{command} --help` shows how it is used")
 
 
 @click.group(cls=_Group, epilog=EXAMPLES, context_settings={"help_option_names": ["-h", "--help"]})
@@ -84,6 +97,8 @@ def new(folder: Path, template: str) -> None:
 @click.option("--paper", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Paper size.")
 def issue(folder: Path, to: tuple[str, ...], paper: Paper) -> None:
     """Execute the notebook of job FOLDER in a fresh kernel and issue its record under FOLDER/issued/."""
+    if folder.is_file():
+        raise _Refusal(f"{folder} is a file; name the job folder")
     if not folder.is_dir():
         raise _Refusal(f"no folder {folder}; `calcsheet new {folder}` makes one")
     _issued(folder, to or None, paper)

@@ -70,6 +70,9 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
         Unit("kip·s²/in", KIP / INCH),
     ),
     "weight": _FORCE,
+    "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
+    "period": (Unit("s", 1.0),),
+    "ordinate": (Unit("g", 1.0), Unit("m/s²", 1.0 / STANDARD_GRAVITY)),
     "stiffness": (
         Unit("kN/m", 1.0),
         Unit("kN/mm", 1000.0),
@@ -88,7 +91,7 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
         Unit("ft/kip", FOOT / KIP),
     ),
 }
-"""The units that a heading may give, by quantity."""
+"""The units that a heading may give, by quantity. Ordinates of a spectrum are held over g."""
 
 _SAME = {"lb": "lbf", "kips": "kip", "lbs": "lbf"}
 
@@ -100,10 +103,14 @@ def _pair(si: Display, us: Display | None = None) -> Mapping[str, Display]:
 DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "length": _pair(Display("m", 1.0, 4), Display("ft", FOOT, 4)),
     "elevation": _pair(Display("m", 1.0, 4), Display("ft", FOOT, 4)),
+    "metres": _pair(Display("m", 1.0, 4)),
+    "feet": _pair(Display("ft", FOOT, 4)),
+    "area": _pair(Display("m²", 1.0, 4), Display("ft²", FOOT**2, 4)),
     "displacement": _pair(Display("mm", 0.001, 3), Display("in", INCH, 3)),
     "mass": _pair(Display("t", 1.0, 4), Display("kip·s²/ft", KIP / FOOT, 4)),
     "weight": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "force": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
+    "pressure": _pair(Display("kN/m²", 1.0, 3), Display("psf", POUND_FORCE / FOOT**2, 3)),
     "stiffness": _pair(Display("kN/m", 1.0, 4), Display("kip/in", KIP / INCH, 4)),
     "flexibility": _pair(Display("mm/kN", 0.001, 4), Display("in/kip", INCH / KIP, 4)),
     "moment": _pair(Display("kN·m", 1.0, 4), Display("kip·ft", KIP * FOOT, 4)),
@@ -114,12 +121,18 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "circular frequency": _pair(Display("rad/s", 1.0, 4)),
     "share": _pair(Display("%", 0.01, 3)),
     "ratio": _pair(Display("", 1.0, 4)),
+    "correlation": _pair(Display("", 1.0, 4)),
+    "coefficient": _pair(Display("", 1.0, 4)),
     "modal energy": _pair(Display("s⁻²", 1.0, 4)),
     "mass times length squared": _pair(Display("t·m²", 1.0, 4), Display("kip·s²·ft", KIP * FOOT, 4)),
     "participation": _pair(Display("√t", 1.0, 4), Display("√(kip·s²/ft)", (KIP / FOOT) ** 0.5, 4)),
     "normalised shape": _pair(Display("1/√t", 1.0, 4), Display("1/√(kip·s²/ft)", (FOOT / KIP) ** 0.5, 4)),
 }
-"""How each quantity is shown, by system. The last two are Γ and ψ of mass-normalised modes."""
+"""How each quantity is shown, by system.
+
+"metres" and "feet" are lengths that a code's empirical formula asks for in that unit; the last two are Γ and ψ of
+mass-normalised modes.
+"""
 
 
 def display(quantity: str, system: str) -> Display:
@@ -156,7 +169,7 @@ def parse_unit(text: str, quantity: str) -> Unit:
 def allowed_units(quantity: str) -> str:
     """Return the units of a quantity as words: "t, kg, kip·s²/ft or kip·s²/in"."""
     *most, last = (unit.symbol for unit in UNITS[quantity])
-    return f"{', '.join(most)} or {last}"
+    return f"{', '.join(most)} or {last}" if most else last
 
 
 def _spelling(text: str) -> str:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import io
+import os
 from collections.abc import Callable, Iterator, Sequence
 from html.parser import HTMLParser
 from pathlib import Path
@@ -17,6 +18,8 @@ from IPython.core.interactiveshell import InteractiveShell
 from traitlets.config import Config
 
 from calcsheet.blocks import block as blocks
+from calcsheet.record import issue
+from calcsheet.record.execute import execute
 from calcsheet.steps.graph import Job
 
 CARD = """\
@@ -85,6 +88,7 @@ Roof,62.5,310.5,505,560
 2,16.5,561,980,905
 Plaza,0,870,,
 """
+WORDS = "# Purpose\n\nModes of the frames, $T_1 = 2\\pi/\\omega_1$.\n\n## Limits\n\nNo torsion."
 CELLS = (
     "from calcsheet import JobCard, ModePlot, ModeSolver, ParticipationSummary, StoreyTable",
     'job = JobCard(".")\njob',
@@ -128,7 +132,31 @@ def job_folder(tmp_path: Path) -> Callable[..., Path]:
 
 @pytest.fixture
 def cells() -> tuple[str, ...]:
+    """Code cells of a whole calculation."""
     return CELLS
+
+
+@pytest.fixture
+def calculation() -> tuple[str, ...]:
+    """The same with the engineer's words at both ends."""
+    return (WORDS, *CELLS, "# Conclusions\n\nTwo modes rule.")
+
+
+@pytest.fixture(scope="session")
+def executed_folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    """A job folder whose notebook was executed in a real kernel, and saved.
+
+    The notebook asks for a kernel of another language; one of its cells edits a mass.
+    """
+    folder = tmp_path_factory.mktemp("executed") / "heron row"
+    folder.mkdir()
+    (folder / "job.toml").write_text(CARD, encoding="utf-8")
+    (folder / "storeys.csv").write_text(STOREYS, encoding="utf-8")
+    edit = 'storeys.set("Roof", "mass", 155.5)\nprint("heavier roof")'
+    notebook = notebook_of([WORDS, *CELLS, edit], kernel="fortran-99")
+    execute(notebook, folder)
+    nbformat.write(notebook, folder / "calc.ipynb")
+    return folder
 
 
 def notebook_of(sources: Sequence[str], kernel: str = "python3") -> nbformat.NotebookNode:
@@ -158,6 +186,18 @@ class Link(BaseComm):
     def replies(self) -> list[dict[str, Any]]:
         return [m["content"] for m in self.sent if m.get("method") == "custom"]
 
+    @property
+    def state(self) -> dict[str, Any]:
+        """The widget's traits as the page has them."""
+        held: dict[str, Any] = {}
+        for message in self.sent:
+            held |= message.get("state", {})
+        return held
+
+    @property
+    def closed(self) -> bool:
+        return self.sent[-1]["type"] == "comm_close"
+
     def say(self, **content: Any) -> dict[str, Any]:
         """Say something to Python; its reply."""
         before = len(self.replies)
@@ -172,6 +212,7 @@ class Shell:
     """IPython without a kernel: runs cells and keeps what each shows, as a notebook's page would."""
 
     def __init__(self) -> None:
+        self.links: list[Link] = []
         self.outputs: dict[str, list[dict[str, Any]]] = {}
         self.by_id: dict[str, dict[str, Any]] = {}
         self.published = 0
@@ -179,6 +220,9 @@ class Shell:
         self.ipython = InteractiveShell.instance(config=config)
         self.ipython.display_pub.publish = self.publish
         self._cell, self._runs = "", 0
+        hook = self.ipython.displayhook
+        hook.write_output_prompt = hook.finish_displayhook = lambda: None
+        hook.write_format_data = self.result
 
     def publish(self, data: Any, metadata: Any = None, *, transient: Any = None, update: bool = False, **_: Any) -> None:
         self.published += 1
@@ -190,6 +234,11 @@ class Shell:
         self.outputs[self._cell].append(output)
         if name:
             self.by_id[name] = output
+
+    def result(self, data: Any, metadata: Any = None) -> None:
+        if data:
+            output = {"output_type": "execute_result", "data": data, "metadata": metadata or {}, "execution_count": 1}
+            self.outputs[self._cell].append(output)
 
     def run(self, source: str, cell: str = "") -> list[dict[str, Any]]:
         """Run a cell, again where its id is that of one run before; its outputs."""
@@ -215,6 +264,12 @@ class Shell:
         (data,) = (o["data"] for o in self.outputs[cell] if "text/html" in o.get("data", {}))
         return data
 
+    def link(self, cell: str) -> Link:
+        """Link to the one live view that a cell shows now."""
+        view = "application/vnd.jupyter.widget-view+json"
+        (model,) = (o["data"][view]["model_id"] for o in self.outputs[cell] if view in o.get("data", {}))
+        return next(link for link in self.links if link.comm_id == model)
+
     def executed(self, sources: Sequence[str]) -> nbformat.NotebookNode:
         """A notebook of these cells, run one after another."""
         notebook = notebook_of(sources)
@@ -230,11 +285,10 @@ class Shell:
 @pytest.fixture
 def shell(monkeypatch: pytest.MonkeyPatch) -> Iterator[Shell]:
     """IPython in this process, its widgets linked to nobody."""
-    links: list[Link] = []
 
     def linked(*args: Any, **kwargs: Any) -> Link:
-        links.append(Link(*args, **kwargs))
-        return links[-1]
+        made.links.append(Link(*args, **kwargs))
+        return made.links[-1]
 
     comms = comm.base_comm.CommManager()
     monkeypatch.setattr(comm, "create_comm", linked)
@@ -244,7 +298,6 @@ def shell(monkeypatch: pytest.MonkeyPatch) -> Iterator[Shell]:
     monkeypatch.delenv(blocks.STATIC, raising=False)
     InteractiveShell.clear_instance()
     made = Shell()
-    made.links = links
     yield made
     made.ipython.reset(new_session=False)
     InteractiveShell.clear_instance()
@@ -255,6 +308,26 @@ def static(shell: Shell, monkeypatch: pytest.MonkeyPatch) -> Shell:
     """The same, twins alone, as when a record is issued."""
     monkeypatch.setenv(blocks.STATIC, "1")
     return shell
+
+
+@pytest.fixture
+def quick_kernel(static: Shell, monkeypatch: pytest.MonkeyPatch) -> Shell:
+    """Issuing executes notebooks in this process instead of a kernel."""
+
+    def execute(notebook: nbformat.NotebookNode, folder: Path, progress: Callable[[int, int], None]) -> None:
+        before = Path.cwd()
+        os.chdir(folder)
+        try:
+            run = static.executed([cell.source for cell in notebook.cells])
+        finally:
+            os.chdir(before)
+        for cell, done in zip(notebook.cells, run.cells, strict=True):
+            if cell.cell_type == "code":
+                cell.outputs = done.outputs
+        progress(1, 1)
+
+    monkeypatch.setattr(issue, "execute", execute)
+    return static
 
 
 @pytest.fixture

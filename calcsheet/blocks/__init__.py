@@ -3,6 +3,18 @@
 from __future__ import annotations
 
 from calcsheet.blocks.blocks import JobCard, ModePlot, ModeSolver, ParticipationSummary
+from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.storeytable import StoreyTable
 
-__all__ = ["JobCard", "ModePlot", "ModeSolver", "ParticipationSummary", "StoreyTable"]
+__all__ = [
+    "DemandSpectrum",
+    "DriftCheck",
+    "JobCard",
+    "ModalTable",
+    "ModePlot",
+    "ModeSolver",
+    "ParticipationSummary",
+    "StaticComparison",
+    "StoreyActions",
+    "StoreyTable",
+]

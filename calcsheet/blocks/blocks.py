@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import datetime as dt
 from numbers import Integral, Real
 from pathlib import Path
 
@@ -29,6 +30,16 @@ class JobCard(Block):
 
     def __init__(self, folder: str | Path = ".") -> None:
         super().__init__(Job.open(folder), "card")
+
+    def set(self, key: str, value: str | bool | int | float | dt.date | None) -> None:
+        """Set a key of job.toml, such as "job.revision" or 'answers."no-origin-storeys.csv"'; None takes it out.
+
+        Raises
+        ------
+        InputError
+            The card would not be valid, or was changed on disk; nothing has changed.
+        """
+        self.job.set_value(key, value)
 
     def shown(self) -> Shown:
         return ShownCard(self)

@@ -32,7 +32,38 @@ _CLOUGH = "Clough and Penzien, Dynamics of Structures, Rayleigh's method (from m
 _BLEVINS = "Blevins, Formulas for Natural Frequency and Mode Shape, Dunkerley's method (from memory)"
 _PARLETT = "Parlett, The Symmetric Eigenvalue Problem (from memory)"
 _DEMMEL = "Demmel and Kahan, SIAM J. Sci. Stat. Comput. 11 (1990) (from memory)"
+_CQC = "Der Kiureghian (1981), Wilson, Der Kiureghian and Bayo (1981), Earthq. Eng. Struct. Dyn. 9 (from memory)"
+_ASCE = "ASCE/SEI 7-16, {} (from memory)"
+_EN = "EN 1998-1:2004, {} (from memory)"
 _BATHE = "Bathe, Finite Element Procedures, chapter 11 (from memory)"
+
+_EDITIONS = {
+    "edition.Edition": "any edition",
+    "asce7.ASCE7": "ASCE/SEI 7-16 and 7-22",
+    "en1998_2004.EN1998": "EN 1998-1:2004",
+    "is1893_2016.IS1893": "IS 1893 (Part 1):2016",
+    "points.GivenPoints": "given points",
+}
+_ITEMS = {
+    "permitted": "analysis permitted",
+    "importance": "importance factor",
+    "ordinates": "design ordinate S_a(T)",
+    "elastic_ordinates": "elastic ordinate that caps displacements",
+    "damping": "ξ of the ordinates",
+    "static": "static base shear",
+    "distribution": "static force at each level",
+    "modes": "modes asked for",
+    "combination": "rules of combination",
+    "independent": "modes independent for SRSS",
+    "scaling": "factors on modal forces and drifts",
+    "torsion": "multiplier for accidental torsion",
+    "drift": "design drift over elastic drift",
+    "drift_limit": "limit of the design drift",
+    "second_order": "θ with its limits",
+    "irregularities": "irregularities",
+    "separation": "separation displacement",
+}
+"""What every edition answers, by the method that does."""
 
 FORMULAS: tuple[Formula, ...] = (
     Formula("Σm, Σm·g, H", "totals.totals", "definition"),
@@ -71,5 +102,33 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("ψᵀMψ − I, ψᵢᵀKψⱼ/(ωᵢωⱼ) − I", "evidence.evidence_of_modes", _PARLETT),
     Formula("‖Kψ − ω²Mψ‖/ω²", "evidence.evidence_of_modes", _PARLETT),
     Formula("ΣM*/Σm − 1", "evidence.evidence_of_participation", _CHOPRA),
+    Formula("f = ΓMψSa, V, M, u = ΓψSa/ω², drift of each mode", "peaks.peaks", _CHOPRA),
+    Formula("ρ of modes: SRSS, CQC, absolute, grouped", "combine.correlation", _CQC),
+    Formula("√ΣΣρrr", "combine.combined", _CQC),
+    Formula("F = V wh^k/Σwh^k", "codes.common.by_height", _ASCE.format("12.8.3")),
+    Formula("max(1, V_static/V_modal)", "codes.common.up_to_static", _ASCE.format("12.9.1.4.1")),
+    Formula("θ = PΔ/(Vh)", "codes.common.stability", _EN.format("4.4.2.2(2)")),
+    Formula("1/(1 − θ)", "codes.common.amplified", _EN.format("4.4.2.2(3)")),
+    Formula("largest T_j/T_i", "codes.common.closest", _EN.format("4.3.3.3.2(1)")),
+    Formula("soft storeys", "codes.common.softer", _ASCE.format("Table 12.3-2")),
+    Formula("heavy levels", "codes.common.heavier", _ASCE.format("Table 12.3-2")),
+    Formula("soft storeys and heavy levels, with exceptions", "codes.asce7_screens.vertical", _ASCE.format("12.3.2.2")),
+    Formula("two-period S_a(T)", "codes.asce7.ASCE7.two_period", _ASCE.format("11.4.6")),
+    Formula("S_a(T), 7-16", "codes.asce7.ASCE7.spectrum", _ASCE.format("11.4.6")),
+    Formula("S_a(T), 7-22", "codes.asce7_22.ASCE722.spectrum", "ASCE/SEI 7-22, 11.4.5 (from memory)"),
+    Formula("C_u", "codes.asce7.ASCE7.limit_of_period", _ASCE.format("Table 12.8-1")),
+    Formula("C_s", "codes.asce7.ASCE7.coefficient", _ASCE.format("12.8.1.1")),
+    Formula("0.5S_1/(R/I_e)", "codes.asce7.ASCE7.near_fault", _ASCE.format("12.8.1.1")),
+    Formula("k of the static forces", "codes.asce7.ASCE7.exponent", _ASCE.format("12.8.3")),
+    Formula("η = √(10/(5 + ξ))", "codes.en1998_2004.damping_correction", _EN.format("3.2.2.2(3)")),
+    Formula("S_e(T)", "codes.en1998_2004.EN1998.elastic", _EN.format("3.2.2.2")),
+    Formula("k ≥ 3√n", "codes.en1998_2004.least_modes", _EN.format("4.3.3.3.1(5)")),
+    Formula("S_a/g", "codes.is1893_2016.IS1893.curve", "IS 1893 (Part 1):2016, 6.4.2 (from memory)"),
+    Formula("S_a at T from points", "codes.points.interpolated", "definition"),
+    *(
+        Formula(f"{what}: {edition}", f"codes.{where}.{item}", f"{edition} (from memory)")
+        for where, edition in _EDITIONS.items()
+        for item, what in _ITEMS.items()
+    ),
 )
 """Every formula of the core."""

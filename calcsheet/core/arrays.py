@@ -77,7 +77,7 @@ class Agreement:
     atol : float
         Absolute tolerance, added.
     below : float, optional
-        Both values need only lie below this bound (measures of error).
+        Values that differ need only lie below this bound, both (measures of error).
     subspace : str, optional
         Name of the field of frequencies: columns are compared as the subspaces that close groups span.
     group : str, optional

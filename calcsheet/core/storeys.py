@@ -76,6 +76,10 @@ class Storeys:
         Names of the sets that serve forces and drifts.
     given : {"mass", "weight"}
         What the table gave; the other follows from it.
+    gravity : (n,) array or None
+        Gravity load of each level for second-order effects [kN]; None where the table has none.
+    area : (n,) array or None
+        Floor area of each level [m²]; None where the table has none.
     """
 
     base: str
@@ -89,3 +93,5 @@ class Storeys:
     forces: str
     drifts: str
     given: str = "mass"
+    gravity: Array | None = None
+    area: Array | None = None

@@ -6,6 +6,7 @@ The description of each field is what its error says is allowed.
 from __future__ import annotations
 
 import datetime as dt
+import math
 import re
 import tomllib
 from collections.abc import Iterator, Mapping, Sequence
@@ -19,6 +20,8 @@ FILE = "job.toml"
 CHAIN = "storey chain"
 
 DIRECTIONS = ("x", "y")
+FILE_NAME = r"^[^\s./\\:][^/\\:]*$"
+"""What the name of a file in the job folder looks like."""
 _NOT_BLANK = r"\S"
 
 
@@ -36,7 +39,7 @@ Sentence = Annotated[
     Field(description="a sentence that ties this direction to the drawings' grid"),
 ]
 FileName = Annotated[
-    Annotated[str, Field(pattern=r"^[^\s./\\:][^/\\:]*$")] | None,
+    Annotated[str, Field(pattern=FILE_NAME)] | None,
     Field(description='the name of a file in the job folder, such as "stiffness_x.csv"'),
 ]
 
@@ -145,6 +148,23 @@ class Serves(_Table):
     drifts: Filled
 
 
+class LoadShare(_Table):
+    """One of [[mass_basis]]: a load, the share of it that the masses hold, and the clause that says so."""
+
+    load: Filled
+    share: float = Field(ge=0, le=1, description="a number from 0 to 1")
+    clause: Text = ""
+
+
+class OtherModel(_Table):
+    """One of [[second_model]]: a result of another model or a hand calculation, and where it comes from."""
+
+    quantity: Literal["period", "weight", "base shear"] = Field(description='"period", "weight" or "base shear"')
+    direction: Literal["x", "y", ""] = Field("", description='"x", "y" or ""')
+    value: float = Field(gt=0, description="a number above 0, in s, or in kN (SI) or kip (US)")
+    origin: Filled
+
+
 class Assumption(_Table):
     """One of [[assumptions]]: text, ground, and by whom or when it is to be confirmed ("": it needn't be)."""
 
@@ -166,6 +186,39 @@ def _as_tuple(value: object) -> object:
     return tuple(value) if isinstance(value, list) else value
 
 
+def number_of(value: int | float) -> float:
+    """Return a number of TOML in double precision, infinite where it is beyond that."""
+    try:
+        return float(value)
+    except OverflowError:
+        return math.inf if value > 0 else -math.inf
+
+
+def _storable(value: object) -> object:
+    """A value that JSON can hold; what it can't is refused later, and kept as its text for that message."""
+    match value:
+        case bool() | str():
+            return value
+        case dict() | list():
+            return type(value)()
+        case int() if abs(value) > 2**53:
+            return str(number_of(value))
+        case float() if not math.isfinite(value):
+            return str(value)
+        case int() | float():
+            return value
+        case _:
+            return str(value)
+
+
+def _storable_table(table: object) -> object:
+    if not isinstance(table, dict):
+        return table
+    return {
+        k: [_storable(v) for v in value] if isinstance(value, list) else _storable(value) for k, value in table.items()
+    }
+
+
 class Card(_Table):
     """The job card, whole."""
 
@@ -178,6 +231,15 @@ class Card(_Table):
     model: ModelChoice = Field(description="a table [model]")
     stiffness: Mapping[str, SetBasis] = Field(min_length=1, description="a table [stiffness.NAME] for each set")
     serves: Serves = Field(description="a table [serves]")
+    basis: Annotated[Mapping[str, Any] | None, BeforeValidator(_storable_table)] = Field(
+        None, description="a table [basis]"
+    )
+    mass_basis: Annotated[tuple[LoadShare, ...], BeforeValidator(_as_tuple)] = Field(
+        (), description="tables [[mass_basis]]"
+    )
+    second_model: Annotated[tuple[OtherModel, ...], BeforeValidator(_as_tuple)] = Field(
+        (), description="tables [[second_model]]"
+    )
     assumptions: Annotated[tuple[Assumption, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[assumptions]]"
     )
@@ -239,7 +301,7 @@ def _plain(error: Any) -> InputError:
         else:
             kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
             allowed = "a text" if kind is str else "a table"
-    found = "missing" if error["type"] == "missing" else f"got {_shown(error['input'])}"
+    found = "missing" if error["type"] == "missing" else f"got {shown(error['input'])}"
     return InputError(FILE, dotted(place), found, f"must be {allowed}")
 
 
@@ -248,7 +310,8 @@ def shorten(text: str) -> str:
     return text if len(text) <= 60 else f"{text[:59]}…"
 
 
-def _shown(value: object) -> str:
+def shown(value: object) -> str:
+    """Return a value of TOML as a message quotes it."""
     match value:
         case bool():
             return "true" if value else "false"
@@ -276,7 +339,12 @@ def _contradictions(card: Card) -> Iterator[InputError]:
             allowed = f"must be {ModelChoice.model_fields[d].description}"
             yield InputError(FILE, f"model.{d}", "missing", allowed)
     for name, basis in card.stiffness.items():
-        yield from _basis(name, basis, analysed, chain)
+        yield from _set_basis(name, basis, analysed, chain)
+    for i, other in enumerate(card.second_model):
+        wanted = ("",) if other.quantity == "weight" else analysed
+        if other.direction not in wanted:
+            allowed = f"must be {' or '.join(shown(d) for d in wanted)} for a {other.quantity}"
+            yield InputError(FILE, f"second_model.{i}.direction", f"got {shown(other.direction)}", allowed)
     names = " or ".join(f'"{name}"' for name in card.stiffness)
     for purpose in ("forces", "drifts"):
         if (name := getattr(card.serves, purpose)) not in card.stiffness:
@@ -288,7 +356,7 @@ def _contradictions(card: Card) -> Iterator[InputError]:
         yield InputError(FILE, "people.checked.name", found, "must be another person")
 
 
-def _basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: bool) -> Iterator[InputError]:
+def _set_basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: bool) -> Iterator[InputError]:
     where = dotted(["stiffness", name])
     if not name.strip() or set(name) & set("[]"):
         yield InputError(FILE, where, f'got the name "{name}"', "must be a name without square brackets")

@@ -6,8 +6,10 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from pathlib import Path
 
+from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeyfile, textfile
+from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import CHAIN, Card, parse_card
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
@@ -31,8 +33,12 @@ class JobFiles:
         The storey table, with its problems or the storeys.
     matrices : mapping of str to TextTable
         By direction, the tables of given matrices.
-    stamps : mapping of str to Stamp
-        By file name, the state of each file on disk.
+    stamps : mapping of str to Stamp or None
+        By file name, the state of each file on disk; None for one that a basis names and that isn't there.
+    basis : Basis or None
+        The basis of the demand; None where the card has none, or a wrong one.
+    basis_problem : str
+        Why there is none, or empty: all else can be calculated without one.
     """
 
     card: Card
@@ -40,7 +46,9 @@ class JobFiles:
     card_encoding: Encoding
     reading: StoreyReading
     matrices: Mapping[str, TextTable]
-    stamps: Mapping[str, Stamp]
+    stamps: Mapping[str, Stamp | None]
+    basis: Basis | None = None
+    basis_problem: str = ""
 
     @property
     def problems(self) -> tuple[str, ...]:
@@ -61,24 +69,25 @@ class JobFolder:
     path: Path
 
     def load(self) -> JobFiles:
-        """Read the job card, the storey table and the matrices that the card names.
+        """Read the job card, the storey table, and the matrices and spectrum that the card names.
 
         Raises
         ------
         InputError
             A file is missing or no text, the card has an error, or a table has no cells. What is wrong in the
-            cells is listed in the reading instead.
+            cells is listed in the reading instead, and what is wrong with the basis stands beside it.
         """
         card_file = self._read(job_card.FILE, f"`calcsheet new {self.path}` makes one")
         card = parse_card(card_file.text)
-        stamps = {job_card.FILE: card_file.stamp}
+        stamps: dict[str, Stamp | None] = {job_card.FILE: card_file.stamp}
         storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
         matrices = {
             d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
             for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
         }
         reading = read_storeys(storeys, card, matrices)
-        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps)
+        basis, problem = self._basis(card, stamps)
+        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem)
 
     def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
         """Write the storey table, whatever is wrong in its cells, and read it anew.
@@ -113,14 +122,33 @@ class JobFolder:
         stamps = self._write(job_card.FILE, content, files.stamps, overwrite)
         if card.model != files.card.model:
             return self.load()
+        before = spectrum_files(files.card).values()
+        kept = {name: stamp for name, stamp in stamps.items() if name not in before}
+        basis, problem = self._basis(card, kept)
         reading = read_storeys(files.reading.table, card, files.matrices)
-        return replace(files, card=card, card_text=text, reading=reading, stamps=stamps)
+        return replace(
+            files, card=card, card_text=text, reading=reading, stamps=kept, basis=basis, basis_problem=problem
+        )
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
         return tuple(name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp)
 
-    def _write(self, name: str, content: bytes, stamps: Mapping[str, Stamp], overwrite: bool) -> Mapping[str, Stamp]:
+    def _basis(self, card: Card, stamps: dict[str, Stamp | None]) -> tuple[Basis | None, str]:
+        """The basis of a card, or what is wrong with it; the state of its spectrum's file is added to `stamps`."""
+        try:
+            tables = {}
+            for key, name in spectrum_files(card).items():
+                # noted first: a file that is missing or wrong is looked at again once it has changed
+                stamps[name] = textfile.stamp(self.path / name)
+                tables[key] = self._table(name, f"must be there, since {job_card.FILE} names it in basis.{key}", stamps)
+            return read_basis(card, tables), ""
+        except InputError as error:
+            return None, str(error)
+
+    def _write(
+        self, name: str, content: bytes, stamps: Mapping[str, Stamp | None], overwrite: bool
+    ) -> Mapping[str, Stamp | None]:
         path = self.path / name
         expected = textfile.stamp(path) if overwrite else stamps[name]
         return {**stamps, name: textfile.write(path, content, expected)}
@@ -131,7 +159,7 @@ class JobFolder:
             raise InputError("", "", f"no {name} in {self.path}", remedy)
         return textfile.read(path)
 
-    def _table(self, name: str, remedy: str, stamps: dict[str, Stamp]) -> TextTable:
+    def _table(self, name: str, remedy: str, stamps: dict[str, Stamp | None]) -> TextTable:
         source = self._read(name, remedy)
         stamps[name] = source.stamp
         return parse_table(source, name)

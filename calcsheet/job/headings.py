@@ -12,7 +12,16 @@ from calcsheet.job.table import TextTable
 from calcsheet.units import Unit, UnitError, allowed_units, display, parse_unit
 
 LEVEL = "level"
-QUANTITIES = {"storey height": "length", "elevation": "elevation", "mass": "mass", "weight": "weight"}
+GRAVITY, AREA = "gravity load", "floor area"
+OPTIONAL = {GRAVITY: "weight", AREA: "area"}
+"""Headings of columns that a table may leave out, and their quantity in the unit table."""
+QUANTITIES = {
+    "storey height": "length",
+    "elevation": "elevation",
+    "mass": "mass",
+    "weight": "weight",
+    **OPTIONAL,
+}
 """The headings that stand for one quantity, and that quantity in the unit table."""
 
 

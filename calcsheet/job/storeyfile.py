@@ -17,7 +17,7 @@ from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
 from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
 from calcsheet.job.errors import InputError
-from calcsheet.job.headings import LEVEL, Column, read_headings, stiffness_key
+from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
@@ -201,17 +201,33 @@ class _Reader:
                         column.unit,
                         mark,
                         self.allowed(row, key),
-                        may_be_blank=column.quantity == "stiffness" and not self.is_above(row),
+                        may_be_blank=key in OPTIONAL or (column.quantity == "stiffness" and not self.is_above(row)),
                     )
                 except InputError as error:
                     self.refuse(row, key, error)
         self.check_elevations()
+        for key in OPTIONAL:
+            self.check_whole(key)
 
     def allowed(self, row: int, key: str) -> str:
         """What a number of a column must be in a row."""
         if key == "elevation":
             return ANY
-        return NOT_NEGATIVE if key in ("mass", "weight") and not self.is_above(row) else POSITIVE
+        if key == GRAVITY or (key in ("mass", "weight") and not self.is_above(row)):
+            return NOT_NEGATIVE
+        return POSITIVE
+
+    def check_whole(self, key: str) -> None:
+        """A column that may be left out is given for all levels of the model, or for none."""
+        above = {row: number for row, number in self.values.get(key, {}).items() if self.is_above(row)}
+        blank = [row for row, number in above.items() if np.isnan(number)]
+        if blank and len(blank) == sum(map(self.is_above, self.rows)):
+            heading = self.columns[key][1].heading
+            self.notices.append(f'{self.table.file}, column "{heading}" is blank: not used, and kept')
+            return
+        for row in blank:
+            allowed = "must be given for each level above the effective base, or for none"
+            self.refuse(row, key, InputError(self.table.file, self.where(row), f"{key} is blank", allowed))
 
     def check_elevations(self) -> None:
         """Elevations fall from row to row, and stay above the foot of the lowest storey."""
@@ -246,6 +262,11 @@ class _Reader:
         """A column's numbers from the lowest row up, NaN where blank."""
         return np.array([self.values[key][row] for row in self.rows[::-1]])
 
+    def if_given(self, key: str, below: int) -> np.ndarray | None:
+        """The numbers of a column that may be left out, for the levels of the model."""
+        numbers = self.from_base(key)[below:] if key in self.values else None
+        return None if numbers is None or np.isnan(numbers).any() else numbers
+
     def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
         """Put the storeys together, with the last problems that only the whole shows."""
         levels = [self.names[row] for row in self.rows[::-1]]
@@ -273,6 +294,8 @@ class _Reader:
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
             given="mass" if "mass" in self.values else "weight",
+            gravity=self.if_given(GRAVITY, n),
+            area=self.if_given(AREA, n),
         )
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:

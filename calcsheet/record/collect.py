@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import json
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any
 
+import rfc8785
 from nbformat import NotebookNode
 
 from calcsheet.blocks.twin import FORMAT, MIME
@@ -82,12 +84,12 @@ def collect(notebook: NotebookNode) -> Content:
 
 
 def refuse_stale(content: Content, folder: Path) -> None:
-    """Refuse content whose inputs are no longer those of the job folder.
+    """Refuse content whose inputs are not those of the job folder.
 
     Raises
     ------
     RecordError
-        Naming the table that has changed since the notebook was run.
+        Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
     """
     now = Job(folder.resolve()).payloads()
     for key in ("card", "storeys"):
@@ -95,10 +97,13 @@ def refuse_stale(content: Content, folder: Path) -> None:
             raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
         if fingerprint(now[key]["inputs"]) != fingerprint(content.payloads[key]["inputs"]):
             file = "job.toml" if key == "card" else "storeys.csv or job.toml"
-            raise RecordError(f"the notebook is stale: {file} changed since it was run; run all its cells and save it")
+            raise RecordError(
+                f"the notebook is stale: {file} in this folder isn't what it shows; run all its cells and save it"
+            )
 
 
 def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
+    """Payloads in canonical form: the same record from a notebook just run as from one saved and read again."""
     found = None
     for cell in notebook.cells:
         for output in cell.get("outputs", ()):
@@ -113,7 +118,13 @@ def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
         raise RecordError(
             "the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells"
         )
-    return dict(found)
+    kinds = list(STEPS)
+    unknown = {payload["kind"] for payload in found.values()} - {*kinds}
+    if unknown:
+        raise RecordError(f"the notebook was run by another version of calcsheet (step {', '.join(sorted(unknown))})")
+    # a saved notebook has its keys sorted: upstream first again
+    ordered = sorted(found.items(), key=lambda item: (kinds.index(item[1]["kind"]), item[0]))
+    return {key: json.loads(rfc8785.dumps(payload)) for key, payload in ordered}
 
 
 def _of_code(number: int, cell: NotebookNode, payloads: Mapping[str, Payload]) -> list[Shown | Own]:

@@ -13,7 +13,7 @@ from pathlib import Path
 
 import nbformat
 
-from calcsheet.record.collect import Content, collect
+from calcsheet.record.collect import Content, collect, refuse_stale
 from calcsheet.record.document import page_of, record_of
 from calcsheet.record.errors import RecordError
 from calcsheet.record.execute import Progress, execute
@@ -24,6 +24,11 @@ from calcsheet.steps.graph import Job
 
 NOTEBOOK = "calc.ipynb"
 ISSUED = "issued"
+FULL = "WeasyPrint"
+READING_COPY = (
+    "the PDF is a reading copy made with {}; where Pango is installed, WeasyPrint adds bookmarks, tags and page numbers "
+    "in the contents"
+)
 
 
 @dataclass(frozen=True)
@@ -84,13 +89,16 @@ def issue(
     engine, note = "", ""
     if to is None or "pdf" in to:
         try:
-            engine = str(choose_engine())
+            chosen = choose_engine()
+            engine = str(chosen)
+            note = "" if chosen.name == FULL else READING_COPY.format(chosen.name)
         except NoEngine as error:
             if to is not None:
                 raise RecordError(f"no PDF: {error}") from None
             note = f"no PDF was made: {error}"
     kinds = [k for k in ("html", "pdf") if (to is None or k in to) and not (k == "pdf" and not engine)]
     content = collect(_executed(folder, progress))
+    refuse_stale(content, folder)
     return _built(content, target, kinds, paper, engine, note)
 
 
@@ -100,8 +108,8 @@ def _executed(folder: Path, progress: Progress) -> nbformat.NotebookNode:
         raise RecordError(f"no {NOTEBOOK} in {folder}; `calcsheet new` makes a job folder that has one")
     try:
         notebook = nbformat.read(path, as_version=4)
-    except (nbformat.reader.NotJSONError, nbformat.ValidationError, UnicodeDecodeError) as error:
-        first = str(error).splitlines()[0]
+    except Exception as error:  # the library raises whatever its reader meets in a file that is no notebook
+        first, *_ = str(error).splitlines() or [type(error).__name__]
         raise RecordError(f"{NOTEBOOK} is no notebook that can be read: {first}") from None
     execute(notebook, folder, progress)
     return notebook

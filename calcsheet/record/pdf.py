@@ -2,16 +2,17 @@
 
 from __future__ import annotations
 
+import contextlib
 import datetime
 import hashlib
 import importlib
 import importlib.metadata
+import io
 import logging
 import os
 import re
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from io import BytesIO
 from pathlib import Path
 
 from pypdf import PdfReader, PdfWriter
@@ -116,8 +117,10 @@ def write_pdf(html: str, path: Path, *, attachments: Attachments = (), engine: s
 
 def _loads(name: str) -> bool:
     try:
-        importlib.import_module(name.lower())
-    except (ImportError, OSError):  # WeasyPrint without Pango: OSError
+        # WeasyPrint without Pango prints a long notice and then raises OSError
+        with contextlib.redirect_stdout(io.StringIO()), contextlib.redirect_stderr(io.StringIO()):
+            importlib.import_module(name.lower())
+    except (ImportError, OSError):
         return False
     return True
 
@@ -166,7 +169,7 @@ def _plutoprint(html: str, attachments: Attachments, moment: datetime.datetime) 
     book = plutoprint.Book()
     book.custom_resource_fetcher = DataOnly()
     book.load_html(html, base_url=BASE)
-    stream = BytesIO()
+    stream = io.BytesIO()
     book.write_to_pdf_stream(stream)
     if refused:
         raise OutsideReferenceError(_refusal(refused[0]))
@@ -175,7 +178,7 @@ def _plutoprint(html: str, attachments: Attachments, moment: datetime.datetime) 
     writer.add_metadata({"/CreationDate": stamp, "/ModDate": stamp})
     for name, content in attachments:
         writer.add_attachment(name, content).associated_file_relationship = NameObject("/Data")
-    out = BytesIO()
+    out = io.BytesIO()
     writer.write(out)
     return out.getvalue()
 

@@ -48,6 +48,7 @@ STYLE = {
     "xtick.major.width": 0.6,
     "ytick.major.width": 0.6,
     "path.simplify": False,
+    "text.parse_math": False,  # a level's name may hold dollar signs
 }
 
 _DRAWING = threading.RLock()
@@ -93,7 +94,8 @@ def blank(height: float) -> Figure:
 def svg(figure: Figure, title: str) -> str:
     """SVG of a figure, with `title` as its alternative text."""
     buffer = io.StringIO()
-    FigureCanvasSVG(figure).print_svg(buffer, metadata={"Date": None, "Creator": None})
+    with styled():
+        FigureCanvasSVG(figure).print_svg(buffer, metadata={"Date": None, "Creator": None})
     drawn = buffer.getvalue()
     drawn = drawn[drawn.index("<svg") :]
     drawn = re.sub(r"<metadata>.*?</metadata>", "", drawn, flags=re.DOTALL)

@@ -66,7 +66,8 @@ def exponent(value: float, at: str) -> str:
     if value == 0.0:
         return f'<data value="{escape(at)}">0</data>'
     mantissa, power = f"{value:.1e}".split("e")
-    return f'<data value="{escape(at)}">{mantissa}\u00b710<sup>{int(power)}</sup></data>'.replace("-", "\u2212")
+    shown = f"{mantissa}\u00b710<sup>{int(power)}</sup>".replace("-", "\u2212")
+    return f'<data value="{escape(at)}">{shown}</data>'
 
 
 def heading(name: str, quantity: str, system: str) -> str:

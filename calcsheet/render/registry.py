@@ -4,11 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
+from calcsheet.render.actions import ACTIONS, COMPARISON
 from calcsheet.render.card import CARD
+from calcsheet.render.demand import DEMAND
+from calcsheet.render.drift import DRIFT
 from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
+from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plot import PLOT
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 
-VIEWS: Mapping[str, View] = {view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION)}
+VIEWS: Mapping[str, View] = {
+    view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
+}

@@ -6,6 +6,7 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
+import datetime as dt
 import re
 import threading
 from collections.abc import Callable
@@ -17,6 +18,7 @@ import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
+from calcsheet.job.rewrite import with_value
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable
 from calcsheet.steps.registry import STEPS
@@ -27,6 +29,10 @@ KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
 LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
+
+
+FROM_FILES = ("card", "storeys", "basis")
+"""Steps whose inputs are the job's files."""
 
 
 class Listener(Protocol):
@@ -53,6 +59,14 @@ class Status:
 
     kind: str
     text: str
+
+
+class _RefusedError(Exception):
+    """The files hold no such inputs, for the reason given."""
+
+
+class _WaitsError(Exception):
+    """The inputs wait for another file."""
 
 
 @dataclass
@@ -142,6 +156,8 @@ class Job:
         with self.lock:
             step, before = STEPS[kind], self._nodes.get(key)
             served = {k: (needs or {}).get(k, k) for k in step.needs}
+            if "basis" in served.values():  # read from the files as soon as somebody asks for it
+                self._nodes.setdefault("basis", _Node(STEPS["basis"], {}, None))
             missing = [k for k in served.values() if k not in self._nodes]
             if missing:
                 raise ValueError(f"{step.title} needs {', '.join(missing)}, which this job has not yet")
@@ -202,6 +218,27 @@ class Job:
             self._save(change(self._read().reading), overwrite=False)
         self._tell()
 
+    def set_value(self, key: str, value: str | bool | int | float | dt.date | None) -> None:
+        """Set a key of the job card and write it through, comments kept; None takes the key out.
+
+        Parameters
+        ----------
+        key : str
+            Dotted key, such as "job.revision" or 'answers."no-origin-storeys.csv"'.
+        value : str, bool, int, float, date or None
+            Its value.
+
+        Raises
+        ------
+        InputError
+            The card would not be valid, or was changed on disk; nothing has changed.
+        """
+        with self.lock:
+            files = self._read()
+            self.files = self.folder.save_card(files, with_value(files.card_text, key, value))
+            self._update()
+        self._tell()
+
     def keep(self) -> None:
         """Write the table in memory over what is on disk; what else changed there is read."""
         with self.lock:
@@ -247,7 +284,7 @@ class Job:
         self.revision += 1
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
-            if key in ("card", "storeys"):
+            if key in FROM_FILES:
                 node.payload = self._from_files(key, node)
                 continue
             held_up = next((p for p in upstream if p["state"] != "ok"), None)
@@ -267,24 +304,33 @@ class Job:
         return same and node.payload["needs"] == node.needs and node.payload["inputs"] == to_json(node.inputs)
 
     def _from_files(self, key: str, node: _Node) -> Payload:
-        if self._problem or self.files is None:
-            state = "refused" if key == "card" else "waiting"
-            return unfinished(
-                node.step, {}, state, self._problem if key == "card" else f"waits for job card: {self._problem}"
-            )
-        if key == "card":
-            node.inputs = self.files.card
-        else:
-            if self.status.kind != "saved":
-                return unfinished(node.step, {}, "refused", self.status.text)
-            problems = self.files.problems
-            if problems:
-                more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-                return unfinished(node.step, {}, "refused", "; ".join(problems[:LISTED]) + more)
-            node.inputs = self.files.reading.storeys
+        """The payload of a step whose inputs are the job's files."""
+        try:
+            node.inputs = self._inputs(key)
+        except _RefusedError as error:
+            return unfinished(node.step, {}, "refused", str(error))
+        except _WaitsError as error:
+            return unfinished(node.step, {}, "waiting", str(error))
         if node.payload and node.payload["state"] == "ok" and node.payload["inputs"] == to_json(node.inputs):
             return node.payload
         return _calculated(node, ())
+
+    def _inputs(self, key: str) -> Any:
+        if self._problem or self.files is None:
+            raise _RefusedError(self._problem) if key == "card" else _WaitsError(f"waits for job card: {self._problem}")
+        if key == "card":
+            return self.files.card
+        if key == "basis":
+            if self.files.basis is None:
+                raise _RefusedError(self.files.basis_problem)
+            return self.files.basis
+        if self.status.kind != "saved":
+            raise _RefusedError(self.status.text)
+        problems = self.files.problems
+        if problems:
+            more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+            raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
 

@@ -4,10 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
+from calcsheet.steps.actions import ACTIONS
+from calcsheet.steps.basis import BASIS
 from calcsheet.steps.card import CARD
+from calcsheet.steps.demand import DEMAND
+from calcsheet.steps.drift import DRIFT
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
+from calcsheet.steps.peaks import PEAKS
 from calcsheet.steps.step import Step
 from calcsheet.steps.storeys import STOREYS
 
-STEPS: Mapping[str, Step] = {step.kind: step for step in (CARD, STOREYS, MODES, PARTICIPATION)}
+STEPS: Mapping[str, Step] = {
+    step.kind: step for step in (CARD, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS)
+}

@@ -17,12 +17,16 @@ from pydantic import BaseModel
 from calcsheet.core.arrays import readonly
 
 
+class NotFiniteError(ValueError):
+    """A number that is not finite can't be stored."""
+
+
 def to_json(value: Any) -> Any:
     """Plain JSON of a record, array, tuple, mapping or scalar.
 
     Raises
     ------
-    ValueError
+    NotFiniteError
         A number that is not finite: JSON has none, and no result may hold one.
     """
     if isinstance(value, BaseModel):
@@ -33,14 +37,14 @@ def to_json(value: Any) -> Any:
         return tag | {f.name: to_json(getattr(value, f.name)) for f in dataclasses.fields(value)}
     if isinstance(value, np.ndarray):
         if not np.isfinite(value).all():
-            raise ValueError("an array with entries that are not finite can't be stored")
+            raise NotFiniteError("an array with entries that are not finite can't be stored")
         return value.tolist()
     if isinstance(value, Mapping):
         return {str(k): to_json(v) for k, v in value.items()}
     if isinstance(value, list | tuple):
         return [to_json(v) for v in value]
     if isinstance(value, float) and not math.isfinite(value):
-        raise ValueError("a number that is not finite can't be stored")
+        raise NotFiniteError("a number that is not finite can't be stored")
     if value is None or isinstance(value, str | int | float):
         return value
     raise TypeError(f"{type(value).__name__} can't be stored")
@@ -55,7 +59,7 @@ def from_json(hint: Any, data: Any) -> Any:
         return readonly(data)
     if origin is tuple:
         return tuple(from_json(args[0], v) for v in data)
-    if origin is not None and issubclass(origin, Mapping):
+    if isinstance(origin, type) and issubclass(origin, Mapping):
         return {k: from_json(args[1], v) for k, v in data.items()}
     if isinstance(hint, type) and issubclass(hint, BaseModel):
         return hint.model_validate_json(json.dumps(data))

@@ -6,10 +6,12 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
+from numpy.linalg import LinAlgError
+
 from calcsheet.core.arrays import agrees
 from calcsheet.core.errors import ModelError
 from calcsheet.core.evidence import Evidence
-from calcsheet.steps.serial import from_json, to_json
+from calcsheet.steps.serial import NotFiniteError, from_json, to_json
 
 Payload = dict[str, Any]
 """Plain JSON of a step: kind, version, state, why, needs, inputs, result, lines, cautions, evidence."""
@@ -167,14 +169,17 @@ def calculated(step: Step, needs: Mapping[str, str], inputs: Any, upstream: tupl
     """
     try:
         outcome = step.run(inputs, *upstream)
+        return _payload(step, needs, "ok", "", inputs) | {
+            "result": to_json(outcome.result),
+            "lines": to_json(outcome.lines),
+            "cautions": to_json(outcome.cautions),
+            "evidence": to_json(outcome.evidence),
+        }
     except ModelError as error:
         return unfinished(step, needs, "refused", str(error), inputs)
-    return _payload(step, needs, "ok", "", inputs) | {
-        "result": to_json(outcome.result),
-        "lines": to_json(outcome.lines),
-        "cautions": to_json(outcome.cautions),
-        "evidence": to_json(outcome.evidence),
-    }
+    except (NotFiniteError, LinAlgError):
+        why = f"{step.title.lower()}: numbers beyond what can be calculated; check masses, stiffnesses and their units"
+        return unfinished(step, needs, "refused", why, inputs)
 
 
 def unfinished(step: Step, needs: Mapping[str, str], state: str, why: str, inputs: Any = None) -> Payload:

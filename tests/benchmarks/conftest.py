@@ -1,35 +1,51 @@
-"""Planar models from masses and stiffnesses alone."""
+"""Ratios measured in one run, and the table of them at its end: `pytest tests/benchmarks`."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+import statistics
+from collections.abc import Callable
+from time import perf_counter
 
-import numpy as np
 import pytest
 
-from calcsheet.core.chain import Chain
-from calcsheet.core.model import Model
-from calcsheet.core.storeys import Lateral
-
-Planar = Callable[..., Model]
+_ROWS: list[tuple[str, float, str]] = []
 
 
-@pytest.fixture(scope="session")
-def planar() -> Planar:
-    """Build a model of one translation a level, lowest first; a sequence of stiffnesses makes a chain."""
+def medians(runs: int, *functions: Callable[[], object]) -> list[float]:
+    """Median time [s] of each function, called in turns."""
+    times: list[list[float]] = [[] for _ in functions]
+    for _ in range(runs):
+        for function, taken in zip(functions, times, strict=True):
+            start = perf_counter()
+            function()
+            taken.append(perf_counter() - start)
+    return [statistics.median(taken) for taken in times]
 
-    def build(
-        mass: Sequence[float], lateral: Lateral | Sequence[float], height: Sequence[float] | None = None
-    ) -> Model:
-        n = len(mass)
-        return Model(
-            level=tuple(f"L{i + 1}" for i in range(n)),
-            height=np.arange(1.0, n + 1.0) if height is None else np.asarray(height, dtype=float),
-            mass=np.asarray(mass, dtype=float),
-            level_of=tuple(range(n)),
-            direction=("x",),
-            influence=np.ones((1, n)),
-            lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
-        )
 
-    return build
+@pytest.fixture
+def compare() -> Callable[..., list[float]]:
+    """Median times of functions called in turns; each runs once before."""
+
+    def measured(runs: int, *functions: Callable[[], object]) -> list[float]:
+        for function in functions:
+            function()
+        return medians(runs, *functions)
+
+    return measured
+
+
+@pytest.fixture
+def report() -> Callable[[str, float, str], None]:
+    """Put a figure into the table."""
+
+    def add(what: str, figure: float, limit: str) -> None:
+        _ROWS.append((what, figure, limit))
+
+    return add
+
+
+def pytest_terminal_summary(terminalreporter: pytest.TerminalReporter) -> None:
+    if _ROWS:
+        terminalreporter.section("benchmarks")
+    for what, figure, limit in _ROWS:
+        terminalreporter.write_line(f"{what:<78}{figure:>8.2f}  {limit}")

@@ -10,6 +10,7 @@ from scipy import linalg
 from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.evidence import evidence_of_modes, evidence_of_participation
+from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
 
@@ -79,6 +80,18 @@ def test_every_frequency_keeps_its_digits_where_an_ordinary_solver_loses_them(pl
     assert np.abs(modes.omega**2 / wanted**2 - 1.0).max() < 1e-12
     assert (np.abs(dense(mass, stiffness) / wanted - 1.0).max() > 1e-10) == others_lose
     assert [e.key for e in all_evidence(planar(mass, stiffness), modes) if not e.within] == []
+
+
+@pytest.mark.parametrize("kind", [StiffnessMatrix, FlexibilityMatrix])
+def test_a_matrix_that_has_lost_its_digits_is_found_out(planar, kind):
+    """Entered as a matrix, such a building can't be solved to many digits; the evidence says so."""
+    mass, stiffness = chain(12, "alternating")
+    model, unit = planar(mass, stiffness), np.eye(12)
+    lateral = kind(model.lateral.force(unit) if kind is StiffnessMatrix else model.lateral.displacement(unit))
+    entered = planar(mass, lateral)
+    modes = modes_of(entered)
+    assert np.abs(modes.omega / modes_of(model).omega - 1.0).max() > 1e-8
+    assert {"stiffness", "residual", "sturm"} <= {e.key for e in all_evidence(entered, modes) if not e.within}
 
 
 def test_few_modes_of_many_storeys_keep_their_digits(planar):

@@ -98,10 +98,17 @@ def test_few_modes_of_a_large_matrix_are_those_of_the_chain(planar, kind):
 @pytest.mark.parametrize("kind", [StiffnessMatrix, FlexibilityMatrix])
 def test_the_storey_energies_of_a_matrix_add_up(planar, kind):
     """A cantilever that bends: some storey's share is negative, the sum is 1."""
-    x = np.array([1.0, 2.0, 3.0, 4.0])
+    x = np.arange(1.0, 9.0)
     low, high = np.minimum.outer(x, x), np.maximum.outer(x, x)
     flexibility = low**2 * (3.0 * high - low) / 6.0 * 1e-6
     lateral = kind(flexibility if kind is FlexibilityMatrix else np.linalg.inv(flexibility))
-    modes = modes_of(planar([100.0] * 4, lateral))
-    assert modes.strain.sum(axis=0) == pytest.approx(np.ones(4), rel=1e-9)
-    assert modes.strain.min() < 0.0
+    modes = modes_of(planar([100.0] * 8, lateral))
+    assert modes.strain.sum(axis=0) == pytest.approx(np.ones(8), rel=1e-9)
+    assert -0.1 < modes.strain.min() < -1e-4
+
+
+@pytest.mark.parametrize(("apart", "repeated"), [(5e-7, ((1, 2),)), (2e-6, ()), (1e-3, ())])
+def test_frequencies_count_as_repeated_within_a_millionth(planar, apart, repeated):
+    lateral = StiffnessMatrix(np.diag([1e5, 1e5 * (1.0 + apart) ** 2]))
+    modes = modes_of(planar([100.0, 100.0], lateral))
+    assert (modes.repeated, modes.close) == (repeated, ((1, 2),))

@@ -36,9 +36,7 @@ def test_no_vector_of_stiffnesses(values):
 
 @pytest.mark.parametrize(("value", "shown"), [(0.0, "0"), (-12.0, "-12"), (np.nan, "nan"), (np.inf, "inf")])
 def test_a_mass_by_its_level(planar, value, shown):
-    assert refusal(planar, [200.0, 200.0, value], [1e5] * 3) == (
-        f'mass [t], "L3": {shown}; must be finite and above 0'
-    )
+    assert refusal(planar, [200.0, 200.0, value], [1e5] * 3) == (f'mass [t], "L3": {shown}; must be finite and above 0')
 
 
 @pytest.mark.parametrize(

@@ -79,7 +79,7 @@ def test_a_change_by_others_is_noticed_and_not_overwritten(folder, storeys_text)
     (folder.path / "storeys.csv").write_text(theirs)
     assert folder.changed_on_disk(files) == ("storeys.csv",)
     mine = edits.set_number(files.reading, "Roof", "mass", 199.5)
-    with pytest.raises(ConflictError, match="^storeys.csv: not saved, changed on disk since it was read"):
+    with pytest.raises(ConflictError, match=r"^storeys\.csv: not saved, changed on disk since it was read"):
         folder.save_storeys(files, mine)
     assert (folder.path / "storeys.csv").read_text() == theirs
     after = folder.save_storeys(files, mine, overwrite=True)
@@ -103,7 +103,7 @@ def test_the_card_is_saved_and_read_anew(folder):
 
 def test_a_wrong_card_is_not_saved(folder, card_text):
     files = folder.load()
-    with pytest.raises(InputError, match="units.system"):
+    with pytest.raises(InputError, match=r"units\.system"):
         folder.save_card(files, with_value(files.card_text, "units.system", "metric"))
     assert (folder.path / "job.toml").read_text() == card_text
 
@@ -115,3 +115,72 @@ def test_byte_order_mark_and_encoding_are_kept(folder, card_text):
     folder.save_card(files, with_value(files.card_text, "job.title", "Höhe ψ"))
     expected = card_text.replace("Lateral modes", "Höhe ψ").replace("\n", "\r\n")
     assert path.read_bytes() == b"\xef\xbb\xbf" + expected.encode()
+
+
+NO_BASIS = "job.toml, basis: missing; must be a table [basis] where a design demand is asked for"
+BASIS = '[basis]\nedition = "given points"\npoints = "sa.csv"\n\n[answers]'
+SPECTRUM = "period [s],ordinate [g]\n0,0.3\n4,0.1\n"
+
+
+@pytest.fixture
+def with_basis(folder, card_text):
+    (folder.path / "job.toml").write_text(card_text.replace("[answers]", BASIS))
+    (folder.path / "sa.csv").write_text(SPECTRUM)
+    return folder
+
+
+def test_a_folder_without_a_basis(folder):
+    files = folder.load()
+    assert (files.basis, files.basis_problem) == (None, NO_BASIS)
+
+
+def test_a_basis_is_read_with_its_spectrum(with_basis):
+    files = with_basis.load()
+    assert files.basis_problem == ""
+    assert files.basis.edition.points == ((0.0, 0.3), (4.0, 0.1))
+    assert sorted(files.stamps) == ["job.toml", "sa.csv", "storeys.csv"]
+    assert with_basis.changed_on_disk(files) == ()
+    (with_basis.path / "sa.csv").write_text(SPECTRUM.replace("0.3", "0.4"))
+    assert with_basis.changed_on_disk(files) == ("sa.csv",)
+
+
+@pytest.mark.parametrize(
+    ("text", "problem"),
+    [
+        (None, "no sa.csv in {folder}; must be there, since job.toml names it in basis.points"),
+        ("", "sa.csv: the file is empty; must have a line of headings"),
+        (SPECTRUM.replace("0.3", "-0.3"), "sa.csv, row 2: ordinate -0.3 g; must be 0 or above"),
+    ],
+)
+def test_a_wrong_spectrum_keeps_only_the_basis_from_being_read(with_basis, text, problem):
+    path = with_basis.path / "sa.csv"
+    path.unlink() if text is None else path.write_text(text)
+    files = with_basis.load()
+    assert (files.basis, files.basis_problem) == (None, problem.format(folder=with_basis.path))
+    assert files.problems == ()
+    assert files.reading.storeys is not None
+    assert with_basis.changed_on_disk(files) == ()
+    path.write_text(SPECTRUM)
+    assert with_basis.changed_on_disk(files) == ("sa.csv",)
+    assert with_basis.load().basis_problem == ""
+
+
+def test_a_wrong_basis_keeps_only_the_basis_from_being_read(folder, card_text):
+    (folder.path / "job.toml").write_text(card_text.replace("[answers]", "[basis]\nedition = 1998\n[answers]"))
+    files = folder.load()
+    assert files.basis is None
+    assert files.basis_problem.startswith("job.toml, basis.edition: got 1998; must be")
+    assert files.reading.storeys is not None
+
+
+def test_the_basis_follows_the_card_that_is_saved(with_basis):
+    files = with_basis.load()
+    after = with_basis.save_card(files, with_value(files.card_text, "basis.points", "other.csv"))
+    assert after.basis is None
+    assert sorted(after.stamps) == ["job.toml", "other.csv", "storeys.csv"]
+    assert with_basis.changed_on_disk(after) == ()
+    back = with_basis.save_card(after, with_value(after.card_text, "basis.points", "sa.csv"))
+    assert back.basis == files.basis
+    again = with_basis.save_card(back, with_value(back.card_text, "basis.combination", "SRSS"))
+    assert again.basis.combination == "SRSS"
+    assert sorted(again.stamps) == ["job.toml", "sa.csv", "storeys.csv"]

@@ -7,7 +7,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from calcsheet.core.storeys import Storeys
 from calcsheet.job.storeyfile import read_storeys
+from calcsheet.steps.serial import from_json, to_json
 from calcsheet.units import STANDARD_GRAVITY
 
 ON_1 = (('effective_base = ""', 'effective_base = "1"'),)
@@ -142,8 +144,7 @@ MASS = "t, kg, kip·s²/ft or kip·s²/in"
             '"212,5"',
             0,
             "mass",
-            'level "Roof": mass "212,5"; '
-            'must be a number in t with the decimal mark ".", as in the other cells',
+            'level "Roof": mass "212,5"; must be a number in t with the decimal mark ".", as in the other cells',
         ),
         ("3.40", "0", 0, "storey height", 'level "Roof": storey height 0 m; must be above 0'),
         ("163000", "-1", 2, "stiffness x", 'level "2": stiffness x -1 kN/m; must be above 0'),
@@ -254,10 +255,7 @@ def test_every_wrong_cell_is_named(read):
 
 
 def test_ambiguous_cells_are_refused_one_by_one(read):
-    text = (
-        "level;storey height [m];mass [t];stiffness x [kN/m];stiffness y [kN/m]\n"
-        "Roof;3;1,250;5;5\n1;3;2.500;5;5\n"
-    )
+    text = "level;storey height [m];mass [t];stiffness x [kN/m];stiffness y [kN/m]\nRoof;3;1,250;5;5\n1;3;2.500;5;5\n"
     assert messages(read(text=text)) == [
         'storeys.csv, level "Roof": mass 1,250 t can be read as 1250 or 1,25; '
         "must be written so that it can be read in one way",
@@ -269,10 +267,7 @@ def test_ambiguous_cells_are_refused_one_by_one(read):
 
 
 def test_elevations_must_fall_to_above_the_base(read):
-    text = (
-        "level,elevation [m],mass [t],stiffness x [kN/m],stiffness y [kN/m]\n"
-        "Roof,9,1,5,5\n2,9.5,1,5,5\n1,2,1,5,5\n"
-    )
+    text = "level,elevation [m],mass [t],stiffness x [kN/m],stiffness y [kN/m]\nRoof,9,1,5,5\n2,9.5,1,5,5\n1,2,1,5,5\n"
     assert messages(read(text=text, on=(("base_elevation = 0", "base_elevation = 2"),))) == [
         'storeys.csv, level "2": elevation 9.5 m; must be below 9 m, that of level "Roof" above it',
         'storeys.csv, level "1": elevation 2 m; must be above 2 m, levels.base_elevation in job.toml',
@@ -298,11 +293,74 @@ def test_below_the_base_a_mass_may_be_zero_but_not_less(read):
     assert problem.message == 'storeys.csv, level "1": stiffness x "x"; must be a number in kN/m'
 
 
+LOADED = (
+    ("remarks", "gravity load [kN],floor area [m²]"),
+    (",plant", ",1900,410.5"),
+    ("152500,", "152500,2600,420"),
+    ("150000,", "150000,0,420"),
+    (",lobby", ",2700,450"),
+)
+WHOLE = "must be given for each level above the effective base, or for none"
+
+
+def test_gravity_loads_and_floor_areas(read):
+    got = read(*LOADED)
+    assert got.notices == ()
+    np.testing.assert_allclose(got.storeys.gravity, [2700, 2600, 0, 1900])
+    np.testing.assert_allclose(got.storeys.area, [450, 420, 420, 410.5])
+    us = read(*LOADED, ("gravity load [kN]", "gravity load [kip]"), ("floor area [m²]", "floor area [ft2]")).storeys
+    np.testing.assert_allclose(us.gravity, got.storeys.gravity * 4.4482216152605)
+    np.testing.assert_allclose(us.area, got.storeys.area * 0.3048**2)
+    for storeys in (got.storeys, read().storeys):
+        back = from_json(Storeys, to_json(storeys))
+        for name in ("gravity", "area"):
+            np.testing.assert_array_equal(getattr(back, name), getattr(storeys, name))
+
+
+def test_without_their_columns_there_are_none(read):
+    assert (read().storeys.gravity, read().storeys.area) == (None, None)
+
+
+def test_a_blank_column_is_none_and_said_so(read):
+    got = read(("remarks", "floor area [m²]"), ("plant", ""), ("lobby", ""))
+    assert got.storeys.area is None
+    assert got.notices == ('storeys.csv, column "floor area [m²]" is blank: not used, and kept',)
+
+
+def test_levels_below_the_base_need_no_gravity_load(read):
+    got = read(*LOADED, (",2700,450", ",,"), on=ON_1).storeys
+    np.testing.assert_allclose(got.gravity, [2600, 0, 1900])
+    np.testing.assert_allclose(got.area, [420, 420, 410.5])
+    alone = read(("remarks", "gravity load [kN]"), ("plant", ""), ("lobby", "9"), on=ON_1)
+    assert alone.storeys.gravity is None
+    assert alone.notices == ('storeys.csv, column "gravity load [kN]" is blank: not used, and kept',)
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "row", "column", "message"),
+    [
+        ("1900", "-1", 0, "gravity load", 'level "Roof": gravity load -1 kN; must be 0 or above'),
+        ("2600", "", 2, "gravity load", f'level "2": gravity load is blank; {WHOLE}'),
+        ("2700", "a", 3, "gravity load", 'level "1": gravity load "a"; must be a number in kN'),
+        ("410.5", "0", 0, "floor area", 'level "Roof": floor area 0 m²; must be above 0'),
+        ("450", "", 3, "floor area", f'level "1": floor area is blank; {WHOLE}'),
+        (
+            "[m²]",
+            "[m]",
+            None,
+            "floor area",
+            'heading "floor area [m]": "m" is a unit of length, not of area; must be m² or ft²',
+        ),
+    ],
+)
+def test_gravity_loads_and_floor_areas_refused(read, old, new, row, column, message):
+    problem = one(read(*LOADED, (old, new)))
+    assert (problem.row, problem.column, problem.message) == (row, column, f"storeys.csv, {message}")
+
+
 def test_no_levels(read):
     text = "level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m]\n"
-    assert (
-        one(read(text=text)).message == "storeys.csv: no levels; must have a row for each level, roof first"
-    )
+    assert one(read(text=text)).message == "storeys.csv: no levels; must have a row for each level, roof first"
 
 
 def test_a_blank_row_is_no_level(read):

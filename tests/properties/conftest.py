@@ -1,4 +1,4 @@
-"""Planar models from masses and stiffnesses alone."""
+"""Buildings drawn at random, and a profile that keeps this folder quick and its draws the same on every run."""
 
 from __future__ import annotations
 
@@ -6,16 +6,23 @@ from collections.abc import Callable, Sequence
 
 import numpy as np
 import pytest
+from hypothesis import settings
 
 from calcsheet.core.chain import Chain
 from calcsheet.core.model import Model
 from calcsheet.core.storeys import Lateral
 
-Planar = Callable[..., Model]
+settings.register_profile("calcsheet", max_examples=60, deadline=None, derandomize=True)
+
+
+@pytest.fixture(scope="session", autouse=True)
+def profile():
+    """Use the profile."""
+    settings.load_profile("calcsheet")
 
 
 @pytest.fixture(scope="session")
-def planar() -> Planar:
+def planar() -> Callable[..., Model]:
     """Build a model of one translation a level, lowest first; a sequence of stiffnesses makes a chain."""
 
     def build(

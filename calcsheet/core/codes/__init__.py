@@ -1,0 +1,1 @@
+"""Seismic code editions, one file each, all answering one checklist."""

@@ -1,0 +1,178 @@
+"""Design demand in each direction: ordinates at the modes' periods, and the code's static base shear."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from calcsheet.core.arrays import Array, Frozen, agrees
+from calcsheet.core.basis import Basis
+from calcsheet.core.codes.edition import Answer, Edition, Facts, Static
+from calcsheet.core.model import models_of
+from calcsheet.core.participation import Participation
+from calcsheet.core.response import facts_of
+from calcsheet.steps.relations import line_of
+from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
+
+DRAWN = 160
+"""Points along the spectrum's curve."""
+BEYOND = 4.0
+"""Period beyond which displacements of a design spectrum need a second look [s] (EN 1998-1:2004, 3.2.2.2(3))."""
+
+
+@dataclass(frozen=True)
+class DemandOptions:
+    """Nothing is asked of this step: the basis says it all."""
+
+
+@dataclass(frozen=True, eq=False)
+class Demand(Frozen):
+    """Demand in one direction.
+
+    Parameters
+    ----------
+    direction : str
+        "x" or "y".
+    facts : Facts
+        The building in this direction.
+    ordinate : (m,) array
+        Design ordinate at each mode's period [m/s²].
+    curve_period, curve : (k,) array
+        The design spectrum: periods [s] and ordinates [m/s²].
+    permitted : Answer
+        Whether this analysis is permitted.
+    torsion : Answer
+        What is said of accidental torsion.
+    static : Static or None
+        The static base shear; None where the edition has none.
+    first_effective_mass : float
+        Effective mass of the first mode [t].
+    first_base_shear : float
+        Base shear of the first mode, effective mass times ordinate [kN].
+    """
+
+    direction: str
+    facts: Facts
+    ordinate: Array = field(metadata=agrees(rtol=1e-8))
+    curve_period: Array = field(metadata=agrees(rtol=1e-8))
+    curve: Array = field(metadata=agrees(rtol=1e-8))
+    permitted: Answer
+    torsion: Answer
+    static: Static | None
+    first_effective_mass: float = field(metadata=agrees(rtol=1e-8))
+    first_base_shear: float = field(metadata=agrees(rtol=1e-7))
+
+
+@dataclass(frozen=True, eq=False)
+class DemandResult:
+    """Demand in each direction.
+
+    Parameters
+    ----------
+    directions : tuple of Demand
+        x before y.
+    """
+
+    directions: tuple[Demand, ...]
+
+
+def run(options: DemandOptions, storeys: Done, modes: Done, parts: Done, basis: Done) -> Outcome:
+    given: Basis = basis.inputs
+    found: list[Demand] = []
+    lines: list[Line] = []
+    cautions: list[Caution] = []
+    participations = {p.direction: p for p in parts.result.directions}
+    for model in models_of(storeys.inputs, modes.result.stiffness):
+        for direction in model.direction:
+            part = participations[direction]
+            facts = facts_of(model, float(part.period[0]), direction)
+            demand = _of(given.edition, facts, part)
+            at = f"result/directions/{len(found)}"
+            found.append(demand)
+            lines += _lines(demand, at)
+            cautions += _cautions(demand, at)
+    return Outcome(DemandResult(tuple(found)), tuple(lines), tuple(cautions))
+
+
+def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
+    ordinate = edition.ordinates(facts.direction, part.period)
+    shortest, longest = float(part.period[-1]), float(part.period[0])
+    periods = np.unique(np.concatenate([np.linspace(shortest, max(1.15 * longest, 1.0), DRAWN), part.period]))
+    periods = periods[: np.searchsorted(periods, _last(edition, facts.direction, periods), side="right")]
+    return Demand(
+        direction=facts.direction,
+        facts=facts,
+        ordinate=ordinate,
+        curve_period=periods,
+        curve=edition.ordinates(facts.direction, periods),
+        permitted=edition.permitted(facts),
+        torsion=edition.torsion(facts.direction)[1],
+        static=edition.static(facts),
+        first_effective_mass=float(part.effective_mass[0]),
+        first_base_shear=float(part.effective_mass[0] * ordinate[0]),
+    )
+
+
+def _last(edition: Edition, direction: str, periods: Array) -> float:
+    """Last of the periods that the spectrum reaches: given points end somewhere."""
+    points = getattr(edition, "points", ())
+    return float(points[-1][0]) if points else float(periods[-1])
+
+
+def _lines(demand: Demand, at: str) -> list[Line]:
+    lines = []
+    if demand.static is not None:
+        for i, relation in enumerate(demand.static.relations):
+            lines.append(line_of(relation, demand.direction, f"{at}/static/relations/{i}"))
+    mass = Number(demand.first_effective_mass, "mass", f"{at}/first_effective_mass")
+    ordinate = Number(float(demand.ordinate[0]), "acceleration", f"{at}/ordinate/0")
+    shear = Number(demand.first_base_shear, "force", f"{at}/first_base_shear")
+    lines.append(
+        Line(
+            f"Base shear of mode 1, {demand.direction}",
+            "V₁ = M₁* S_a(T₁)",
+            "{0} × {1}",
+            (mass, ordinate),
+            shear,
+            "Chopra, Dynamics of Structures, section 13.2 (from memory)",
+        )
+    )
+    return lines
+
+
+def _cautions(demand: Demand, at: str) -> list[Caution]:
+    cautions = [Caution(f"torsion-{demand.direction}", f"Torsion, {demand.direction}: {demand.torsion.text}")]
+    if demand.facts.period > BEYOND:
+        cautions.append(
+            Caution(
+                f"long-period-{demand.direction}",
+                f"The first period in {demand.direction}, {{0}}, is beyond {BEYOND:g} s: displacements need a second look.",
+                (Number(demand.facts.period, "period", f"{at}/facts/period"),),
+            )
+        )
+    if demand.permitted.verdict != "passes":
+        cautions.append(
+            Caution(
+                f"permitted-{demand.direction}", f"{demand.permitted.text} ({demand.permitted.clause})", answer=True
+            )
+        )
+    return cautions
+
+
+METHOD = r"""
+Each mode moves with the design ordinate at its own period. The first mode's base shear is its effective mass times its
+ordinate, $V_1 = M_1^{*} S_a(T_1)$. The code's static base shear stands beside the modal one for comparison, or for
+scaling where the edition asks for it; its period, coefficient and the bound that governs are worked out line by line.
+"""
+
+DEMAND = Step(
+    "demand",
+    1,
+    "Design demand",
+    DemandOptions,
+    DemandResult,
+    ("storeys", "modes", "participation", "basis"),
+    run,
+    METHOD,
+)

@@ -1,0 +1,104 @@
+"""Drifts against their limit, second order, irregularities, separation."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from calcsheet.core.design import Drifts, drifts
+from calcsheet.core.model import models_of
+from calcsheet.core.response import facts_of
+from calcsheet.steps.relations import line_of
+from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step, plain
+
+
+@dataclass(frozen=True)
+class DriftOptions:
+    """Nothing is asked of this step: the basis says it all."""
+
+
+@dataclass(frozen=True, eq=False)
+class DriftResult:
+    """Drifts in each direction.
+
+    Parameters
+    ----------
+    stiffness : str
+        Name of the stiffness set that serves drifts.
+    directions : tuple of Drifts
+        x before y.
+    """
+
+    stiffness: str
+    directions: tuple[Drifts, ...]
+
+
+def run(options: DriftOptions, storeys: Done, basis: Done, peaks: Done) -> Outcome:
+    building = storeys.inputs
+    gravity = None if building.gravity is None else np.cumsum(building.gravity[::-1])[::-1]
+    models = {d: m for m in models_of(building, peaks.result.stiffness_drifts) for d in m.direction}
+    found: list[Drifts] = []
+    lines: list[Line] = []
+    cautions: list[Caution] = []
+    for item in peaks.result.directions:
+        facts = facts_of(models[item.direction], item.drift_period, item.direction)
+        result = drifts(basis.inputs.edition, facts, item.drifts, item.scaling, gravity, item.cap)
+        at = f"result/directions/{len(found)}"
+        found.append(result)
+        lines += _lines(result, at)
+        cautions += _cautions(result, building.level, at)
+    return Outcome(DriftResult(peaks.result.stiffness_drifts, tuple(found)), tuple(lines), tuple(cautions))
+
+
+def _lines(item: Drifts, at: str) -> list[Line]:
+    worst = item.worst
+    design = Number(float(item.design[worst]), "displacement", f"{at}/design/{worst}")
+    limit = Number(float(item.limit[worst]), "displacement", f"{at}/limit/{worst}")
+    share = Number(float(item.share[worst]), "share", f"{at}/share/{worst}")
+    of = f"storey {worst + 1} from the base, {item.direction}"
+    return [
+        line_of(item.limit_relation, item.direction, f"{at}/limit_relation"),
+        Line(f"Largest share of the drift limit, {of}", "d_r / limit", "{0} / {1}", (design, limit), share, "ratio"),
+    ]
+
+
+def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
+    cautions, d = [], item.direction
+    if item.share[item.worst] > 1.0:
+        number = Number(float(item.share[item.worst]), "share", f"{at}/share/{item.worst}")
+        text = f'The drift in {d} exceeds its limit: {{0}} of it, in the storey below "{plain(levels[item.worst])}".'
+        cautions.append(Caution(f"drift-exceeds-{d}", text, (number,), answer=True))
+    if item.second_order is None:
+        if item.second_order_note != "not in this edition":
+            cautions.append(
+                Caution(
+                    f"no-second-order-{d}", f"Second-order effects in {d} are not assessed: {item.second_order_note}."
+                )
+            )
+    else:
+        worst = int(np.argmax(item.second_order.theta))
+        theta = float(item.second_order.theta[worst])
+        if theta > item.second_order.ignore_up_to:
+            number = Number(theta, "ratio", f"{at}/second_order/theta/{worst}")
+            text = f"Second order in {d}: θ reaches {{0}}; {item.second_order.text} ({item.second_order.clause})."
+            cautions.append(Caution(f"second-order-{d}", text, (number,), answer=item.second_order.verdict != "passes"))
+    for i, screen in enumerate(item.screens):
+        if screen.verdict == "exceeds":
+            text = f"Irregularity in {d}, {screen.name}: {screen.text}. {screen.consequence} ({screen.clause})."
+            cautions.append(Caution(f"screen-{d}-{i + 1}", plain(text), answer=True))
+    return cautions
+
+
+METHOD = r"""
+Drifts are taken with the stiffness set that serves drifts, each combined from its own modal values, and brought to the
+design drift by the edition's factor. The stability coefficient of a storey,
+
+$$\theta = \frac{P\,\Delta}{V\,h} ,$$
+
+takes the gravity load $P$ at and above it, its shear $V$ and its drift $\Delta$ from one and the same unscaled set.
+"""
+
+DRIFT = Step(
+    "drift", 1, "Drift and second order", DriftOptions, DriftResult, ("storeys", "basis", "peaks"), run, METHOD
+)

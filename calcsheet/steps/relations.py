@@ -1,0 +1,24 @@
+"""A code edition's relations as worked lines."""
+
+from __future__ import annotations
+
+from calcsheet.core.codes.edition import Relation
+from calcsheet.steps.step import Line, Number
+
+
+def line_of(relation: Relation, of: str, at: str) -> Line:
+    """A worked line.
+
+    Parameters
+    ----------
+    relation : Relation
+        The relation with its values.
+    of : str
+        What it is worked out for, such as "x"; put after the quantity.
+    at : str
+        Where the relation stands in the payload.
+    """
+    numbers = tuple(Number(v.value, v.quantity, f"{at}/values/{i}/value") for i, v in enumerate(relation.values))
+    result = Number(relation.result.value, relation.result.quantity, f"{at}/result/value")
+    quantity = f"{relation.quantity}, {of}"
+    return Line(quantity, relation.relation, relation.substitution, numbers, result, relation.clause)

@@ -1,0 +1,64 @@
+"""What keeps a record a draft."""
+
+from __future__ import annotations
+
+import pytest
+
+from calcsheet.record.status import held_back, status_of
+from calcsheet.steps.graph import Job
+from calcsheet.steps.modes import ModesOptions
+from calcsheet.steps.participation import ParticipationOptions
+
+
+@pytest.fixture
+def payloads(job_folder):
+    def of(*card, keep=None):
+        job = Job(job_folder(card))
+        job.attach("modes", ModesOptions(keep=keep))
+        job.attach("participation", ParticipationOptions())
+        return job.payloads()
+
+    return of
+
+
+def test_for_checking_where_nothing_holds_it_back(payloads):
+    found = payloads()
+    assert held_back(found) == ()
+    assert status_of(found) == "FOR CHECKING"
+
+
+def test_a_draft_until_it_is_signed(payloads):
+    found = payloads(('initials = "OQ"\ndate = 2026-03-09', 'initials = "OQ"'))
+    assert held_back(found) == ("not signed by who prepared it: people.prepared has no date",)
+    assert status_of(found) == "DRAFT"
+
+
+def test_a_draft_until_its_cautions_are_answered(payloads):
+    unanswered = payloads(keep=1)
+    (reason,) = held_back(unanswered)
+    assert reason == "cautions that need an answer: target-not-reached-x, target-not-reached-y"
+    assert status_of(unanswered) == "DRAFT"
+
+
+def test_an_answer_lifts_a_caution_and_a_blank_one_does_not(payloads):
+    answers = '[answers]\ntarget-not-reached-x = "a first look"\ntarget-not-reached-y = "{}"'
+    blank = payloads(("[answers]", answers.format(" ")), keep=1)
+    assert held_back(blank) == ("cautions that need an answer: target-not-reached-y",)
+
+
+def test_answers_to_all_make_it_for_checking(payloads):
+    answers = '[answers]\ntarget-not-reached-x = "a first look"\ntarget-not-reached-y = "likewise"'
+    assert status_of(payloads(("[answers]", answers), keep=1)) == "FOR CHECKING"
+
+
+def test_tables_without_origin_and_sets_without_ground_ask_for_an_answer(payloads):
+    found = payloads(('source = "take-off"', 'source = " "'), ('ground = "cracked beams"', 'ground = ""'))
+    assert held_back(found) == ("cautions that need an answer: no-origin-storeys.csv, no-ground-cracked",)
+
+
+def test_evidence_beyond_its_limit_makes_a_draft(payloads):
+    found = payloads()
+    found["modes"]["evidence"][2] |= {"within": False}
+    what = found["modes"]["evidence"][2]["what"]
+    assert held_back(found) == (f"evidence beyond its limit: {what}",)
+    assert status_of(found) == "DRAFT"

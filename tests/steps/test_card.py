@@ -1,0 +1,66 @@
+"""The job card step: cautions that always hold, and what the card leaves open."""
+
+from __future__ import annotations
+
+import pytest
+
+from calcsheet.steps.card import GENERAL, run
+
+
+def raised(card) -> list[str]:
+    """Keys of the cautions beyond the general ones."""
+    general = [c.key for c in GENERAL]
+    found = [c.key for c in run(card).cautions]
+    assert found[: len(general)] == general
+    return found[len(general) :]
+
+
+def test_a_card_that_leaves_nothing_open(card_with):
+    assert raised(card_with()) == []
+    assert run(card_with()).result.to_confirm == ()
+
+
+def test_general_cautions_ask_for_no_answer_and_hold_no_numbers():
+    assert len({c.key for c in GENERAL}) == len(GENERAL)
+    assert not any(c.answer or c.numbers for c in GENERAL)
+    assert all(c.text.format() == c.text for c in GENERAL)
+
+
+def test_an_assumption_to_be_confirmed(card_with):
+    text = 'text = "Fixed at the raft"'
+    card = card_with((text, f'{text}\nconfirm_by = "the {{ground}} engineer"'))
+    assert raised(card) == ["to-confirm-1"]
+    assert run(card).result.to_confirm == (1,)
+    assert "the {ground} engineer" in run(card).cautions[-1].text.format()
+
+
+@pytest.mark.parametrize(
+    "origin", ["", '"storeys.csv" = { source = " ", revision = "B" }', '"masses.csv" = { source = "a" }']
+)
+def test_a_table_of_unstated_origin_asks_for_an_answer(card_with, origin):
+    card = card_with(('"storeys.csv" = { source = "mass take-off" }', origin))
+    assert raised(card) == ["no-origin-storeys.csv"]
+    assert run(card).cautions[-1].answer
+
+
+def test_a_matrix_of_unstated_origin(card_with):
+    kind = 'kind = "storey chain"'
+    card = card_with((kind, 'kind = "stiffness matrix"\nx = "k_x.csv"\ny = "k_y.csv"'))
+    assert raised(card) == ["no-origin-k_x.csv", "no-origin-k_y.csv"]
+
+
+def test_a_stiffness_set_without_a_ground_asks_for_an_answer(card_with):
+    card = card_with(('ground = "sections as drawn"', 'ground = " "'))
+    assert raised(card) == ["no-ground-gross"]
+    assert run(card).cautions[-1].answer
+
+
+def test_braces_in_a_set_name_are_words(card_with):
+    card = card_with(
+        ("[stiffness.gross]", '[stiffness."{0}"]'),
+        ('ground = "sections as drawn"', 'ground = ""'),
+        ('forces = "gross"', 'forces = "{0}"'),
+        ('drifts = "gross"', 'drifts = "{0}"'),
+    )
+    assert raised(card) == ["no-ground-{0}"]
+    assert 'set "{0}"' in run(card).cautions[-1].text.format()

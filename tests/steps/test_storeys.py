@@ -1,0 +1,78 @@
+"""The storeys step: sums, jumps that look like a slip of unit, matrices that are not symmetric."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+from calcsheet.steps.storeys import run
+
+
+def keys(storeys) -> list[str]:
+    return [c.key for c in run(storeys).cautions]
+
+
+def test_sums(building):
+    found = run(building()).result
+    assert found.mass == pytest.approx(1792.0)
+    assert found.mass_below == 520.0
+    assert found.height == pytest.approx(17.9)
+
+
+def test_a_usual_building_raises_nothing(building):
+    assert keys(building()) == []
+
+
+@pytest.mark.parametrize(("factor", "raised"), [(19.0, False), (20.5, True), (1 / 20.5, True), (1 / 19.0, False)])
+def test_a_jump_of_mass(building, factor, raised):
+    found = run(building(mass=[400.0, 400.0, 400.0, 400.0, 400.0 * factor])).cautions
+    assert [c.key for c in found] == (["jump-mass-Roof"] if raised else [])
+    for caution in found:
+        assert [n.value for n in caution.numbers] == [400.0 * factor, 400.0]
+        assert [n.at for n in caution.numbers] == ["inputs/mass/4", "inputs/mass/3"]
+
+
+def test_a_jump_of_stiffness_in_one_direction(building):
+    found = run(building(y=[4.7e5, 4.5e5, 4.1e2, 4.5e5, 4.4e5])).cautions
+    assert [c.key for c in found] == ["jump-stiffness-y-(gross)-3", "jump-stiffness-y-(gross)-4"]
+    assert "stiffness y (gross)".casefold() in found[0].text.casefold()
+    assert found[0].numbers[0].at == "inputs/stiffness/0/lateral/y/storey/2"
+
+
+def test_numbers_stand_where_they_say(building, steps_of):
+    payload = steps_of(building(y=[4.7e5, 4.5e5, 4.1e2, 4.5e5, 4.4e5]))["storeys"]
+    numbers = [n for c in payload["cautions"] for n in c["numbers"]]
+    assert len(numbers) == 4
+    for number in numbers:
+        found = payload
+        for step in number["at"].split("/"):
+            found = found[int(step) if isinstance(found, list) else step]
+        assert found == number["value"]
+
+
+@pytest.mark.parametrize("kind", [StiffnessMatrix, FlexibilityMatrix])
+@pytest.mark.parametrize(("slip", "raised"), [(0.0, False), (5e-4, True)])
+def test_an_unsymmetric_matrix(building, kind, slip, raised):
+    matrix = np.array([[4e5, -2e5], [-2e5 * (1.0 + slip), 2e5]])
+    given = building(level="12", height=[3.5, 3.5], mass=[200.0, 150.0], lateral={"x": kind(matrix)})
+    found = run(given).cautions
+    assert [c.key for c in found] == (["unsymmetric-gross-x"] if raised else [])
+    for caution in found:
+        assert "2.5e-04" in caution.text
+        assert kind.kind in caution.text
+
+
+def test_braces_in_names_are_words(building):
+    level = ("1", "{0}", "{", "4", "Roof")
+    found = run(building(level=level, name="cut {1}", y=[4.7e5, 4.5e5, 4.1e2, 4.5e5, 4.4e5])).cautions
+    assert len(found) == 2
+    text = found[0].text.format("410", "450 000")
+    assert 'level "{"' in text
+    assert 'level "{0}"' in text
+    assert "(cut {1})" in text
+    matrix = np.array([[4e5, -2e5], [-2.001e5, 2e5]])
+    given = building(
+        level="12", height=[3.5, 3.5], mass=[200.0, 150.0], lateral={"x": StiffnessMatrix(matrix)}, name="{gross}"
+    )
+    assert "({gross})" in run(given).cautions[0].text.format()
