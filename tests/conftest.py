@@ -224,7 +224,9 @@ class Shell:
         hook.write_output_prompt = hook.finish_displayhook = lambda: None
         hook.write_format_data = self.result
 
-    def publish(self, data: Any, metadata: Any = None, *, transient: Any = None, update: bool = False, **_: Any) -> None:
+    def publish(
+        self, data: Any, metadata: Any = None, *, transient: Any = None, update: bool = False, **_: Any
+    ) -> None:
         self.published += 1
         name = (transient or {}).get("display_id")
         if update:

@@ -116,7 +116,9 @@ def test_a_pdf_that_no_engine_can_make(run, folder, monkeypatch):
     assert not (folder / "issued").exists()
     result = run("issue", folder)  # not asked for: a note, and the rest is made
     assert result.exit_code == 0
-    assert result.stderr == 'Note: no PDF was made: PDF engine: got "Gutenberg"; must be one of WeasyPrint, PlutoPrint.\n'
+    assert (
+        result.stderr == 'Note: no PDF was made: PDF engine: got "Gutenberg"; must be one of WeasyPrint, PlutoPrint.\n'
+    )
     assert sorted(p.suffix for p in (folder / "issued" / "A").iterdir()) == [".html", ".json"]
 
 
@@ -132,7 +134,10 @@ def test_no_engine_that_loads(run, folder, monkeypatch):
 @pytest.mark.parametrize(
     ("spoil", "sentence"),
     [
-        (lambda f: (f / "calc.ipynb").unlink(), "no calc.ipynb in {f}; `calcsheet new` makes a job folder that has one"),
+        (
+            lambda f: (f / "calc.ipynb").unlink(),
+            "no calc.ipynb in {f}; `calcsheet new` makes a job folder that has one",
+        ),
         (lambda f: (f / "calc.ipynb").write_text("no json"), "calc.ipynb is no notebook that can be read: "),
         (lambda f: (f / "job.toml").write_text("[job"), "job.toml, line 1: "),
         (lambda f: (f / "job.toml").unlink(), "no job.toml in {f}; `calcsheet new {f}` makes one"),
@@ -196,4 +201,9 @@ def test_the_demo_is_copied_issued_and_shown_where(run, quick_kernel, tmp_path, 
     assert result.exit_code == 0, result.output
     assert result.stdout.startswith("Issued, status FOR CHECKING:\n")
     assert "Open the job:  jupyter lab calcsheet-demo/calc.ipynb" in result.stdout.replace("\\", "/")
-    assert {p.name for p in (tmp_path / "calcsheet-demo").iterdir()} == {"calc.ipynb", "issued", "job.toml", "storeys.csv"}
+    assert {p.name for p in (tmp_path / "calcsheet-demo").iterdir()} == {
+        "calc.ipynb",
+        "issued",
+        "job.toml",
+        "storeys.csv",
+    }

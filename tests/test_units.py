@@ -28,6 +28,7 @@ CORE = {
     "share": "",
     "ratio": "",
     "coefficient": "",
+    "correlation": "",
     "modal energy": "1/s**2",
     "mass times length squared": "tonne*m**2",
     "participation": "tonne**0.5",

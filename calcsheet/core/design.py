@@ -30,6 +30,12 @@ class Drifts(Frozen):
         Second-order effects; None where the edition has no check or no gravity load is given.
     second_order_note : str
         Why there is none, or empty.
+    gravity : (n,) array
+        Gravity load at and above each storey, zero where none is given [kN].
+    shear : (n,) array
+        Combined shear of each storey at the force level, unscaled [kN].
+    storey_height : (n,) array
+        Height of each storey [m].
     design : (n,) array
         Design drift of each storey [m].
     limit : (n,) array
@@ -46,6 +52,8 @@ class Drifts(Frozen):
         Displacement to be kept clear of a neighbour that does not move [m].
     separation_clause : str
         Its source.
+    plain : bool
+        Whether the worst design drift is the elastic one times the factor: not capped, scaled or amplified.
     stiffness : (n,) array
         Storey shear over storey drift, combined [kN/m].
     screens : tuple of Screen
@@ -57,6 +65,9 @@ class Drifts(Frozen):
     factor: Factor
     second_order: SecondOrder | None
     second_order_note: str
+    gravity: Array = field(metadata=agrees(rtol=1e-9))
+    shear: Array = field(metadata=PEAK)
+    storey_height: Array = field(metadata=agrees(rtol=1e-9))
     design: Array = field(metadata=PEAK)
     limit: Array = field(metadata=PEAK)
     share: Array = field(metadata=agrees(rtol=1e-6))
@@ -65,6 +76,7 @@ class Drifts(Frozen):
     displacement: Array = field(metadata=PEAK)
     separation: float | None
     separation_clause: str
+    plain: bool
     stiffness: Array = field(metadata=agrees(rtol=1e-6))
     screens: tuple[Screen, ...]
 
@@ -110,6 +122,7 @@ def drifts(
     design = first * scaling.drifts * amplified
     displacement = top * scaling.drifts
     share = design / limit
+    worst = int(np.argmax(share))
     separation, clause = edition.separation(float(displacement[-1]))
     with np.errstate(divide="ignore", invalid="ignore"):
         stiffness = found.shear / found.drift
@@ -121,14 +134,18 @@ def drifts(
         factor=factor,
         second_order=second,
         second_order_note=note,
+        gravity=np.zeros(first.size) if gravity is None else gravity,
+        shear=found.shear,
+        storey_height=facts.storey_height,
         design=design,
         limit=limit,
         share=share,
-        worst=int(np.argmax(share)),
+        worst=worst,
         limit_relation=relation,
         displacement=displacement,
         separation=separation,
         separation_clause=clause,
+        plain=bool(np.isclose(design[worst], factor.value * found.drift[worst], rtol=1e-12)),
         stiffness=stiffness,
         screens=edition.irregularities(facts, stiffness, first),
     )

@@ -71,7 +71,14 @@ def combine(found: Peaks, correlated: Array, rule: Rule) -> Combined:
     return Combined(*(combined(q, correlated, rule) for q in quantities))
 
 
-def facts_of(model: Model, period: float, direction: str) -> Facts:
+def facts_of(
+    model: Model,
+    period: float,
+    direction: str,
+    *,
+    share_of_three: float | None = None,
+    other_period: float | None = None,
+) -> Facts:
     """What the checklist may ask about a model in one direction.
 
     Parameters
@@ -82,6 +89,10 @@ def facts_of(model: Model, period: float, direction: str) -> Facts:
         First period [s].
     direction : str
         "x" or "y".
+    share_of_three : float, optional
+        Share of the mass in the first three modes.
+    other_period : float, optional
+        First period in the other direction [s].
     """
     return Facts(
         direction=direction,
@@ -89,6 +100,8 @@ def facts_of(model: Model, period: float, direction: str) -> Facts:
         height=model.height,
         storey_height=np.diff(model.height, prepend=0.0),
         weight=model.mass * GRAVITY,
+        share_of_three=share_of_three,
+        other_period=other_period,
     )
 
 

@@ -31,6 +31,8 @@ class Totals(Frozen):
         Mass at and above each level [t].
     weight_of_level : (n,) array
         Weight of each level [kN].
+    weight_per_area : (n,) array or None
+        Weight over floor area of each level [kN/m²]; None where no area is given.
     """
 
     mass: float = field(metadata=agrees(rtol=1e-12))
@@ -39,6 +41,7 @@ class Totals(Frozen):
     height: float = field(metadata=agrees(rtol=1e-12))
     mass_above: Array = field(metadata=agrees(rtol=1e-12))
     weight_of_level: Array = field(metadata=agrees(rtol=1e-12))
+    weight_per_area: Array | None = field(metadata=agrees(rtol=1e-12))
 
 
 def totals(storeys: Storeys) -> Totals:
@@ -61,4 +64,5 @@ def totals(storeys: Storeys) -> Totals:
         height=float(storeys.elevation[-1] - storeys.base_elevation),
         mass_above=above,
         weight_of_level=storeys.mass * GRAVITY,
+        weight_per_area=None if storeys.area is None else storeys.mass * GRAVITY / storeys.area,
     )

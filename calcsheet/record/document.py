@@ -15,13 +15,13 @@ from calcsheet import __version__
 from calcsheet.record.collect import Content, Own, Shown, Words
 from calcsheet.record.equations import EquationError, to_mathml, to_svg
 from calcsheet.record.errors import RecordError
+from calcsheet.record.headline import brief, in_full
 from calcsheet.record.markdown import to_html
 from calcsheet.record.own import own_cell
 from calcsheet.record.page import Cover, Fact, Page, Person, Section, Target
-from calcsheet.record.status import FOR_CHECKING, held_back, status_of
+from calcsheet.record.status import FOR_CHECKING, status_of
 from calcsheet.render.card import assumptions, origins
 from calcsheet.render.figure import Drawing
-from calcsheet.render.numbers import number
 from calcsheet.render.registry import VIEWS
 from calcsheet.render.table import facts
 from calcsheet.render.view import system_of
@@ -89,7 +89,7 @@ def page_of(content: Content, target: Target, engine: str = "") -> Page:
         reason=job["reason"],
         purpose=job["purpose"],
         people=tuple(_person(role, card["people"][key]) for key, role in ROLES),
-        headline=tuple(_headline(payloads)),
+        headline=tuple(Fact(label, html) for label, html in brief(payloads)),
         programme=PROGRAMME,
         pdf_engine=engine,
         fingerprint=f"inputs {record['fingerprints']['inputs'][:12]}, results {record['fingerprints']['results'][:12]}",
@@ -98,7 +98,7 @@ def page_of(content: Content, target: Target, engine: str = "") -> Page:
     return Page(
         cover=cover,
         draft=record["status"] != FOR_CHECKING,
-        headline=_headline_section(payloads),
+        headline=in_full(payloads),
         sections=(*_body(content, math), *_back(content, record)),
         data=json.dumps(record, ensure_ascii=False),
     )
@@ -112,58 +112,6 @@ def _person(role: str, who: Mapping[str, Any]) -> Person:
     date = datetime.date.fromisoformat(who["date"]) if who["date"] else None
     signed = date if role == ROLES[0][1] else None  # who checks and approves signs the issued record, not the job card
     return Person(role, who["name"], who["initials"], held, signed)
-
-
-def _headline(payloads: Payloads) -> Iterator[Fact]:
-    """Results in brief: totals, first periods, shares."""
-    system, storeys = system_of(payloads), payloads["storeys"]["result"]
-    weight = number(storeys["weight"], "weight", system, "/storeys/result/weight")
-    mass = number(storeys["mass"], "mass", system, "/storeys/result/mass")
-    yield Fact("Weight, mass above the effective base", f"{weight}, {mass}")
-    for key, payload in payloads.items():
-        if payload["kind"] == "modes":
-            named = "" if key == "modes" else f" ({key})"
-            for i, model in enumerate(payload["result"]["models"]):
-                at = f"/{key}/result/models/{i}/modes"
-                period = number(model["modes"]["period"][0], "period", system, f"{at}/period/0")
-                frequency = number(model["modes"]["frequency"][0], "frequency", system, f"{at}/frequency/0")
-                yield Fact(f"First period in {model['name']}{named}", f"T₁ = {period}, f₁ = {frequency}")
-        if payload["kind"] == "participation":
-            for i, part in enumerate(payload["result"]["directions"]):
-                yield Fact(
-                    f"Modes for the target share in {part['direction']}",
-                    _reached(part, f"/{key}/result/directions/{i}", system),
-                )
-
-
-def _reached(part: Mapping[str, Any], at: str, system: str) -> str:
-    target = number(part["target"], "share", system, f"{at}/target")
-    if part["needed"] is None:
-        last = len(part["cumulative"]) - 1
-        reached = number(part["cumulative"][last], "share", system, f"{at}/cumulative/{last}")
-        return f'<span class="exceeds">not reached</span>: {reached} of {target}'
-    reached = number(part["cumulative"][part["needed"] - 1], "share", system, f"{at}/cumulative/{part['needed'] - 1}")
-    return f'<data value="{at}/needed">{part["needed"]}</data>, with {reached} (target {target})'
-
-
-def _headline_section(payloads: Payloads) -> str:
-    """What the first page says, and what stands between this record and its use."""
-    figures = [e for p in payloads.values() for e in p["evidence"]]
-    kept = sum(e["within"] for e in figures)
-    verdict = "passes" if kept == len(figures) else "exceeds"
-    asked = sum(c["answer"] for p in payloads.values() for c in p["cautions"])
-    raised = sum(len(p["cautions"]) for p in payloads.values())
-    rows = [(fact.label, fact.html) for fact in _headline(payloads)]
-    rows.append(
-        ("Evidence", f'{kept} of {len(figures)} figures within their limits: <span class="{verdict}">{verdict}</span>')
-    )
-    rows.append(("Cautions", f'<a href="#cautions">{raised}</a>, of which {asked} ask for an answer'))
-    rows.append(("Torsion", '<span class="not-assessed">not assessed</span>: x and y are planar models'))
-    rows.append(("Design demand, drift, second order", '<span class="not-assessed">not assessed</span> in this record'))
-    reasons = held_back(payloads)
-    if reasons:
-        rows.append(("Draft because of", "; ".join(escape(r) for r in reasons)))
-    return facts(rows)
 
 
 # ---- the notebook in its own order -----------------------------------------------------------------------------------
@@ -256,7 +204,7 @@ def _inputs(payloads: Payloads) -> str:
     parts.append(f"<h3>Origin of the tables</h3>{origins(payloads['card']['inputs'])}")
     rows = []
     for key, payload in payloads.items():
-        if key not in ("card", "storeys"):
+        if payload["inputs"] and key not in ("card", "storeys", "basis"):
             chosen = ", ".join(f"{k} {'as the job' if v is None else v}" for k, v in payload["inputs"].items())
             rows.append((f"{STEPS[payload['kind']].title}, step \u201c{key}\u201d", escape(chosen)))
     parts.append(f"<h3>Options of the steps</h3>{facts(rows)}")

@@ -9,9 +9,10 @@ from typing import Any
 import numpy as np
 
 from calcsheet.render.figure import Drawing, blank, quiet, styled, svg
-from calcsheet.render.numbers import number
+from calcsheet.render.numbers import number, text
 from calcsheet.render.steps_plot import stepped, straight
-from calcsheet.render.table import facts, table, values, words
+from calcsheet.render.symbols import symbols
+from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
 from calcsheet.steps.step import Payload
 from calcsheet.units import display
@@ -27,7 +28,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     storeys = payloads["storeys"]["inputs"]
     basis = payloads[payload["needs"]["basis"]]["result"]
     directions = payload["result"]["directions"]
-    html = [f"<p>Force level: {escape(basis['level'])}; second-order amplification is in where θ asks for it.</p>"]
+    html = [f"<p>Force level: {symbols(basis['level'])}; second-order amplification is in where θ asks for it.</p>"]
     for i, item in enumerate(directions):
         html.append(_table(item, storeys["level"], system, f"/{key}/result/directions/{i}"))
     html.append(f"<p>{escape(EQUIVALENT)}</p>")
@@ -82,24 +83,73 @@ def compare(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any
         if static is not None:
             rows += [
                 ("static base shear", _shear(static["shear"], item, system, f"{at}/static/shear")),
-                ("what governs it", f"{escape(static['governing'])} ({escape(static['clause'])})"),
+                ("what governs it", f"{symbols(static['governing'])} ({symbols(static['clause'])})"),
                 (
                     "approximate period",
                     number(static["approximate_period"], "period", system, f"{at}/static/approximate_period"),
                 ),
                 ("period used", number(static["period"], "period", system, f"{at}/static/period")),
-                ("static forces over the height", escape(item["static_clause"])),
+                ("static forces over the height", symbols(item["static_clause"])),
             ]
         scaling = item["scaling"]
         rows += [
             ("design base shear", _shear(item["design_base_shear"], item, system, f"{at}/design_base_shear")),
             ("scale of forces", number(scaling["forces"], "ratio", system, f"{at}/scaling/forces")),
             ("scale of drifts", number(scaling["drifts"], "ratio", system, f"{at}/scaling/drifts")),
-            ("why", f"{escape(scaling['text'])} ({escape(scaling['clause'])})"),
+            ("why", f"{symbols(scaling['text'])} ({symbols(scaling['clause'])})"),
             ("overturning at the base over weight", number(item["overturning"], "length", system, f"{at}/overturning")),
         ]
         html.append(f"<h4>Direction {escape(item['direction'])}</h4>{facts(rows)}")
+    html.append(_second_model(payloads, payloads[key], key, system))
     return Rendered("".join(html))
+
+
+def _second_model(payloads: Mapping[str, Payload], payload: Payload, key: str, system: str) -> str:
+    """Results of the engineer's second model beside these."""
+    basis, demand = payload["needs"]["basis"], payload["needs"]["demand"]
+    given = payloads[basis]["inputs"]["second_model"]
+    if not given:
+        return ""
+    rows = []
+    for i, other in enumerate(given):
+        value, quantity, at = _here(other, payloads[demand], demand, payload, key, payloads["storeys"])
+        difference = 100.0 * (other["value"] / value - 1.0)
+        rows.append(
+            (
+                f"{other['quantity']} {other['direction']}".strip(),
+                number(value, quantity, system, at),
+                number(other["value"], quantity, system, f"/{basis}/inputs/second_model/{i}/value"),
+                f"{text(difference, 1)} %",
+                escape(other["origin"]),
+            )
+        )
+    names, here, there, difference, origin = zip(*rows, strict=True)
+    columns = (
+        words("quantity", names),
+        Column("here", here),
+        Column("second model", there),
+        Column("difference", difference),
+        Column("origin", origin, numeric=False),
+    )
+    return table(columns, kind="values", caption="Second model")
+
+
+def _here(
+    other: Mapping[str, Any], demand: Payload, demand_key: str, actions: Payload, key: str, storeys: Payload
+) -> tuple[float, str, str]:
+    """This calculation's value of a quantity of the second model, its quantity in the unit table, its place."""
+    if other["quantity"] == "weight":
+        return storeys["result"]["weight"], "weight", "/storeys/result/weight"
+    names = [d["direction"] for d in demand["result"]["directions"]]
+    i = names.index(other["direction"])
+    if other["quantity"] == "period":
+        return (
+            demand["result"]["directions"][i]["facts"]["period"],
+            "period",
+            f"/{demand_key}/result/directions/{i}/facts/period",
+        )
+    shear = actions["result"]["directions"][i]["design_base_shear"]
+    return shear, "force", f"/{key}/result/directions/{i}/design_base_shear"
 
 
 def _shear(value: float, item: Mapping[str, Any], system: str, at: str) -> str:

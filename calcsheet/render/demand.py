@@ -2,16 +2,20 @@
 
 from __future__ import annotations
 
+import dataclasses
 from collections.abc import Mapping
 from html import escape
 from typing import Any
 
 import numpy as np
 
+from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.render.figure import GREY, LINES, Drawing, blank, quiet, styled, svg
 from calcsheet.render.numbers import number
-from calcsheet.render.table import Column, facts, table, values
+from calcsheet.render.symbols import symbols
+from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
+from calcsheet.render.words import outcome
 from calcsheet.steps.step import Payload
 from calcsheet.units import display
 
@@ -40,45 +44,50 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
 
 
 def _edition(basis: Mapping[str, Any], directions: list[dict[str, Any]], key: str) -> str:
-    said = basis["result"]
+    said, given = basis["result"], basis["inputs"]
     factor = said["importance"]
+    importance = number(factor["value"], "ratio", "SI", f"/{key}/result/importance/value")
     rows = [
         ("edition", escape(said["edition"])),
-        ("force level", escape(said["level"])),
-        (
-            f"importance, {factor['symbol']}",
-            f"{number(factor['value'], 'ratio', 'SI', f'/{key}/result/importance/value')} ({escape(factor['clause'])})",
-        ),
-        ("combination", f"{escape(basis['inputs']['combination'])} ({escape(said['combination_clause'])})"),
-        ("modes asked for", f"{escape(said['modes']['text'])} ({escape(said['modes']['clause'])})"),
+        ("force level", symbols(said["level"])),
+        ("importance factor", f"{symbols(factor['symbol'])} = {importance} ({symbols(factor['clause'])})"),
+        ("combination", f"{escape(given['combination'])} ({symbols(said['combination_clause'])})"),
+        ("modes asked for", answered(said["modes"])),
     ]
-    for item in directions:
-        answer = item["permitted"]
-        rows.append(
-            (
-                f"is this analysis permitted? {item['direction']}",
-                f"{escape(answer['text'])} ({escape(answer['clause'])})",
-            )
-        )
-    parameters = basis["inputs"]["edition"]
+    rows += [(f"is this analysis permitted? {d['direction']}", answered(d["permitted"])) for d in directions]
+    rows += [(f"accidental torsion, {d['direction']}", answered(d["torsion"])) for d in directions]
     rows += [
-        (name.replace("_", " "), escape(_plain(value)))
-        for name, value in parameters.items()
-        if name not in ("kind", "points") and value not in (None, [], "")
+        (f"mass basis: {m['load']}", f"{100 * m['share']:g} % ({escape(m['clause'] or 'no clause given')})")
+        for m in given["mass_basis"]
     ]
-    for share in basis["inputs"]["mass_basis"]:
-        rows.append(
-            (
-                "mass basis",
-                f"{escape(share['load'])}: {100 * share['share']:g} % ({escape(share['clause'] or 'no clause given')})",
-            )
-        )
-    return facts(rows)
+    return facts(rows) + _parameters(given["edition"])
+
+
+def answered(answer: Mapping[str, Any]) -> str:
+    """HTML of an answer of the checklist, with its outcome where that is not plainly positive."""
+    word = "" if answer["verdict"] == "passes" else f"{outcome(answer['verdict'])}: "
+    return f"{word}{symbols(answer['text'])} ({symbols(answer['clause'])})"
+
+
+def _parameters(given: Mapping[str, Any]) -> str:
+    """The edition's parameters as given in the job, under the words that the edition has for them."""
+    edition = EDITIONS[given["kind"]]
+    named = {f.name: f.metadata["key"]["help"] for f in dataclasses.fields(edition) if "key" in f.metadata}  # type: ignore[arg-type]
+    rows = [(name, value) for name, value in given.items() if name in named and value not in (None, [], "")]
+    return table(
+        (
+            Column("parameter", tuple(symbols(named[name]) for name, _ in rows), numeric=False),
+            words("key in the job card", [f"basis.{name}" for name, _ in rows]),
+            words("value", [_plain(value) for _, value in rows]),
+        ),
+        kind="words",
+        caption=f"Parameters of {edition.name}",
+    )
 
 
 def _plain(value: Any) -> str:
     if isinstance(value, list):
-        return ", ".join(_plain(v) for v in value)
+        return "; ".join(", ".join(map(_plain, v)) if isinstance(v, list) else _plain(v) for v in value)
     return f"{value:g}" if isinstance(value, int | float) and not isinstance(value, bool) else str(value)
 
 

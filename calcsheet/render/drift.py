@@ -11,8 +11,10 @@ import numpy as np
 from calcsheet.render.figure import RUST, Drawing, blank, quiet, styled, svg
 from calcsheet.render.numbers import number
 from calcsheet.render.steps_plot import stepped
+from calcsheet.render.symbols import symbols
 from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
+from calcsheet.render.words import outcome
 from calcsheet.steps.step import Payload
 from calcsheet.units import display
 
@@ -55,8 +57,9 @@ def _words(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> 
             f'below level {escape(levels[worst])}: {share} of its limit, <span class="{verdict}">{verdict}</span>',
         ),
         (
-            f"design drift over elastic, {factor['symbol']}",
-            f"{number(factor['value'], 'ratio', system, f'{at}/factor/value')} ({escape(factor['clause'])})",
+            "design drift over elastic",
+            f"{symbols(factor['symbol'])} = {number(factor['value'], 'ratio', system, f'{at}/factor/value')} "
+            f"({symbols(factor['clause'])})",
         ),
     ]
     if second is None:
@@ -70,32 +73,32 @@ def _words(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> 
         rows.append(
             (
                 "second order",
-                f'θ up to {theta}, limit {limit}: <span class="{second["verdict"].replace(" ", "-")}">{second["verdict"]}</span>, '
-                f"{escape(second['text'])} ({escape(second['clause'])})",
+                f"θ up to {theta}, limit {limit}: {outcome(second['verdict'])}, "
+                f"{symbols(second['text'])} ({symbols(second['clause'])})",
             )
         )
     if item["separation"] is not None:
         clear = number(item["separation"], "displacement", system, f"{at}/separation")
         rows.append(
-            ("to keep clear of a neighbour that does not move", f"{clear} ({escape(item['separation_clause'])})")
+            ("to keep clear of a neighbour that does not move", f"{clear} ({symbols(item['separation_clause'])})")
         )
     else:
         rows.append(
-            ("separation", f'<span class="not-assessed">not assessed</span>: {escape(item["separation_clause"])}')
+            ("separation", f'<span class="not-assessed">not assessed</span>: {symbols(item["separation_clause"])}')
         )
     return facts(rows)
 
 
 def _screens(item: Mapping[str, Any]) -> str:
     screens = item["screens"]
-    verdicts = tuple(f'<span class="{s["verdict"].replace(" ", "-")}">{s["verdict"]}</span>' for s in screens)
+    verdicts = tuple(outcome(s["verdict"]) for s in screens)
     return table(
         (
             words("irregularity", [s["name"] for s in screens]),
             Column("outcome", verdicts, numeric=False),
-            words("what was found, or is missing", [s["text"] for s in screens]),
+            Column("what was found, or is missing", tuple(symbols(s["text"]) for s in screens), numeric=False),
             words("consequence where it exceeds", [s["consequence"] or "\u2013" for s in screens]),
-            words("clause", [s["clause"] for s in screens]),
+            Column("clause", tuple(symbols(s["clause"]) for s in screens), numeric=False),
         ),
         kind="words",
         caption=f"Irregularities in {item['direction']}",

@@ -33,7 +33,7 @@ def stepped(ax: Any, elevation: ArrayLike, value: ArrayLike, name: str, line: in
     ax.annotate(
         name,
         (x[0], y[0]),
-        xytext=(-3, 3 + 10 * line),
+        xytext=(-5, 4 + 10 * line),
         textcoords="offset points",
         ha="right",
         fontsize=8,
@@ -48,7 +48,7 @@ def straight(ax: Any, elevation: ArrayLike, value: ArrayLike, name: str, line: i
     ax.annotate(
         name,
         (np.asarray(value)[0], np.asarray(elevation)[0]),
-        xytext=(-3, 3 + 10 * line),
+        xytext=(-34, 10 + 10 * line),
         textcoords="offset points",
         ha="right",
         fontsize=8,

@@ -39,6 +39,13 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         *_masses(given, sums, system, key, roof_first),
         values("mass at and above", sums["mass_above"], "mass", system, f"/{key}/result/mass_above", order=roof_first),
     ]
+    for name, field, quantity in (("gravity load", "gravity", "force"), ("floor area", "area", "area")):
+        if given[field] is not None:
+            at = f"/{key}/inputs/{field}"
+            columns.append(values(name, given[field], quantity, system, at, order=roof_first, as_given=True))
+    if sums["weight_per_area"] is not None:
+        at = f"/{key}/result/weight_per_area"
+        columns.append(values("weight per area", sums["weight_per_area"], "pressure", system, at, order=roof_first))
     matrices = []
     for i, named in enumerate(given["stiffness"]):
         for direction, lateral in named["lateral"].items():

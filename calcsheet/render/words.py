@@ -7,6 +7,7 @@ from html import escape
 from typing import Any
 
 from calcsheet.render.numbers import exponent, number
+from calcsheet.render.symbols import set_symbols, symbols
 from calcsheet.render.table import Column, table, words
 
 Located = tuple[str, dict[str, Any]]
@@ -27,15 +28,15 @@ def worked(lines: Iterable[Located], system: str) -> str:
     )
     return table(
         (
-            words("quantity", [line["quantity"] for _, line in rows]),
-            words("relation", [line["relation"] for _, line in rows]),
+            Column("quantity", tuple(symbols(line["quantity"]) for _, line in rows), numeric=False),
+            Column("relation", tuple(symbols(line["relation"]) for _, line in rows), numeric=False),
             Column(
                 "with values",
-                tuple(filled(line["substitution"], line["numbers"], system, at) for at, line in rows),
+                tuple(set_symbols(filled(line["substitution"], line["numbers"], system, at)) for at, line in rows),
                 numeric=False,
             ),
             Column("result", tuple(results)),
-            words("reference", [line["reference"] for _, line in rows]),
+            Column("reference", tuple(symbols(line["reference"]) for _, line in rows), numeric=False),
         ),
         kind="lines",
     )
@@ -58,6 +59,11 @@ def evidence(found: Iterable[Located]) -> str:
         kind="evidence",
         marked=[i for i, (_, e) in enumerate(rows) if not e["within"]],
     )
+
+
+def outcome(word: str) -> str:
+    """HTML of one of the four outcomes: passes, exceeds, judgement, not assessed."""
+    return f'<span class="{word.replace(" ", "-")}">{word}</span>'
 
 
 def cautions(raised: Iterable[Located], answers: Mapping[str, str], system: str) -> str:

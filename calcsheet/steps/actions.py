@@ -63,6 +63,14 @@ def _lines(item: Actions, at: str) -> list[Line]:
             item.scaling.clause,
         )
     )  # fmt: skip
+    top = item.shear.size - 1
+    lines.append(
+        Line(
+            f"Equivalent lateral force at the top, {d}", "shear of the top storey", "{0}",
+            (Number(float(item.shear[top]), "force", f"{at}/shear/{top}"),),
+            Number(float(item.equivalent[top]), "force", f"{at}/equivalent/{top}"), "statics",
+        )
+    )  # fmt: skip
     moment = Number(float(item.moment[0]), "moment", f"{at}/moment/0")
     arm = Number(item.overturning, "length", f"{at}/overturning")
     lines.append(Line(f"Overturning over weight, {d}", "M / W", "{0} / {1}", (moment, weight), arm, "statics"))

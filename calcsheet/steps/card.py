@@ -34,8 +34,8 @@ GENERAL = (
     ),
     Caution(
         "left-out",
-        "Left out here: design demand and its combination, torsion, second-order effects, vertical motion, parts and "
-        "components, diaphragm forces, foundation uplift, wind.",
+        "Left out: load combinations, torsion of the plan, vertical motion, parts and components, design of diaphragms, "
+        "foundation uplift, wind.",
     ),
 )
 
@@ -56,6 +56,8 @@ class CardResult:
 def run(card: Card) -> Outcome:
     waiting = tuple(i for i, a in enumerate(card.assumptions, 1) if a.confirm_by.strip())
     cautions = list(GENERAL)
+    if card.basis is None:
+        cautions.append(Caution("no-demand", "Design demand, drift and second-order effects are not in this record."))
     for i in waiting:
         assumption = card.assumptions[i - 1]
         cautions.append(

@@ -86,7 +86,14 @@ def run(options: DemandOptions, storeys: Done, modes: Done, parts: Done, basis: 
     for model in models_of(storeys.inputs, modes.result.stiffness):
         for direction in model.direction:
             part = participations[direction]
-            facts = facts_of(model, float(part.period[0]), direction)
+            others = [p for p in parts.result.directions if p.direction != direction]
+            facts = facts_of(
+                model,
+                float(part.period[0]),
+                direction,
+                share_of_three=float(part.cumulative[min(3, part.cumulative.size) - 1]),
+                other_period=float(others[0].period[0]) if others else None,
+            )
             demand = _of(given.edition, facts, part)
             at = f"result/directions/{len(found)}"
             found.append(demand)

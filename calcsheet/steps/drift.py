@@ -2,13 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from calcsheet.core.design import Drifts, drifts
-from calcsheet.core.model import models_of
-from calcsheet.core.response import facts_of
 from calcsheet.steps.relations import line_of
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step, plain
 
@@ -34,15 +32,15 @@ class DriftResult:
     directions: tuple[Drifts, ...]
 
 
-def run(options: DriftOptions, storeys: Done, basis: Done, peaks: Done) -> Outcome:
+def run(options: DriftOptions, storeys: Done, basis: Done, demand: Done, peaks: Done) -> Outcome:
     building = storeys.inputs
     gravity = None if building.gravity is None else np.cumsum(building.gravity[::-1])[::-1]
-    models = {d: m for m in models_of(building, peaks.result.stiffness_drifts) for d in m.direction}
+    demands = {d.direction: d for d in demand.result.directions}
     found: list[Drifts] = []
     lines: list[Line] = []
     cautions: list[Caution] = []
     for item in peaks.result.directions:
-        facts = facts_of(models[item.direction], item.drift_period, item.direction)
+        facts = replace(demands[item.direction].facts, period=item.drift_period)
         result = drifts(basis.inputs.edition, facts, item.drifts, item.scaling, gravity, item.cap)
         at = f"result/directions/{len(found)}"
         found.append(result)
@@ -52,15 +50,51 @@ def run(options: DriftOptions, storeys: Done, basis: Done, peaks: Done) -> Outco
 
 
 def _lines(item: Drifts, at: str) -> list[Line]:
-    worst = item.worst
+    worst, d = item.worst, item.direction
+    elastic = Number(float(item.elastic[worst]), "displacement", f"{at}/elastic/{worst}")
+    factor = Number(item.factor.value, "ratio", f"{at}/factor/value")
     design = Number(float(item.design[worst]), "displacement", f"{at}/design/{worst}")
     limit = Number(float(item.limit[worst]), "displacement", f"{at}/limit/{worst}")
     share = Number(float(item.share[worst]), "share", f"{at}/share/{worst}")
+    of = f"storey {worst + 1} from the base, {d}"
+    lines = [line_of(item.limit_relation, d, f"{at}/limit_relation")]
+    if item.plain:  # neither capped, scaled nor amplified: the design drift is the factor times the elastic one
+        relation = f"{item.factor.symbol} × elastic drift"
+        lines.append(Line(f"Design drift, {of}", relation, "{0} × {1}", (factor, elastic), design, item.factor.clause))
+    lines.append(
+        Line(
+            f"Largest share of the drift limit, {of}",
+            "design drift / limit",
+            "{0} / {1}",
+            (design, limit),
+            share,
+            "ratio",
+        )
+    )
+    if item.second_order is not None:
+        lines.append(_stability(item, at))
+    return lines
+
+
+def _stability(item: Drifts, at: str) -> Line:
+    second = item.second_order
+    assert second is not None
+    worst = int(np.argmax(second.theta))
+    load = Number(float(item.gravity[worst]), "force", f"{at}/gravity/{worst}")
+    drift = Number(float(second.drift[worst]), "length", f"{at}/second_order/drift/{worst}")
+    shear = Number(float(item.shear[worst]), "force", f"{at}/shear/{worst}")
+    height = Number(float(item.storey_height[worst]), "length", f"{at}/storey_height/{worst}")
+    theta = Number(float(second.theta[worst]), "ratio", f"{at}/second_order/theta/{worst}")
     of = f"storey {worst + 1} from the base, {item.direction}"
-    return [
-        line_of(item.limit_relation, item.direction, f"{at}/limit_relation"),
-        Line(f"Largest share of the drift limit, {of}", "d_r / limit", "{0} / {1}", (design, limit), share, "ratio"),
-    ]
+    numbers = (load, drift, shear, height)
+    return Line(
+        f"Largest stability coefficient, {of}",
+        "θ = P Δ / (V h)",
+        "{0} × {1} / ({2} × {3})",
+        numbers,
+        theta,
+        second.clause,
+    )
 
 
 def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
@@ -100,5 +134,12 @@ takes the gravity load $P$ at and above it, its shear $V$ and its drift $\Delta$
 """
 
 DRIFT = Step(
-    "drift", 1, "Drift and second order", DriftOptions, DriftResult, ("storeys", "basis", "peaks"), run, METHOD
+    "drift",
+    1,
+    "Drift and second order",
+    DriftOptions,
+    DriftResult,
+    ("storeys", "basis", "demand", "peaks"),
+    run,
+    METHOD,
 )

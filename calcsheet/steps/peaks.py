@@ -175,11 +175,12 @@ def _lines(item: DirectionPeaks, at: str) -> list[Line]:
 
 def _cautions(basis: Basis, column: _Column, direction: str) -> list[Caution]:
     cautions = []
-    if basis.combination == "SRSS" and column.modes.close:
+    independent = basis.edition.independent(column.modes.period)
+    if basis.combination == "SRSS" and independent.verdict != "passes":
         cautions.append(
             Caution(
                 f"srss-with-close-modes-{direction}",
-                f"Modes in {direction} are close, and SRSS takes them as unrelated: CQC is called for.",
+                f"In {direction} SRSS takes the modes as unrelated: {independent.text} ({independent.clause}).",
                 answer=True,
             )
         )

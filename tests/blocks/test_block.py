@@ -31,7 +31,9 @@ def words(html):
 
 def period(sheet):
     """First period as the twin of the modes shows it."""
-    return re.search(r'<data value="/modes/result/models/0/modes/period/0">([^<]*)', sheet.twin("modes")["text/html"])[1]
+    return re.search(r'<data value="/modes/result/models/0/modes/period/0">([^<]*)', sheet.twin("modes")["text/html"])[
+        1
+    ]
 
 
 def test_every_block_shows_a_live_view_and_a_twin(sheet, cells):
@@ -124,7 +126,11 @@ def test_a_choice_that_a_view_has_not_is_answered_in_words(sheet):
     reply = sheet.link("plot").say(op="choose", key="normalise", value="top")
     assert reply["message"] == "Mode shapes, normalise: 'top'; must be 'largest' or 'roof' or 'mass'"
     assert not reply["ok"]
-    assert sheet.link("plot").say(op="choose", key="colour", value="red")["message"].startswith("Mode shapes: no option 'colour'")
+    assert (
+        sheet.link("plot")
+        .say(op="choose", key="colour", value="red")["message"]
+        .startswith("Mode shapes: no option 'colour'")
+    )
     assert sheet.link("plot").say(op="paint")["message"] == "paint: not known to this block"
     assert sheet.link("plot").say(op="ping", n=7) == {"op": "pong", "n": 7}
 
@@ -164,7 +170,7 @@ def test_only_the_card_run_again_keeps_every_other_block_live(sheet, cells):
 
 
 def test_a_solver_run_again_with_other_options_reaches_the_blocks_below(sheet):
-    sheet.run('modes = ModeSolver(storeys, share=0.99, keep=4)\nmodes', "modes")
+    sheet.run("modes = ModeSolver(storeys, share=0.99, keep=4)\nmodes", "modes")
     shown = words(sheet.twin("participation")["text/html"])
     assert "99.0" in shown
     assert len(sheet.twin("card")[MIME]["payloads"]["participation"]["result"]["directions"][0]["share"]) == 4

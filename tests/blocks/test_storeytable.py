@@ -152,7 +152,9 @@ def test_a_paste_too_wide_changes_nothing(link, file):
 
 
 def test_words_for_what_the_table_does_not_know(link):
-    assert link.say(op="set", row=row(link, "2"), key="colour", text="1")["message"].startswith('storeys.csv: no column "colour"')
+    assert link.say(op="set", row=row(link, "2"), key="colour", text="1")["message"].startswith(
+        'storeys.csv: no column "colour"'
+    )
     assert link.say(op="sort", row=None)["message"] == "sort is not known to the storey table; must be an edit"
 
 

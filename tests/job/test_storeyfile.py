@@ -4,7 +4,7 @@ import codecs
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from calcsheet.core.storeys import Storeys
@@ -394,10 +394,11 @@ def test_junk_is_read_or_refused(read, table, card, rows, delimiter, with_headin
     import csv
     import io
 
+    assume(with_headings or any(cell.strip() for cells in rows for cell in cells))  # a blank file is no table
     if with_headings:
         rows = [["level", "storey height [m]", "mass [t]", "stiffness x [kN/m]", "stiffness y [kN/m]"], *rows]
     out = io.StringIO()
-    csv.writer(out, delimiter=delimiter).writerows([["level"], *rows] if not any(map(any, rows)) else rows)
+    csv.writer(out, delimiter=delimiter).writerows(rows)
     text = out.getvalue().encode("utf-8", "replace")
     got = read_storeys(table(text), card())
     assert (got.storeys is None) == bool(got.problems)

@@ -31,7 +31,15 @@ def cell(notebook, start):
 
 def test_parts_stand_in_the_notebooks_order(notebook):
     content = collect(notebook)
-    assert [type(part) for part in content.parts] == [Words, Shown, Shown, Shown, Shown, Shown, Words]  # imports left out
+    assert [type(part) for part in content.parts] == [
+        Words,
+        Shown,
+        Shown,
+        Shown,
+        Shown,
+        Shown,
+        Words,
+    ]  # imports left out
     assert [part.view for part in content.parts[1:-1]] == ["card", "storeys", "modes", "mode plot", "participation"]
     assert content.parts[4].options == {"normalise": "largest", "values": "shown"}
     assert list(content.payloads) == ["card", "storeys", "modes", "participation"]

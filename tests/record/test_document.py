@@ -174,7 +174,9 @@ def test_nothing_outside_is_referred_to_and_the_only_script_is_data(record, docu
         'from IPython.display import HTML\nHTML(\'<script src="https://example.org/x.js"></script>'
         '<img src="https://example.org/x.png" onerror="x()"><p style="background:url(//example.org/y)">said</p>\')'
     )
-    words = '# More\n\n<script>alert(1)</script>\n\n![plan](https://example.org/plan.png)\n\n<img src="x" onerror="x()">'
+    words = (
+        '# More\n\n<script>alert(1)</script>\n\n![plan](https://example.org/plan.png)\n\n<img src="x" onerror="x()">'
+    )
     _, html = record(sources=(*calculation_cells(keep=2), hostile, words))
     seen = document(html)
     scripts = [attributes for tag, attributes in seen.tags if tag == "script"]
@@ -198,7 +200,7 @@ def test_the_data_are_the_record(record, document):
     embedded = json.loads(document(html).script)
     assert embedded == record_of(content)
     assert replay(embedded["payloads"]) == []
-    assert [list(part)[0] for part in embedded["notebook"]] == ["words", *["view"] * 5, "words"]
+    assert [next(iter(part)) for part in embedded["notebook"]] == ["words", *["view"] * 5, "words"]
     assert embedded["status"] == "FOR CHECKING"
     assert {"calcsheet", "Python", "numpy", "scipy"} <= set(embedded["versions"])
 

@@ -29,7 +29,17 @@ def exported(folder, **config):
 
 def test_nbconvert_gives_the_issued_html_to_the_byte(folder):
     """The second real execution of this notebook, by issuing: its edit has been saved, so it changes nothing."""
-    command = [sys.executable, "-m", "jupyter", "nbconvert", "--to", "calcsheet-record", "--output", "by-hand", "calc.ipynb"]
+    command = [
+        sys.executable,
+        "-m",
+        "jupyter",
+        "nbconvert",
+        "--to",
+        "calcsheet-record",
+        "--output",
+        "by-hand",
+        "calc.ipynb",
+    ]
     done = subprocess.run(command, cwd=folder, capture_output=True, text=True, timeout=120)
     assert done.returncode == 0, done.stderr
     issued = issue(folder, to=["html"])

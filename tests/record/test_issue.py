@@ -127,7 +127,9 @@ def test_a_wrong_row_is_quoted_before_anything_runs(folder):
     table = folder / "storeys.csv"
     table.write_text(table.read_text().replace("251,", "-12,", 1))
     told = []
-    assert refusal(folder, progress=lambda *at: told.append(at)) == 'storeys.csv, level "2": mass -12 t; must be above 0'
+    assert (
+        refusal(folder, progress=lambda *at: told.append(at)) == 'storeys.csv, level "2": mass -12 t; must be above 0'
+    )
     assert told == []
     assert left(folder) == []
 
@@ -159,7 +161,16 @@ def test_a_notebook_of_another_job_gives_no_record(folder, job_folder, new_noteb
 
 @pytest.mark.parametrize(
     "text",
-    ["", "{", "[]", "3", "{}", '{"nbformat": 4}', '{"nbformat": 4, "nbformat_minor": 5, "metadata": {}, "cells": 7}', "\x00"],
+    [
+        "",
+        "{",
+        "[]",
+        "3",
+        "{}",
+        '{"nbformat": 4}',
+        '{"nbformat": 4, "nbformat_minor": 5, "metadata": {}, "cells": 7}',
+        "\x00",
+    ],
 )
 def test_a_notebook_that_is_none_is_refused_in_one_sentence(folder, text):
     (folder / "calc.ipynb").write_text(text)

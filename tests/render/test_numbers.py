@@ -33,7 +33,15 @@ def test_decimals_by_significant_digits_of_the_largest(values, digits, decimals)
 
 @pytest.mark.parametrize(
     ("values", "decimals"),
-    [([1.0, 2.0], 0), ([3.4, 2.95], 2), ([0.1 + 0.2], 1), ([1 / 3], 6), ([212.5, 240, 251.25], 2), ([], 0), ([1e-7], 6)],
+    [
+        ([1.0, 2.0], 0),
+        ([3.4, 2.95], 2),
+        ([0.1 + 0.2], 1),
+        ([1 / 3], 6),
+        ([212.5, 240, 251.25], 2),
+        ([], 0),
+        ([1e-7], 6),
+    ],
 )
 def test_decimals_that_show_what_was_given(values, decimals):
     assert decimals_given(values) == decimals

@@ -335,7 +335,8 @@ class ASCE7(Edition):
 
     def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder:
         c_d, i_e = self._c_d(facts.direction), self.importance().value
-        theta = stability(gravity, drift * i_e / c_d, shear, facts.storey_height)
+        entering = drift * i_e / c_d
+        theta = stability(gravity, entering, shear, facts.storey_height)
         limit = min(0.5 / (self.shear_ratio * c_d), 0.25)
         worst = float(theta.max())
         verdict: Verdict = "exceeds" if worst > limit else "passes"
@@ -345,7 +346,8 @@ class ASCE7(Edition):
             text = "second-order effects need not be considered"
         else:
             text = "displacements and forces are multiplied by 1/(1 − θ)"
-        return SecondOrder(theta, 0.1, limit, amplified(theta, 0.1), verdict, text, self._eq("12.8.7", "12.8-16"))
+        clause = self._eq("12.8.7", "12.8-16")
+        return SecondOrder(theta, entering, 0.1, limit, amplified(theta, 0.1), verdict, text, clause)
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
         return vertical(facts, stiffness, drift / facts.storey_height, self.category, self.mass_irregularity)

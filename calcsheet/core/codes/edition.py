@@ -231,6 +231,8 @@ class SecondOrder(Frozen):
     ----------
     theta : (n,) array
         Stability coefficient of each storey, lowest first.
+    drift : (n,) array
+        The drift that enters it [m].
     ignore_up_to, limit : float
         Value up to which the effect is ignored, and the largest allowed.
     factor : (n,) array
@@ -244,6 +246,7 @@ class SecondOrder(Frozen):
     """
 
     theta: Array = field(metadata=agrees(rtol=1e-6, atol=1e-10))
+    drift: Array = field(metadata=agrees(rtol=1e-6, atol=1e-10))
     ignore_up_to: float
     limit: float = field(metadata=agrees(rtol=1e-9))
     factor: Array = field(metadata=agrees(rtol=1e-6))

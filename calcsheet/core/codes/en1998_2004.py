@@ -308,7 +308,7 @@ class EN1998(Edition):
             text = "an explicit second-order analysis is called for; the values here are multiplied by 1/(1 − θ)"
         else:
             verdict, text = "exceeds", "not allowed: stiffen the building"
-        return SecondOrder(theta, 0.1, 0.3, amplified(theta, 0.1), verdict, text, "4.4.2.2(2) to (4)")
+        return SecondOrder(theta, drift, 0.1, 0.3, amplified(theta, 0.1), verdict, text, "4.4.2.2(2) to (4)")
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
         reduced = "reference value of q times 0.8 (4.2.3.1(7))"

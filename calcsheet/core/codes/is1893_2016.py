@@ -176,30 +176,28 @@ class IS1893(Edition):
         return Static(period, None, period, coefficient, shear, governing, relations, "7.6.1, 7.2.2")
 
     def _period(self, facts: Facts, system: str) -> tuple[float, Relation]:
+        """T_a [s], and how it comes about (7.6.2)."""
         height = Value(facts.top, "metres")
+
+        def found(period: float, relation: str, how: str, clause: str, *more: Value) -> tuple[float, Relation]:
+            result = Value(period, "period")
+            return period, Relation("Approximate period", relation, how, (height, *more), result, clause)
+
         if system in PERIOD:
             c = PERIOD[system]
-            period = c * facts.top**0.75
-            relation, how, values, clause = "T_a = C h^0.75", f"{c:g} × {{0}}^0.75", (height,), "7.6.2(a)"
-            return period, Relation("Approximate period", relation, how, values, Value(period, "period"), clause)
-        base, area = (self.base_x, self.wall_area_x) if facts.direction == "x" else (self.base_y, self.wall_area_y)
+            return found(c * facts.top**0.75, "T_a = C h^0.75", f"{c:g} × {{0}}^0.75", "7.6.2(a)")
+        along_x = facts.direction == "x"
+        base, area = (self.base_x, self.wall_area_x) if along_x else (self.base_y, self.wall_area_y)
         assert base is not None  # __post_init__ asks for it
-        period = 0.09 * facts.top / base**0.5
-        relation, how, values, clause = (
-            "T_a = 0.09 h/√d",
-            "0.09 × {0} / √{1}",
-            (height, Value(base, "metres")),
-            "7.6.2(c)",
-        )
+        by_base = 0.09 * facts.top / base**0.5
         if system == WALLS:
             assert area is not None
             by_area = 0.075 * facts.top**0.75 / area**0.5
-            clause = "7.6.2(b)"
-            if by_area >= period:
-                period = by_area
-                relation, how = "T_a = 0.075 h^0.75/√A_w", "0.075 × {0}^0.75 / √{1}"
-                values = (height, Value(area, "area"))
-        return period, Relation("Approximate period", relation, how, values, Value(period, "period"), clause)
+            if by_area >= by_base:
+                how = "0.075 × {0}^0.75 / √{1}"
+                return found(by_area, "T_a = 0.075 h^0.75/√A_w", how, "7.6.2(b)", Value(area, "area"))
+        clause = "7.6.2(b)" if system == WALLS else "7.6.2(c)"
+        return found(by_base, "T_a = 0.09 h/√d", "0.09 × {0} / √{1}", clause, Value(base, "metres"))
 
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
         return by_height(facts, static.shear, 2.0), "7.6.3(a)"

@@ -72,7 +72,8 @@ def test_t_l_below_t_s_is_refused(edition):
 
 
 @pytest.mark.parametrize(
-    ("s_d1", "c_u"), [(0.05, 1.7), (0.1, 1.7), (0.12, 1.66), (0.15, 1.6), (0.2, 1.5), (0.25, 1.45), (0.3, 1.4), (0.9, 1.4)]
+    ("s_d1", "c_u"),
+    [(0.05, 1.7), (0.1, 1.7), (0.12, 1.66), (0.15, 1.6), (0.2, 1.5), (0.25, 1.45), (0.3, 1.4), (0.9, 1.4)],
 )
 def test_upper_limit_of_the_period(edition, s_d1, c_u):
     """Table 12.8-1, straight lines between; 1.4 beyond."""
@@ -235,6 +236,7 @@ def test_second_order(edition, building, changed, gravity, theta, limit, factor,
     shear, drift = np.array([400.0, 300.0, 200.0]), np.array([0.044, 0.033, 0.022])
     found = edition(**changed).second_order(building(), np.array([gravity, 1000.0, 500.0]), shear, drift)
     assert found.theta[0] == pytest.approx(theta, rel=1e-12)
+    assert found.drift * (5.5 / (1.5 if changed.get("risk_category") == "IV" else 1.0)) == pytest.approx(drift)
     assert found.factor == pytest.approx([factor, 1.0, 1.0], rel=1e-12)
     assert found.limit == pytest.approx(limit, rel=1e-12)
     assert (found.verdict, found.ignore_up_to) == (verdict, 0.1)

@@ -46,9 +46,7 @@ def test_without_points_the_two_period_spectrum_needs_a_word(building):
     assert full.permitted(building()).verdict == "passes"
 
 
-@pytest.mark.parametrize(
-    ("site", "verdict"), [("D", "passes"), ("DE", "passes"), ("E", "passes"), ("F", "judgement")]
-)
+@pytest.mark.parametrize(("site", "verdict"), [("D", "passes"), ("DE", "passes"), ("E", "passes"), ("F", "judgement")])
 def test_the_gate_is_for_site_class_f_alone(building, site, verdict):
     assert edition(points=POINTS, site_class=site).permitted(building()).verdict == verdict
 

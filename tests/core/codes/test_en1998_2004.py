@@ -135,9 +135,7 @@ def test_distribution(building):
     assert clause == "4.3.3.2.3(3), Eq. (4.11)"
 
 
-@pytest.mark.parametrize(
-    ("period", "words"), [(1.9, "would meet"), (2.0, "would meet"), (2.1, "would not meet")]
-)
+@pytest.mark.parametrize(("period", "words"), [(1.9, "would meet"), (2.0, "would meet"), (2.1, "would not meet")])
 def test_permitted(building, period, words):
     """4.3.3.2.1(2): min(4 × 0.5, 2.0) = 2 s."""
     answer = edition().permitted(building(period=period))
@@ -223,6 +221,7 @@ def test_second_order(building, gravity, theta, factor, verdict):
     found = edition().second_order(building(), np.array([gravity, 1000.0, 300.0]), shear, drift)
     # upper storeys: 1000 × 0.03/(400 × 3), 300 × 0.02/(200 × 3)
     assert found.theta == pytest.approx([theta, 0.025, 0.01], rel=1e-12)
+    assert found.drift.tolist() == drift.tolist()
     assert found.factor == pytest.approx([factor, 1.0, 1.0], rel=1e-12)
     assert (found.verdict, found.ignore_up_to, found.limit) == (verdict, 0.1, 0.3)
 

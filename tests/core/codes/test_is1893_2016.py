@@ -183,9 +183,7 @@ def test_mass(building):
     assert "level 2 from the base" in found.text
 
 
-@pytest.mark.parametrize(
-    ("share", "verdict"), [(0.65, "passes"), (0.649, "exceeds"), (None, "not assessed")]
-)
+@pytest.mark.parametrize(("share", "verdict"), [(0.65, "passes"), (0.649, "exceeds"), (None, "not assessed")])
 def test_mass_in_three_modes(building, share, verdict):
     """Table 6(vii)."""
     found = screens(building(share_of_three=share), (9e4, 9e4, 8e4))["mass in the first three modes"]
