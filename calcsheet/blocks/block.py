@@ -82,6 +82,7 @@ class Shown:
         self.widget: LiveWidget | None = None
         self.handle: DisplayHandle | None = None
         self.source = fingerprint(_source())
+        self._drawn: dict[object, tuple[tuple[Payload, ...], tuple[Drawing, ...]]] = {}
 
     def open(self) -> None:
         """Show widget and twin below each other, and listen to the job from now on."""
@@ -116,7 +117,7 @@ class Shown:
             self.show_numbers()
             revision, payloads = self.block.job.now()
             if payloads[self.block.key]["state"] == "ok":
-                self.show_live_figures(self.rendered(payloads, self.options).draw(), revision)
+                self.show_live_figures(self.drawn(payloads, self.options), revision)
         return None
 
     def show_numbers(self) -> None:
@@ -156,11 +157,8 @@ class Shown:
         revision, payloads = block.job.now()
         payload = payloads[block.key]
         if payload["state"] == "ok":
-            rendered = self.rendered(payloads, block.options)
-            drawings = rendered.draw()
-            html = rendered.html + images(drawings)
-            live = drawings if self.options == block.options else self.rendered(payloads, self.options).draw()
-            self.show_live_figures(live, revision)
+            html = self.rendered(payloads, block.options).html + images(self.drawn(payloads, block.options))
+            self.show_live_figures(self.drawn(payloads, self.options), revision)
         else:
             html = held_up(payload)
         carried = self.carried(payloads)
@@ -182,6 +180,16 @@ class Shown:
 
     def rendered(self, payloads: Mapping[str, Payload], options: Mapping[str, Any]) -> Rendered:
         return self.block.view.render(payloads, self.block.key, options)
+
+    def drawn(self, payloads: Mapping[str, Payload], options: Mapping[str, Any]) -> tuple[Drawing, ...]:
+        """The figures; those of before where nothing that they show has changed."""
+        chosen = tuple(sorted(options.items()))
+        shows = payloads["card"], payloads[self.block.key]  # each stays the same object until it changes
+        before, drawings = self._drawn.get(chosen, ((), ()))
+        if tuple(map(id, before)) != tuple(map(id, shows)):
+            drawings = self.rendered(payloads, options).draw()
+            self._drawn[chosen] = shows, drawings
+        return drawings
 
 
 class ShownCard(Shown):

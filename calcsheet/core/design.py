@@ -47,13 +47,17 @@ class Drifts(Frozen):
     limit_relation : Relation
         How the limit of the lowest storey comes about.
     displacement : (n,) array
-        Design displacement of each level [m].
+        Design displacement of each level; the second-order factor is the largest at and below it [m].
     separation : float or None
         Displacement to be kept clear of a neighbour that does not move [m].
     separation_clause : str
         Its source.
-    plain : bool
-        Whether the worst design drift is the elastic one times the factor: not capped, scaled or amplified.
+    first : (n,) array
+        Design drift of each storey before scale and second order: elastic times factor, or the elastic spectrum's [m].
+    capped : bool
+        Whether in the worst storey the elastic spectrum's drift governs.
+    scale : float
+        What the edition multiplies drifts by.
     stiffness : (n,) array
         Storey shear over storey drift, combined [kN/m].
     screens : tuple of Screen
@@ -74,9 +78,11 @@ class Drifts(Frozen):
     worst: int
     limit_relation: Relation
     displacement: Array = field(metadata=PEAK)
-    separation: float | None
+    separation: float | None = field(metadata=PEAK)
     separation_clause: str
-    plain: bool
+    first: Array = field(metadata=PEAK)
+    capped: bool
+    scale: float = field(metadata=agrees(rtol=1e-8))
     stiffness: Array = field(metadata=agrees(rtol=1e-6))
     screens: tuple[Screen, ...]
 
@@ -106,21 +112,20 @@ def drifts(
     Drifts
     """
     factor = edition.drift(facts.direction)
-    first, top = factor.value * found.drift, factor.value * found.displacement
+    uncapped, top = factor.value * found.drift, factor.value * found.displacement
+    first = uncapped
     if cap is not None:
-        first, top = np.minimum(first, cap.drift), np.minimum(top, cap.displacement)
-    second, note, amplified = None, "", np.ones(first.size)
-    if gravity is None:
-        note = "gravity load column is missing"
-    else:
-        second = edition.second_order(facts, gravity, found.shear, first)
-        if second is None:
-            note = "not in this edition"
-        else:
-            amplified = second.factor
+        first, top = np.minimum(uncapped, cap.drift), np.minimum(top, cap.displacement)
+    load = np.zeros(first.size) if gravity is None else gravity
+    second, note = edition.second_order(facts, load, found.shear, first), ""
+    if second is None:
+        note = "not in this edition"
+    elif gravity is None:
+        second, note = None, "gravity load column is missing"
+    amplified = np.ones(first.size) if second is None else second.factor
     limit, relation = edition.drift_limit(facts)
     design = first * scaling.drifts * amplified
-    displacement = top * scaling.drifts
+    displacement = top * scaling.drifts * np.maximum.accumulate(amplified)
     share = design / limit
     worst = int(np.argmax(share))
     separation, clause = edition.separation(float(displacement[-1]))
@@ -134,7 +139,7 @@ def drifts(
         factor=factor,
         second_order=second,
         second_order_note=note,
-        gravity=np.zeros(first.size) if gravity is None else gravity,
+        gravity=load,
         shear=found.shear,
         storey_height=facts.storey_height,
         design=design,
@@ -145,7 +150,9 @@ def drifts(
         displacement=displacement,
         separation=separation,
         separation_clause=clause,
-        plain=bool(np.isclose(design[worst], factor.value * found.drift[worst], rtol=1e-12)),
+        first=first,
+        capped=bool(first[worst] < uncapped[worst]),
+        scale=scaling.drifts,
         stiffness=stiffness,
         screens=edition.irregularities(facts, stiffness, first),
     )
@@ -198,7 +205,7 @@ class Actions(Frozen):
     static_force: Array = field(metadata=PEAK)
     static_clause: str
     overturning: float = field(metadata=PEAK)
-    torsion: float | None
+    torsion: float | None = field(metadata=agrees(rtol=1e-12))
 
 
 def actions(

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, field
 
 import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, agrees
-from calcsheet.core.codes.edition import Edition, Facts
+from calcsheet.core.codes.edition import Facts
 from calcsheet.core.combine import Rule, combined, correlation
 from calcsheet.core.model import Model
 from calcsheet.core.modes import Modes
@@ -105,15 +106,15 @@ def facts_of(
     )
 
 
-def left_over(edition: Edition, direction: str, choice: str, last_period: float, kept: int, size: int) -> float | None:
+def left_over(
+    ordinates: Callable[[Array], Array], choice: str, last_period: float, kept: int, size: int
+) -> float | None:
     """Ordinate for what the modes kept leave out, None where nothing is left out or the choice is "none".
 
     Parameters
     ----------
-    edition : Edition
-        The code edition.
-    direction : str
-        "x" or "y".
+    ordinates : callable
+        Ordinates [m/s²] at periods [s].
     choice : {"last ordinate", "zero period", "none"}
         The ordinate at the last period kept, or the one at period 0, which a design spectrum has reduced already.
     last_period : float
@@ -124,4 +125,4 @@ def left_over(edition: Edition, direction: str, choice: str, last_period: float,
     if kept == size or choice == "none":
         return None
     at = 0.0 if choice == "zero period" else last_period
-    return float(edition.ordinates(direction, np.array([at]))[0])
+    return float(ordinates(np.array([at]))[0])

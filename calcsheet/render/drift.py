@@ -59,7 +59,7 @@ def _words(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> 
         (
             "design drift over elastic",
             f"{symbols(factor['symbol'])} = {number(factor['value'], 'ratio', system, f'{at}/factor/value')} "
-            f"({symbols(factor['clause'])})",
+            f"({symbols(factor['clause'])})" + ("; the elastic spectrum's drift governs" if item["capped"] else ""),
         ),
     ]
     if second is None:

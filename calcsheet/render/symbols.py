@@ -14,9 +14,5 @@ def symbols(text: str) -> str:
 
     Only for the program's own texts: in an engineer's text an underscore may be meant.
     """
-    return set_symbols(escape(text, quote=False))
-
-
-def set_symbols(html: str) -> str:
-    """The same for text that is escaped already."""
-    return POWER.sub(r"<sup>\1</sup>", INDEX.sub(r"<sub>\1</sub>", html))
+    html = INDEX.sub(r"<sub>\1</sub>", escape(text, quote=False))
+    return POWER.sub(r"<sup>\1</sup>", html)

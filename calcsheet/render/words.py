@@ -7,17 +7,21 @@ from html import escape
 from typing import Any
 
 from calcsheet.render.numbers import exponent, number
-from calcsheet.render.symbols import set_symbols, symbols
+from calcsheet.render.symbols import symbols
 from calcsheet.render.table import Column, table, words
 
 Located = tuple[str, dict[str, Any]]
 """A part of a payload with the JSON pointer of its step."""
 
 
-def filled(template: str, numbers: Iterable[Mapping[str, Any]], system: str, step: str) -> str:
-    """HTML of a text with places ``{0}`` … for numbers of the step at JSON pointer `step`."""
+def filled(template: str, numbers: Iterable[Mapping[str, Any]], system: str, step: str, own: bool = False) -> str:
+    """HTML of a text with places ``{0}`` … for numbers of the step at JSON pointer `step`.
+
+    Where the text is the program's `own`, its symbols are set.
+    """
     shown = [number(n["value"], n["quantity"], system, f"{step}/{n['at']}") for n in numbers]
-    return escape(template, quote=False).format(*shown)
+    text = symbols(template) if own else escape(template, quote=False)
+    return text.format(*shown)
 
 
 def worked(lines: Iterable[Located], system: str) -> str:
@@ -32,7 +36,7 @@ def worked(lines: Iterable[Located], system: str) -> str:
             Column("relation", tuple(symbols(line["relation"]) for _, line in rows), numeric=False),
             Column(
                 "with values",
-                tuple(set_symbols(filled(line["substitution"], line["numbers"], system, at)) for at, line in rows),
+                tuple(filled(line["substitution"], line["numbers"], system, at, own=True) for at, line in rows),
                 numeric=False,
             ),
             Column("result", tuple(results)),

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from calcsheet.job.basis import spectrum_files
 from calcsheet.job.card import Card
 from calcsheet.steps.step import Caution, Outcome, Step, plain
 
@@ -63,7 +64,7 @@ def run(card: Card) -> Outcome:
         cautions.append(
             Caution(f"to-confirm-{i}", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.")
         )
-    for name in ("storeys.csv", *card.model.files.values()):
+    for name in ("storeys.csv", *card.model.files.values(), *spectrum_files(card).values()):
         if not (name in card.origins and card.origins[name].source.strip()):
             cautions.append(
                 Caution(f"no-origin-{name}", f"{plain(name)}: the origin of its values is not stated.", answer=True)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 
@@ -40,7 +40,7 @@ def run(options: DriftOptions, storeys: Done, basis: Done, demand: Done, peaks: 
     lines: list[Line] = []
     cautions: list[Caution] = []
     for item in peaks.result.directions:
-        facts = replace(demands[item.direction].facts, period=item.drift_period)
+        facts = demands[item.direction].facts
         result = drifts(basis.inputs.edition, facts, item.drifts, item.scaling, gravity, item.cap)
         at = f"result/directions/{len(found)}"
         found.append(result)
@@ -51,29 +51,40 @@ def run(options: DriftOptions, storeys: Done, basis: Done, demand: Done, peaks: 
 
 def _lines(item: Drifts, at: str) -> list[Line]:
     worst, d = item.worst, item.direction
-    elastic = Number(float(item.elastic[worst]), "displacement", f"{at}/elastic/{worst}")
-    factor = Number(item.factor.value, "ratio", f"{at}/factor/value")
     design = Number(float(item.design[worst]), "displacement", f"{at}/design/{worst}")
     limit = Number(float(item.limit[worst]), "displacement", f"{at}/limit/{worst}")
     share = Number(float(item.share[worst]), "share", f"{at}/share/{worst}")
     of = f"storey {worst + 1} from the base, {d}"
-    lines = [line_of(item.limit_relation, d, f"{at}/limit_relation")]
-    if item.plain:  # neither capped, scaled nor amplified: the design drift is the factor times the elastic one
-        relation = f"{item.factor.symbol} × elastic drift"
-        lines.append(Line(f"Design drift, {of}", relation, "{0} × {1}", (factor, elastic), design, item.factor.clause))
-    lines.append(
+    terms = _terms(item, at)
+    substitution = " × ".join(f"{{{i}}}" for i in range(len(terms)))
+    relation = "design drift / limit"
+    lines = [
+        line_of(item.limit_relation, d, f"{at}/limit_relation"),
         Line(
-            f"Largest share of the drift limit, {of}",
-            "design drift / limit",
-            "{0} / {1}",
-            (design, limit),
-            share,
-            "ratio",
-        )
-    )
+            f"Design drift, {of}", " × ".join(terms), substitution, tuple(terms.values()), design, item.factor.clause
+        ),
+        Line(f"Largest share of the drift limit, {of}", relation, "{0} / {1}", (design, limit), share, "ratio"),
+    ]  # fmt: skip
     if item.second_order is not None:
         lines.append(_stability(item, at))
     return lines
+
+
+def _terms(item: Drifts, at: str) -> dict[str, Number]:
+    """What the worst design drift is the product of, by name."""
+    worst = item.worst
+    if item.capped:
+        terms = {"drift of the elastic spectrum": Number(float(item.first[worst]), "displacement", f"{at}/first/{worst}")}
+    else:
+        terms = {
+            item.factor.symbol: Number(item.factor.value, "ratio", f"{at}/factor/value"),
+            "elastic drift": Number(float(item.elastic[worst]), "displacement", f"{at}/elastic/{worst}"),
+        }
+    terms["scale"] = Number(item.scale, "ratio", f"{at}/scale")
+    if item.second_order is not None:
+        factor = float(item.second_order.factor[worst])
+        terms["second order"] = Number(factor, "ratio", f"{at}/second_order/factor/{worst}")
+    return terms
 
 
 def _stability(item: Drifts, at: str) -> Line:

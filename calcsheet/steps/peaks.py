@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, field
+from functools import partial
+from typing import cast
 
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.basis import Basis
-from calcsheet.core.codes.edition import Edition, Facts, Scaling
+from calcsheet.core.codes.edition import Scaling
 from calcsheet.core.model import Model, models_of
 from calcsheet.core.modes import Modes, modes_of
 from calcsheet.core.participation import Participation, participation
@@ -16,6 +19,8 @@ from calcsheet.steps.demand import Demand
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
 
 PEAK = agrees(rtol=1e-6, atol=1e-6)
+TERMS = 6
+"""Terms of a combination that go on one line."""
 
 
 @dataclass(frozen=True)
@@ -49,8 +54,6 @@ class DirectionPeaks(Frozen):
         Combined peaks of the elastic spectrum with that set, which displacements need not exceed.
     scaling : Scaling
         What the edition multiplies modal results by.
-    drift_period : float
-        First period with the set that serves drifts [s].
     """
 
     direction: str
@@ -64,7 +67,6 @@ class DirectionPeaks(Frozen):
     drifts: Combined
     cap: Combined | None
     scaling: Scaling
-    drift_period: float = field(metadata=agrees(rtol=1e-8))
 
 
 @dataclass(frozen=True, eq=False)
@@ -120,31 +122,28 @@ class _Column:
         modes = modes_of(model, keep)
         return cls(model, modes, participation(model, modes, direction))
 
-    def peaks(self, edition: Edition, ordinate: Array, choice: str) -> Peaks:
-        direction, kept = self.part.direction, self.modes.omega.size
-        rest = left_over(edition, direction, choice, float(self.modes.period[-1]), kept, self.model.size)
-        return peaks(self.model, self.modes, self.part, ordinate, rest)
+    def peaks(self, ordinates: Callable[[Array], Array], choice: str) -> Peaks:
+        period = self.modes.period
+        rest = left_over(ordinates, choice, float(period[-1]), period.size, self.model.size)
+        return peaks(self.model, self.modes, self.part, ordinates(period), rest)
 
 
 def _peaks(basis: Basis, demand: Demand, forces: _Column, drifts: _Column) -> DirectionPeaks:
-    edition, direction, facts = basis.edition, demand.direction, demand.facts
-    damping = edition.damping().value
-    modal = forces.peaks(edition, demand.ordinate, basis.residual)
-    correlated = related(forces.modes, basis.combination, damping, modal.residual)
-    combined = combine(modal, correlated, basis.combination)
-    other, other_related = combined, correlated
+    edition, direction, rule = basis.edition, demand.direction, basis.combination
+    damping, spectrum = edition.damping().value, partial(edition.ordinates, direction)
+    modal = forces.peaks(spectrum, basis.residual)
+    correlated = other_related = related(forces.modes, rule, damping, modal.residual)
+    combined = other = combine(modal, correlated, rule)
     if drifts is not forces:
-        soft = drifts.peaks(edition, edition.ordinates(direction, drifts.modes.period), basis.residual)
-        other_related = related(drifts.modes, basis.combination, damping, soft.residual)
-        other = combine(soft, other_related, basis.combination)
-    elastic = edition.elastic_ordinates(direction, drifts.modes.period)
+        other_related = related(drifts.modes, rule, damping, modal.residual)
+        other = combine(drifts.peaks(spectrum, basis.residual), other_related, rule)
     cap = None
-    if elastic is not None:
-        bound = peaks(drifts.model, drifts.modes, drifts.part, elastic)
-        cap = combine(bound, related(drifts.modes, basis.combination, damping, False), basis.combination)
+    if edition.elastic_ordinates(direction, drifts.modes.period) is not None:
+        elastic = cast(Callable[[Array], Array], partial(edition.elastic_ordinates, direction))
+        cap = combine(drifts.peaks(elastic, basis.residual), other_related, rule)
     return DirectionPeaks(
         direction=direction,
-        rule=basis.combination,
+        rule=rule,
         ordinate=modal.ordinate,
         residual=modal.residual,
         shear=modal.shear,
@@ -153,24 +152,24 @@ def _peaks(basis: Basis, demand: Demand, forces: _Column, drifts: _Column) -> Di
         forces=combined,
         drifts=other,
         cap=cap,
-        scaling=_scaling(edition, facts, float(combined.shear[0]), demand),
-        drift_period=float(drifts.modes.period[0]),
+        scaling=edition.scaling(demand.facts, float(combined.shear[0]), demand.static),
     )
 
 
-def _scaling(edition: Edition, facts: Facts, modal: float, demand: Demand) -> Scaling:
-    return edition.scaling(facts, modal, demand.static)
-
-
 def _lines(item: DirectionPeaks, at: str) -> list[Line]:
-    """The combined base shear, from the modes that make most of it."""
-    squares = item.shear[0] ** 2
-    if item.rule != "SRSS" or item.shear.shape[1] > 4:
+    """The combined base shear, where it goes on a line; else the tables of modal shears and of correlation show it."""
+    count = item.shear.shape[1]
+    pairs = [(i, j) for i in range(count) for j in range(i + 1, count) if item.related[i, j] != 0.0]
+    if count + len(pairs) > TERMS:
         return []
-    numbers = tuple(Number(float(v), "force", f"{at}/shear/0/{i}") for i, v in enumerate(item.shear[0]))
-    terms = " + ".join(f"{{{i}}}²" for i in range(squares.size))
+    numbers = [Number(float(v), "force", f"{at}/shear/0/{i}") for i, v in enumerate(item.shear[0])]
+    numbers += [Number(float(item.related[i, j]), "correlation", f"{at}/related/{i}/{j}") for i, j in pairs]
+    terms = [f"({{{i}}})²" for i in range(count)]
+    terms += [f"2 × {{{count + k}}} × {{{i}}} × {{{j}}}" for k, (i, j) in enumerate(pairs)]
     result = Number(float(item.forces.shear[0]), "force", f"{at}/forces/shear/0")
-    return [Line(f"Modal base shear, {item.direction}", "V = √(Σ V_n²)", f"√({terms})", numbers, result, "SRSS")]
+    relation = "V = √(Σ Σ ρ_ij V_i V_j)" if pairs else "V = √(Σ V_n²)"
+    substitution = f"√({' + '.join(terms)})"
+    return [Line(f"Modal base shear, {item.direction}", relation, substitution, tuple(numbers), result, item.rule)]
 
 
 def _cautions(basis: Basis, column: _Column, direction: str) -> list[Caution]:

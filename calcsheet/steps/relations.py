@@ -17,8 +17,16 @@ def line_of(relation: Relation, of: str, at: str) -> Line:
         What it is worked out for, such as "x"; put after the quantity.
     at : str
         Where the relation stands in the payload.
+
+    Notes
+    -----
+    Lengths that give a displacement are shown in its unit, so that the numbers printed give the one printed.
     """
-    numbers = tuple(Number(v.value, v.quantity, f"{at}/values/{i}/value") for i, v in enumerate(relation.values))
+    shown = {"length": "displacement"} if relation.result.quantity == "displacement" else {}
+    numbers = tuple(
+        Number(v.value, shown.get(v.quantity, v.quantity), f"{at}/values/{i}/value")
+        for i, v in enumerate(relation.values)
+    )
     result = Number(relation.result.value, relation.result.quantity, f"{at}/result/value")
     quantity = f"{relation.quantity}, {of}"
     return Line(quantity, relation.relation, relation.substitution, numbers, result, relation.clause)

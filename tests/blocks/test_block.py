@@ -9,6 +9,7 @@ import pytest
 
 from calcsheet.blocks import JobCard, ModePlot, ModeSolver, ParticipationSummary, StoreyTable
 from calcsheet.blocks.twin import MIME
+from calcsheet.render import figure, plot
 from calcsheet.steps.replay import replay
 from calcsheet.steps.serial import fingerprint
 
@@ -120,6 +121,22 @@ def test_a_live_choice_never_alters_the_twin(sheet):
     assert sheet.twin("plot")[MIME]["options"] == {"normalise": "largest", "values": "shown"}
     assert "Kinetic energy" in sheet.twin("modes")["text/html"]
     assert "Kinetic energy" not in modes.state["html"]
+
+
+def test_figures_are_drawn_only_where_what_they_show_has_changed(sheet, monkeypatch):
+    drawn = []
+    draw = figure.svg
+    monkeypatch.setattr(plot, "svg", lambda *args: drawn.append(args) or draw(*args))
+    sheet.run("ParticipationSummary(modes, share=0.5)", "participation")
+    assert drawn == []  # the modes are what they were
+    sheet.run('storeys.set("Roof", "mass", 300)', "edit")
+    assert len(drawn) == 2  # x and y, once for view and twin
+    sheet.link("plot").say(op="choose", key="normalise", value="roof")
+    sheet.link("plot").say(op="choose", key="normalise", value="largest")
+    assert len(drawn) == 4
+    sheet.run('storeys.set("Roof", "mass", "?")', "edit")
+    sheet.run('storeys.set("Roof", "mass", 301)', "edit")
+    assert len(drawn) == 6
 
 
 def test_a_choice_that_a_view_has_not_is_answered_in_words(sheet):

@@ -5,9 +5,7 @@ import pytest
 from calcsheet.job import edits
 from calcsheet.job.errors import InputError
 
-COMMAS = (
-    "level;storey height [m];mass [t];stiffness x [kN/m];stiffness y [kN/m]\nRoof;3,4;200;5;5\n1;3;300;5;5\n"
-)
+COMMAS = "level;storey height [m];mass [t];stiffness x [kN/m];stiffness y [kN/m]\nRoof;3,4;200;5;5\n1;3;300;5;5\n"
 
 
 def rows(table) -> list[str]:
@@ -64,9 +62,7 @@ def test_refusals(read):
         'storeys.csv: no level "7"; must be one of "Roof", "3, upper", "2", "1"'
     )
     assert refusal(edits.set_text, got, 4, "mass", "1") == "storeys.csv: no row 4; must be from 0 to 3"
-    assert refusal(edits.set_text, got, 0, "weight", "1") == (
-        f'storeys.csv: no column "weight"; must be one of {keys}'
-    )
+    assert refusal(edits.set_text, got, 0, "weight", "1") == (f'storeys.csv: no column "weight"; must be one of {keys}')
     assert refusal(edits.set_number, got, 0, "mass", float("nan")) == (
         'storeys.csv, column "mass": got nan; must be a finite number'
     )

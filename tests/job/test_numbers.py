@@ -73,8 +73,6 @@ def test_any_text_is_a_number_or_not(text):
     assert all(isinstance(value, float) for value in readings(text).values())
 
 
-@pytest.mark.parametrize(
-    ("value", "text"), [(1.125, "1.1250"), (3.4, "3.4"), (148000, "148000"), (0.125, "0.125")]
-)
+@pytest.mark.parametrize(("value", "text"), [(1.125, "1.1250"), (3.4, "3.4"), (148000, "148000"), (0.125, "0.125")])
 def test_three_decimals_get_a_fourth_where_they_look_like_thousands(value, text):
     assert format_number(value, ".") == text

@@ -96,8 +96,7 @@ def test_a_file_changed_on_disk_is_a_conflict(path):
     with pytest.raises(ConflictError) as caught:
         write(path, NEW, stamp)
     assert str(caught.value) == (
-        "storeys.csv: not saved, changed on disk since it was read; "
-        "load it again, or keep what was typed here"
+        "storeys.csv: not saved, changed on disk since it was read; load it again, or keep what was typed here"
     )
     assert path.read_bytes() == b"by somebody else"
 

@@ -194,7 +194,7 @@ class Static:
     """
 
     approximate_period: float = field(metadata=agrees(rtol=1e-9))
-    period_limit: float | None
+    period_limit: float | None = field(metadata=agrees(rtol=1e-9))
     period: float = field(metadata=agrees(rtol=1e-9))
     coefficient: float = field(metadata=agrees(rtol=1e-9))
     shear: float = field(metadata=agrees(rtol=1e-9))
@@ -247,7 +247,7 @@ class SecondOrder(Frozen):
 
     theta: Array = field(metadata=agrees(rtol=1e-6, atol=1e-10))
     drift: Array = field(metadata=agrees(rtol=1e-6, atol=1e-10))
-    ignore_up_to: float
+    ignore_up_to: float = field(metadata=agrees(rtol=1e-12))
     limit: float = field(metadata=agrees(rtol=1e-9))
     factor: Array = field(metadata=agrees(rtol=1e-6))
     verdict: Verdict
