@@ -74,7 +74,7 @@ def _misused(error: click.UsageError) -> _Refusal:
 @click.group(cls=_Group, epilog=EXAMPLES, context_settings={"help_option_names": ["-h", "--help"]})
 @click.version_option(__version__, prog_name="calcsheet")
 def main() -> None:
-    """Natural modes of multi-storey buildings: calculated in a notebook, issued as a record that can be checked."""
+    """How a multi-storey building moves sideways: calculated in a notebook, issued as a record that can be checked."""
 
 
 @main.command(epilog="\b\nExamples:\n  calcsheet new tower\n  calcsheet new tower --template planar\n")

@@ -20,7 +20,13 @@ from traitlets.config import Config
 from calcsheet.blocks import block as blocks
 from calcsheet.record import issue
 from calcsheet.record.execute import execute
+from calcsheet.steps.actions import ActionsOptions
+from calcsheet.steps.demand import DemandOptions
+from calcsheet.steps.drift import DriftOptions
 from calcsheet.steps.graph import Job
+from calcsheet.steps.modes import ModesOptions
+from calcsheet.steps.participation import ParticipationOptions
+from calcsheet.steps.peaks import PeaksOptions
 
 CARD = """\
 format = 1
@@ -89,6 +95,57 @@ Roof,62.5,310.5,505,560
 Plaza,0,870,,
 """
 WORDS = "# Purpose\n\nModes of the frames, $T_1 = 2\\pi/\\omega_1$.\n\n## Limits\n\nNo torsion."
+TWO_STOREYS = """\
+level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m],gravity load [kN]
+Roof,3,100,50000,80000,950
+1,4,200,100000,160000,1950
+"""
+BASES = {
+    "EN": """\
+edition = "EN 1998-1:2004"
+ground_acceleration = 0.2
+spectrum = 1
+ground = "B"
+importance_class = "II"
+q_x = 3
+q_y = 3
+system_x = "concrete moment frame"
+system_y = "other"
+elements = "ductile"
+""",
+    "7-16": """\
+edition = "ASCE/SEI 7-16"
+s_ds = 1.0
+s_d1 = 0.6
+s_1 = 0.4
+t_l = 8
+site_class = "C"
+risk_category = "II"
+r_x = 8
+r_y = 8
+c_d_x = 5.5
+c_d_y = 5.5
+system_x = "concrete moment frame"
+system_y = "other"
+""",
+    "IS": """\
+edition = "IS 1893 (Part 1):2016"
+zone = "IV"
+soil = "medium"
+importance_value = 1.2
+r_x = 5
+r_y = 5
+system_x = "concrete moment frame"
+system_y = "other"
+base_y = 16
+""",
+    "points": """\
+edition = "given points"
+points = "points.csv"
+""",
+}
+BASES["7-22"] = BASES["7-16"].replace("7-16", "7-22") + 'points = "points.csv"\n'
+POINTS = "period [s],ordinate [g]\n0,0.4\n0.1,1.0\n0.6,1.0\n2,0.3\n8,0.05\n"
 CELLS = (
     "from calcsheet import JobCard, ModePlot, ModeSolver, ParticipationSummary, StoreyTable",
     'job = JobCard(".")\njob',
@@ -128,6 +185,44 @@ def job_folder(tmp_path: Path) -> Callable[..., Path]:
         return folder
 
     return write
+
+
+@pytest.fixture
+def demand_job(job_folder: Callable[..., Path]) -> Callable[..., Job]:
+    """Opens a job with all steps up to the storey actions, on two storeys unless said otherwise, and one of `BASES`."""
+
+    def build(
+        basis: str,
+        *changes: tuple[str, str],
+        card: Sequence[tuple[str, str]] = (),
+        storeys: str = TWO_STOREYS,
+        points: str = POINTS,
+        keep: int | None = None,
+        **how: Any,
+    ) -> Job:
+        """Pieces of the basis replaced by `changes`, of the card by `card`."""
+        serves = () if how.get("us") else (('forces = "cracked"', 'forces = "gross"'),)
+        table = ("[answers]", f"[basis]\n{changed(BASES[basis], changes)}\n[answers]")
+        files = {"storeys.csv": storeys, "points.csv": points}
+        return chained(Job(job_folder((*serves, *card, table), files=files, **how)), keep)
+
+    return build
+
+
+def chained(job: Job, keep: int | None = None) -> Job:
+    """A job with its steps attached: modes and participation, and those of the demand where it has a basis."""
+    inputs = {"modes": ModesOptions(keep=keep), "participation": ParticipationOptions()}
+    if job.payload("card")["inputs"]["basis"] is not None:
+        inputs |= {"demand": DemandOptions(), "peaks": PeaksOptions(), "drift": DriftOptions(), "actions": ActionsOptions()}
+    for kind, options in inputs.items():
+        job.attach(kind, options)
+    return job
+
+
+@pytest.fixture
+def chain() -> Callable[..., Job]:
+    """`chained`, for jobs of other folders."""
+    return chained
 
 
 @pytest.fixture

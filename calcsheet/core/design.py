@@ -12,6 +12,8 @@ from calcsheet.core.errors import ModelError
 from calcsheet.core.response import Combined
 
 PEAK = agrees(rtol=1e-6, atol=1e-9)
+SAME = 1e-9
+"""Relative difference up to which a drift counts as not capped: two spectra on one plateau differ by rounding."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -151,7 +153,7 @@ def drifts(
         separation=separation,
         separation_clause=clause,
         first=first,
-        capped=bool(first[worst] < uncapped[worst]),
+        capped=bool(first[worst] < uncapped[worst] * (1.0 - SAME)),
         scale=scaling.drifts,
         stiffness=stiffness,
         screens=edition.irregularities(facts, stiffness, first),

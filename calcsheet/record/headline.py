@@ -29,7 +29,7 @@ def brief(payloads: Payloads) -> list[Row]:
     payloads : mapping of str to payload
         The steps of a record, upstream first.
     """
-    return [row for key, payload in payloads.items() for row in _of(key, payload, payloads)]
+    return [row for key, payload in payloads.items() for row in _of(key, payload, payloads, BRIEF)]
 
 
 def in_full(payloads: Payloads) -> str:
@@ -39,29 +39,29 @@ def in_full(payloads: Payloads) -> str:
     verdict = outcome("passes" if kept == len(figures) else "exceeds")
     raised = [c for p in payloads.values() for c in p["cautions"]]
     rows = brief(payloads)
-    rows += [row for key, payload in payloads.items() for row in _more(key, payload, payloads)]
+    rows += [row for key, payload in payloads.items() for row in _of(key, payload, payloads, MORE)]
     rows.append(("Evidence", f"{kept} of {len(figures)} figures within their limits: {verdict}"))
     asked = sum(c["answer"] for c in raised)
     rows.append(("Cautions", f'<a href="#cautions">{len(raised)}</a>, of which {asked} ask for an answer'))
-    if not any(p["kind"] == "demand" for p in payloads.values()):
+    kinds = {p["kind"] for p in payloads.values()}
+    if "actions" not in kinds:
         rows.append(("Torsion", f"{outcome('not assessed')}: x and y are planar models"))
-        rows.append(("Design demand, drift, second order", f"{outcome('not assessed')} in this record"))
+    missing = [words for kind, words in LEFT_OUT.items() if kind not in kinds]
+    if missing:
+        rows.append((", ".join(missing).capitalize(), f"{outcome('not assessed')} in this record"))
     reasons = held_back(payloads)
     if reasons:
         rows.append(("Draft because of", "; ".join(escape(r) for r in reasons)))
     return facts(rows)
 
 
-def _of(key: str, payload: Payload, payloads: Payloads) -> Iterator[Row]:
-    rows = BRIEF.get(payload["kind"])
-    if rows is not None:
-        yield from rows(key, payload["result"], system_of(payloads))
-
-
-def _more(key: str, payload: Payload, payloads: Payloads) -> Iterator[Row]:
-    rows = MORE.get(payload["kind"])
-    if rows is not None:
-        yield from rows(key, payload["result"], system_of(payloads))
+def _of(key: str, payload: Payload, payloads: Payloads, said: Mapping[str, Rows]) -> Iterator[Row]:
+    """The rows that `said` has for a step; its name goes with them where it is one of several of its kind."""
+    kind = payload["kind"]
+    if kind in said:
+        named = "" if key == kind else f" ({key})"
+        for label, html in said[kind](key, payload["result"], system_of(payloads)):
+            yield label + named, html
 
 
 def _joined(result: Mapping[str, Any], one: Callable[[Mapping[str, Any], int], str]) -> str:
@@ -76,12 +76,11 @@ def _storeys(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
 
 
 def _modes(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
-    named = "" if key == "modes" else f" ({key})"
     for i, model in enumerate(result["models"]):
         at = f"/{key}/result/models/{i}/modes"
         period = number(model["modes"]["period"][0], "period", system, f"{at}/period/0")
         frequency = number(model["modes"]["frequency"][0], "frequency", system, f"{at}/frequency/0")
-        yield f"First period in {model['name']}{named}", f"T₁ = {period}, f₁ = {frequency}"
+        yield f"First period in {model['name']}", f"T₁ = {period}, f₁ = {frequency}"
 
 
 def _participation(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
@@ -91,13 +90,14 @@ def _participation(key: str, result: Mapping[str, Any], system: str) -> Iterator
 
 
 def _reached(part: Mapping[str, Any], at: str, system: str) -> str:
-    target = number(part["target"], "share", system, f"{at}/target")
+    def share(modes: int) -> str:
+        return number(part["cumulative"][modes - 1], "share", system, f"{at}/cumulative/{modes - 1}")
+
+    target, used = number(part["target"], "share", system, f"{at}/target"), len(part["cumulative"])
     if part["needed"] is None:
-        last = len(part["cumulative"]) - 1
-        reached = number(part["cumulative"][last], "share", system, f"{at}/cumulative/{last}")
-        return f'<span class="exceeds">not reached</span>: {reached} of {target}'
-    reached = number(part["cumulative"][part["needed"] - 1], "share", system, f"{at}/cumulative/{part['needed'] - 1}")
-    return f'<data value="{at}/needed">{part["needed"]}</data>, with {reached} (target {target})'
+        return f'<span class="exceeds">not reached</span>: {share(used)} of {target} with all {used} used'
+    needed = f'<data value="{at}/needed">{part["needed"]}</data>'
+    return f"{needed}, with {share(part['needed'])} (target {target}); {used} used, with {share(used)}"
 
 
 def _demand(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
@@ -186,3 +186,9 @@ BRIEF: Mapping[str, Rows] = {
     "actions": _actions,
 }
 MORE: Mapping[str, Rows] = {"actions": _torsion, "drift": _screens}
+LEFT_OUT: Mapping[str, str] = {
+    "demand": "design demand",
+    "drift": "drift, second order, irregularities",
+    "actions": "storey actions",
+}
+"""What is not assessed where a record has no step of the kind."""

@@ -159,6 +159,8 @@ def _peaks(basis: Basis, demand: Demand, forces: _Column, drifts: _Column) -> Di
 def _lines(item: DirectionPeaks, at: str) -> list[Line]:
     """The combined base shear, where it goes on a line; else the tables of modal shears and of correlation show it."""
     count = item.shear.shape[1]
+    if count > TERMS:
+        return []
     pairs = [(i, j) for i in range(count) for j in range(i + 1, count) if item.related[i, j] != 0.0]
     if count + len(pairs) > TERMS:
         return []

@@ -32,7 +32,7 @@ def test_numbers_take_the_decimal_mark_of_the_table(read):
 
 
 def test_rows_by_hand(read, storeys_text):
-    head, roof, third, second, first = storeys_text.splitlines()
+    _head, roof, third, second, first = storeys_text.splitlines()
     assert rows(edits.insert_row(read(), None)) == [",,,,,", roof, third, second, first]
     assert rows(edits.insert_row(read(), "1")) == [roof, third, second, first, ",,,,,"]
     assert rows(edits.delete_row(read(), "2")) == [roof, third, first]

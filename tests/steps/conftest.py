@@ -1,4 +1,4 @@
-"""An invented building and its card as the steps take them, and all steps run on them."""
+"""An invented building and its card as the steps take them, and the steps up to participation run on them."""
 
 from __future__ import annotations
 
@@ -90,7 +90,8 @@ def payloads(building: Storeys, keep: int | None = None, share: float = 0.9) -> 
         "participation": ParticipationOptions(),
     }
     found: dict[str, Payload] = {}
-    for kind, step in STEPS.items():
+    for kind in inputs:
+        step = STEPS[kind]
         upstream = tuple(done(STEPS[need], found[need]) for need in step.needs)
         found[kind] = calculated(step, {need: need for need in step.needs}, inputs[kind], upstream)
     return found
@@ -104,7 +105,7 @@ def building() -> Callable[..., Storeys]:
 
 @pytest.fixture(scope="session")
 def steps_of() -> Callable[..., dict[str, Payload]]:
-    """Payloads of all steps on a building."""
+    """Payloads of the steps up to participation on a building."""
     return payloads
 
 

@@ -9,7 +9,7 @@ from calcsheet.steps.card import GENERAL, run
 
 def raised(card) -> list[str]:
     """Keys of the cautions beyond the general ones."""
-    general = [c.key for c in GENERAL]
+    general = [*(c.key for c in GENERAL), "no-demand"]  # none of these cards has a basis
     found = [c.key for c in run(card).cautions]
     assert found[: len(general)] == general
     return found[len(general) :]

@@ -24,7 +24,7 @@ def payloads(building, steps_of):
     return steps_of(building())
 
 
-@pytest.mark.parametrize("kind", STEPS)
+@pytest.mark.parametrize("kind", ["card", "storeys", "modes", "participation"])
 def test_every_payload_survives_json_and_its_records(payloads, kind):
     step, payload = STEPS[kind], payloads[kind]
     assert payload["state"] == "ok"
