@@ -212,7 +212,7 @@ def demand_job(job_folder: Callable[..., Path]) -> Callable[..., Job]:
 def chained(job: Job, keep: int | None = None) -> Job:
     """A job with its steps attached: modes and participation, and those of the demand where it has a basis."""
     inputs = {"modes": ModesOptions(keep=keep), "participation": ParticipationOptions()}
-    if job.payload("card")["inputs"]["basis"] is not None:
+    if (job.payload("card")["inputs"] or {}).get("basis") is not None:
         inputs |= {"demand": DemandOptions(), "peaks": PeaksOptions(), "drift": DriftOptions(), "actions": ActionsOptions()}
     for kind, options in inputs.items():
         job.attach(kind, options)

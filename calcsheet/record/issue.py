@@ -18,6 +18,7 @@ from calcsheet.record.document import page_of, record_of
 from calcsheet.record.errors import RecordError
 from calcsheet.record.execute import Progress, execute
 from calcsheet.record.exporter import record_html
+from calcsheet.record.fonts import missing_characters
 from calcsheet.record.page import Paper, render_page
 from calcsheet.record.pdf import NoEngine, choose_engine, write_pdf
 from calcsheet.steps.graph import Job
@@ -99,6 +100,10 @@ def issue(
     kinds = [k for k in ("html", "pdf") if (to is None or k in to) and not (k == "pdf" and not engine)]
     content = collect(_executed(folder, progress))
     refuse_stale(content, folder)
+    strange = missing_characters(json.dumps(record_of(content), ensure_ascii=False))
+    if strange:
+        lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"
+        note = "; ".join(filter(None, (note, lacking)))
     return _built(content, target, kinds, paper, engine, note)
 
 

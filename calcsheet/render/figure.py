@@ -5,6 +5,7 @@ from __future__ import annotations
 import io
 import re
 import threading
+import warnings
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from dataclasses import dataclass
@@ -94,7 +95,8 @@ def blank(height: float) -> Figure:
 def svg(figure: Figure, title: str) -> str:
     """SVG of a figure, with `title` as its alternative text."""
     buffer = io.StringIO()
-    with styled():
+    with styled(), warnings.catch_warnings():
+        warnings.filterwarnings("ignore", message="Glyph")  # text stays text: the reader's fonts draw it
         FigureCanvasSVG(figure).print_svg(buffer, metadata={"Date": None, "Creator": None})
     drawn = buffer.getvalue()
     drawn = drawn[drawn.index("<svg") :]
