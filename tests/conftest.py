@@ -1,4 +1,4 @@
-"""An invented job in a folder, and IPython without a kernel to run its cells in."""
+"""An invented job in a folder, IPython without a kernel to run its cells in, and planar models."""
 
 from __future__ import annotations
 
@@ -12,12 +12,16 @@ from typing import Any
 
 import comm
 import nbformat
+import numpy as np
 import pytest
 from comm.base_comm import BaseComm
 from IPython.core.interactiveshell import InteractiveShell
 from traitlets.config import Config
 
 from calcsheet.blocks import block as blocks
+from calcsheet.core.chain import Chain
+from calcsheet.core.model import Model
+from calcsheet.core.storeys import Lateral
 from calcsheet.record import issue
 from calcsheet.record.execute import execute
 from calcsheet.steps.actions import ActionsOptions
@@ -213,7 +217,12 @@ def chained(job: Job, keep: int | None = None) -> Job:
     """A job with its steps attached: modes and participation, and those of the demand where it has a basis."""
     inputs = {"modes": ModesOptions(keep=keep), "participation": ParticipationOptions()}
     if (job.payload("card")["inputs"] or {}).get("basis") is not None:
-        inputs |= {"demand": DemandOptions(), "peaks": PeaksOptions(), "drift": DriftOptions(), "actions": ActionsOptions()}
+        inputs |= {
+            "demand": DemandOptions(),
+            "peaks": PeaksOptions(),
+            "drift": DriftOptions(),
+            "actions": ActionsOptions(),
+        }
     for kind, options in inputs.items():
         job.attach(kind, options)
     return job
@@ -481,3 +490,24 @@ class Document(HTMLParser):
 @pytest.fixture
 def document() -> Callable[[str], Document]:
     return Document
+
+
+@pytest.fixture(scope="session")
+def planar() -> Callable[..., Model]:
+    """Build a model of one translation a level, lowest first; a sequence of stiffnesses makes a chain."""
+
+    def build(
+        mass: Sequence[float], lateral: Lateral | Sequence[float], height: Sequence[float] | None = None
+    ) -> Model:
+        n = len(mass)
+        return Model(
+            level=tuple(f"L{i + 1}" for i in range(n)),
+            height=np.arange(1.0, n + 1.0) if height is None else np.asarray(height, dtype=float),
+            mass=np.asarray(mass, dtype=float),
+            level_of=tuple(range(n)),
+            direction=("x",),
+            influence=np.ones((1, n)),
+            lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
+        )
+
+    return build

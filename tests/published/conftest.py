@@ -6,40 +6,13 @@ Each file names its source, and whether its values are from memory; the tests st
 from __future__ import annotations
 
 import json
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
 import numpy as np
 import pytest
-
-from calcsheet.core.chain import Chain
-from calcsheet.core.model import Model
-from calcsheet.core.storeys import Lateral
-
-Planar = Callable[..., Model]
-
-
-@pytest.fixture(scope="session")
-def planar() -> Planar:
-    """Build a model of one translation a level, lowest first; a sequence of stiffnesses makes a chain."""
-
-    def build(
-        mass: Sequence[float], lateral: Lateral | Sequence[float], height: Sequence[float] | None = None
-    ) -> Model:
-        n = len(mass)
-        return Model(
-            level=tuple(f"L{i + 1}" for i in range(n)),
-            height=np.arange(1.0, n + 1.0) if height is None else np.asarray(height, dtype=float),
-            mass=np.asarray(mass, dtype=float),
-            level_of=tuple(range(n)),
-            direction=("x",),
-            influence=np.ones((1, n)),
-            lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
-        )
-
-    return build
 
 
 @dataclass(frozen=True)

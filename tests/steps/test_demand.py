@@ -142,7 +142,10 @@ def test_a_system_without_its_base_is_refused_at_the_basis(demand_job):
     assert (job.payload("basis")["state"], job.payload("basis")["why"]) == ("refused", why)
     assert job.payload("modes")["state"] == "ok"
     for kind in ("demand", "peaks", "drift", "actions"):
-        assert (job.payload(kind)["state"], job.payload(kind)["why"]) == ("waiting", f"waits for basis of the demand: {why}")
+        assert (job.payload(kind)["state"], job.payload(kind)["why"]) == (
+            "waiting",
+            f"waits for basis of the demand: {why}",
+        )
 
 
 def test_the_first_modes_base_shear_is_a_worked_line(demand_job):

@@ -1,0 +1,107 @@
+"""Storey actions of two storeys, 200 t and 100 t on 2k and k, k = 50 000 kN/m, storeys of 4 m and 3 m, worked by hand."""
+
+from __future__ import annotations
+
+import math
+
+import pytest
+
+from calcsheet.core.codes.common import up_to_static
+
+G = 9.80665
+W = 300.0 * G
+SHEAR = (math.sqrt(800**2 + 100**2) / 3, math.sqrt(400**2 + 100**2) / 3)  # by SRSS, times the ordinate A of the plateau
+MOMENT = (math.sqrt((400 + 3200 / 3) ** 2 + (-100 + 400 / 3) ** 2), math.sqrt(400**2 + 100**2))
+SRSS = ("edition =", 'combination = "SRSS"\nedition =')
+EN_A, ASCE_A, IS_A = 0.2 * G * 1.2 * 2.5 / 3.0, G / 8.0, 0.24 / 2 * 1.2 / 5 * 2.5 * G
+SCALE = 300 / SHEAR[0]  # static on the same plateau: 300 t
+AMPLIFIED = """\
+level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m],gravity load [kN]
+Roof,3,100,50000,80000,9000
+1,4,200,100000,160000,41000
+"""
+
+
+def actions(job, direction=0):
+    payload = job.payload("actions")
+    assert payload["state"] == "ok", payload["why"]
+    return payload["result"]["directions"][direction]
+
+
+@pytest.mark.parametrize(
+    ("basis", "ordinate", "scale", "static"),
+    [
+        # F by weight and height: 200 × 4 and 100 × 7 over 1500
+        ("EN", EN_A, 1.0, (300 * EN_A * 800 / 1500, 300 * EN_A * 700 / 1500)),
+        # k = 1 up to 0.5 s
+        ("7-16", ASCE_A, SCALE, (W / 8 * 800 / 1500, W / 8 * 700 / 1500)),
+        ("7-22", ASCE_A, SCALE, (W / 8 * 800 / 1500, W / 8 * 700 / 1500)),
+        # by h²: 200 × 16 and 100 × 49 over 8100
+        ("IS", IS_A, SCALE, (300 * IS_A * 3200 / 8100, 300 * IS_A * 4900 / 8100)),
+        ("points", G, 1.0, (0.0, 0.0)),
+    ],
+)
+def test_from_modal_to_design_values(demand_job, basis, ordinate, scale, static):
+    found = actions(demand_job(basis, SRSS))
+    assert found["modal_base_shear"] == pytest.approx(SHEAR[0] * ordinate, rel=1e-9)
+    assert found["scaling"]["forces"] == pytest.approx(scale, rel=1e-9)
+    assert found["shear"] == pytest.approx([scale * v * ordinate for v in SHEAR], rel=1e-9)
+    assert found["moment"] == pytest.approx([scale * m * ordinate for m in MOMENT], rel=1e-9)
+    lower, upper = (scale * v * ordinate for v in SHEAR)
+    assert found["equivalent"] == pytest.approx([lower - upper, upper], rel=1e-9)
+    assert found["design_base_shear"] == pytest.approx(lower, rel=1e-9)
+    assert found["static_force"] == pytest.approx(static, rel=1e-9)
+    assert found["weight"] == pytest.approx(W, rel=1e-12)
+    assert found["overturning"] == pytest.approx(scale * MOMENT[0] * ordinate / W, rel=1e-9)
+    assert found["amplified"] == [1.0, 1.0]
+
+
+def test_a_scaled_base_shear_is_the_static_one_and_scaling_again_changes_nothing(demand_job):
+    for basis in ("7-16", "7-22", "IS"):
+        found = actions(demand_job(basis, name=basis))
+        assert found["scaling"]["forces"] > 1.0
+        assert found["design_base_shear"] == pytest.approx(found["static"]["shear"], rel=1e-12)
+        assert up_to_static(found["static"]["shear"], found["design_base_shear"]) == pytest.approx(1.0, rel=1e-12)
+
+
+def test_a_modal_base_shear_above_the_static_one_is_left_as_it_is(demand_job):
+    # R = 8 in the modal ordinates at S_DS = 1, static by S_D1/(T R/I_e) with T_S = 0.2 s; points hold 1.0 at both periods
+    found = actions(demand_job("7-22", SRSS, ("s_d1 = 0.6", "s_d1 = 0.2")))
+    assert found["static"]["shear"] < found["modal_base_shear"]
+    assert found["scaling"]["forces"] == 1.0
+    assert found["shear"] == pytest.approx([v * ASCE_A for v in SHEAR], rel=1e-9)
+
+
+def test_second_order_goes_into_shears_and_into_moments_below(demand_job):
+    # θ = 0.125 in the lower storey, 0.06 in the upper
+    changes = (("c_d_x = 5.5", "c_d_x = 2.5\nshear_ratio = 0.5"), SRSS)
+    found = actions(demand_job("7-16", *changes, storeys=AMPLIFIED))
+    assert found["amplified"] == pytest.approx([1 / 0.875, 1.0], rel=1e-9)
+    lower, upper = SCALE * SHEAR[0] * ASCE_A / 0.875, SCALE * SHEAR[1] * ASCE_A
+    assert found["shear"] == pytest.approx([lower, upper], rel=1e-9)
+    moments = [SCALE * MOMENT[0] * ASCE_A / 0.875, SCALE * MOMENT[1] * ASCE_A]
+    assert found["moment"] == pytest.approx(moments, rel=1e-9)
+    assert found["equivalent"] == pytest.approx([lower - upper, upper], rel=1e-9)
+
+
+def test_torsion_at_the_edge_where_the_edition_has_a_multiplier(demand_job):
+    found = demand_job("EN", ("q_x = 3", "q_x = 3\nedge_x = 0.4"))
+    assert actions(found)["torsion"] == pytest.approx(1 + 1.2 * 0.4)
+    assert actions(found, 1)["torsion"] == pytest.approx(1 + 1.2 * 0.5)
+    for basis in ("7-16", "7-22", "IS", "points"):
+        assert actions(demand_job(basis, name=basis))["torsion"] is None
+
+
+def test_worked_lines_say_what_is_multiplied(demand_job):
+    job = demand_job("IS", SRSS)
+    lines = {line["quantity"]: line for line in job.payload("actions")["lines"]}
+    scale = lines["Scale of forces, x"]
+    assert [n["value"] for n in scale["numbers"]] == pytest.approx([300 * IS_A, SHEAR[0] * IS_A], rel=1e-9)
+    design = lines["Design base shear, x"]
+    assert [n["value"] for n in design["numbers"]] == pytest.approx([SHEAR[0] * IS_A, SCALE, 1.0], rel=1e-9)
+    assert design["result"]["value"] == pytest.approx(300 * IS_A, rel=1e-9)
+    top = lines["Equivalent lateral force at the top, x"]
+    assert top["result"]["value"] == top["numbers"][0]["value"]
+    assert "Scale of forces, x" not in {
+        line["quantity"] for line in demand_job("EN", name="unscaled").payload("actions")["lines"]
+    }
