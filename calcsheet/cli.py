@@ -136,7 +136,8 @@ def _issued(folder: Path, to: tuple[str, ...] | None, paper: Paper) -> None:
             paper=paper,
             progress=lambda cell, cells: bar.update(task, completed=cell, total=cells),
         )
-    click.echo(f"Issued, status {done.status}:")
+    because = f", because of {'; '.join(done.reasons)}" if done.reasons else ""
+    click.echo(f"Issued, status {done.status}{because}:")
     for path in done.files:
         click.echo(f"  {path}")
     if done.note:

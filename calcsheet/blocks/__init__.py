@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from calcsheet.blocks.blocks import JobCard, ModePlot, ModeSolver, ParticipationSummary
+from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
+from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.storeytable import StoreyTable
 
 __all__ = [

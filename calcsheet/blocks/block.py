@@ -15,7 +15,7 @@ from calcsheet.render.figure import Drawing
 from calcsheet.render.registry import VIEWS
 from calcsheet.render.view import Rendered, View
 from calcsheet.steps.graph import Job
-from calcsheet.steps.serial import fingerprint
+from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
 
 STATIC = "CALCSHEET_STATIC"
@@ -31,15 +31,18 @@ class Block:
         The job.
     key : str
         Key of the step in it.
+    asked : object, optional
+        The inputs that this block asked the step for; none where it only shows the step.
     **options
         Options of the view.
     """
 
     view_name: ClassVar[str]
 
-    def __init__(self, job: Job, key: str, **options: Any) -> None:
+    def __init__(self, job: Job, key: str, asked: object = None, **options: Any) -> None:
         self.job = job
         self.key = key
+        self.asked = "" if asked is None else fingerprint(to_json(asked))
         self.view: View = VIEWS[self.view_name]
         self.options = self.view.chosen(options)
 
@@ -65,6 +68,14 @@ class Block:
         shown = self.shown()
         _SHOWN[cell][1].append(shown)
         shown.open()
+
+
+def must_be(block: Block, given: object, kind: type[Block]) -> None:
+    """Refuse (TypeError) what a block can't be built on."""
+    if not isinstance(given, kind):
+        got = type(given).__name__
+        article = "an" if got[0] in "AEIOUaeiou" else "a"
+        raise TypeError(f"{type(block).__name__}: got {article} {got}; must be a {kind.__name__}")
 
 
 class Shown:
@@ -162,11 +173,8 @@ class Shown:
         else:
             html = held_up(payload)
         carried = self.carried(payloads)
-        self.keep(
-            bundle(
-                block.view, block.key, payload, block.options, html, source=self.source, revision=revision, **carried
-            )
-        )
+        carried |= {"source": self.source, "asked": block.asked}
+        self.keep(bundle(block.view, block.key, payload, block.options, html, revision=revision, **carried))
 
     def carried(self, payloads: Mapping[str, Payload]) -> dict[str, Any]:
         """What this twin carries for the whole notebook."""

@@ -2,47 +2,12 @@
 
 from __future__ import annotations
 
-import datetime as dt
 from numbers import Integral, Real
-from pathlib import Path
 
-from calcsheet.blocks.block import Block, Shown, ShownCard
+from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.storeytable import StoreyTable
-from calcsheet.steps.graph import Job
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
-
-
-class JobCard(Block):
-    """The job of a folder: identity, people, units, model.
-
-    Parameters
-    ----------
-    folder : str or path
-        The job folder, with job.toml and storeys.csv.
-
-    Examples
-    --------
-    >>> job = JobCard(".")  # doctest: +SKIP
-    """
-
-    view_name = "card"
-
-    def __init__(self, folder: str | Path = ".") -> None:
-        super().__init__(Job.open(folder), "card")
-
-    def set(self, key: str, value: str | bool | int | float | dt.date | None) -> None:
-        """Set a key of job.toml, such as "job.revision" or 'answers."no-origin-storeys.csv"'; None takes it out.
-
-        Raises
-        ------
-        InputError
-            The card would not be valid, or was changed on disk; nothing has changed.
-        """
-        self.job.set_value(key, value)
-
-    def shown(self) -> Shown:
-        return ShownCard(self)
 
 
 class ModeSolver(Block):
@@ -80,9 +45,10 @@ class ModeSolver(Block):
         energy: str = "hidden",
         name: str = "modes",
     ) -> None:
+        must_be(self, storeys, StoreyTable)
         options = ModesOptions(keep=_count(keep), share=_share(share), stiffness=stiffness)
         key = storeys.job.attach("modes", options, {"storeys": storeys.key}, name)
-        super().__init__(storeys.job, key, energy=energy)
+        super().__init__(storeys.job, key, options, energy=energy)
 
 
 class ModePlot(Block):
@@ -94,7 +60,7 @@ class ModePlot(Block):
         The modes.
     normalise : {"largest", "roof", "mass"}
         Scale of the shapes drawn.
-    values : {"hidden", "shown"}
+    values : {"shown", "hidden"}
         Whether the mass-normalised ordinates are listed.
 
     Examples
@@ -104,7 +70,8 @@ class ModePlot(Block):
 
     view_name = "mode plot"
 
-    def __init__(self, modes: ModeSolver, *, normalise: str = "largest", values: str = "hidden") -> None:
+    def __init__(self, modes: ModeSolver, *, normalise: str = "largest", values: str = "shown") -> None:
+        must_be(self, modes, ModeSolver)
         super().__init__(modes.job, modes.key, normalise=normalise, values=values)
 
 
@@ -117,6 +84,8 @@ class ParticipationSummary(Block):
         The modes.
     share : float, optional
         Target share of the mass; the solver's where omitted.
+    name : str, optional
+        Name of this summary in the job: a second one of the same modes needs its own.
 
     Examples
     --------
@@ -125,11 +94,13 @@ class ParticipationSummary(Block):
 
     view_name = "participation"
 
-    def __init__(self, modes: ModeSolver, *, share: float | None = None) -> None:
+    def __init__(self, modes: ModeSolver, *, share: float | None = None, name: str | None = None) -> None:
+        must_be(self, modes, ModeSolver)
         needs = {"storeys": modes.payload["needs"]["storeys"], "modes": modes.key}
-        key = "participation" if modes.key == "modes" else f"participation of {modes.key}"
+        usual = "participation" if modes.key == "modes" else f"participation of {modes.key}"
         options = ParticipationOptions(None if share is None else _share(share))
-        super().__init__(modes.job, modes.job.attach("participation", options, needs, key))
+        key = modes.job.attach("participation", options, needs, name or usual)
+        super().__init__(modes.job, key, options)
 
 
 def _share(share: float) -> float:

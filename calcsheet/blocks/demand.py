@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from calcsheet.blocks.block import Block
+from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.blocks import ParticipationSummary
 from calcsheet.steps.actions import ActionsOptions
 from calcsheet.steps.demand import DemandOptions
@@ -26,6 +26,7 @@ class DemandSpectrum(Block):
     view_name = "demand"
 
     def __init__(self, participation: ParticipationSummary) -> None:
+        must_be(self, participation, ParticipationSummary)
         job, needs = participation.job, dict(participation.payload["needs"])
         needs |= {"participation": participation.key, "basis": "basis"}
         super().__init__(job, job.attach("demand", DemandOptions(), needs, _key("demand", participation.key)))
@@ -47,6 +48,7 @@ class ModalTable(Block):
     view_name = "peaks"
 
     def __init__(self, demand: DemandSpectrum) -> None:
+        must_be(self, demand, DemandSpectrum)
         job, needs = demand.job, dict(demand.payload["needs"]) | {"demand": demand.key}
         super().__init__(job, job.attach("peaks", PeaksOptions(), needs, _key("peaks", needs["participation"])))
 
@@ -67,6 +69,7 @@ class DriftCheck(Block):
     view_name = "drift"
 
     def __init__(self, table: ModalTable) -> None:
+        must_be(self, table, ModalTable)
         job, needs = table.job, dict(table.payload["needs"]) | {"peaks": table.key}
         super().__init__(job, job.attach("drift", DriftOptions(), needs, _key("drift", needs["participation"])))
 
@@ -87,6 +90,7 @@ class StoreyActions(Block):
     view_name = "actions"
 
     def __init__(self, drift: DriftCheck) -> None:
+        must_be(self, drift, DriftCheck)
         job = drift.job
         peaks = drift.payload["needs"]["peaks"]
         needs = dict(job.payload(peaks)["needs"]) | {"peaks": peaks, "drift": drift.key}
@@ -109,6 +113,7 @@ class StaticComparison(Block):
     view_name = "comparison"
 
     def __init__(self, actions: StoreyActions) -> None:
+        must_be(self, actions, StoreyActions)
         super().__init__(actions.job, actions.key)
 
 

@@ -6,13 +6,13 @@ import itertools
 from difflib import SequenceMatcher
 from typing import Any
 
-from calcsheet.blocks.block import Block, Shown
+from calcsheet.blocks.block import Block, Shown, must_be
+from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.widgets import LiveWidget, Message, TableWidget
 from calcsheet.job import edits
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.render.numbers import decimals_for, text
-from calcsheet.steps.graph import Job
 from calcsheet.units import display
 
 
@@ -32,8 +32,9 @@ class StoreyTable(Block):
 
     view_name = "storeys"
 
-    def __init__(self, job: Block | Job) -> None:
-        super().__init__(job if isinstance(job, Job) else job.job, "storeys")
+    def __init__(self, job: JobCard) -> None:
+        must_be(self, job, JobCard)
+        super().__init__(job.job, "storeys")
 
     def shown(self) -> Shown:
         return ShownTable(self)

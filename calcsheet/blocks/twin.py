@@ -27,6 +27,7 @@ def bundle(
     *,
     source: str,
     revision: int,
+    asked: str = "",
     style: str = "",
     payloads: Mapping[str, Payload] | None = None,
 ) -> dict[str, Any]:
@@ -48,6 +49,8 @@ def bundle(
         Fingerprint of the cell's source, so that a cell changed and not run again is noticed.
     revision : int
         Revision of the job.
+    asked : str
+        Fingerprint of the inputs that the block asked its step for; empty where it only shows the step.
     style : str
         Style sheet for all twins of the notebook.
     payloads : mapping of str to payload, optional
@@ -61,6 +64,8 @@ def bundle(
         "options": dict(options),
         "source": source,
     }
+    if asked:
+        data["asked"] = asked
     if payloads is not None:
         data["payloads"] = dict(payloads)
     sheet = f"<style>{style}</style>" if style else ""

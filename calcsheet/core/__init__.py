@@ -48,10 +48,12 @@ _ITEMS = {
     "permitted": "analysis permitted",
     "importance": "importance factor",
     "ordinates": "design ordinate S_a(T)",
+    "ordinate_relation": "S_a(T) worked out",
     "elastic_ordinates": "elastic ordinate that caps displacements",
     "damping": "ξ of the ordinates",
     "static": "static base shear",
     "distribution": "static force at each level",
+    "distribution_relation": "static force at the top level worked out",
     "modes": "modes asked for",
     "combination": "rules of combination",
     "independent": "modes independent for SRSS",
@@ -112,6 +114,7 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("design drifts, θ, screens", "design.drifts", "the edition's clauses"),
     Formula("design storey actions", "design.actions", "the edition's clauses"),
     Formula("F = V wh^k/Σwh^k", "codes.common.by_height", _ASCE.format("12.8.3")),
+    Formula("F_n = V w_n/Σw(h/h_n)^k", "codes.common.at_top", _ASCE.format("12.8.3")),
     Formula("max(1, V_static/V_modal)", "codes.common.up_to_static", _ASCE.format("12.9.1.4.1")),
     Formula("θ = PΔ/(Vh)", "codes.common.stability", _EN.format("4.4.2.2(2)")),
     Formula("1/(1 − θ)", "codes.common.amplified", _EN.format("4.4.2.2(3)")),
@@ -120,6 +123,11 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("heavy levels", "codes.common.heavier", _ASCE.format("Table 12.3-2")),
     Formula("soft storeys and heavy levels, with exceptions", "codes.asce7_screens.vertical", _ASCE.format("12.3.2.2")),
     Formula("two-period S_a(T)", "codes.asce7.ASCE7.two_period", _ASCE.format("11.4.6")),
+    Formula("branch of the two-period S_a(T)", "codes.asce7_spectrum.two_period_relation", _ASCE.format("11.4.6")),
+    Formula("S_a(T) worked out, 7-16", "codes.asce7.ASCE7.spectrum_relation", _ASCE.format("11.4.6")),
+    Formula(
+        "S_a(T) worked out, 7-22", "codes.asce7_22.ASCE722.spectrum_relation", "ASCE/SEI 7-22, 11.4.5 (from memory)"
+    ),
     Formula("S_a(T), 7-16", "codes.asce7.ASCE7.spectrum", _ASCE.format("11.4.6")),
     Formula("S_a(T), 7-22", "codes.asce7_22.ASCE722.spectrum", "ASCE/SEI 7-22, 11.4.5 (from memory)"),
     Formula("C_u", "codes.asce7.ASCE7.limit_of_period", _ASCE.format("Table 12.8-1")),
@@ -130,6 +138,7 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("S_e(T)", "codes.en1998_2004.EN1998.elastic", _EN.format("3.2.2.2")),
     Formula("k ≥ 3√n", "codes.en1998_2004.least_modes", _EN.format("4.3.3.3.1(5)")),
     Formula("S_a/g", "codes.is1893_2016.IS1893.curve", "IS 1893 (Part 1):2016, 6.4.2 (from memory)"),
+    Formula("two points around T", "codes.points.between_points", "definition"),
     Formula("S_a at T from points", "codes.points.interpolated", "definition"),
     *(
         Formula(f"{what}: {edition}", f"codes.{where}.{item}", f"{edition} (from memory)")

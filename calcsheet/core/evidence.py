@@ -119,7 +119,7 @@ def evidence_of_participation(part: Participation, kept: int, size: int) -> tupl
     if kept < size:
         return ()
     gap = abs(part.effective_mass.sum() / part.total_mass - 1.0)
-    what = "effective masses add up to the total mass"
+    what = f"effective masses add up to the total mass, {part.direction}"
     return (_evidence(f"total-mass-{part.direction}", what, "|Σ effective mass / total − 1|", gap, 1e-10),)
 
 

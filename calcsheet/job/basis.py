@@ -76,10 +76,18 @@ def read_basis(card: Card, tables: Mapping[str, TextTable]) -> Basis:
 
 def _edition(kind: type[Edition], given: Mapping[str, Any], card: Card, tables: Mapping[str, TextTable]) -> Edition:
     known = {f.name: f for f in fields(kind)}  # type: ignore[arg-type]
-    for key in given:
-        if key not in known and key not in SETTINGS:
-            raise _left_behind(kind, key, given, list(known))
     hints, system = get_type_hints(kind), card.units.system
+    left = [key for key in given if key not in known and key not in SETTINGS]
+    missing = [
+        f"{f.name} ({_rule(f)['help']})"
+        for f in known.values()
+        if f.name not in given and f.name not in OF_SYSTEM and f.default is MISSING
+    ]
+    foreign = [key for key in left if not _owners(key)]
+    if foreign or (left and len(left) + len(missing) == 1):
+        raise _left_behind(kind, (foreign or left)[0], given, list(known))
+    if len(left) + len(missing) > 1:
+        raise _changed(kind, left, missing)
     values: dict[str, Any] = {}
     for key, field in known.items():
         if key in given:
@@ -101,6 +109,23 @@ def _edition(kind: type[Edition], given: Mapping[str, Any], card: Card, tables: 
     return edition
 
 
+def _changed(kind: type[Edition], left: Sequence[str], missing: Sequence[str]) -> InputError:
+    """All that a change of the edition leaves to be done."""
+    found, to_do = f'with edition "{kind.name}"', f"missing: {', '.join(missing)}"
+    if left:
+        keys = "1 key belongs" if len(left) == 1 else f"{len(left)} keys belong"
+        found += f", {keys} to other editions ({', '.join(left)})"
+        if not missing:
+            return InputError(FILE, "basis", found, "take them out")
+        found += f": take {'it' if len(left) == 1 else 'them'} out"
+    return InputError(FILE, "basis", found, to_do)
+
+
+def _owners(key: str) -> list[str]:
+    """Editions that have a parameter."""
+    return [e.name for e in EDITIONS.values() if key in {f.name for f in fields(e)}]  # type: ignore[arg-type]
+
+
 def _left_behind(kind: type[Edition], key: str, given: Mapping[str, Any], known: Sequence[str]) -> InputError:
     """What is wrong with a key that the edition doesn't have."""
     place = dotted(["basis", key])
@@ -109,7 +134,7 @@ def _left_behind(kind: type[Edition], key: str, given: Mapping[str, Any], known:
         if "damping_ratio" in known:
             why = f'with edition "{kind.name}" its name is damping_ratio'
         return InputError(FILE, place, f"got {shown(given[key])}", f"must be left out: {why}")
-    owners = [e.name for e in EDITIONS.values() if key in {f.name for f in fields(e)}]  # type: ignore[arg-type]
+    owners = _owners(key)
     if owners:
         found = f"a parameter of {_listed(owners, 'and')}"
         return InputError(FILE, place, found, f'must be left out with edition "{kind.name}"')

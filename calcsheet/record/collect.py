@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import json
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any
@@ -60,6 +60,11 @@ class Content:
     parts: tuple[Words | Shown | Own, ...]
     payloads: Mapping[str, Payload]
 
+    @property
+    def words(self) -> tuple[str, ...]:
+        """Sources of the markdown cells."""
+        return tuple(part.source for part in self.parts if isinstance(part, Words))
+
 
 def collect(notebook: NotebookNode) -> Content:
     """Take a record's content from an executed notebook.
@@ -67,10 +72,11 @@ def collect(notebook: NotebookNode) -> Content:
     Raises
     ------
     RecordError
-        No job card, a step that is refused or waiting, a cell that was changed and not run again, or outputs that do
-        not belong together.
+        No job card, a step that is refused or waiting, a cell that was changed and not run again, two cells that ask
+        for one step with different options, or outputs that do not belong together.
     """
     payloads = _payloads(notebook)
+    _refuse_two_of_a_name(notebook)
     for key, payload in payloads.items():
         if payload["state"] != "ok":
             raise RecordError(f'{STEPS[payload["kind"]].title}, step "{key}", is {payload["state"]}: {payload["why"]}')
@@ -105,15 +111,10 @@ def refuse_stale(content: Content, folder: Path) -> None:
 def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
     """Payloads in canonical form: the same record from a notebook just run as from one saved and read again."""
     found = None
-    for cell in notebook.cells:
-        for output in cell.get("outputs", ()):
-            data = output.get("data", {}).get(MIME)
-            if data is not None and data["format"] != FORMAT:
-                raise RecordError(
-                    f"the notebook was run by another version of calcsheet (twin format {data['format']})"
-                )
-            if data is not None and "payloads" in data:
-                found = data["payloads"]
+    for data in _twins(notebook):
+        if data["format"] != FORMAT:
+            raise RecordError(f"the notebook was run by another version of calcsheet (twin format {data['format']})")
+        found = data.get("payloads", found)
     if found is None:
         raise RecordError(
             "the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells"
@@ -125,6 +126,23 @@ def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
     # a saved notebook has its keys sorted: upstream first again
     ordered = sorted(found.items(), key=lambda item: (kinds.index(item[1]["kind"]), item[0]))
     return {key: json.loads(rfc8785.dumps(payload)) for key, payload in ordered}
+
+
+def _twins(notebook: NotebookNode) -> Iterator[Mapping[str, Any]]:
+    for cell in notebook.cells:
+        for output in cell.get("outputs", ()):
+            if (data := output.get("data", {}).get(MIME)) is not None:
+                yield data
+
+
+def _refuse_two_of_a_name(notebook: NotebookNode) -> None:
+    """A step has one set of options: the later cell's would stand under the earlier cell's words."""
+    asked: dict[str, str] = {}
+    for data in _twins(notebook):
+        if "asked" in data and asked.setdefault(data["step"], data["asked"]) != data["asked"]:
+            raise RecordError(
+                f'two cells ask for step "{data["step"]}" with different options; give one of them its own name="\u2026"'
+            )
 
 
 def _of_code(number: int, cell: NotebookNode, payloads: Mapping[str, Payload]) -> list[Shown | Own]:

@@ -46,7 +46,7 @@ def record_of(content: Content) -> dict[str, Any]:
     return {
         "format": FORMAT,
         "programme": PROGRAMME,
-        "status": status_of(content.payloads),
+        "status": status_of(content.payloads, content.words),
         "fingerprints": {"inputs": fingerprint(inputs), "results": fingerprint(results)},
         "payloads": dict(content.payloads),
         "notebook": [_plain(part) for part in content.parts],
@@ -98,7 +98,7 @@ def page_of(content: Content, target: Target, engine: str = "") -> Page:
     return Page(
         cover=cover,
         draft=record["status"] != FOR_CHECKING,
-        headline=in_full(payloads),
+        headline=in_full(payloads, content.words),
         sections=(*_body(content, math), *_back(content, record)),
         data=json.dumps(record, ensure_ascii=False),
     )

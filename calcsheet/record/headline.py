@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Iterable, Iterator, Mapping
 from html import escape
 from typing import Any
 
@@ -32,8 +32,8 @@ def brief(payloads: Payloads) -> list[Row]:
     return [row for key, payload in payloads.items() for row in _of(key, payload, payloads, BRIEF)]
 
 
-def in_full(payloads: Payloads) -> str:
-    """HTML of the results, and of what stands between this record and its use."""
+def in_full(payloads: Payloads, words: Iterable[str] = ()) -> str:
+    """HTML of the results, and of what stands between this record and its use; `words` are the notebook's markdown cells."""
     figures = [e for p in payloads.values() for e in p["evidence"]]
     kept = sum(e["within"] for e in figures)
     verdict = outcome("passes" if kept == len(figures) else "exceeds")
@@ -49,7 +49,7 @@ def in_full(payloads: Payloads) -> str:
     missing = [words for kind, words in LEFT_OUT.items() if kind not in kinds]
     if missing:
         rows.append((", ".join(missing).capitalize(), f"{outcome('not assessed')} in this record"))
-    reasons = held_back(payloads)
+    reasons = held_back(payloads, words)
     if reasons:
         rows.append(("Draft because of", "; ".join(escape(r) for r in reasons)))
     return facts(rows)

@@ -21,6 +21,7 @@ from calcsheet.record.exporter import record_html
 from calcsheet.record.fonts import missing_characters
 from calcsheet.record.page import Paper, render_page
 from calcsheet.record.pdf import NoEngine, choose_engine, write_pdf
+from calcsheet.record.status import held_back
 from calcsheet.steps.graph import Job
 
 NOTEBOOK = "calc.ipynb"
@@ -44,6 +45,8 @@ class Issued:
         Its files: HTML, PDF, JSON, as asked for.
     status : str
         Status word.
+    reasons : tuple of str
+        What keeps it a draft.
     note : str
         What could not be made and the remedy; empty where nothing is missing.
     """
@@ -51,6 +54,7 @@ class Issued:
     folder: Path
     files: tuple[Path, ...]
     status: str
+    reasons: tuple[str, ...]
     note: str
 
 
@@ -146,7 +150,7 @@ def _built(content: Content, target: Path, kinds: Sequence[str], paper: Paper, e
         shutil.rmtree(building, ignore_errors=True)
         raise
     files = tuple(sorted(target.iterdir(), key=lambda path: (".html", ".pdf", ".json").index(path.suffix)))
-    return Issued(target, files, record["status"], note)
+    return Issued(target, files, record["status"], held_back(content.payloads, content.words), note)
 
 
 def _refuse_issued(target: Path, revision: str) -> None:

@@ -24,6 +24,10 @@ Paper = Literal["a4", "letter"]
 PARTS = ("front", "body", "back")
 PAPERS = ("a4", "letter")
 LISTED = (2, 3)
+HEAD, FOOT = 60, 50
+"""Characters of the project and of the title that fit one line of the running head and foot."""
+WORDS = 60
+"""Words of the purpose on the cover: more would push the sign-off off the first sheet."""
 HEADING = re.compile(r"h[2-6]")
 MONTHS = [
     "January", "February", "March", "April", "May", "June", "July", "August", "September", "October",
@@ -267,12 +271,11 @@ class _Headings(HTMLParser):
 def _sheets(page: Page, paper: Paper) -> str:
     """What print.css can't know: paper, running head and foot, watermark."""
     cover = page.cover
-    initials = [f"{person.role} {person.initials or '–'}" for person in cover.people[:2]]
     running = {
-        "top-left": cover.project,
+        "top-left": shortened(cover.project, HEAD),
         "top-right": f"{cover.number} · revision {cover.revision} · {spoken(cover.date)}",
-        "bottom-left": " · ".join(initials),
-        "bottom-center": cover.title,
+        "bottom-left": " · ".join(_signed(person) for person in cover.people[:2]),
+        "bottom-center": shortened(cover.title, FOOT),
     }
     boxes = "".join(f"  @{place} {{ content: {css_string(text)}; }}\n" for place, text in running.items())
     sheets = f"@page {{ size: {paper};\n{boxes}}}\n@page wide {{ size: {paper} landscape; }}\n"
@@ -280,6 +283,27 @@ def _sheets(page: Page, paper: Paper) -> str:
         image = base64.b64encode(_text("draft.svg").encode()).decode("ascii")
         sheets += f'.watermark {{ background-image: url("data:image/svg+xml;base64,{image}"); }}\n'
     return sheets
+
+
+def _signed(person: Person) -> str:
+    """Role and initials of a person, and whether they have yet to sign; it breaks over no line."""
+    initials = person.initials or "–"
+    if person.date:
+        return f"{person.role}\u00a0{initials}"
+    open_role = person.role.removesuffix("ed") + "er"  # "Checked DI" would read as done
+    return f"{open_role}\u00a0{initials}" + ("\u00a0(not\u00a0signed)" if person.name else "")
+
+
+def shortened(text: str, length: int) -> str:
+    """A text in one line of at most `length` characters, with an ellipsis where it is cut."""
+    line = " ".join(text.split())
+    return line if len(line) <= length else f"{line[: length - 1].rstrip()}…"
+
+
+def first_words(text: str) -> str:
+    """A text as the cover has room for it."""
+    words = text.split()
+    return text if len(words) <= WORDS else f"{' '.join(words[:WORDS])} … (in full in the job card)"
 
 
 def css_string(text: str) -> str:
@@ -295,5 +319,5 @@ def _text(name: str) -> str:
 @cache
 def _template() -> Template:
     environment = Environment(autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
-    environment.filters["spoken"] = spoken
+    environment.filters |= {"spoken": spoken, "first_words": first_words}
     return environment.from_string(_text("record.html.j2"))

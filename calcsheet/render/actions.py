@@ -28,7 +28,8 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     storeys = payloads["storeys"]["inputs"]
     basis = payloads[payload["needs"]["basis"]]["result"]
     directions = payload["result"]["directions"]
-    html = [f"<p>Force level: {symbols(basis['level'])}; second-order amplification is in where θ asks for it.</p>"]
+    more = "the edition's scale is in, and second-order amplification where θ asks for it"
+    html = [f"<p>Force level: {symbols(basis['level'])}; {more}.</p>"]
     for i, item in enumerate(directions):
         html.append(_table(item, storeys["level"], system, f"/{key}/result/directions/{i}"))
     html.append(f"<p>{escape(EQUIVALENT)}</p>")

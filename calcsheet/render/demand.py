@@ -46,12 +46,15 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
 def _edition(basis: Mapping[str, Any], directions: list[dict[str, Any]], key: str) -> str:
     said, given = basis["result"], basis["inputs"]
     factor = said["importance"]
+    damping = said["damping"]
+    ratio = number(damping["value"], "share", "SI", f"/{key}/result/damping/value")
     importance = number(factor["value"], "ratio", "SI", f"/{key}/result/importance/value")
     rows = [
         ("edition", escape(said["edition"])),
         ("force level", symbols(said["level"])),
         ("importance factor", f"{symbols(factor['symbol'])} = {importance} ({symbols(factor['clause'])})"),
         ("combination", f"{escape(given['combination'])} ({symbols(said['combination_clause'])})"),
+        ("damping of the correlation", f"{symbols(damping['symbol'])} = {ratio} ({symbols(damping['clause'])})"),
         ("modes asked for", answered(said["modes"])),
     ]
     rows += [(f"is this analysis permitted? {d['direction']}", answered(d["permitted"])) for d in directions]

@@ -24,17 +24,23 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     storeys = payloads["storeys"]["inputs"]
     directions = payload["result"]["directions"]
     html = [f"<p>Stiffness set: {escape(payload['result']['stiffness'])}.</p>"]
+    peaks = payload["needs"]["peaks"]
     for i, item in enumerate(directions):
         at = f"/{key}/result/directions/{i}"
-        html += [_table(item, storeys["level"], system, at), _words(item, storeys["level"], system, at), _screens(item)]
+        of, cap = f"/{peaks}/result/directions/{i}", payloads[peaks]["result"]["directions"][i]["cap"]
+        html.append(_table(item, cap, storeys["level"], system, at, of))
+        html += [_words(item, storeys["level"], system, at), _screens(item)]
     return Rendered("".join(html), lambda: (_drawn(directions, storeys, system),))
 
 
-def _table(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> str:
+def _table(
+    item: Mapping[str, Any], cap: Mapping[str, Any] | None, levels: list[str], system: str, at: str, of: str
+) -> str:
     order = list(range(len(levels)))[::-1]
     columns = [
         words("storey below level", [levels[i] for i in order]),
         values("elastic drift", item["elastic"], "displacement", system, f"{at}/elastic", order=order),
+        *_capped(cap, system, of, order),
         values("design drift", item["design"], "displacement", system, f"{at}/design", order=order),
         values("limit", item["limit"], "displacement", system, f"{at}/limit", order=order),
         values("share of limit", item["share"], "share", system, f"{at}/share", order=order),
@@ -45,6 +51,13 @@ def _table(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> 
         columns.append(values("θ", second["theta"], "ratio", system, f"{at}/second_order/theta", order=order))
     marked = [order.index(item["worst"])]
     return table(columns, kind="values", caption=f"Drifts in {item['direction']}", marked=marked)
+
+
+def _capped(cap: Mapping[str, Any] | None, system: str, of: str, order: list[int]) -> list[Column]:
+    """The drift of the elastic spectrum, which the design drift need not exceed; only where the edition has it."""
+    if cap is None:
+        return []
+    return [values("by elastic spectrum", cap["drift"], "displacement", system, f"{of}/cap/drift", order=order)]
 
 
 def _words(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> str:
@@ -113,8 +126,8 @@ def _drawn(directions: list[dict[str, Any]], storeys: Mapping[str, Any], system:
         axes = figure.subplots(1, len(directions), sharey=True, squeeze=False)[0]
         figure.subplots_adjust(left=0.09, right=0.985, bottom=0.16, top=0.9, wspace=0.1)
         for ax, item in zip(axes, directions, strict=True):
-            stepped(ax, elevation, np.array(item["design"]) / drift.factor, "design drift", 0)
             stepped(ax, elevation, np.array(item["limit"]) / drift.factor, "limit", 1)
+            stepped(ax, elevation, np.array(item["design"]) / drift.factor, "design drift", 0)
             worst = item["worst"]
             middle = 0.5 * (elevation[worst] + elevation[worst + 1])
             ax.plot(

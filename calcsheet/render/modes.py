@@ -25,6 +25,8 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             title = f"of each mode in {model['name']}"
             parts.append(_shares(f"Kinetic energy {title}, share by level", model, "kinetic", levels, system, at))
             parts.append(_shares(f"Strain energy {title}, share by storey", model, "strain", levels, system, at))
+            if len(model["modes"]["omega"]) > SHOWN:
+                parts.append(f"<p>The first {SHOWN} of {len(model['modes']['omega'])} modes are listed.</p>")
     kept = all(e["within"] for e in payload["evidence"])
     verdict = "passes" if kept else "exceeds"
     stands = f'{len(payload["evidence"])} figures of evidence: <span class="{verdict}">{verdict}</span>.'

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from calcsheet.render.symbols import symbols
 from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
 from calcsheet.steps.step import Payload
@@ -17,10 +18,16 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     system, payload = system_of(payloads), payloads[key]
     parts = payloads[payload["needs"]["participation"]]["result"]["directions"]
     levels = payloads[payload["needs"]["storeys"]]["inputs"]["level"]
-    html = []
+    level = payloads[payload["needs"]["basis"]]["result"]["level"]
+    html = [f"<p>Force level: {symbols(level)}; neither scaled nor amplified for second order.</p>"]
     for i, (item, part) in enumerate(zip(payload["result"]["directions"], parts, strict=True)):
         at, of = f"/{key}/result/directions/{i}", f"/{payload['needs']['participation']}/result/directions/{i}"
         html += [_modes(item, part, system, at, of), _shears(item, levels, system, at), _correlation(item, at)]
+        columns = len(item["ordinate"])
+        if columns > SHOWN:
+            html.append(
+                f"<p>Storey shears and correlation list the first {SHOWN} of {columns}; combined values hold all.</p>"
+            )
     return Rendered("".join(html))
 
 

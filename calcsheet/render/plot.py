@@ -110,5 +110,5 @@ PLOT = View(
     "Mode shapes",
     "modes",
     render,
-    (Choice("normalise", "scale", SCALES), Choice("values", "ordinates", {"hidden": "hidden", "shown": "shown"})),
+    (Choice("normalise", "scale", SCALES), Choice("values", "ordinates", {"shown": "shown", "hidden": "hidden"})),
 )

@@ -37,7 +37,15 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             as_given=True,
         ),
         *_masses(given, sums, system, key, roof_first),
-        values("mass at and above", sums["mass_above"], "mass", system, f"/{key}/result/mass_above", order=roof_first),
+        values(
+            "mass at and above",
+            sums["mass_above"],
+            "mass",
+            system,
+            f"/{key}/result/mass_above",
+            order=roof_first,
+            digits=5,
+        ),
     ]
     for name, field, quantity in (("gravity load", "gravity", "force"), ("floor area", "area", "area")):
         if given[field] is not None:

@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 from html import escape
 
 from calcsheet.render.numbers import decimals_for, decimals_given, heading, number
 from calcsheet.units import display
+
+UNIT = re.compile(r"\[[^\]]+\]$")
+"""The unit at the end of a heading, which is not to be broken."""
 
 
 @dataclass(frozen=True)
@@ -95,7 +99,9 @@ def table(
     foot : str
         HTML of a last row's cells.
     """
-    heads = "".join(_cell("th", ' scope="col"', c, escape(c.heading)) for c in columns)
+    heads = "".join(
+        _cell("th", ' scope="col"', c, UNIT.sub(r'<span class="unit">\g<0></span>', escape(c.heading))) for c in columns
+    )
     rows = []
     for i in range(len(columns[0].cells)):
         first, *others = columns

@@ -6,7 +6,11 @@ from dataclasses import dataclass
 
 from calcsheet.core.basis import Basis
 from calcsheet.core.codes.edition import Answer, Factor
-from calcsheet.steps.step import Caution, Outcome, Step, plain
+from calcsheet.core.codes.en1998_2004 import EN1998
+from calcsheet.steps.step import Caution, Number, Outcome, Step, plain
+
+STRONG = 0.6
+"""Ground acceleration over g beyond which another unit may have been meant (common practice)."""
 
 
 @dataclass(frozen=True)
@@ -47,6 +51,10 @@ def run(basis: Basis) -> Outcome:
             f"Actions stand at the {edition.level}.",
         ),
     ]
+    if isinstance(edition, EN1998) and edition.ground_acceleration > STRONG:
+        number = Number(edition.ground_acceleration, "ratio", "inputs/edition/ground_acceleration")
+        text = f"A ground acceleration of {{0}} times g is above {STRONG:g} g: was m/s² typed where a part of g is asked for?"
+        cautions.append(Caution("ground-acceleration", text, (number,), answer=True))
     if not basis.mass_basis:
         cautions.append(
             Caution("no-mass-basis", "Which share of each variable load the masses hold is not stated.", answer=True)

@@ -8,7 +8,7 @@ import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.basis import Basis
-from calcsheet.core.codes.edition import Answer, Edition, Facts, Static
+from calcsheet.core.codes.edition import Answer, Edition, Facts, Relation, Static
 from calcsheet.core.model import models_of
 from calcsheet.core.participation import Participation
 from calcsheet.core.response import facts_of
@@ -46,6 +46,8 @@ class Demand(Frozen):
         What is said of accidental torsion.
     static : Static or None
         The static base shear; None where the edition has none.
+    ordinate_relations, static_force_relations : tuple of Relation
+        How the ordinate at the first period comes about, and the static force at the top level.
     first_effective_mass : float
         Effective mass of the first mode [t].
     first_base_shear : float
@@ -60,6 +62,8 @@ class Demand(Frozen):
     permitted: Answer
     torsion: Answer
     static: Static | None
+    ordinate_relations: tuple[Relation, ...]
+    static_force_relations: tuple[Relation, ...]
     first_effective_mass: float = field(metadata=agrees(rtol=1e-8))
     first_base_shear: float = field(metadata=agrees(rtol=1e-7))
 
@@ -107,6 +111,7 @@ def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
     shortest, longest = float(part.period[-1]), float(part.period[0])
     periods = np.unique(np.concatenate([np.linspace(shortest, max(1.15 * longest, 1.0), DRAWN), part.period]))
     periods = periods[: np.searchsorted(periods, _last(edition, facts.direction, periods), side="right")]
+    static = edition.static(facts)
     return Demand(
         direction=facts.direction,
         facts=facts,
@@ -115,7 +120,9 @@ def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
         curve=edition.ordinates(facts.direction, periods),
         permitted=edition.permitted(facts),
         torsion=edition.torsion(facts.direction)[1],
-        static=edition.static(facts),
+        static=static,
+        ordinate_relations=edition.ordinate_relation(facts.direction, facts.period),
+        static_force_relations=() if static is None else edition.distribution_relation(facts, static),
         first_effective_mass=float(part.effective_mass[0]),
         first_base_shear=float(part.effective_mass[0] * ordinate[0]),
     )
@@ -128,10 +135,16 @@ def _last(edition: Edition, direction: str, periods: Array) -> float:
 
 
 def _lines(demand: Demand, at: str) -> list[Line]:
-    lines = []
-    if demand.static is not None:
-        for i, relation in enumerate(demand.static.relations):
-            lines.append(line_of(relation, demand.direction, f"{at}/static/relations/{i}"))
+    groups = {
+        "static/relations": () if demand.static is None else demand.static.relations,
+        "static_force_relations": demand.static_force_relations,
+        "ordinate_relations": demand.ordinate_relations,
+    }
+    lines = [
+        line_of(relation, demand.direction, f"{at}/{place}/{i}")
+        for place, relations in groups.items()
+        for i, relation in enumerate(relations)
+    ]
     mass = Number(demand.first_effective_mass, "mass", f"{at}/first_effective_mass")
     ordinate = Number(float(demand.ordinate[0]), "acceleration", f"{at}/ordinate/0")
     shear = Number(demand.first_base_shear, "force", f"{at}/first_base_shear")

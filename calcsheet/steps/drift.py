@@ -44,17 +44,17 @@ def run(options: DriftOptions, storeys: Done, basis: Done, demand: Done, peaks: 
         result = drifts(basis.inputs.edition, facts, item.drifts, item.scaling, gravity, item.cap)
         at = f"result/directions/{len(found)}"
         found.append(result)
-        lines += _lines(result, at)
+        lines += _lines(result, building.level, at)
         cautions += _cautions(result, building.level, at)
     return Outcome(DriftResult(peaks.result.stiffness_drifts, tuple(found)), tuple(lines), tuple(cautions))
 
 
-def _lines(item: Drifts, at: str) -> list[Line]:
+def _lines(item: Drifts, levels: tuple[str, ...], at: str) -> list[Line]:
     worst, d = item.worst, item.direction
     design = Number(float(item.design[worst]), "displacement", f"{at}/design/{worst}")
     limit = Number(float(item.limit[worst]), "displacement", f"{at}/limit/{worst}")
     share = Number(float(item.share[worst]), "share", f"{at}/share/{worst}")
-    of = f"storey {worst + 1} from the base, {d}"
+    of = f'storey below level "{levels[worst]}", {d}'
     terms = _terms(item, at)
     substitution = " × ".join(f"{{{i}}}" for i in range(len(terms)))
     relation = "design drift / limit"
@@ -66,7 +66,7 @@ def _lines(item: Drifts, at: str) -> list[Line]:
         Line(f"Largest share of the drift limit, {of}", relation, "{0} / {1}", (design, limit), share, "ratio"),
     ]  # fmt: skip
     if item.second_order is not None:
-        lines.append(_stability(item, at))
+        lines.append(_stability(item, levels, at))
     return lines
 
 
@@ -74,7 +74,9 @@ def _terms(item: Drifts, at: str) -> dict[str, Number]:
     """What the worst design drift is the product of, by name."""
     worst = item.worst
     if item.capped:
-        terms = {"drift of the elastic spectrum": Number(float(item.first[worst]), "displacement", f"{at}/first/{worst}")}
+        terms = {
+            "drift of the elastic spectrum": Number(float(item.first[worst]), "displacement", f"{at}/first/{worst}")
+        }
     else:
         terms = {
             item.factor.symbol: Number(item.factor.value, "ratio", f"{at}/factor/value"),
@@ -87,7 +89,7 @@ def _terms(item: Drifts, at: str) -> dict[str, Number]:
     return terms
 
 
-def _stability(item: Drifts, at: str) -> Line:
+def _stability(item: Drifts, levels: tuple[str, ...], at: str) -> Line:
     second = item.second_order
     assert second is not None
     worst = int(np.argmax(second.theta))
@@ -96,7 +98,7 @@ def _stability(item: Drifts, at: str) -> Line:
     shear = Number(float(item.shear[worst]), "force", f"{at}/shear/{worst}")
     height = Number(float(item.storey_height[worst]), "length", f"{at}/storey_height/{worst}")
     theta = Number(float(second.theta[worst]), "ratio", f"{at}/second_order/theta/{worst}")
-    of = f"storey {worst + 1} from the base, {item.direction}"
+    of = f'storey below level "{levels[worst]}", {item.direction}'
     numbers = (load, drift, shear, height)
     return Line(
         f"Largest stability coefficient, {of}",
@@ -118,7 +120,9 @@ def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
         if item.second_order_note != "not in this edition":
             cautions.append(
                 Caution(
-                    f"no-second-order-{d}", f"Second-order effects in {d} are not assessed: {item.second_order_note}."
+                    f"no-second-order-{d}",
+                    f"Second-order effects in {d} are not assessed: {item.second_order_note}.",
+                    answer=True,
                 )
             )
     else:

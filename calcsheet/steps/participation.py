@@ -108,7 +108,7 @@ def _cautions(part: Participation, size: int, at: str) -> list[Caution]:
         cautions.append(
             Caution(
                 f"modes-left-out-{part.direction}",
-                f"In {part.direction} {kept} of {size} modes are kept; what the others carry is in no figure here.",
+                f"In {part.direction} {kept} of {size} modes are kept; the shares and heights listed are theirs alone.",
             )
         )
     return cautions

@@ -209,8 +209,12 @@ Dynamics of Structures, sections 13.2 and 13.7, from memory). The peak of a quan
 
 $$r = \sqrt{\sum_i \sum_j \rho_{ij}\, r_i\, r_j}$$
 
-with the signs of the modal values kept; $\rho_{ij} = \delta_{ij}$ for SRSS, and for CQC as Der Kiureghian (1981) and
-Wilson, Der Kiureghian and Bayo (1981) give it (from memory). Combined storey forces do not add up to the combined
+with the signs of the modal values kept; $\rho_{ij} = \delta_{ij}$ for SRSS, and for CQC with one damping ratio $\xi$
+and $r = \omega_j/\omega_i$
+
+$$\rho_{ij} = \frac{8 \xi^{2} (1 + r)\, r^{3/2}}{(1 - r^{2})^{2} + 4 \xi^{2} r (1 + r)^{2}}$$
+
+(Der Kiureghian, 1981; Wilson, Der Kiureghian and Bayo, 1981; from memory). Combined storey forces do not add up to the combined
 shear, so none is ever summed.
 """
 

@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import itertools
+import re
+
 from calcsheet.core.chain import Chain
 from calcsheet.core.storeys import StiffnessSet, Storeys
 from calcsheet.core.totals import Totals, totals
@@ -9,13 +12,55 @@ from calcsheet.steps.step import Caution, Number, Outcome, Step, plain
 
 JUMP = 20.0
 """Ratio of neighbouring storeys' stiffnesses or levels' masses from which a slip of unit is suspected."""
+HEIGHTS = (2.0, 12.0)
+"""Storey heights [m] outside of which a slip is suspected."""
+NUMBERED = re.compile(r"(?:.*\D)?(\d+)\s*")
+"""Name of a level that ends in a number."""
+BELOW_GROUND = re.compile(r"\s*(b|cellar|lower|p|-|\u2212)", re.IGNORECASE)
+"""Names such as "B2", "P1" or "-2": their numbers may run down into the ground."""
+ROOF = re.compile(r"\s*(roof|top)( level| floor| slab)?\s*", re.IGNORECASE)
 
 
 def run(storeys: Storeys) -> Outcome:
     cautions = [*_jumps("mass", storeys.mass.tolist(), storeys.level, "inputs/mass", "mass")]
+    cautions = [*_order(storeys.level), *_heights(storeys), *cautions]
     for i, given in enumerate(storeys.stiffness):
         cautions += _of_set(given, storeys.level, f"inputs/stiffness/{i}")
     return Outcome(totals(storeys), cautions=tuple(cautions))
+
+
+def _order(levels: tuple[str, ...]) -> list[Caution]:
+    """A table that seems to be upside down: its numbers fall upwards, or numbered levels stand above its roof.
+
+    A plant level above the roof is usual; a roof at the foot of the table, or under a numbered level, is not.
+    """
+    numbers = [
+        (i, int(found[1]))
+        for i, level in enumerate(levels)
+        if not BELOW_GROUND.match(level) and (found := NUMBERED.fullmatch(level))
+    ]
+    falls = len(numbers) > 1 and all(b < a for (_, a), (_, b) in itertools.pairwise(numbers))
+    roof = next((i for i, level in enumerate(levels) if ROOF.fullmatch(level)), None)
+    if falls:
+        top, foot = plain(levels[numbers[-1][0]]), plain(levels[numbers[0][0]])
+        why = f'level "{top}" stands above level "{foot}" and the numbers between them fall upwards'
+    elif roof is not None and len(levels) > 1 and (roof == 0 or any(i > roof for i, _ in numbers)):
+        why = f'level "{plain(levels[roof])}" stands below level "{plain(levels[-1])}"'
+    else:
+        return []
+    text = f"Order of the levels: {why}; check that the table's first row is the top level."
+    return [Caution("order-of-levels", text, answer=True)]
+
+
+def _heights(storeys: Storeys) -> list[Caution]:
+    low, high = HEIGHTS
+    strange = [i for i, height in enumerate(storeys.storey_height.tolist()) if not low <= height <= high]
+    if not strange:
+        return []
+    named = ", ".join(f'{{{n}}} below level "{plain(storeys.level[i])}"' for n, i in enumerate(strange))
+    numbers = tuple(Number(float(storeys.storey_height[i]), "length", f"inputs/storey_height/{i}") for i in strange)
+    text = f"Storey height outside {low:g} to {high:g} m: {named}; check value and unit."
+    return [Caution("storey-heights", text, numbers, answer=True)]
 
 
 def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Caution]:

@@ -12,6 +12,7 @@ from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.job.basis import SETTINGS, read_basis, spectrum_files
 from calcsheet.job.card import card_of, parse_toml
 from calcsheet.job.errors import InputError
+from calcsheet.resources import folder
 from calcsheet.steps.serial import from_json, to_json
 
 EN = """\
@@ -416,3 +417,47 @@ def test_what_is_wrong_in_the_spectrums_file_names_it(basis):
     assert refusal(basis, POINTS + 'between = "log-log"\n') == (
         "sa.csv: a period or an ordinate of 0; must be above 0 for log-log interpolation"
     )
+
+
+def test_a_change_of_edition_is_told_all_its_keys_at_once(basis):
+    assert refusal(basis, changed(EN, "EN 1998-1:2004", "ASCE/SEI 7-16")) == (
+        'job.toml, basis: with edition "ASCE/SEI 7-16", 7 keys belong to other editions (ground_acceleration, spectrum, '
+        "ground, importance_class, q_x, q_y, elements): take them out; missing: s_ds (S_DS over g), s_d1 (S_D1 over g), "
+        "s_1 (S_1 over g), t_l (T_L in s), site_class (site class), risk_category (risk category), r_x (R in x), "
+        "r_y (R in y), c_d_x (C_d in x), c_d_y (C_d in y)"
+    )
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "message"),
+    [
+        ("q_x = 3", "q_x = 3\nr_x = 8\nzone = 4", ", 2 keys belong to other editions (r_x, zone); take them out"),
+        ("q_x = 3\nq_y = 2.5\n", "", "; missing: q_x (behaviour factor in x), q_y (behaviour factor in y)"),
+        (
+            "q_x = 3",
+            "r_x = 3",
+            ", 1 key belongs to other editions (r_x): take it out; missing: q_x (behaviour factor in x)",
+        ),
+    ],
+)
+def test_several_keys_are_reported_together(basis, old, new, message):
+    assert refusal(basis, changed(EN, old, new)) == f'job.toml, basis: with edition "EN 1998-1:2004"{message}'
+
+
+TEMPLATE = (folder("templates/seismic") / "job.toml").read_text(encoding="utf-8")
+COMMENTED = [
+    "\n".join(line.removeprefix("# ") for line in block.splitlines())
+    for block in TEMPLATE.split("\n\n")
+    if block.startswith("# edition = ")
+]
+
+
+def test_the_template_holds_a_block_for_every_edition():
+    live = [parse_toml(TEMPLATE)["basis"]["edition"]]
+    assert sorted(live + [parse_toml(block)["edition"] for block in COMMENTED]) == sorted(EDITIONS)
+
+
+@pytest.mark.parametrize("block", COMMENTED, ids=lambda block: block.split('"')[1])
+def test_a_block_of_the_template_is_valid_when_uncommented(basis, block):
+    got = basis(block)
+    assert type(got.edition) is EDITIONS[parse_toml(block)["edition"]]

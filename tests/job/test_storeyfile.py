@@ -8,6 +8,7 @@ from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from calcsheet.core.storeys import Storeys
+from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import read_storeys
 from calcsheet.steps.serial import from_json, to_json
 from calcsheet.units import STANDARD_GRAVITY
@@ -400,6 +401,10 @@ def test_junk_is_read_or_refused(read, table, card, rows, delimiter, with_headin
     out = io.StringIO()
     csv.writer(out, delimiter=delimiter).writerows(rows)
     text = out.getvalue().encode("utf-8", "replace")
-    got = read_storeys(table(text), card())
+    try:
+        got = read_storeys(table(text), card())
+    except InputError:  # no table at all: quotation marks that don't pair under the delimiter sniffed
+        assert not with_headings
+        return
     assert (got.storeys is None) == bool(got.problems)
     assert all(problem.row is None or 0 <= problem.row < len(got.rows) for problem in got.problems)

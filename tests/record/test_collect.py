@@ -89,6 +89,37 @@ def test_a_solver_without_its_set_is_quoted(static, in_folder, cells):
     )
 
 
+def test_two_cells_that_ask_for_one_step_with_different_options_are_refused(static, in_folder, cells):
+    twice = static.executed([*cells, "ModeSolver(storeys, keep=2)"])
+    assert refusal(twice) == (
+        'two cells ask for step "modes" with different options; give one of them its own name="\u2026"'
+    )
+
+
+def test_two_summaries_of_the_same_modes_need_a_name(static, in_folder, cells):
+    second = "ParticipationSummary(modes, share=0.95{})"
+    assert 'for step "participation"' in refusal(static.executed([*cells, second.format("")]))
+
+
+def test_steps_of_their_own_names_and_the_same_asked_twice_are_collected(static, in_folder, cells):
+    more = [
+        "ModeSolver(storeys, share=0.9)",
+        'ModeSolver(storeys, keep=2, name="two")',
+        'ParticipationSummary(modes, share=0.95, name="at 95")',
+    ]
+    assert {"two", "at 95"} < set(collect(static.executed([*cells, *more])).payloads)
+
+
+def test_one_cell_run_again_with_new_options_is_collected(static, in_folder, cells):
+    notebook = static.executed(cells)
+    number = next(i for i, source in enumerate(cells) if "ModeSolver(" in source and "import" not in source)
+    notebook.cells[number].source = cells[number].replace("share=0.9", "share=0.8")
+    static.run(notebook.cells[number].source, f"executed-{number}")
+    for i, one in enumerate(notebook.cells):  # as the front end saves them: other twins have followed
+        one.outputs = [nbformat.from_dict(o) for o in static.outputs[f"executed-{i}"]]
+    assert collect(notebook).payloads["modes"]["inputs"]["share"] == 0.8
+
+
 def test_a_cell_changed_and_not_run_again_is_stale(notebook):
     cell(notebook, "ModePlot").source = 'ModePlot(modes, normalise="roof", values="shown")'
     assert refusal(notebook) == "the notebook is stale: cell 6 was changed and not run again"

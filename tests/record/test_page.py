@@ -10,7 +10,7 @@ import pytest
 
 from calcsheet.record.figures import settle_figures
 from calcsheet.record.fonts import font_faces, missing_characters
-from calcsheet.record.page import Page, Section, css_string, escape_json, render_page, spoken
+from calcsheet.record.page import Page, Person, Section, css_string, escape_json, render_page, shortened, spoken
 
 Sample = Callable[..., Page]
 
@@ -116,9 +116,37 @@ def test_paper_and_running_words(sample: Sample) -> None:
     assert "size: letter;" in html
     assert "size: letter landscape;" in html
     assert '@top-right { content: "KQB-S-014 · revision B · 12 May 2026"; }' in html
-    assert '@bottom-left { content: "Prepared ZM · Checked ΘΙ"; }' in html
+    assert '@bottom-left { content: "Prepared\u00a0ZM · Checker\u00a0ΘΙ\u00a0(not\u00a0signed)"; }' in html
     with pytest.raises(ValueError, match='paper: got "a5"; must be "a4" or "letter"'):
         render_page(sample("pdf"), "pdf", "a5")  # type: ignore[arg-type]
+
+
+def test_the_foot_says_who_has_not_signed(sample: Sample) -> None:
+    page = sample("html")
+    people = (dataclasses.replace(page.cover.people[0], date=None), Person("Checked"))
+    html = render_page(dataclasses.replace(page, cover=dataclasses.replace(page.cover, people=people)), "html", "a4")
+    assert '@bottom-left { content: "Preparer\u00a0ZM\u00a0(not\u00a0signed) · Checker\u00a0–"; }' in html
+
+
+def test_long_names_are_cut_in_the_running_words_only(sample: Sample) -> None:
+    page = sample("html")
+    cover = dataclasses.replace(page.cover, project="Quay " * 40, title="Modes\n" * 40)
+    html = render_page(dataclasses.replace(page, cover=cover), "html", "a4")
+    assert f'@top-left {{ content: "{("Quay " * 12)[:59]}…"; }}' in html
+    assert f'@bottom-center {{ content: "{("Modes " * 12)[:49]}…"; }}' in html
+    assert "Quay " * 40 in html
+    assert shortened("a" * 60, 60) == "a" * 60
+
+
+def test_a_long_purpose_is_cut_on_the_cover(sample: Sample) -> None:
+    page = sample("html")
+    for count, end in ((60, "word</td>"), (61, "word … (in full in the job card)</td>")):
+        cover = dataclasses.replace(page.cover, purpose=" ".join(["word"] * count))
+        html = render_page(dataclasses.replace(page, cover=cover), "html", "a4")
+        shown = re.search(r'Purpose</th><td colspan="3">(.*)', html)
+        assert shown
+        assert shown[1].startswith(" ".join(["word"] * 60))
+        assert shown[1].endswith(end + "</tr>")
 
 
 def test_an_id_used_twice_is_refused(sample: Sample) -> None:

@@ -84,7 +84,7 @@ def test_every_sheet_says_what_it_belongs_to(path: Path) -> None:
             "revision B",
             "12 May 2026",
             "Prepared ZM",
-            "Checked ΘΙ",
+            "Checker ΘΙ",
         ):
             assert running in sheet, (number, running)
 

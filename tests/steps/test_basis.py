@@ -51,6 +51,14 @@ def test_masses_without_a_basis_ask_for_an_answer(demand_job):
     assert stated["mass-basis-2"]["text"] == "Mass basis, Snow: stated without its clause."
 
 
+def test_a_ground_acceleration_that_may_be_in_another_unit_asks_for_an_answer(demand_job):
+    weak = cautions(demand_job("EN", ("= 0.2", "= 0.6"), name="weak"))
+    assert "ground-acceleration" not in weak
+    strong = cautions(demand_job("EN", ("= 0.2", "= 1.5"), name="strong"))["ground-acceleration"]
+    assert strong["answer"]
+    assert strong["numbers"] == [{"value": 1.5, "quantity": "ratio", "at": "inputs/edition/ground_acceleration"}]
+
+
 @pytest.mark.parametrize(
     ("changes", "why"),
     [

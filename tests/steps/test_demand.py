@@ -68,7 +68,8 @@ def test_static_base_shear_and_what_governs_it(demand_job, basis, changes, shear
 def test_given_points_have_no_static_base_shear(demand_job):
     job = demand_job("points")
     assert demand(job)["static"] is None
-    assert [one["relation"] for one in job.payload("demand")["lines"]] == ["V₁ = M₁* S_a(T₁)"] * 2
+    relations = ["S = S_i + (S_j − S_i)(T − T_i)/(T_j − T_i)", "S g", "V₁ = M₁* S_a(T₁)"]
+    assert [one["relation"] for one in job.payload("demand")["lines"]] == relations * 2
 
 
 def test_between_points_ordinates_are_interpolated(demand_job):
@@ -153,3 +154,28 @@ def test_the_first_modes_base_shear_is_a_worked_line(demand_job):
     found = line(job, "Base shear of mode 1, x")
     assert [n["value"] for n in found["numbers"]] == pytest.approx([200.0**2 / 150.0, 1.96133], rel=1e-9)
     assert found["result"]["value"] == pytest.approx(266.6666667 * 1.96133, rel=1e-9)
+
+
+@pytest.mark.parametrize("basis", ["EN", "7-16", "7-22", "IS", "points"])
+def test_the_ordinate_of_mode_1_is_worked_out_before_its_base_shear(demand_job, basis):
+    job = demand_job(basis)
+    lines = [one for one in job.payload("demand")["lines"] if one["quantity"].endswith(", x")]
+    assert [one["quantity"] for one in lines[-2:]] == ["Design ordinate at T₁, x", "Base shear of mode 1, x"]
+    assert lines[-2]["result"]["value"] == lines[-1]["numbers"][1]["value"] == demand(job)["ordinate"][0]
+
+
+def test_bounds_of_the_static_base_shear_stand_beside_what_governs(demand_job):
+    lines = demand_job("7-16", ("s_1 = 0.4", "s_1 = 0.7")).payload("demand")["lines"]
+    found = {one["relation"]: one for one in lines if one["quantity"].endswith("C_s, x")}
+    # T = 0.3759 s: 0.6/(0.3759 × 8) = 0.1995; 0.044 × 1; 0.5 × 0.7/8 = 0.04375
+    expected = {"S_D1/(T R/I_e)": 0.19951, "0.044 S_DS I_e": 0.044, "0.01": 0.01, "0.5 S_1/(R/I_e)": 0.04375}
+    assert {r: one["result"]["value"] for r, one in found.items()} == pytest.approx(expected, rel=1e-4)
+    assert [one["quantity"] for one in found.values()] == ["Upper bound of C_s, x"] + ["Lower bound of C_s, x"] * 3
+
+
+def test_the_static_force_at_the_top_level_is_worked_out(demand_job):
+    job = demand_job("EN")
+    found = line(job, "Static force at the top level, x")
+    # F_b × 100 × 7/(100 × 7 + 200 × 4)
+    assert found["result"]["value"] == pytest.approx(demand(job)["static"]["shear"] * 700.0 / 1500.0, rel=1e-12)
+    assert job.payload("actions")["result"]["directions"][0]["static_force"][-1] == found["result"]["value"]

@@ -64,8 +64,22 @@ def test_design_drifts_and_limits(demand_job, basis, ordinate, factor, limit, se
     else:
         assert found["separation"] == pytest.approx(separation * factor * TOP * ordinate, rel=1e-9)
     assert found["stiffness"] == pytest.approx([1e5, 5e4], rel=1e-9)
-    line = next(one for one in job.payload("drift")["lines"] if one["quantity"].startswith("Design drift, storey 2"))
+    line = next(
+        one
+        for one in job.payload("drift")["lines"]
+        if one["quantity"].startswith('Design drift, storey below level "Roof"')
+    )
     assert line["result"]["value"] == pytest.approx(factor * DRIFT[1] * ordinate, rel=1e-9)
+
+
+def test_drifts_stiffness_and_theta_are_those_of_the_set_that_serves_drifts(demand_job):
+    # forces at 0.6 k, drifts at k; still on the plateau up to T_S = 0.6 s
+    job = demand_job("7-16", SRSS, card=[('forces = "gross"', 'forces = "cracked"')])
+    found = drift(job)
+    assert job.payload("drift")["result"]["stiffness"] == "gross"
+    assert found["elastic"] == pytest.approx([d * ASCE_A for d in DRIFT], rel=1e-9)
+    assert found["stiffness"] == pytest.approx([1e5, 5e4], rel=1e-9)
+    assert found["second_order"]["theta"] == pytest.approx([2900 / (1e5 * 4), 950 / (5e4 * 3)], rel=1e-9)
 
 
 def test_asce_with_risk_and_redundancy(demand_job):
@@ -101,10 +115,12 @@ def test_displacements_need_not_exceed_the_elastic_spectrums(demand_job):
 def test_a_capped_drift_has_its_own_worked_line(demand_job):
     lines = demand_job("EN", ("q_x = 3", "q_x = 3\nq_d_x = 4"), SRSS).payload("drift")["lines"]
     found = {one["quantity"]: one for one in lines}
-    line = found["Design drift, storey 2 from the base, x"]
+    line = found['Design drift, storey below level "Roof", x']
     assert line["relation"] == "drift of the elastic spectrum × scale × second order"
     assert line["numbers"][0]["value"] == pytest.approx(3.0 * DRIFT[1] * EN_A, rel=1e-9)
-    assert found["Design drift, storey 2 from the base, y"]["relation"] == "q_d × elastic drift × scale × second order"
+    assert (
+        found['Design drift, storey below level "Roof", y']["relation"] == "q_d × elastic drift × scale × second order"
+    )
 
 
 # ---- second order ------------------------------------------------------------------------------------------------------
@@ -122,7 +138,9 @@ def test_asce_amplifies_above_a_tenth(demand_job):
     assert second["drift"] == pytest.approx([d * ASCE_A for d in DRIFT], rel=1e-9)
     assert found["design"] == pytest.approx([2.5 * DRIFT[0] * ASCE_A / 0.875, 2.5 * DRIFT[1] * ASCE_A], rel=1e-9)
     # whatever stands on the amplified storey moves with it
-    assert found["displacement"] == pytest.approx([2.5 * DRIFT[0] * ASCE_A / 0.875, 2.5 * TOP * ASCE_A / 0.875], rel=1e-9)
+    assert found["displacement"] == pytest.approx(
+        [2.5 * DRIFT[0] * ASCE_A / 0.875, 2.5 * TOP * ASCE_A / 0.875], rel=1e-9
+    )
     assert found["separation"] == pytest.approx(2.5 * TOP * ASCE_A / 0.875, rel=1e-9)
     raised = cautions(job)["second-order-x"]
     assert not raised["answer"]
@@ -146,7 +164,11 @@ def test_en_in_its_four_ranges(demand_job, lower, theta, verdict, factor, answer
     assert second["factor"] == pytest.approx([factor, 1.0], rel=1e-9)
     raised = cautions(job).get("second-order-x")
     assert (raised and raised["answer"]) is answer
-    line = next(one for one in job.payload("drift")["lines"] if "stability coefficient, storey 1" in one["quantity"])
+    line = next(
+        one
+        for one in job.payload("drift")["lines"]
+        if 'stability coefficient, storey below level "1"' in one["quantity"]
+    )
     load, moved, shear, height = (n["value"] for n in line["numbers"])
     assert load * moved / (shear * height) == pytest.approx(theta, rel=1e-9)
     assert (load, height) == (pytest.approx(3000 + lower), 4.0)
@@ -154,9 +176,7 @@ def test_en_in_its_four_ranges(demand_job, lower, theta, verdict, factor, answer
 
 def test_a_storey_that_cannot_carry_its_load_is_refused(demand_job):
     job = demand_job("EN", SRSS, storeys=storeys(3000, 150000))
-    why = (
-        "stability coefficient of storey 1 from the base: 1.15; must be below 1: the storey cannot carry its gravity load"
-    )
+    why = "stability coefficient of storey 1 from the base: 1.15; must be below 1: the storey cannot carry its gravity load"
     assert (job.payload("drift")["state"], job.payload("drift")["why"]) == ("refused", why)
     assert job.payload("actions")["why"] == f"waits for drift and second order: {why}"
 
@@ -169,6 +189,7 @@ def test_without_gravity_loads_second_order_is_not_assessed(demand_job, basis):
     assert found["second_order_note"] == "gravity load column is missing"
     text = "Second-order effects in x are not assessed: gravity load column is missing."
     assert cautions(job)["no-second-order-x"]["text"] == text
+    assert cautions(job)["no-second-order-x"]["answer"]
     assert not any("stability" in line["quantity"] for line in job.payload("drift")["lines"])
 
 

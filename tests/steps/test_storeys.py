@@ -76,3 +76,53 @@ def test_braces_in_names_are_words(building):
         level="12", height=[3.5, 3.5], mass=[200.0, 150.0], lateral={"x": StiffnessMatrix(matrix)}, name="{gross}"
     )
     assert "({gross})" in run(given).cautions[0].text.format()
+
+
+@pytest.mark.parametrize(
+    "level",
+    [
+        ("5", "4", "3", "2", "1"),
+        ("Level 2", "Level 1", "Ground", "Terrace", "Plant"),
+        ("Roof", "fourth", "third", "second", "first"),
+        ("1", "roof level", "2", "3", "4"),
+    ],
+)
+def test_a_table_that_seems_upside_down_asks_for_an_answer(building, level):
+    (caution,) = run(building(level=level)).cautions
+    assert (caution.key, caution.answer) == ("order-of-levels", True)
+    assert "check that the table's first row is the top level" in caution.text
+
+
+@pytest.mark.parametrize(
+    "level",
+    [
+        ("1", "2", "3", "Roof", "Plant"),
+        ("B2", "B1", "Ground", "First", "Roof"),
+        ("-2", "-1", "Ground", "First", "Roof"),
+        ("1", "2", "2 mezzanine", "10", "Top"),
+        ("1", "Podium roof", "3", "4", "5"),
+        ("Tower 7", "a", "b", "c", "d"),
+    ],
+)
+def test_an_order_that_is_usual_raises_nothing(building, level):
+    assert keys(building(level=level)) == []
+
+
+def test_names_of_a_table_upside_down_are_words(building):
+    (caution,) = run(building(level=("{5}", "{4} 4", "x", "y", "{3} 1"))).cautions
+    assert 'level "{3} 1" stands above level "{4} 4"' in caution.text.format()
+
+
+@pytest.mark.parametrize(("height", "raised"), [(1.9, True), (2.0, False), (12.0, False), (12.1, True)])
+def test_a_storey_height_out_of_the_usual_asks_for_an_answer(building, height, raised):
+    found = run(building(height=[4.6, 3.4, height, 3.4, 3.1])).cautions
+    assert [(c.key, c.answer) for c in found] == ([("storey-heights", True)] if raised else [])
+
+
+def test_strange_storey_heights_are_named_in_one_caution(building):
+    (caution,) = run(building(height=[46.0, 3.4, 3.4, 3.4, 0.31])).cautions
+    assert caution.text.format("46.00 m", "0.310 m") == (
+        'Storey height outside 2 to 12 m: 46.00 m below level "1", 0.310 m below level "Roof"; check value and unit.'
+    )
+    assert [n.at for n in caution.numbers] == ["inputs/storey_height/0", "inputs/storey_height/4"]
+    assert [n.value for n in caution.numbers] == [46.0, 0.31]

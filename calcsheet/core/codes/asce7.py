@@ -15,7 +15,8 @@ import numpy as np
 
 from calcsheet.core.arrays import Array
 from calcsheet.core.codes.asce7_screens import vertical
-from calcsheet.core.codes.common import amplified, by_height, closest, stability, up_to_static
+from calcsheet.core.codes.asce7_spectrum import two_period_relation
+from calcsheet.core.codes.common import amplified, at_top, by_height, closest, stability, up_to_static
 from calcsheet.core.codes.edition import (
     Answer,
     Edition,
@@ -161,6 +162,12 @@ class ASCE7(Edition):
         """Design spectrum S_a, (m,), over g at each period, (m,) [s]."""
         return self.two_period(period)
 
+    def spectrum_relation(self, period: float) -> tuple[Relation, ...]:
+        """How S_a over g comes about at a period [s], S_a last."""
+        ordinate = float(self.two_period(np.array([period]))[0])
+        clause = "11.4.6" if self.equations else "11.4.5.2"
+        return two_period_relation(self.s_ds, self.s_d1, self.t_l, period, ordinate, clause)
+
     def limit_of_period(self) -> float:
         """C_u (Table 12.8-1)."""
         return float(np.interp(self.s_d1, [0.1, 0.15, 0.2, 0.3], [1.7, 1.6, 1.5, 1.4]))
@@ -175,14 +182,19 @@ class ASCE7(Edition):
         reduction : float
             R/I_e.
         """
+        upper, lower = self._bounds(period, reduction)
+        return max([min(upper), *lower], key=lambda bound: bound[0])
+
+    def _bounds(self, period: float, reduction: float) -> tuple[list[tuple[float, str]], list[tuple[float, str]]]:
+        """What C_s need not exceed and what it may not fall below, each with its expression."""
         times = self._beyond_plateau()
         cap = times * self.s_d1 / period * min(self.t_l / period, 1.0)
         by_cap = ("1.5 " if times > 1.0 else "") + (FALLING if period <= self.t_l else FAR)
-        value, why = min((self.s_ds / reduction, "S_DS/(R/I_e)"), (cap / reduction, by_cap))
-        bounds = [(0.044 * self.s_ds * self.importance().value, "0.044 S_DS I_e"), (0.01, "0.01")]
+        upper = [(self.s_ds / reduction, "S_DS/(R/I_e)"), (cap / reduction, by_cap)]
+        lower = [(0.044 * self.s_ds * self.importance().value, "0.044 S_DS I_e"), (0.01, "0.01")]
         if self.s_1 >= 0.6:
-            bounds.append((self.near_fault(reduction), NEAR_FAULT))
-        return max([(value, why), *bounds], key=lambda bound: bound[0])
+            lower.append((self.near_fault(reduction), NEAR_FAULT))
+        return upper, lower
 
     def near_fault(self, reduction: float) -> float:
         """0.5 S_1/(R/I_e) where S_1 ≥ 0.6, else 0 (7-16, Eq. 12.8-6); `reduction` is R/I_e."""
@@ -217,6 +229,14 @@ class ASCE7(Edition):
     def ordinates(self, direction: str, period: Array) -> Array:
         return self.spectrum(period) * GRAVITY / self._reduction(direction)
 
+    def ordinate_relation(self, direction: str, period: float) -> tuple[Relation, ...]:
+        found = self.spectrum_relation(period)
+        r, i_e = Value(self.r_x if direction == "x" else self.r_y, "ratio"), Value(self.importance().value, "ratio")
+        ordinate = Value(float(self.ordinates(direction, np.array([period]))[0]), "acceleration")
+        values = (found[-1].result, Value(GRAVITY, "acceleration"), r, i_e)
+        how = "{0} × {1} / ({2} / {3})"
+        return *found, Relation("Design ordinate at T₁", "S_a g/(R/I_e)", how, values, ordinate, "12.9.1.2")
+
     def damping(self) -> Factor:
         return Factor("ξ", 0.05, "11.4: the spectrum stands for 5 %; 12.9.1.3")
 
@@ -231,6 +251,12 @@ class ASCE7(Edition):
         period = min(facts.period, longest)
         reduction = self._reduction(facts.direction)
         coefficient, why = self.coefficient(period, reduction)
+        compared = [
+            self._expression(f"{side} bound of C_s", found, expression, period, reduction)
+            for side, bounds in zip(("Upper", "Lower"), self._bounds(period, reduction), strict=True)
+            for found, expression in bounds
+            if expression != why
+        ]
         shear = coefficient * facts.total
         relations = (
             Relation(
@@ -243,7 +269,8 @@ class ASCE7(Edition):
                 (Value(self.limit_of_period(), "ratio"), Value(approximate, "period")), Value(longest, "period"),
                 "12.8.2, Table 12.8-1",
             ),
-            self._governing(why, period, reduction, coefficient),
+            *compared,
+            self._expression("Seismic response coefficient", coefficient, why, period, reduction, "C_s = "),
             Relation(
                 "Static base shear", "V = C_s W", "{0} × {1}", (Value(coefficient, "coefficient"), Value(facts.total, "force")),
                 Value(shear, "force"), self._eq("12.8.1", "12.8-1"),
@@ -251,7 +278,10 @@ class ASCE7(Edition):
         )  # fmt: skip
         return Static(approximate, longest, period, coefficient, shear, why, relations, "12.8.1")
 
-    def _governing(self, why: str, period: float, reduction: float, coefficient: float) -> Relation:
+    def _expression(
+        self, what: str, found: float, why: str, period: float, reduction: float, symbol: str = ""
+    ) -> Relation:
+        """An expression for C_s with its values; `found` is what it gives."""
         r, s_ds, s_d1 = Value(reduction, "ratio"), Value(self.s_ds, "ratio"), Value(self.s_d1, "ratio")
         t, t_l, s_1 = Value(period, "period"), Value(self.t_l, "period"), Value(self.s_1, "ratio")
         i_e = Value(self.importance().value, "ratio")
@@ -266,11 +296,19 @@ class ASCE7(Edition):
         if why.startswith("1.5 "):
             substitution = f"1.5 × {substitution}"
         clause = self._eq("12.8.1.1", number) + (", 11.4.8" if self._beyond_plateau() > 1.0 else "")
-        result = Value(coefficient, "coefficient")
-        return Relation("Seismic response coefficient", f"C_s = {why}", substitution, values, result, clause)
+        return Relation(what, symbol + why, substitution, values, Value(found, "coefficient"), clause)
 
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
         return by_height(facts, static.shear, self.exponent(static.period)), self._eq("12.8.3", "12.8-12")
+
+    def distribution_relation(self, facts: Facts, static: Static) -> tuple[Relation, ...]:
+        k, t = self.exponent(static.period), Value(static.period, "period")
+        relation, how = {
+            1.0: ("k = 1, for T ≤ 0.5 s", "1, for {0} ≤ 0.5 s"),
+            2.0: ("k = 2, for T ≥ 2.5 s", "2, for {0} ≥ 2.5 s"),
+        }.get(k, ("k = 1 + (T − 0.5 s)/2 s", "1 + ({0} − 0.5 s) / 2 s"))
+        power = Relation("Exponent of the heights", relation, how, (t,), Value(k, "ratio"), "12.8.3")
+        return power, at_top(facts, static.shear, k, "^k", self._eq("12.8.3", "12.8-12"))
 
     @staticmethod
     def exponent(period: float) -> float:

@@ -13,8 +13,8 @@ import numpy as np
 
 from calcsheet.core.arrays import Array
 from calcsheet.core.codes.asce7 import ASCE7
-from calcsheet.core.codes.edition import key
-from calcsheet.core.codes.points import interpolated
+from calcsheet.core.codes.edition import Relation, key
+from calcsheet.core.codes.points import between_points, interpolated
 
 SITES = ("A", "B", "BC", "C", "CD", "D", "DE", "E", "F")
 
@@ -52,3 +52,8 @@ class ASCE722(ASCE7):
         if not self.points:
             return self.two_period(period)
         return interpolated(self.points, np.asarray(period, dtype=float), "linear", hold_below=False)
+
+    def spectrum_relation(self, period: float) -> tuple[Relation, ...]:
+        if not self.points:
+            return super().spectrum_relation(period)
+        return between_points(self.points, period, "linear", "Spectral ordinate over g at T₁", "11.4.5.1")

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 import numpy as np
 
 from calcsheet.core.arrays import Array
-from calcsheet.core.codes.edition import Facts
+from calcsheet.core.codes.edition import Facts, Relation, Value
 from calcsheet.core.errors import ModelError
 
 SAME = 1e-6
@@ -33,6 +33,29 @@ def by_height(facts: Facts, shear: float, power: float) -> Array:
     """
     share = facts.weight * facts.height**power
     return shear * share / share.sum()
+
+
+def at_top(facts: Facts, shear: float, power: float, symbol: str, clause: str) -> Relation:
+    """How the static force at the top level comes about, heights being taken over that of the top level.
+
+    Parameters
+    ----------
+    facts : Facts
+        The building, n levels.
+    shear : float
+        Base shear V [kN].
+    power : float
+        Exponent k.
+    symbol : str
+        The exponent as the relation shows it, such as "^k".
+    clause : str
+        Its source.
+    """
+    reduced = float((facts.weight * (facts.height / facts.top) ** power).sum())
+    values = (Value(shear, "force"), Value(float(facts.weight[-1]), "force"), Value(reduced, "force"))
+    force = Value(float(by_height(facts, shear, power)[-1]), "force")
+    relation = f"F_n = V w_n / Σ w (h/h_n){symbol}"
+    return Relation("Static force at the top level", relation, "{0} × {1} / {2}", values, force, clause)
 
 
 def up_to_static(static: float, modal: float) -> float:

@@ -16,10 +16,12 @@ CHECKLIST = (
     "permitted",
     "importance",
     "ordinates",
+    "ordinate_relation",
     "elastic_ordinates",
     "damping",
     "static",
     "distribution",
+    "distribution_relation",
     "modes",
     "combination",
     "independent",
@@ -188,7 +190,7 @@ class Static:
     governing : str
         The expression that governs, in words.
     relations : tuple of Relation
-        How it comes about, the governing one last.
+        How it comes about: what was compared, then what governs, then the shear.
     clause : str
         Its source.
     """
@@ -306,6 +308,10 @@ class Edition(ABC):
         """Design ordinates in a direction, (m,), at each period, (m,) [m/s²]; at period 0 too."""
 
     @abstractmethod
+    def ordinate_relation(self, direction: str, period: float) -> tuple[Relation, ...]:
+        """How the design ordinate in a direction comes about at a period [s]: the branch that governs, the ordinate last."""
+
+    @abstractmethod
     def elastic_ordinates(self, direction: str, period: Array) -> Array | None:
         """Elastic ordinates in a direction, (m,), at each period, (m,) [m/s²]: their displacements need not be exceeded.
 
@@ -323,6 +329,10 @@ class Edition(ABC):
     @abstractmethod
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
         """Force at each level of `facts` that the base shear of `static` makes, (n,) [kN], and its clause."""
+
+    @abstractmethod
+    def distribution_relation(self, facts: Facts, static: Static) -> tuple[Relation, ...]:
+        """How the force at the top level of `facts` comes about, which the base shear of `static` makes."""
 
     @abstractmethod
     def modes(self) -> Answer:

@@ -12,7 +12,7 @@ from typing import ClassVar
 import numpy as np
 
 from calcsheet.core.arrays import Array
-from calcsheet.core.codes.common import amplified, by_height, closest, stability
+from calcsheet.core.codes.common import amplified, at_top, by_height, closest, stability
 from calcsheet.core.codes.edition import (
     Answer,
     Edition,
@@ -218,6 +218,52 @@ class EN1998(Edition):
         falling = self._ag * s * 2.5 / q * np.minimum(long, 1.0)
         return np.where(t < t_b, rising, np.where(t > t_c, np.maximum(falling, self.beta * self._ag), falling))
 
+    def ordinate_relation(self, direction: str, period: float) -> tuple[Relation, ...]:
+        s, t_b, t_c, t_d = self._corners
+        a_g, soil, q = Value(self._ag, "acceleration"), Value(s, "ratio"), Value(self._q(direction), "ratio")
+        t, b, c, d = (Value(v, "period") for v in (period, t_b, t_c, t_d))
+        ordinate = float(self.ordinates(direction, np.array([period]))[0])
+        design = Relation(
+            "Design ground acceleration", "a_g = γ_I a_gR g", "{0} × {1} × {2}",
+            (
+                Value(self.importance().value, "ratio"), Value(self.ground_acceleration, "ratio"),
+                Value(GRAVITY, "acceleration"),
+            ),
+            a_g, "3.2.1(3)",
+        )  # fmt: skip
+        what, plateau = "Design ordinate at T₁", self._ag * s * 2.5 / q.value
+        if period < t_b:
+            return design, Relation(
+                what, "S_d = a_g S (2/3 + T/T_B (2.5/q − 2/3)), for T < T_B",
+                "{0} × {1} × (2 / 3 + {2} / {3} × (2.5 / {4} − 2 / 3)), for {2} < {3}",
+                (a_g, soil, t, b, q), Value(ordinate, "acceleration"), "3.2.2.5(4), Eq. (3.13)",
+            )  # fmt: skip
+        if period <= t_c:
+            return design, Relation(
+                what, "S_d = a_g S 2.5/q, for T_B ≤ T ≤ T_C", "{0} × {1} × 2.5 / {2}, for {3} ≤ {4} ≤ {5}",
+                (a_g, soil, q, b, t, c), Value(ordinate, "acceleration"), "3.2.2.5(4), Eq. (3.14)",
+            )  # fmt: skip
+        if period <= t_d:
+            falling = plateau * t_c / period
+            relation = "S_d = a_g S (2.5/q) T_C/T, for T_C < T ≤ T_D"
+            how, number = "{0} × {1} × 2.5 / {2} × {3} / {4}, for {3} < {4} ≤ {5}", "3.15"
+        else:
+            falling = plateau * t_c * t_d / period**2
+            relation = "S_d = a_g S (2.5/q) T_C T_D/T², for T > T_D"
+            how, number = "{0} × {1} × 2.5 / {2} × {3} × {5} / {4}², for {4} > {5}", "3.16"
+        governs = self.beta * self._ag > falling
+        branch = Relation(
+            "Branch of the period, below the lower bound" if governs else what, relation, how, (a_g, soil, q, c, t, d),
+            Value(falling, "acceleration"), f"3.2.2.5(4), Eq. ({number})",
+        )  # fmt: skip
+        if not governs:
+            return design, branch
+        bound = Relation(
+            what, "S_d = β a_g, the lower bound, which governs", "{0} × {1}", (Value(self.beta, "ratio"), a_g),
+            Value(ordinate, "acceleration"), "3.2.2.5(4), note",
+        )  # fmt: skip
+        return design, branch, bound
+
     def elastic_ordinates(self, direction: str, period: Array) -> Array:
         return self.elastic(period)
 
@@ -251,6 +297,9 @@ class EN1998(Edition):
 
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
         return by_height(facts, static.shear, 1.0), "4.3.3.2.3(3), Eq. (4.11)"
+
+    def distribution_relation(self, facts: Facts, static: Static) -> tuple[Relation, ...]:
+        return (at_top(facts, static.shear, 1.0, "", "4.3.3.2.3(3), Eq. (4.11)"),)
 
     def modes(self) -> Answer:
         return Answer(

@@ -12,7 +12,7 @@ from typing import ClassVar
 import numpy as np
 
 from calcsheet.core.arrays import Array
-from calcsheet.core.codes.common import by_height, closest, heavier, listed, softer, up_to_static
+from calcsheet.core.codes.common import at_top, by_height, closest, heavier, listed, softer, up_to_static
 from calcsheet.core.codes.edition import (
     Answer,
     Edition,
@@ -138,6 +138,34 @@ class IS1893(Edition):
     def ordinates(self, direction: str, period: Array) -> Array:
         return self.curve(period, "spectrum") * self._factor(direction) * GRAVITY
 
+    def ordinate_relation(self, direction: str, period: float) -> tuple[Relation, ...]:
+        branch = self._branch(period, "spectrum")
+        r = self.r_x if direction == "x" else self.r_y
+        values = (
+            Value(ZONE[self.zone], "ratio"), Value(self.importance_value, "ratio"), Value(r, "ratio"), branch.result,
+            Value(GRAVITY, "acceleration"),
+        )  # fmt: skip
+        ordinate = Value(float(self.ordinates(direction, np.array([period]))[0]), "acceleration")
+        how, clause = "{0} / 2 × {1} / {2} × {3} × {4}", "6.4.2, 7.7.5.4"
+        return branch, Relation("Design ordinate at T₁", "(Z/2)(I/R)(S_a/g) g", how, values, ordinate, clause)
+
+    def _branch(self, period: float, method: str) -> Relation:
+        """S_a/g at a period [s] on the curve of a method, by the branch that holds."""
+        end, top, far = SOIL[self.soil]
+        t = Value(period, "period")
+        if method == "spectrum" and period < 0.1:
+            relation, how = "S_a/g = 1 + 15 T, for T < 0.10 s", "1 + 15 × {0}, for {0} < 0.10 s"
+        elif period <= end:
+            relation, how = "S_a/g = 2.5, for T ≤ T_p", f"2.5, for {{0}} ≤ {end:.2f} s"
+        elif period <= 4.0:
+            relation, how = "S_a/g = c/T, for T_p < T ≤ 4 s", f"{top:.2f} / {{0}}, for {end:.2f} s < {{0}} ≤ 4 s"
+        else:
+            relation, how = "S_a/g beyond 4 s", f"{far:.2f}, for {{0}} > 4 s"
+        where = "T₁" if method == "spectrum" else "T_a"
+        result = Value(float(self.curve(np.array([period]), method)[0]), "ratio")
+        clause = f"6.4.2({'b' if method == 'spectrum' else 'a'}), {self.soil} soil"
+        return Relation(f"Spectral ordinate at {where}", relation, how, (t,), result, clause)
+
     def elastic_ordinates(self, direction: str, period: Array) -> Array | None:
         return None
 
@@ -147,27 +175,29 @@ class IS1893(Edition):
     def static(self, facts: Facts) -> Static:
         system = self.system_x if facts.direction == "x" else self.system_y
         period, relation = self._period(facts, system)
-        ordinate = float(self.curve(np.array([period]), "static")[0])
+        branch = self._branch(period, "static")
         factor = self._factor(facts.direction)
-        by_period, least = factor * ordinate, LEAST[self.zone]
+        by_period, least = factor * branch.result.value, LEAST[self.zone]
         coefficient = max(by_period, least)
         shear = coefficient * facts.total
         z, i = Value(ZONE[self.zone], "ratio"), Value(self.importance_value, "ratio")
         r = Value(self.r_x if facts.direction == "x" else self.r_y, "ratio")
         governing = "(Z/2)(S_a/g)/(R/I)" if by_period >= least else "least base shear of Table 7"
-        result = Value(coefficient, "coefficient")
-        if by_period >= least:
-            how = Relation(
+        compared = [
+            Relation(
                 "Seismic coefficient", "A_h = (Z/2)(S_a/g)/(R/I)", "({0} / 2) × {1} / ({2} / {3})",
-                (z, Value(ordinate, "ratio"), r, i), result, "6.4.2",
-            )  # fmt: skip
-        else:
-            how = Relation(
-                "Least base shear over weight", f"zone {self.zone}", f"{least:g}", (), result, "7.2.2, Table 7"
-            )
+                (z, branch.result, r, i), Value(by_period, "coefficient"), "6.4.2",
+            ),
+            Relation(
+                "Lower bound of A_h, base shear over weight", f"zone {self.zone}", f"{least:g}", (),
+                Value(least, "coefficient"), "7.2.2, Table 7",
+            ),
+        ]  # fmt: skip
+        result = Value(coefficient, "coefficient")
         relations = (
             relation,
-            how,
+            branch,
+            *(compared[::-1] if by_period >= least else compared),
             Relation(
                 "Static base shear", "V̄_B = A_h W", "{0} × {1}", (result, Value(facts.total, "force")),
                 Value(shear, "force"), "7.6.1",
@@ -201,6 +231,9 @@ class IS1893(Edition):
 
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
         return by_height(facts, static.shear, 2.0), "7.6.3(a)"
+
+    def distribution_relation(self, facts: Facts, static: Static) -> tuple[Relation, ...]:
+        return (at_top(facts, static.shear, 2.0, "²", "7.6.3(a)"),)
 
     def modes(self) -> Answer:
         return Answer(

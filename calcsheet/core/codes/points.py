@@ -84,6 +84,46 @@ def interpolated(points: Sequence[tuple[float, float]], period: Array, between: 
     return np.interp(inside, t, a)
 
 
+def between_points(
+    points: Sequence[tuple[float, float]], period: float, between: str, what: str, clause: str
+) -> tuple[Relation, ...]:
+    """How `interpolated` comes to the ordinate at one period, the ordinate last.
+
+    Parameters
+    ----------
+    points : sequence of (float, float)
+        Period [s] and ordinate over g.
+    period : float
+        Period [s], within the points or below the first, whose ordinate then holds.
+    between : {"linear", "log-log"}
+        Interpolation.
+    what : str
+        Name of the ordinate.
+    clause : str
+        Its source.
+    """
+    t, a = np.array(points, dtype=float).T
+    result = Value(float(interpolated(points, np.array([period]), between, hold_below=True)[0]), "ratio")
+    if period <= t[0]:
+        values = (Value(float(a[0]), "ratio"), Value(period, "period"), Value(float(t[0]), "period"))
+        return (Relation(what, "S = S_i, for T ≤ T_i", "{0}, for {1} ≤ {2}", values, result, clause),)
+    j = min(int(np.searchsorted(t, period)), t.size - 1)
+    at, t_i, t_j = Value(period, "period"), Value(float(t[j - 1]), "period"), Value(float(t[j]), "period")
+    s_i, s_j = Value(float(a[j - 1]), "ratio"), Value(float(a[j]), "ratio")
+    if between == "linear":
+        how = "{0} + ({1} − {0}) × ({2} − {3}) / ({4} − {3})"
+        relation = "S = S_i + (S_j − S_i)(T − T_i)/(T_j − T_i)"
+        return (Relation(what, relation, how, (s_i, s_j, at, t_i, t_j), result, clause),)
+    power = Value(float(np.log(period / t[j - 1]) / np.log(t[j] / t[j - 1])), "ratio")
+    return (
+        Relation(
+            "Place between two points", "p = ln(T/T_i)/ln(T_j/T_i)", "ln({0} / {1}) / ln({2} / {1})", (at, t_i, t_j),
+            power, clause,
+        ),
+        Relation(what, "S = S_i (S_j/S_i)^p", "{0} × ({1} / {0})^{2}", (s_i, s_j, power), result, clause),
+    )  # fmt: skip
+
+
 @dataclass(frozen=True)
 class GivenPoints(Edition):
     """A spectrum as given points.
@@ -128,6 +168,12 @@ class GivenPoints(Edition):
         found = interpolated(self.points, np.asarray(period, dtype=float), self.between, self.hold_below)
         return found * GRAVITY
 
+    def ordinate_relation(self, direction: str, period: float) -> tuple[Relation, ...]:
+        found = between_points(self.points, period, self.between, "Given ordinate over g at T₁", "as given")
+        ordinate = Value(float(self.ordinates(direction, np.array([period]))[0]), "acceleration")
+        values = (found[-1].result, Value(GRAVITY, "acceleration"))
+        return *found, Relation("Design ordinate at T₁", "S g", "{0} × {1}", values, ordinate, "as given")
+
     def elastic_ordinates(self, direction: str, period: Array) -> Array | None:
         return None
 
@@ -138,6 +184,9 @@ class GivenPoints(Edition):
         return None
 
     def distribution(self, facts: Facts, static: Static) -> tuple[Array, str]:
+        raise ModelError("static forces", "asked of given points", "need a code edition")
+
+    def distribution_relation(self, facts: Facts, static: Static) -> tuple[Relation, ...]:
         raise ModelError("static forces", "asked of given points", "need a code edition")
 
     def modes(self) -> Answer:

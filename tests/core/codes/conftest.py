@@ -44,10 +44,11 @@ def worked() -> Callable[[Relation], float]:
 
     def evaluate(relation: Relation) -> float:
         numbers = [v.value / 0.3048 if v.quantity == "feet" else v.value for v in relation.values]
-        text = relation.substitution.format(*(f"({n!r})" for n in numbers))
+        text, _, _ = relation.substitution.partition(", for ")
+        text = text.replace(" s)", ")").removesuffix(" s").format(*(f"({n!r})" for n in numbers))
         text = re.sub(r"√(\([^)]*\))", r"sqrt\1", text)
-        for sign, operator in (("×", "*"), ("^", "**"), ("²", "**2")):
+        for sign, operator in (("×", "*"), ("^", "**"), ("²", "**2"), ("−", "-")):
             text = text.replace(sign, operator)
-        return float(eval(text, {"__builtins__": {}}, {"sqrt": math.sqrt}))
+        return float(eval(text, {"__builtins__": {}}, {"sqrt": math.sqrt, "ln": math.log}))
 
     return evaluate

@@ -10,6 +10,7 @@ import pytest
 
 from calcsheet.core.codes.edition import CHECKLIST, NOT_HERE, Edition
 from calcsheet.core.codes.registry import EDITIONS
+from calcsheet.core.errors import ModelError
 
 SHARED = {
     "s_ds": 0.9, "s_d1": 0.45, "s_1": 0.4, "t_l": 6.0, "site_class": "C", "risk_category": "III", "r_x": 6.0, "r_y": 5.0,
@@ -107,7 +108,9 @@ def test_the_force_of_the_levels_adds_up_to_the_static_base_shear(edition, build
 def test_relations_say_what_they_give(edition, building, worked, direction):
     facts = building(direction, period=0.7)
     static = edition.static(facts)
-    relations = [edition.drift_limit(facts)[1], *(() if static is None else static.relations)]
+    relations = [edition.drift_limit(facts)[1]]
+    if static is not None:
+        relations += [*static.relations, *edition.distribution_relation(facts, static)]
     for relation in relations:
         assert worked(relation) == pytest.approx(relation.result.value, rel=1e-12), relation
 
@@ -119,3 +122,29 @@ def test_screens_stand_in_four_words_and_say_what_follows(edition, building):
     for screen in screens:
         assert screen.text
         assert bool(screen.consequence) or screen.verdict in ("passes", "not assessed")
+
+
+@pytest.mark.parametrize("period", [0.0, 0.01, 0.05, 0.1, 0.13, 0.3, 0.5, 0.67, 0.7, 1.2, 2.0, 3.5, 4.0, 5.0, 9.5])
+@pytest.mark.parametrize("direction", ["x", "y"])
+def test_the_ordinate_follows_from_its_relations(edition, worked, direction, period):
+    points = getattr(edition, "points", ())
+    if points and period > points[-1][0]:
+        with pytest.raises(ModelError):
+            edition.ordinate_relation(direction, period)
+        return
+    relations = edition.ordinate_relation(direction, period)
+    for relation in relations:
+        assert worked(relation) == pytest.approx(relation.result.value, rel=1e-12), relation
+        assert with_clause(relation.clause)
+    assert relations[-1].result.quantity == "acceleration"
+    assert relations[-1].result.value == pytest.approx(edition.ordinates(direction, np.array([period]))[0], rel=1e-15)
+
+
+def test_the_force_at_the_top_level_is_the_one_of_the_distribution(edition, building):
+    facts = building(period=0.7)
+    static = edition.static(facts)
+    if static is None:
+        with pytest.raises(ModelError, match="need a code edition"):
+            edition.distribution_relation(facts, None)
+        return
+    assert edition.distribution_relation(facts, static)[-1].result.value == edition.distribution(facts, static)[0][-1]

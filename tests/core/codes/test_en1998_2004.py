@@ -248,3 +248,20 @@ def test_one_storey_is_even_along_its_height(building):
 
 def test_separation():
     assert edition().separation(0.125) == (0.125, "4.4.2.7(2)")
+
+
+def test_where_the_lower_bound_governs_its_relation_says_so():
+    # at 3 s the branch gives 0.25 × 1.2 × 2.5/3 × 0.5 × 2/9 = 0.0278 of g, the bound 0.2 × 0.25 = 0.05
+    _, branch, bound = edition().ordinate_relation("x", 3.0)
+    assert branch.quantity == "Branch of the period, below the lower bound"
+    assert branch.result.value == pytest.approx(0.25 / 9 * G, rel=1e-12)
+    assert bound.relation == "S_d = β a_g, the lower bound, which governs"
+    assert bound.result.value == pytest.approx(0.05 * G, rel=1e-12)
+    _, branch = edition().ordinate_relation("x", 2.2)
+    assert branch.relation == "S_d = a_g S (2.5/q) T_C T_D/T², for T > T_D"
+
+
+def test_the_corners_of_the_spectrum_stand_among_the_values():
+    a_g, plateau = edition(importance_class="III").ordinate_relation("x", 0.3)
+    assert a_g.result.value == pytest.approx(1.2 * 0.25 * G, rel=1e-14)
+    assert [v.value for v in plateau.values[1:]] == [1.2, 3.0, 0.15, 0.3, 0.5]

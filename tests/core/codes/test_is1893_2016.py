@@ -54,7 +54,7 @@ def test_static_base_shear_on_the_plateau(building, worked, zone, coefficient):
     assert static.shear == pytest.approx(coefficient * 5000, rel=1e-12)
     assert static.period == pytest.approx(0.075 * 10**0.75, rel=1e-14)
     assert static.governing == "(Z/2)(S_a/g)/(R/I)"
-    assert worked(static.relations[1]) == pytest.approx(coefficient, rel=1e-12)
+    assert [worked(r) for r in static.relations[-2:]] == pytest.approx([coefficient, coefficient * 5000], rel=1e-12)
 
 
 @pytest.mark.parametrize(("zone", "least"), [("II", 0.007), ("III", 0.011), ("IV", 0.016), ("V", 0.024)])
@@ -64,7 +64,7 @@ def test_least_base_shear(building, worked, zone, least):
     static = edition(zone=zone, soil="hard").static(tall)
     assert static.shear == pytest.approx(least * 5000, rel=1e-12)
     assert static.governing == "least base shear of Table 7"
-    assert [worked(r) for r in static.relations[1:]] == pytest.approx([least, least * 5000], rel=1e-12)
+    assert [worked(r) for r in static.relations[-2:]] == pytest.approx([least, least * 5000], rel=1e-12)
 
 
 def test_falling_branch_governs(building):

@@ -100,3 +100,17 @@ def test_given_points_scale_nothing_and_assess_nothing(building):
     assert edition.separation(0.1)[0] is None
     with pytest.raises(ModelError, match=r"^static forces: asked of given points; need a code edition$"):
         edition.distribution(facts, None)
+
+
+@pytest.mark.parametrize("period", [0.02, 0.1, 0.25, 0.4, 0.7, 1.6])
+@pytest.mark.parametrize("between", ["linear", "log-log"])
+def test_the_ordinate_follows_from_the_points_beside_it(worked, period, between):
+    edition = GivenPoints(POINTS, between=between, hold_below=True)
+    relations = edition.ordinate_relation("x", period)
+    assert [worked(r) for r in relations] == pytest.approx([r.result.value for r in relations], rel=1e-12)
+    assert relations[-1].result.value == edition.ordinates("x", np.array([period]))[0]
+
+
+def test_the_points_are_the_two_around_the_period():
+    found = GivenPoints(POINTS).ordinate_relation("x", 0.7)[0]
+    assert [v.value for v in found.values] == [0.8, 0.2, 0.7, 0.4, 1.6]
