@@ -16,7 +16,7 @@ from calcsheet.record.errors import RecordError
 from calcsheet.render.registry import VIEWS
 from calcsheet.steps.graph import Job
 from calcsheet.steps.registry import STEPS
-from calcsheet.steps.serial import fingerprint
+from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
 
 
@@ -97,7 +97,14 @@ def refuse_stale(content: Content, folder: Path) -> None:
     RecordError
         Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
     """
-    now = Job(folder.resolve()).payloads()
+    job = Job(folder.resolve())
+    now = job.payloads()
+    if "basis" in content.payloads:
+        here = None if job.files is None else job.files.basis
+        if fingerprint(to_json(here)) != fingerprint(content.payloads["basis"]["inputs"]):
+            raise RecordError(
+                "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
+            )
     for key in ("card", "storeys"):
         if now[key]["state"] != "ok":
             raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")

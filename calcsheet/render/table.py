@@ -10,6 +10,8 @@ from html import escape
 from calcsheet.render.numbers import decimals_for, decimals_given, heading, number
 from calcsheet.units import display
 
+SHORT = 15
+"""Rows up to which a table is kept on one page."""
 UNIT = re.compile(r"\[[^\]]+\]$")
 """The unit at the end of a heading, which is not to be broken."""
 
@@ -113,7 +115,8 @@ def table(
         rows.append(f"<tr{' class=marked' if i in marked else ''}>{cells}</tr>")
     title = f"<caption>{escape(caption)}</caption>" if caption else ""
     tail = f"<tfoot><tr>{foot}</tr></tfoot>" if foot else ""
-    return f'<table class="{kind}">{title}<thead><tr>{heads}</tr></thead><tbody>{"".join(rows)}</tbody>{tail}</table>'
+    size = " short" if len(rows) <= SHORT else ""
+    return f'<table class="{kind}{size}">{title}<thead><tr>{heads}</tr></thead><tbody>{"".join(rows)}</tbody>{tail}</table>'
 
 
 def _cell(tag: str, attributes: str, column: Column, html: str) -> str:
