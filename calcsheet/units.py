@@ -104,6 +104,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "length": _pair(Display("m", 1.0, 4), Display("ft", FOOT, 4)),
     "elevation": _pair(Display("m", 1.0, 4), Display("ft", FOOT, 4)),
     "metres": _pair(Display("m", 1.0, 4)),
+    "square metres": _pair(Display("m²", 1.0, 4)),
     "feet": _pair(Display("ft", FOOT, 4)),
     "area": _pair(Display("m²", 1.0, 4), Display("ft²", FOOT**2, 4)),
     "displacement": _pair(Display("mm", 0.001, 3), Display("in", INCH, 3)),
@@ -130,8 +131,8 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
 }
 """How each quantity is shown, by system.
 
-"metres" and "feet" are lengths that a code's empirical formula asks for in that unit; the last two are Γ and ψ of
-mass-normalised modes.
+"metres", "square metres" and "feet" are sizes that a code's empirical formula asks for in that unit; the last two are
+Γ and ψ of mass-normalised modes.
 """
 
 

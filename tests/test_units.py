@@ -10,6 +10,7 @@ CORE = {
     "elevation": "m",
     "displacement": "m",
     "metres": "m",
+    "square metres": "m**2",
     "feet": "m",
     "area": "m**2",
     "pressure": "kN/m**2",

@@ -260,7 +260,7 @@ class ASCE7(Edition):
         shear = coefficient * facts.total
         relations = (
             Relation(
-                "Approximate period", f"T_a = C_t h_n^x, h_n in {self.height_unit}", f"{c_t:g} × {{0}}^{power:g}",
+                "Approximate period", f"T_a = C_t h_n^x, h_n in {self.height_unit}", f"{c_t:g} × ({{0}})^{power:g}",
                 (Value(facts.top, "feet" if self.height_unit == "ft" else "metres"),), Value(approximate, "period"),
                 "12.8.2.1, Table 12.8-2",
             ),
@@ -288,7 +288,7 @@ class ASCE7(Edition):
         substitution, values, number = {
             "S_DS/(R/I_e)": ("{0} / {1}", (s_ds, r), "12.8-2"),
             FALLING: ("{0} / ({1} × {2})", (s_d1, t, r), "12.8-3"),
-            FAR: ("{0} × {1} / ({2}² × {3})", (s_d1, t_l, t, r), "12.8-4"),
+            FAR: ("{0} × {1} / (({2})² × {3})", (s_d1, t_l, t, r), "12.8-4"),
             "0.044 S_DS I_e": ("0.044 × {0} × {1}", (s_ds, i_e), "12.8-5"),
             "0.01": ("0.01", (), "12.8-5"),
             NEAR_FAULT: ("0.5 × {0} / {1}", (s_1, r), "12.8-6"),

@@ -36,7 +36,7 @@ def two_period_relation(
         relation, how = "S_a = S_D1/T, for T_S < T ≤ T_L", "{0} / {1}, for {2} < {1} ≤ {3}"
         values = (long, t, corner, far)
     else:
-        relation, how, values = "S_a = S_D1 T_L/T², for T > T_L", "{0} × {1} / {2}², for {2} > {1}", (long, far, t)
+        relation, how, values = "S_a = S_D1 T_L/T², for T > T_L", "{0} × {1} / ({2})², for {2} > {1}", (long, far, t)
     return (
         Relation("Corner period", "T_S = S_D1/S_DS", "{0} / {1}", (long, short), corner, clause),
         Relation("Spectral ordinate over g at T₁", relation, how, values, Value(ordinate, "ratio"), clause),

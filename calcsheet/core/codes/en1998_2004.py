@@ -250,7 +250,7 @@ class EN1998(Edition):
         else:
             falling = plateau * t_c * t_d / period**2
             relation = "S_d = a_g S (2.5/q) T_C T_D/T², for T > T_D"
-            how, number = "{0} × {1} × 2.5 / {2} × {3} × {5} / {4}², for {4} > {5}", "3.16"
+            how, number = "{0} × {1} × 2.5 / {2} × {3} × {5} / ({4})², for {4} > {5}", "3.16"
         governs = self.beta * self._ag > falling
         branch = Relation(
             "Branch of the period, below the lower bound" if governs else what, relation, how, (a_g, soil, q, c, t, d),
@@ -281,7 +281,7 @@ class EN1998(Edition):
         shear = ordinate * facts.total / GRAVITY * effective
         relations = (
             Relation(
-                "Empirical period", "T = C_t H^0.75", f"{c_t:g} × {{0}}^0.75", (Value(facts.top, "metres"),),
+                "Empirical period", "T = C_t H^0.75", f"{c_t:g} × ({{0}})^0.75", (Value(facts.top, "metres"),),
                 Value(approximate, "period"), "4.3.3.2.2(3)" + (": for heights up to 40 m" if facts.top > 40.0 else ""),
             ),
             Relation(

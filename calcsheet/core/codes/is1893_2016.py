@@ -215,7 +215,7 @@ class IS1893(Edition):
 
         if system in PERIOD:
             c = PERIOD[system]
-            return found(c * facts.top**0.75, "T_a = C h^0.75", f"{c:g} × {{0}}^0.75", "7.6.2(a)")
+            return found(c * facts.top**0.75, "T_a = C h^0.75", f"{c:g} × ({{0}})^0.75", "7.6.2(a)")
         along_x = facts.direction == "x"
         base, area = (self.base_x, self.wall_area_x) if along_x else (self.base_y, self.wall_area_y)
         assert base is not None  # __post_init__ asks for it
@@ -224,8 +224,8 @@ class IS1893(Edition):
             assert area is not None
             by_area = 0.075 * facts.top**0.75 / area**0.5
             if by_area >= by_base:
-                how = "0.075 × {0}^0.75 / √{1}"
-                return found(by_area, "T_a = 0.075 h^0.75/√A_w", how, "7.6.2(b)", Value(area, "area"))
+                how = "0.075 × ({0})^0.75 / √({1})"
+                return found(by_area, "T_a = 0.075 h^0.75/√A_w", how, "7.6.2(b)", Value(area, "square metres"))
         clause = "7.6.2(b)" if system == WALLS else "7.6.2(c)"
         return found(by_base, "T_a = 0.09 h/√d", "0.09 × {0} / √{1}", clause, Value(base, "metres"))
 
