@@ -35,8 +35,8 @@ GENERAL = (
     ),
     Caution(
         "left-out",
-        "Left out: load combinations, torsion of the plan, vertical motion, parts and components, design of diaphragms, "
-        "foundation uplift, wind.",
+        "Left out: load combinations, combination of directions, torsion of the plan, vertical motion, parts and "
+        "components, design of diaphragms, foundation uplift, wind.",
     ),
 )
 
