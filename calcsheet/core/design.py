@@ -9,9 +9,8 @@ import numpy as np
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.codes.edition import Edition, Factor, Facts, Relation, Scaling, Screen, SecondOrder, Static
 from calcsheet.core.errors import ModelError
-from calcsheet.core.response import Combined
+from calcsheet.core.response import PEAK, Combined
 
-PEAK = agrees(rtol=1e-6, atol=1e-9)
 SAME = 1e-9
 """Relative difference up to which a drift counts as not capped: two spectra on one plateau differ by rounding."""
 

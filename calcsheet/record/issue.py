@@ -104,10 +104,6 @@ def issue(
     kinds = [k for k in ("html", "pdf") if (to is None or k in to) and not (k == "pdf" and not engine)]
     content = collect(_executed(folder, progress))
     refuse_stale(content, folder)
-    strange = missing_characters(json.dumps(record_of(content), ensure_ascii=False))
-    if strange:
-        lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"
-        note = "; ".join(filter(None, (note, lacking)))
     return _built(content, target, kinds, paper, engine, note)
 
 
@@ -129,7 +125,8 @@ def _built(content: Content, target: Path, kinds: Sequence[str], paper: Paper, e
     record = record_of(content)
     job = content.payloads["card"]["inputs"]["job"]
     stem = f"{_file_name(job['number'])}-rev-{_file_name(job['revision'])}"
-    data = json.dumps(record, ensure_ascii=False, indent=1).encode()
+    text = json.dumps(record, ensure_ascii=False, indent=1)
+    data = text.encode()
     target.parent.mkdir(exist_ok=True)
     building = Path(tempfile.mkdtemp(prefix=".building-", dir=target.parent))
     try:
@@ -150,6 +147,10 @@ def _built(content: Content, target: Path, kinds: Sequence[str], paper: Paper, e
         shutil.rmtree(building, ignore_errors=True)
         raise
     files = tuple(sorted(target.iterdir(), key=lambda path: (".html", ".pdf", ".json").index(path.suffix)))
+    strange = missing_characters(text)
+    if strange:
+        lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"
+        note = "; ".join(filter(None, (note, lacking)))
     return Issued(target, files, record["status"], held_back(content.payloads, content.words), note)
 
 

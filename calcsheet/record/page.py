@@ -191,7 +191,6 @@ def render_page(page: Page, target: Target, paper: Paper) -> str:
     """
     _validate(page, paper)
     parts = {part: [section for section in page.sections if section.part == part] for part in PARTS}
-    parts = {part: [section for section in page.sections if section.part == part] for part in PARTS}
     html = _template().render(
         page=page,
         cover=page.cover,

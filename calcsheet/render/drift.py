@@ -67,7 +67,7 @@ def _words(item: Mapping[str, Any], levels: list[str], system: str, at: str) -> 
     rows = [
         (
             "governing storey",
-            f'below level {escape(levels[worst])}: {share} of its limit, <span class="{verdict}">{verdict}</span>',
+            f"below level {escape(levels[worst])}: {share} of its limit, {outcome(verdict)}",
         ),
         (
             "design drift over elastic",

@@ -8,6 +8,7 @@ from typing import Any
 
 from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Choice, Rendered, View, system_of
+from calcsheet.render.words import outcome
 from calcsheet.steps.step import Payload
 
 SHOWN = 12
@@ -29,7 +30,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
                 parts.append(f"<p>The first {SHOWN} of {len(model['modes']['omega'])} modes are listed.</p>")
     kept = all(e["within"] for e in payload["evidence"])
     verdict = "passes" if kept else "exceeds"
-    stands = f'{len(payload["evidence"])} figures of evidence: <span class="{verdict}">{verdict}</span>.'
+    stands = f"{len(payload['evidence'])} figures of evidence: {outcome(verdict)}."
     return Rendered(f"<p>Stiffness set: {escape(payload['result']['stiffness'])}. {stands}</p>" + "".join(parts))
 
 

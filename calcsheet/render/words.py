@@ -49,9 +49,7 @@ def worked(lines: Iterable[Located], system: str) -> str:
 def evidence(found: Iterable[Located]) -> str:
     """Table of evidence; `found` holds each figure with its own JSON pointer."""
     rows = list(found)
-    verdicts = [
-        '<span class="passes">passes</span>' if e["within"] else '<span class="exceeds">exceeds</span>' for _, e in rows
-    ]
+    verdicts = [outcome("passes" if e["within"] else "exceeds") for _, e in rows]
     return table(
         (
             words("evidence", [e["what"] for _, e in rows]),

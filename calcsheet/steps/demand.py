@@ -110,7 +110,7 @@ def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
     ordinate = edition.ordinates(facts.direction, part.period)
     shortest, longest = float(part.period[-1]), float(part.period[0])
     periods = np.unique(np.concatenate([np.linspace(shortest, max(1.15 * longest, 1.0), DRAWN), part.period]))
-    periods = periods[: np.searchsorted(periods, _last(edition, facts.direction, periods), side="right")]
+    periods = periods[periods <= edition.reach]
     static = edition.static(facts)
     return Demand(
         direction=facts.direction,
@@ -126,12 +126,6 @@ def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
         first_effective_mass=float(part.effective_mass[0]),
         first_base_shear=float(part.effective_mass[0] * ordinate[0]),
     )
-
-
-def _last(edition: Edition, direction: str, periods: Array) -> float:
-    """Last of the periods that the spectrum reaches: given points end somewhere."""
-    points = getattr(edition, "points", ())
-    return float(points[-1][0]) if points else float(periods[-1])
 
 
 def _lines(demand: Demand, at: str) -> list[Line]:

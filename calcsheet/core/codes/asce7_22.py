@@ -48,6 +48,10 @@ class ASCE722(ASCE7):
             return "the two-period spectrum is for sites without multi-period values", "11.4.5"
         return "", "11.4.5, 11.4.7"
 
+    @property
+    def reach(self) -> float:
+        return self.points[-1][0] if self.points else super().reach
+
     def spectrum(self, period: Array) -> Array:
         if not self.points:
             return self.two_period(period)

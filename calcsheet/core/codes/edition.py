@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from abc import ABC, abstractmethod
 from dataclasses import dataclass, field
+from math import inf
 from typing import Any, ClassVar, Literal
 
 from calcsheet.core.arrays import Array, Frozen, agrees
@@ -294,6 +295,11 @@ class Edition(ABC):
     """The same, by which a stored edition is told from the others."""
     level: ClassVar[str]
     """What its ordinates include and what they do not."""
+
+    @property
+    def reach(self) -> float:
+        """Longest period that the ordinates are given for [s]; infinite unless they are points."""
+        return inf
 
     @abstractmethod
     def permitted(self, facts: Facts) -> Answer:

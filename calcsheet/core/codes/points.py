@@ -156,6 +156,10 @@ class GivenPoints(Edition):
     kind: ClassVar[str] = name
     level: ClassVar[str] = "as the points were given: what they include is for their origin to say"
 
+    @property
+    def reach(self) -> float:
+        return self.points[-1][0]
+
     def permitted(self, facts: Facts) -> Answer:
         return Answer(
             "Given points name no code: whether this analysis is permitted is not assessed.", NOT_HERE, "not assessed"
