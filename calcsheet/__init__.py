@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from calcsheet.blocks import (
+        Cautions,
         DemandSpectrum,
         DriftCheck,
         JobCard,
@@ -20,10 +21,12 @@ if TYPE_CHECKING:
         StaticComparison,
         StoreyActions,
         StoreyTable,
+        WhatChanged,
     )
 
 __version__ = "0.1.0"
 __all__ = [
+    "Cautions",
     "DemandSpectrum",
     "DriftCheck",
     "JobCard",
@@ -34,6 +37,7 @@ __all__ = [
     "StaticComparison",
     "StoreyActions",
     "StoreyTable",
+    "WhatChanged",
     "__version__",
 ]
 
