@@ -58,7 +58,9 @@ def _replayed(key: str, payload: Payload, payloads: Mapping[str, Payload], words
         if below is None or below["state"] != "ok" or below["kind"] != kind:
             return [Difference(key, "needs", kind, "no result of it is stored", "must be stored with the step")]
         try:
-            upstream.append(Done(from_json(STEPS[kind].inputs, below["inputs"]), from_json(STEPS[kind].result, below["result"])))
+            upstream.append(
+                Done(from_json(STEPS[kind].inputs, below["inputs"]), from_json(STEPS[kind].result, below["result"]))
+            )
         except MALFORMED as error:
             return [_malformed(key, f"needs/{kind}", error)]
     return _run(key, step, payload, upstream, words)
@@ -93,7 +95,9 @@ def _run(key: str, step: Step, payload: Payload, upstream: list[Done], words: bo
 
 def _malformed(key: str, part: str, error: Exception) -> Difference:
     said = " ".join(str(error).split())[:120]
-    return Difference(key, part, "malformed", f"{type(error).__name__}: {said}", "must be as a step of this kind makes it")
+    return Difference(
+        key, part, "malformed", f"{type(error).__name__}: {said}", "must be as a step of this kind makes it"
+    )
 
 
 def _without_words(stored: Outcome, outcome: Outcome) -> Iterator[tuple[str, str, str, str]]:
@@ -112,7 +116,12 @@ def _misplaced(stored: Outcome, payload: Payload) -> Iterator[tuple[str, str, st
             for number in (*item.numbers, *((item.result,) if isinstance(item, Line) else ())):
                 held = _at(payload, number)
                 if not isinstance(held, int | float) or abs(held - number.value) > 1e-12 + 1e-7 * abs(number.value):
-                    yield f"/{part}/{i}", f"{number.value:.12g}", f"{held!r} at {number.at}", "must be what stands at its place"
+                    yield (
+                        f"/{part}/{i}",
+                        f"{number.value:.12g}",
+                        f"{held!r} at {number.at}",
+                        "must be what stands at its place",
+                    )
 
 
 def _at(payload: Payload, number: Number) -> Any:
