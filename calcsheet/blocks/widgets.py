@@ -74,9 +74,11 @@ class LiveWidget(AnyWidget):
 class TableWidget(LiveWidget):
     """A table with an input in each editable cell.
 
-    Messages: ``set`` and ``paste`` (row, key, text), ``insert`` (row: below it; None: at the top), ``delete`` (row),
-    ``load`` and ``keep`` (the answers to a conflict), ``look`` (whether the file was changed by somebody else; sent when
-    the engineer comes to the table or back to the page).
+    Messages: ``set`` (row, key, text), ``paste`` (the same, with the size of the range pasted into: rows, columns),
+    ``clear`` and ``fill`` (row, last: the first and last row; keys), ``insert`` (row: below it; None: at the top; count),
+    ``delete`` (row, last), ``move`` (row, last, by: -1 or 1), ``undo``, ``redo``, ``load`` and ``keep`` (the answers to a
+    conflict), ``look`` (whether the file was changed by somebody else; sent when the engineer comes to the table or back
+    to the page).
 
     Attributes
     ----------
@@ -86,6 +88,10 @@ class TableWidget(LiveWidget):
         A row keeps its id for as long as the widget lives.
     status : dict
         ``kind``: saved, changed, conflict, error or waiting; ``text``.
+    history : dict
+        ``undo`` and ``redo``: what they would take back or do again, in words; empty where there is nothing.
+    differences : dict
+        ``cells``: list of {row, column, here, there}, what differs from the file in a conflict; ``more``: how many beside.
     """
 
     _esm = front("link.js", "cell.js", "table.js")
@@ -93,6 +99,8 @@ class TableWidget(LiveWidget):
 
     table = Dict().tag(sync=True)
     status = Dict().tag(sync=True)
+    history = Dict().tag(sync=True)
+    differences = Dict().tag(sync=True)
 
 
 class ViewWidget(LiveWidget):

@@ -130,6 +130,10 @@ class JobFolder:
             files, card=card, card_text=text, reading=reading, stamps=kept, basis=basis, basis_problem=problem
         )
 
+    def storeys_on_disk(self) -> TextTable:
+        """The storey table as it now is on disk, refusing (InputError) what is no table."""
+        return self._table(storeyfile.FILE, "must have a row for each level", {})
+
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
         return tuple(name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp)

@@ -9,6 +9,7 @@ from itertools import pairwise
 
 import numpy as np
 
+from calcsheet.core.alongside import elevations, heights
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
@@ -63,6 +64,14 @@ class StoreyReading:
         What is left out, a sentence each.
     storeys : Storeys or None
         In core units; None where there is any problem.
+    used : tuple of int
+        Indices of the rows that are levels, roof first.
+    above : int
+        How many of these are above the effective base.
+    foot : float
+        Elevation of the foot of the lowest storey [m].
+    numbers : mapping of str to (n,) array
+        The numbers of the levels in core units, roof first, by column key; NaN where a cell is blank or wrong.
     """
 
     table: TextTable
@@ -71,6 +80,10 @@ class StoreyReading:
     problems: tuple[CellProblem, ...]
     notices: tuple[str, ...]
     storeys: Storeys | None
+    used: tuple[int, ...]
+    above: int
+    foot: float
+    numbers: Mapping[str, np.ndarray]
 
     @property
     def rows(self) -> tuple[tuple[str, ...], ...]:
@@ -111,6 +124,10 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         tuple(reader.problems),
         (*headings.notices, *reader.notices),
         None if reader.problems else storeys,
+        tuple(reader.rows),
+        sum(map(reader.is_above, reader.rows)),
+        reader.foot,
+        reader.numbers(),
     )
 
 
@@ -258,6 +275,14 @@ class _Reader:
         """Elevation of the foot of the lowest storey [m]."""
         return self.card.levels.base_elevation * display("elevation", self.card.units.system).factor
 
+    def numbers(self) -> dict[str, np.ndarray]:
+        """Every column's numbers, roof first, NaN where the cell is blank or wrong."""
+        wrong = {(problem.row, problem.column) for problem in self.problems}
+        return {
+            key: np.array([np.nan if (row, key) in wrong else numbers.get(row, np.nan) for row in self.rows])
+            for key, numbers in self.values.items()
+        }
+
     def from_base(self, key: str) -> np.ndarray:
         """A column's numbers from the lowest row up, NaN where blank."""
         return np.array([self.values[key][row] for row in self.rows[::-1]])
@@ -272,10 +297,10 @@ class _Reader:
         levels = [self.names[row] for row in self.rows[::-1]]
         if "elevation" in self.values:
             elevation = self.from_base("elevation")
-            height = np.diff(elevation, prepend=self.foot)
+            height = heights(elevation, self.foot)
         else:
             height = self.from_base("storey height")
-            elevation = self.foot + np.cumsum(height)
+            elevation = elevations(height, self.foot)
         weight = "weight" in self.values
         mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
         n = sum(not self.is_above(row) for row in self.rows)

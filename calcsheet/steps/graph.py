@@ -11,15 +11,18 @@ import threading
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
-from typing import Any, ClassVar, Protocol
+from typing import Any, ClassVar
 
 import numpy as np
 
+from calcsheet.job.differences import Difference, differences
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
 from calcsheet.job.rewrite import Value, with_value
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable
+from calcsheet.steps.history import History
+from calcsheet.steps.listen import Listener, Status
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
 from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinished
@@ -32,32 +35,6 @@ LISTED = 3
 
 FROM_FILES = ("card", "storeys", "basis")
 """Steps whose inputs are the job's files."""
-
-
-class Listener(Protocol):
-    """Somebody who shows the job."""
-
-    def show_numbers(self) -> None:
-        """Show the present numbers: quick."""
-
-    def show_figures(self) -> None:
-        """Draw the present figures, and what is kept of them."""
-
-
-@dataclass(frozen=True)
-class Status:
-    """How the storey table in memory stands to its file.
-
-    Parameters
-    ----------
-    kind : str
-        "saved", "conflict" (another edit is on disk) or "error" (can't be written or read).
-    text : str
-        The same in words.
-    """
-
-    kind: str
-    text: str
 
 
 class _RefusedError(Exception):
@@ -98,6 +75,7 @@ class Job:
         self.revision = 0
         self.status = Status("error", "not read yet")
         self.files: JobFiles | None = None
+        self.history = History()
         self._problem = ""
         self._unsaved = False
         self._nodes: dict[str, _Node] = {}
@@ -187,25 +165,30 @@ class Job:
     # ---- files -----------------------------------------------------------------------------------------------------
 
     def load(self) -> None:
-        """Read the files from disk; what is unsaved here is given up."""
+        """Read the files from disk; what is unsaved here is given up, but can be had again by undoing."""
         with self.lock:
-            self._unsaved = False
+            before, self._unsaved = self.files, False
             try:
                 self.files, self._problem = self.folder.load(), ""
-                self.status = Status("saved", f"{self.files.reading.table.file}: as on disk")
+                table = self.files.reading.table
+                self.status = Status("saved", f"{table.file}: as read from disk at {_now()}")
+                if before is not None and before.reading.table.content() != table.content():
+                    self.history.did(f"{table.file} loaded from disk", before.reading.table)
             except InputError as error:
                 self._problem = str(error)
                 self.status = Status("error", self._problem)
             self._update()
         self._tell()
 
-    def edit(self, change: Callable[[StoreyReading], TextTable]) -> None:
+    def edit(self, change: Callable[[StoreyReading], TextTable], what: str = "edit") -> None:
         """Edit the storey table and write it through to its file.
 
         Parameters
         ----------
         change : callable
             From the table as read to the table wanted.
+        what : str
+            The edit in words, for who undoes it.
 
         Raises
         ------
@@ -214,7 +197,22 @@ class Job:
             and the storeys say what is wrong.
         """
         with self.lock:
+            before = self._read().reading.table
             self._save(change(self._read().reading), overwrite=False)
+            if self._read().reading.table.content() != before.content():
+                self.history.did(what, before)
+        self._tell()
+
+    def undo(self) -> None:
+        """Take back the last edit of the storey table (InputError where none is remembered)."""
+        with self.lock:
+            self._save(self.history.back(self._read().reading.table), overwrite=False)
+        self._tell()
+
+    def redo(self) -> None:
+        """Do again what was undone last (InputError where there is nothing)."""
+        with self.lock:
+            self._save(self.history.forth(self._read().reading.table), overwrite=False)
         self._tell()
 
     def set_value(self, key: str | Sequence[str | int], value: Value | None) -> None:
@@ -239,14 +237,23 @@ class Job:
         self._tell()
 
     def keep(self) -> None:
-        """Write the table in memory over what is on disk; what else changed there is read."""
+        """Write the table in memory over what is on disk, which undoing brings back; what else changed there is read."""
         with self.lock:
+            theirs = self._on_disk()
             self._save(self._read().reading.table, overwrite=True)
+            if theirs is not None:
+                self.history.did("keeping what was here", theirs)
             others = not self._unsaved and self.folder.changed_on_disk(self._read())
         if others:
             self.load()
         else:
             self._tell()
+
+    def differences(self) -> tuple[Difference, ...]:
+        """What differs between the storey table here and on disk; nothing where there is no table on disk."""
+        with self.lock:
+            theirs = self._on_disk()
+            return () if theirs is None else differences(self._read().reading.table, theirs)
 
     def look(self) -> None:
         """See whether somebody else changed the files on disk, and say so."""
@@ -260,6 +267,12 @@ class Job:
             self._update()
         self._tell()
 
+    def _on_disk(self) -> TextTable | None:
+        try:
+            return self.folder.storeys_on_disk()
+        except InputError:
+            return None  # gone, or no table: there is nothing to compare with
+
     def _read(self) -> JobFiles:
         if self.files is None or self._problem:
             raise InputError("", "", self._problem or "the job can't be read", "put that right first")
@@ -269,7 +282,7 @@ class Job:
         files = self._read()
         try:
             self.files = self.folder.save_storeys(files, table, overwrite)
-            self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
+            self.status, self._unsaved = Status("saved", f"saved to {table.file} at {_now()}"), False
         except NotSavedError as error:
             reading = read_storeys(table, files.card, files.matrices)
             self.files, self._unsaved = replace(files, reading=reading), True
@@ -360,6 +373,10 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _now() -> str:
+    return dt.datetime.now().strftime("%H:%M:%S")
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:
