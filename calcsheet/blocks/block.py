@@ -154,6 +154,7 @@ class Shown:
                 self.widget.set_trait("choices", choices)
                 self.widget.set_trait("html", self.rendered(payloads, self.options).html)
         self.widget.set_trait("revision", revision)
+        self.widget.done()
 
     def show_live_figures(self, drawings: tuple[Drawing, ...], revision: int) -> None:
         if self.widget is not None:

@@ -110,7 +110,9 @@ class ShownTable(Shown):
             differences = job.differences() if files is not None and status.kind == "conflict" else ()
         kind, words = status.kind, status.text
         if kind == "saved" and payload["state"] == "refused":
-            kind, words = "waiting", f"{words}, but not calculated: {payload['why']}"
+            marked = files is not None and all(problem.row is not None for problem in files.reading.problems)
+            why = "the blocks below wait for the values marked here" if marked else f"not calculated: {payload['why']}"
+            kind, words = "waiting", f"{words}; {why}"
         listed = [dataclasses.asdict(d) for d in differences[:LISTED]]
         with self.widget.hold_sync():
             self.widget.set_trait("table", table)
@@ -118,6 +120,7 @@ class ShownTable(Shown):
             self.widget.set_trait("status", {"kind": kind, "text": words})
             self.widget.set_trait("differences", {"cells": listed, "more": len(differences) - len(listed)})
             self.widget.set_trait("revision", revision)
+        self.widget.done()
 
     def show_live_figures(self, drawings: Any, revision: int) -> None:
         """A table has none."""

@@ -76,5 +76,5 @@ def _number_wanted(text: str, unit: Unit, mark: str | None) -> str:
     symbol = split_amount(text)[1]
     others = quantities_of(symbol)
     if others and not {*others} & {*quantities_of(unit.symbol)}:
-        return f"{wanted}, and {symbol} is a unit of {others[0]}"
+        return f'{wanted}, and "{symbol}" is a unit of {others[0]}'
     return f"{wanted}, the heading's unit, without a unit of its own" if symbol else wanted

@@ -88,7 +88,7 @@ def test_an_amount_is_written_as_its_column_writes_numbers(read, typed, column, 
 def test_a_unit_of_another_quantity_is_refused_in_words(read):
     got = read(text=edits.set_text(read(), "2", "storey height", "12 kg").content().decode())
     assert [problem.message for problem in got.problems] == [
-        'storeys.csv, level "2": storey height "12 kg"; must be a number in m, and kg is a unit of mass'
+        'storeys.csv, level "2": storey height "12 kg"; must be a number in m, and "kg" is a unit of mass'
     ]
 
 

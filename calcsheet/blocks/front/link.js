@@ -118,8 +118,8 @@ function watchTwin(model, root, signal) {
     const twin = root.closest(".jp-OutputArea-child")?.nextElementSibling?.querySelector(".calcsheet-twin");
     const stored = twin?.dataset.revision;
     banner.hidden = stored === undefined || Number(stored) === model.get("revision");
-    setText(banner, banner.hidden ? "" : "The copy stored in this notebook is older than what is shown here: "
-      + "run this cell again before you save the notebook.");
+    setText(banner, banner.hidden ? "" : "The outputs stored in this notebook are older than what is shown here: "
+      + "run all cells again before you save it.");
   };
   const soon = () => {
     clearTimeout(timer);
