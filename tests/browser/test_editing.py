@@ -176,7 +176,9 @@ def test_undo_survives_running_the_cell_again(sheet):
     sheet.until(lambda: "as read" in sheet.status() or "saved" in sheet.status(), "the table")
     sheet.wait_for_kernel()
     undo = sheet.page.get_by_role("button", name="undo")
-    sheet.until(lambda: undo.count() == 1 and undo.get_attribute("title") == "Ctrl + Z: mass typed", "what can be undone")
+    sheet.until(
+        lambda: undo.count() == 1 and undo.get_attribute("title") == "Ctrl + Z: mass typed", "what can be undone"
+    )
     sheet.cell("mass, level 4").click()
     sheet.keys("Control+z")
     saved(sheet, MASSES)
