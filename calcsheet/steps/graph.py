@@ -6,6 +6,7 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
+import datetime as dt
 import re
 import threading
 from collections.abc import Callable, Sequence
