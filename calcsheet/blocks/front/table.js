@@ -2,6 +2,7 @@
 // be undone, the page shows them and keeps what has been typed until Python has answered.
 
 const bare = (heading) => heading.replace(/\s*\[.*?\]\s*$/, "");
+const LONG = 60; // rows from which the table scrolls under its headings
 const clamp = (value, count) => Math.max(0, Math.min(value, count - 1));
 
 function render({ model, el, signal }) {
@@ -149,6 +150,7 @@ function render({ model, el, signal }) {
 
     drawFoot(columns, totals);
     drawWidths(columns, served);
+    scroller.classList.toggle("calcsheet-long", served.length > LONG);
     addFirst.hidden = served.length > 0 || columns.length === 0;
     setText(addFirst, `add the first ${item()}`);
     if (!ui.active || !body.contains(ui.active.td)) {
