@@ -82,6 +82,8 @@ class Job:
         self._nodes: dict[str, _Node] = {}
         self._listeners: list[Listener] = []
         self._told = 0
+        self.rest = 0.0  # s between numbers and figures, for who shows them to take the numbers in
+        self._newer = threading.Event()  # ends the rest
         self._nodes["card"] = _Node(STEPS["card"], {}, None)
         self._nodes["storeys"] = _Node(STEPS["storeys"], {}, None)
         self.load()
@@ -295,6 +297,7 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
+        self._newer.set()
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -364,10 +367,12 @@ class Job:
             while True:
                 with self.lock:
                     revision, listeners = self.revision, list(self._listeners)
+                    self._newer.clear()
                 if self._told == revision:
                     return
                 for listener in listeners:
                     listener.show_numbers()
+                self._newer.wait(self.rest)
                 for listener in listeners:
                     if self.revision != revision:
                         break

@@ -103,7 +103,8 @@ class Sheet:
                 const request = {code: '', user_expressions: {value: code}, silent: false};
                 const reply = await kernel.requestExecute(request).done;
                 const value = reply.content.user_expressions.value;
-                return value.data ? value.data['text/plain'] : JSON.stringify(value);
+                if (!value.data) throw new Error(`${value.ename}: ${value.evalue}`);
+                return value.data['text/plain'];
             }""",
             f"__import__('json').dumps({expression})",
         )
