@@ -22,6 +22,7 @@ if TYPE_CHECKING:
         StoreyActions,
         StoreyTable,
         WhatChanged,
+        WhatIf,
     )
 
 __version__ = "0.1.0"
@@ -38,6 +39,7 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
     "__version__",
 ]
 

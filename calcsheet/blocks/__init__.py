@@ -8,6 +8,7 @@ from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, Stat
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.storeytable import StoreyTable
 from calcsheet.blocks.whatchanged import WhatChanged
+from calcsheet.blocks.whatif import WhatIf
 
 __all__ = [
     "Cautions",
@@ -22,4 +23,5 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
 ]

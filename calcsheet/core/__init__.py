@@ -73,6 +73,7 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("h = z_i − z_(i−1)", "alongside.heights", "definition"),
     Formula("Σ over a level and those above it", "alongside.at_and_above", "definition"),
     Formula("m_i/m_(i−1)", "alongside.to_level_below", "definition"),
+    Formula("masses and stiffnesses multiplied", "scaled.scaled", "definition"),
     Formula("K, M, ι of a building", "model.models_of", "definition"),
     Formula("Σ over the degrees of freedom of a level", "model.Model.by_level", "definition"),
     Formula("ω, T = 2π/ω, f = ω/2π", "modes.modes_of", "definition"),
