@@ -21,7 +21,7 @@ from calcsheet.job.errors import InputError
 from calcsheet.render.numbers import decimals_for, text
 from calcsheet.render.table import Column, table
 
-RANGE = (0.2, 5.0)
+RANGE = (0.5, 2.0)
 """Factors that can be asked for."""
 SHOWN = 6
 """Modes listed in each direction, at most."""

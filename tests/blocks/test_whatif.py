@@ -62,7 +62,7 @@ def test_a_stiffness_factor_is_adopted_into_the_job_card(link, in_folder):
 
 
 def test_what_cannot_be_asked_is_refused_in_words(link):
-    assert link.say(op="factors", mass=0.0, stiffness=1.0)["message"] == "factors must be from 0.2 to 5.0"
+    assert link.say(op="factors", mass=0.0, stiffness=1.0)["message"] == "factors must be from 0.5 to 2.0"
     assert link.say(op="factors", mass="heavy", stiffness=1.0)["ok"] is False
     assert link.say(op="adopt", what="height")["ok"] is False
 

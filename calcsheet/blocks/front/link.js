@@ -9,6 +9,8 @@ const fresh = () => `${PAGE}-${++counted}`;
 function make(tag, className, attributes = {}) {
   const node = document.createElement(tag);
   if (className) node.className = className;
+  // Looked for on the node with the focus itself: its own keys must not delete a cell of the notebook.
+  if (["button", "input", "select"].includes(tag)) node.setAttribute("data-lm-suppress-shortcuts", "true");
   for (const [name, value] of Object.entries(attributes)) node.setAttribute(name, value);
   return node;
 }

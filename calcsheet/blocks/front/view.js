@@ -9,7 +9,8 @@ function render({ model, el, signal }) {
   const numbers = make("div", "calcsheet-scroll");
   const figures = make("div", "calcsheet-figures");
   const failed = make("p", "calcsheet-status", { role: "status", "data-kind": "unsaved" });
-  root.append(choices, note, numbers, figures, failed);
+  const motion = makeMotion(signal);
+  root.append(choices, note, numbers, figures, motion.node, failed);
 
   const selects = new Map(); // key -> {label, select, drawn}
   const shown = new Map(); // name -> {figure, image, wanted}
@@ -103,12 +104,13 @@ function render({ model, el, signal }) {
     if (nodes.length !== figures.children.length || nodes.some((node, index) => figures.children[index] !== node)) {
       figures.replaceChildren(...nodes);
     }
+    motion.update(hides ? [] : model.get("motion") ?? []);
     drawChoices();
     drawFailed();
   }
 
   keepKeys(root, () => {});
-  redrawOn(model, signal, ["html", "figures", "note", "choices", "revision"], draw);
+  redrawOn(model, signal, ["html", "figures", "motion", "note", "choices", "revision"], draw);
   el.append(root);
   draw();
   watchTwin(model, root, signal);

@@ -19,7 +19,7 @@ function render({ model, el, signal }) {
     const label = make("label", "calcsheet-choice");
     const words = make("span");
     words.textContent = `all ${what === "mass" ? "masses" : "stiffnesses"} ×`;
-    const slider = make("input", "", { type: "range", min: "0.2", max: "5", step: "0.01" });
+    const slider = make("input", "", { type: "range", min: "0.5", max: "2", step: "0.01" });
     const shown = make("output");
     label.append(words, slider, shown);
     const adopt = make("button", "calcsheet-button", { type: "button" });
