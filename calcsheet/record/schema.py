@@ -1,9 +1,13 @@
-"""The JSON Schema of a record, made from the types that its steps take and give."""
+"""The JSON Schema of a record, made from the types that its steps take and give.
+
+``python -m calcsheet.record.schema > calcsheet/record/record.schema.json`` writes it anew.
+"""
 
 from __future__ import annotations
 
 import dataclasses
 import json
+import sys
 import types
 from collections.abc import Iterator, Mapping
 from functools import cache
@@ -60,6 +64,11 @@ def schema() -> Schema:
         for step in STEPS.values()
     ]
     return {"$schema": DIALECT, "title": "Calculation record", **record, "$defs": dict(sorted(made.defs.items()))}
+
+
+def as_text() -> str:
+    """The schema as the text of its file."""
+    return json.dumps(schema(), ensure_ascii=False, indent=1) + "\n"
 
 
 def refusal(record: Any) -> str:
@@ -158,7 +167,8 @@ MOST_PARTS = 2000
 
 def _comment() -> Schema:
     texts = ("revision", "by", "where", "comment", "reply", "replied_by", "closed_by")
-    dates = dict.fromkeys(("date", "replied_on", "closed_on"), {"anyOf": [DATE, {"type": "null"}, {"const": ""}]})
+    maybe = {"anyOf": [DATE, {"type": "null"}, {"const": ""}]}
+    dates = {key: maybe for key in ("date", "replied_on", "closed_on")}
     return _object({"number": {"type": "integer", "minimum": 1}, **dict.fromkeys(texts, TEXT), **dates})
 
 
@@ -220,3 +230,8 @@ PLAIN: Mapping[Any, Schema] = {
 
 def _has_default(field: dataclasses.Field[Any]) -> bool:
     return field.default is not dataclasses.MISSING or field.default_factory is not dataclasses.MISSING
+
+
+if __name__ == "__main__":
+    sys.stdout.reconfigure(encoding="utf-8")  # type: ignore[union-attr]
+    sys.stdout.write(as_text())
