@@ -18,6 +18,7 @@ if TYPE_CHECKING:
         ModeSolver,
         ParticipationSummary,
         StaticComparison,
+        StiffnessTakeoff,
         StoreyActions,
         StoreyTable,
     )
@@ -32,6 +33,7 @@ __all__ = [
     "ModeSolver",
     "ParticipationSummary",
     "StaticComparison",
+    "StiffnessTakeoff",
     "StoreyActions",
     "StoreyTable",
     "__version__",

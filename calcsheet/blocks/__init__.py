@@ -5,6 +5,7 @@ from __future__ import annotations
 from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
+from calcsheet.blocks.stiffnesstakeoff import StiffnessTakeoff
 from calcsheet.blocks.storeytable import StoreyTable
 
 __all__ = [
@@ -16,6 +17,7 @@ __all__ = [
     "ModeSolver",
     "ParticipationSummary",
     "StaticComparison",
+    "StiffnessTakeoff",
     "StoreyActions",
     "StoreyTable",
 ]

@@ -14,7 +14,7 @@ from nbformat import NotebookNode
 from calcsheet.blocks.twin import FORMAT, MIME
 from calcsheet.record.errors import RecordError
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import Job
+from calcsheet.steps.graph import TAKEOFF, Job
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
@@ -104,6 +104,12 @@ def refuse_stale(content: Content, folder: Path) -> None:
         if fingerprint(to_json(here)) != fingerprint(content.payloads["basis"]["inputs"]):
             raise RecordError(
                 "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
+            )
+    if TAKEOFF in content.payloads:
+        takeoff = None if job.files is None else job.files.reading.takeoff
+        if fingerprint(to_json(takeoff)) != fingerprint(content.payloads[TAKEOFF]["inputs"]):
+            raise RecordError(
+                "the notebook is stale: the stiffness take-off in this folder isn't what it shows; run all its cells and save it"
             )
     for key in ("card", "storeys"):
         if now[key]["state"] != "ok":

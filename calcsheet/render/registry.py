@@ -12,9 +12,25 @@ from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plot import PLOT
+from calcsheet.render.stiffnesstakeoff import MEMBERS, TAKEOFF
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 
 VIEWS: Mapping[str, View] = {
-    view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
+    view.name: view
+    for view in (
+        CARD,
+        TAKEOFF,
+        MEMBERS,
+        STOREYS,
+        MODES,
+        PLOT,
+        PARTICIPATION,
+        DEMAND,
+        PEAKS,
+        DRIFT,
+        ACTIONS,
+        COMPARISON,
+    )
 }
+"""Every view by its name."""

@@ -79,6 +79,11 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             "elevation " + number(given["base_elevation"], "elevation", system, f"/{key}/inputs/base_elevation"),
         ),
     ]
+    members = payloads["card"]["inputs"]["model"]["members"]
+    if members is not None:
+        rows.append(
+            ("storey stiffnesses", f"taken off from {escape(members)}, before the factors of the stiffness sets")
+        )
     rows += [
         (
             f'stiffness set "{named["name"]}"',
