@@ -133,7 +133,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "member length": _pair(Display("m", 1.0, 4), Display("in", INCH, 4)),
     "section size": _pair(Display("mm", 0.001, 4), Display("in", INCH, 4)),
     "section area": _pair(Display("mm²", 1e-6, 4), Display("in²", INCH**2, 4)),
-    "second moment": _pair(Display("10⁶ mm⁴", 1e-6, 4), Display("in⁴", INCH**4, 4)),
+    "second moment": _pair(Display("·10⁶ mm⁴", 1e-6, 4), Display("in⁴", INCH**4, 4)),
     "modulus": _pair(Display("GPa", 1e6, 4), Display("ksi", KIP / INCH**2, 4)),
     "rotational stiffness": _pair(Display("kN·m", 1.0, 4), Display("kip·in", KIP * INCH, 4)),
     "displacement": _pair(Display("mm", 0.001, 3), Display("in", INCH, 3)),

@@ -50,6 +50,7 @@ PINT = {
     "psf": "lbf/ft**2",
     "t·m²": "tonne*m**2",
     "10⁶ mm⁴": "km*mm**3",  # pint takes no number in a unit
+    "·10⁶ mm⁴": "km*mm**3",
     "%": "percent",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
     "s⁻²": "s**-2",

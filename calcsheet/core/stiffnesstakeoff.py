@@ -184,7 +184,7 @@ class DirectionStiffness(Frozen):
     storey : (n,) array
         Stiffness of each storey, lowest first [kN/m].
     kind : tuple of str
-        The kinds of members that act, m of them.
+        The kinds of members that act in this direction, m of them.
     share : (m, n) array
         Share of each kind in each storey.
     joint_rotation : (n,) array
@@ -254,14 +254,13 @@ def take_off(given: Takeoff) -> StoreyStiffness:
         for i in np.flatnonzero(storey[axis] <= 0.0):
             where = f'stiffness {d} of the storey below level "{given.level[i]}"'
             raise ModelError(where, "no member acts", f"must have at least one that acts in {d}")
-    kinds = tuple(kind for kind in KINDS if any(m.kind == kind for m in given.members))
+    acting = {axis: tuple(kind for kind in KINDS if _of_kind(given, lateral[axis], kind).any()) for axis in axes}
     directions = tuple(
         DirectionStiffness(
             direction=d,
             storey=storey[axis],
-            kind=kinds,
-            share=np.array([lateral[axis][[m.kind == kind for m in given.members]].sum(axis=0) for kind in kinds])
-            / storey[axis],
+            kind=acting[axis],
+            share=np.array([_of_kind(given, lateral[axis], kind) for kind in acting[axis]]) / storey[axis],
             joint_rotation=_joint_rotation(given, rows, rigidity, axis),
             wall_slenderness=_wall_slenderness(given, rigidity, axis),
         )
@@ -275,6 +274,11 @@ def take_off(given: Takeoff) -> StoreyStiffness:
     scale = np.sqrt(storey[0] * storey[1])
     coupling = np.divide(cross, scale, out=np.zeros_like(cross), where=scale > 0.0)
     return StoreyStiffness(sections, members, directions, coupling)
+
+
+def _of_kind(given: Takeoff, lateral: Array, kind: str) -> Array:
+    """Stiffness of each storey from the members of a kind."""
+    return np.asarray(lateral[[m.kind == kind for m in given.members]].sum(axis=0))
 
 
 class _Rigidity:

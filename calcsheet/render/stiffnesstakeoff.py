@@ -9,6 +9,7 @@ from typing import Any
 import numpy as np
 
 from calcsheet.render.figure import INK, Drawing, blank, quiet, styled, svg
+from calcsheet.render.numbers import heading, number
 from calcsheet.render.plot import LABELLED
 from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Choice, Rendered, View, system_of
@@ -84,7 +85,8 @@ def _drawn(directions: Sequence[Mapping[str, Any]], given: Mapping[str, Any], sy
         for ax, item in zip(axes, directions, strict=True):
             _bars(ax, item, how.factor)
             ax.set_xlabel(f"storey stiffness {item['direction']} [{how.symbol}]")
-            ax.locator_params(axis="x", nbins=5)
+            ax.locator_params(axis="x", nbins=4)
+            ax.xaxis.set_major_formatter(_tick)
             quiet(ax)
         axes[0].set_ylabel("storey below level")
         if named:
@@ -118,6 +120,11 @@ def _bars(ax: Any, item: Mapping[str, Any], unit: float) -> None:
         foot = foot + length
     ax.set_xlim(0.0, 1.04 * widest)
     ax.set_ylim(-0.6, storey.size - 0.4)
+
+
+def _tick(value: float, _: object) -> str:
+    """Label of a tick, whole, thousands apart as in the tables."""
+    return f"{value:,.10g}".replace(",", "\u202f")
 
 
 def _said(item: Mapping[str, Any]) -> str:
@@ -160,7 +167,9 @@ def _members(given: Mapping[str, Any], system: str, key: str) -> str:
         column("stiffness factor", "ratio", "factor"),
     ]
     if any(row["shear"] for row in rows):
-        columns.append(column("shear factor", "ratio", "shear_factor"))
+        shear = [row["shear_factor"] if row["shear"] else None for row in rows]
+        at = f"/{key}/inputs/members/{{}}/shear_factor"
+        columns.append(values("shear factor", shear, "ratio", system, at, as_given=True))
     if any(row["height"] is not None for row in rows):
         columns.append(column("own height", "length", "height"))
     if any(row["run"] is not None for row in rows):
@@ -216,9 +225,11 @@ def _sections(given: Mapping[str, Any], found: Mapping[str, Any], system: str, k
         ("A_s major", "shear_major", "section area"),
         ("A_s minor", "shear_minor", "section area"),
     ):
-        numbers = [properties[field] or None for properties in found["sections"]]
-        if any(numbers):
-            columns.append(values(name, numbers, quantity, system, f"/{key}/result/sections/{{}}/{field}"))
+        numbers = [properties[field] for properties in found["sections"]]
+        if any(numbers):  # sections differ by orders of size: each number has its own digits
+            at = f"/{key}/result/sections/{{}}/{field}"
+            cells = (number(v, quantity, system, at.format(i), unit=False) if v else "" for i, v in enumerate(numbers))
+            columns.append(Column(heading(name, quantity, system), tuple(cells)))
     return table(columns, kind="values", caption="Sections and their properties")
 
 

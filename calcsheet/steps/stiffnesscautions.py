@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from calcsheet.core.stiffnesstakeoff import PINNED_BASE, StoreyStiffness, Takeoff
+from calcsheet.core.stiffnesstakeoff import DIAGONAL, PINNED_BASE, StoreyStiffness, Takeoff
 from calcsheet.steps.step import Caution, Number, plain
 
 WALLS, TALL, SLENDER = 0.5, 3, 3.0
@@ -103,7 +103,8 @@ def _cracking(given: Takeoff) -> list[Caution]:
         factors = [(member.section, member.factor)]
         factors += [(member.section, member.shear_factor)] * member.shear
         factors += [(beam, member.beam_factor) for beam in {member.beam, member.beam_below} if beam]
-        if any(section in cracks and factor >= 1.0 for section, factor in factors):
+        bends = member.kind not in DIAGONAL
+        if bends and any(section in cracks and factor >= 1.0 for section, factor in factors):
             whole.append(member.name)
         if any(factor < 1.0 for _, factor in factors):
             reduced.append(member.name)
@@ -113,12 +114,12 @@ def _cracking(given: Takeoff) -> list[Caution]:
     full = list(dict.fromkeys(f.name for f in given.factors if f.factor >= 1.0))
     cut = list(dict.fromkeys(f.name for f in given.factors if f.factor < 1.0))
     if whole and (full or not given.factors):
-        sets = f", as have the stiffness sets {_named(full)}" if full else ""
-        text = f"Concrete or masonry taken as uncracked: {_named(whole)} have stiffness factors of 1 or more{sets}."
+        sets = f"; stiffness sets that reduce nothing: {_named(full)}" if full else ""
+        text = f"Concrete or masonry taken as uncracked, with stiffness factors of 1 or above: {_named(whole)}{sets}."
         cautions.append(Caution("uncracked", text, answer=True))
     if reduced and cut:
         text = (
-            f"Reduced twice: stiffness factors of members ({_named(reduced)}) and those of the stiffness sets {_named(cut)} "
+            f"Reduced twice: the stiffness factors of members ({_named(reduced)}) and of stiffness sets ({_named(cut)}) "
             "multiply."
         )
         cautions.append(Caution("reduced-twice", text, answer=True))

@@ -106,7 +106,7 @@ class _Work:
         if not member.beam:
             return []
         both = storey > 0 and member.beam_below != member.beam
-        lines = [self.end(member.beam, "beams_above", storey, of)]
+        lines = [self.end(member.beam, "beams_above", storey, of)] if storey == member.first else []
         ends = [self.value("beams_above", "rotational stiffness", storey)]
         if both:
             lines.append(self.end(member.beam_below, "beams_below", storey, of))
@@ -138,7 +138,7 @@ class _Work:
             "{0} × {1} × {2} " + ("× (1/{3} + 1/{4})" if two else "/ {3}"),
             tuple(numbers),
             self.value(name, "rotational stiffness", storey),
-            "statics",
+            "definition",
         )
 
 
