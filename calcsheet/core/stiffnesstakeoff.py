@@ -100,7 +100,17 @@ class Member:
 
 @dataclass(frozen=True)
 class SetFactor:
-    """A stiffness set's own factor on the stiffnesses taken off, in a direction."""
+    """A stiffness set's own factor on the stiffnesses taken off.
+
+    Parameters
+    ----------
+    name : str
+        Name of the set.
+    direction : str
+        "x" or "y".
+    factor : float
+        The factor.
+    """
 
     name: str
     direction: str

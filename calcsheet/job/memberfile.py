@@ -80,12 +80,13 @@ def read_members(
     problems : list of InputError
         Every problem.
     """
-    materials, problems = read_materials(tables.materials)
-    sections, wrong = read_sections(tables.sections, {m.name: m for m in materials})
-    problems += wrong
-    rows, wrong = read_list(tables.members, COLUMNS)
+    rows, problems = read_list(tables.members, COLUMNS)
+    materials, wrong = read_materials(tables.materials)
     problems += wrong
     if problems:  # what follows would only repeat that a name isn't there
+        return None, problems
+    sections, problems = read_sections(tables.sections, {m.name: m for m in materials})
+    if problems:
         return None, problems
     reader = _Reader(levels, sections, materials)
     members = []
