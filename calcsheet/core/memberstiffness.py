@@ -113,4 +113,4 @@ def diagonal(axial: float, run: float, rise: Number) -> Number:
     rise : float or array
         Height h [m].
     """
-    return axial * run**2 / (run**2 + rise**2) ** 1.5
+    return axial * run * run / (run * run + rise * rise) ** 1.5

@@ -124,14 +124,14 @@ def properties_of(section: Section) -> Properties:
     if section.shape in ("circle", "pipe"):
         inner = depth - 2.0 * t if section.shape == "pipe" else 0.0
         area = math.pi / 4.0 * (depth * depth - inner * inner)
-        second = math.pi / 64.0 * (depth**4 - inner**4)
+        second = area / 16.0 * (depth * depth + inner * inner)
         shear = area * (0.5 if section.shape == "pipe" else 0.9)
         return Properties(area, second, second, shear, shear)
     hollow = (depth - 2.0 * t, width - 2.0 * t) if section.shape == "box" else (0.0, 0.0)
     area = depth * width - hollow[0] * hollow[1]
     about = [
         (
-            (b * d**3 - inner_b * inner_d**3) / 12.0,
+            (b * d * d * d - inner_b * inner_d * inner_d * inner_d) / 12.0,
             2.0 * t * d if section.shape == "box" else 5.0 / 6.0 * area,
         )
         for d, b, inner_d, inner_b in ((depth, width, *hollow), (width, depth, *hollow[::-1]))

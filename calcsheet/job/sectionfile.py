@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
+from dataclasses import astuple
 
-from calcsheet.core.sections import OWN, SHAPES, Material, Section
+from calcsheet.core.sections import OWN, SHAPES, Material, Section, properties_of
 from calcsheet.job.cells import NOT_NEGATIVE
 from calcsheet.job.errors import InputError
 from calcsheet.job.listfile import ListColumn, ListRow, read_list
@@ -84,7 +86,10 @@ def read_sections(table: TextTable, materials: Mapping[str, Material]) -> tuple[
             problems.append(row.refused(f'material "{name}"', f"must be in {MATERIALS}: {_quoted(materials)}"))
         problems += _wrong_sizes(row)
         sizes = {field: row.numbers[heading] for heading, field in HEADINGS.items() if heading in row.numbers}
-        sections.append(Section(row.texts["section"], name, row.texts["shape"], **sizes))
+        section = Section(row.texts["section"], name, row.texts["shape"], **sizes)
+        sections.append(section)
+        if not all(map(math.isfinite, astuple(properties_of(section)))):
+            problems.append(row.refused("sizes beyond what can be calculated", "must be those of a section"))
     return tuple(sections), problems
 
 

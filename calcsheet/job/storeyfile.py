@@ -365,10 +365,14 @@ class _Reader:
         if self.card.model.members is None or self.takeoff is None:
             return {}
         try:
-            return {found.direction: found.storey for found in take_off(self.takeoff).directions}
+            with np.errstate(all="ignore"):  # what isn't finite is refused
+                return {found.direction: found.storey for found in take_off(self.takeoff).directions}
         except ModelError as error:
-            self.problems.append(CellProblem(None, None, f"{self.card.model.members}, {error}"))
-            return {}
+            why = str(error)
+        except ArithmeticError as error:
+            why = f"can't be calculated from these numbers: {error}"
+        self.problems.append(CellProblem(None, None, f"{self.card.model.members}, {why}"))
+        return {}
 
     def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind

@@ -151,13 +151,17 @@ def _restraint(member: Member, storey: int) -> tuple[str, str]:
     return "(0.5 + k̄)/(2 + k̄)", "(0.5 + k̄) / (2 + k̄)"
 
 
-def lines_of_sum(given: Takeoff, result: StoreyStiffness, d: int, item: DirectionStiffness) -> Line:
-    """How the lowest storey's stiffness adds up."""
-    rows = [(i, row) for i, row in enumerate(result.members) if row.lateral[d, 0] > 0.0]
-    numbers = tuple(
-        Number(float(row.lateral[d, 0]), "stiffness", f"result/members/{i}/lateral/{d}/0") for i, row in rows
-    )
+def line_of_sum(given: Takeoff, result: StoreyStiffness, d: int, item: DirectionStiffness) -> Line:
+    """How the lowest storey's stiffness adds up from the members that act there."""
+    axis, terms = "xy".index(item.direction), []
+    numbers: list[Number] = []
+    for i, (member, row) in enumerate(zip(given.members, result.members, strict=True)):
+        if row.lateral[d, 0] > 0.0:
+            terms.append(f"{member.count} × {{{len(numbers)}}}")
+            numbers.append(Number(float(row.alone[0]), "stiffness", f"result/members/{i}/alone/0"))
+            if abs(member.along[axis]) < 1.0:
+                terms[-1] += f" × ({{{len(numbers)}}})²"
+                numbers.append(Number(member.along[axis], "ratio", f"inputs/members/{i}/along/{axis}"))
     total = Number(float(item.storey[0]), "stiffness", f"result/directions/{d}/storey/0")
-    of = f'{item.direction}, storey below level "{given.level[0]}"'
-    substitution = " + ".join(f"{{{n}}}" for n in range(len(rows)))
-    return Line(f"Storey stiffness {of}", "k = Σ of the rows", substitution, numbers, total, "sum of the members")
+    of, cosine = f'{item.direction}, storey below level "{given.level[0]}"', "cos" if axis == 0 else "sin"
+    return Line(f"Storey stiffness {of}", f"Σ n k {cosine}²γ", " + ".join(terms), tuple(numbers), total, "definition")

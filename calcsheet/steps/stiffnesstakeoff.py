@@ -5,13 +5,13 @@ from __future__ import annotations
 from calcsheet.core.stiffnesstakeoff import StoreyStiffness, Takeoff, take_off
 from calcsheet.steps.step import Outcome, Step
 from calcsheet.steps.stiffnesscautions import cautions_of
-from calcsheet.steps.stiffnesslines import lines_of_row, lines_of_sum
+from calcsheet.steps.stiffnesslines import line_of_sum, lines_of_row
 
 
 def run(given: Takeoff) -> Outcome:
     result = take_off(given)
     lines = [line for i in range(len(given.members)) for line in lines_of_row(given, result, i)]
-    lines += [lines_of_sum(given, result, d, item) for d, item in enumerate(result.directions)]
+    lines += [line_of_sum(given, result, d, item) for d, item in enumerate(result.directions)]
     return Outcome(result, tuple(lines), cautions_of(given, result))
 
 

@@ -3,11 +3,17 @@
 from __future__ import annotations
 
 import math
+from contextlib import suppress
 
 import numpy as np
 import pytest
+from hypothesis import HealthCheck, given, settings
+from hypothesis import strategies as st
 
+from calcsheet.core.errors import ModelError
+from calcsheet.core.stiffnesstakeoff import take_off
 from calcsheet.job.card import parse_card
+from calcsheet.job.errors import InputError
 from calcsheet.job.memberfile import MemberTables, read_members
 from calcsheet.job.table import parse_table
 from calcsheet.job.textfile import Stamp, TextFile, decode
@@ -318,3 +324,52 @@ def test_every_row_that_is_wrong_is_named(read):
 def test_an_empty_list_is_refused(read):
     _, problems = read(members=MEMBERS.splitlines()[0] + "\n")
     assert [str(error) for error in problems] == ["members.csv: no rows; must have a row for each member"]
+
+
+CELLS = st.one_of(
+    st.sampled_from(
+        [
+            "",
+            "0",
+            "-3",
+            "1e400",
+            "nan",
+            "1e200",
+            "1e-200",
+            "1,250",
+            "2 to 3",
+            "Roof to",
+            "all",
+            "beams",
+            "wall",
+            "brace",
+            "pair",
+            "box",
+            "own",
+        ]
+    ),
+    st.sampled_from(
+        ["C500", "Strut", "Bar", "x", "45°", "1e3°", "6 + ", "+", "minor", "yes", '"', "{0}", "steel", "0.5"]
+    ),
+    st.text(st.characters(blacklist_characters='\r\n,"', blacklist_categories=("Cs",)), max_size=6),
+)
+
+
+@settings(max_examples=150, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
+@given(
+    st.sampled_from(["members.csv", "sections.csv", "materials.csv"]),
+    st.lists(st.tuples(st.integers(0, 99), CELLS), max_size=6),
+)
+def test_whatever_is_typed_is_read_or_refused_by_row(read, file, typed):
+    texts = {"members.csv": MEMBERS, "sections.csv": SECTIONS, "materials.csv": MATERIALS}
+    rows = [line.split(",") for line in texts[file].splitlines()]
+    for place, cell in typed:
+        quoted = cell.replace('"', '""')
+        rows[1 + place % (len(rows) - 1)][place % len(rows[0])] = f'"{quoted}"'
+    texts[file] = "\n".join(",".join(row) for row in rows) + "\n"
+    takeoff, problems = read(texts["members.csv"], texts["sections.csv"], texts["materials.csv"])
+    assert (takeoff is None) == bool(problems)
+    assert all(isinstance(error, InputError) for error in problems)
+    if takeoff is not None:
+        with suppress(ModelError):  # a storey without members
+            assert all((d.storey > 0.0).all() for d in take_off(takeoff).directions)

@@ -32,6 +32,15 @@ def bent(v):
     return v[0] * v[1] * v[2] / v[3] ** 3
 
 
+def added(v, c):
+    """Σ n k, a cosine or sine (the only numbers below 1) after the stiffness that its square multiplies."""
+    count, total = iter(c), 0.0
+    for i, x in enumerate(v):
+        if abs(x) > 1.0:
+            total += next(count) * x * (v[i + 1] ** 2 if i + 1 < len(v) and abs(v[i + 1]) < 1.0 else 1.0)
+    return total
+
+
 def sheared(stiffness, v):
     """In series with shear over h, of c_s, G and A_s that come last."""
     return 1 / (1 / stiffness + v[3] / product(v[-3:]))
@@ -144,7 +153,8 @@ FORMULAS: dict[str, Formula] = {
     "L = √(b² + h²)": lambda v, c: math.hypot(*v),
     "k = c E A b²/L³": lambda v, c: product(v[:3]) * v[3] ** 2 / v[4] ** 3,
     "k = 2 c E A b²/L³": lambda v, c: 2 * product(v[:3]) * v[3] ** 2 / v[4] ** 3,
-    "k = Σ of the rows": lambda v, c: sum(v),
+    "Σ n k cos²γ": lambda v, c: added(v, c),
+    "Σ n k sin²γ": lambda v, c: added(v, c),
     # actions
     "static / modal": lambda v, c: v[0] / v[1],
     "modal × scale × second order": product,

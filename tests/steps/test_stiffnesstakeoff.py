@@ -107,6 +107,32 @@ def test_a_missing_file_is_named(members_folder):
     assert Job(folder).payload("card")["state"] == "ok"
 
 
+@pytest.mark.parametrize(
+    ("changes", "why"),
+    [
+        ([("members.csv", "only,,5.4", "only,,1e200")], "storeys.csv, storey stiffness [kN/m]"),
+        (
+            [("members.csv", "beams,,,0.7", "beams,,,1e-320"), ("materials.csv", "31.5", "1e-9")],
+            "members.csv, can't be calculated from these numbers",
+        ),
+        (
+            [("sections.csv", "550,450", "1e110,1e110")],
+            'sections.csv, row 2, section "C55": sizes beyond what can be calculated; must be those of a section',
+        ),
+    ],
+    ids=["run", "factor", "size"],
+)
+def test_numbers_out_of_range_are_refused_in_words(members_folder, changes, why):
+    folder = members_folder()
+    for file, old, new in changes:
+        text = (folder / file).read_text()
+        assert old in text
+        (folder / file).write_text(text.replace(old, new, 1))
+    job = Job(folder)
+    assert {job.payload(key)["state"] for key in ("storeys", TAKEOFF)} == {"refused"}
+    assert job.payload("storeys")["why"].startswith(why)
+
+
 def test_wrong_masses_do_not_hold_up_the_take_off(members_folder):
     folder = members_folder()
     table = (folder / "storeys.csv").read_text()
