@@ -6,9 +6,12 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
+import numpy as np
+
 from calcsheet.core.arrays import Array
+from calcsheet.core.errors import ModelError
 from calcsheet.core.sections import AXES, Material, Section, properties_of
-from calcsheet.core.stiffnesstakeoff import BEAMS, DIAGONAL, KINDS, PINNED_BASE, Member, SetFactor, Takeoff
+from calcsheet.core.stiffnesstakeoff import BEAMS, DIAGONAL, KINDS, PINNED_BASE, Member, SetFactor, Takeoff, take_off
 from calcsheet.job.card import CHAIN, Card
 from calcsheet.job.errors import InputError
 from calcsheet.job.listfile import ListColumn, ListRow, read_list
@@ -110,6 +113,17 @@ def read_members(
         tuple(levels), heights, card.directions.analysed, materials, sections, tuple(members), factors, unstated
     )
     return takeoff, []
+
+
+def taken_off(takeoff: Takeoff, file: str) -> dict[str, Array]:
+    """Storey stiffnesses by direction [kN/m], refusing (InputError) by `file` what can't be calculated."""
+    try:
+        with np.errstate(all="ignore"):  # what isn't finite is refused by who takes it
+            return {found.direction: found.storey for found in take_off(takeoff).directions}
+    except ModelError as error:
+        raise InputError(file, error.where, error.found, error.allowed) from None
+    except ArithmeticError as error:
+        raise InputError(file, "", f"can't be calculated ({error})", "check the sizes and their units") from None
 
 
 class _Reader:

@@ -12,7 +12,7 @@ import numpy as np
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-from calcsheet.core.stiffnesstakeoff import Takeoff, take_off
+from calcsheet.core.stiffnesstakeoff import Takeoff
 from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
@@ -20,7 +20,7 @@ from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
-from calcsheet.job.memberfile import MemberTables, read_members
+from calcsheet.job.memberfile import MemberTables, read_members, taken_off
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
@@ -360,19 +360,15 @@ class _Reader:
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
 
-    def taken_off(self) -> dict[str, np.ndarray]:
+    def taken_off(self) -> Mapping[str, np.ndarray]:
         """Storey stiffnesses by direction where the card takes them from members [kN/m]."""
         if self.card.model.members is None or self.takeoff is None:
             return {}
         try:
-            with np.errstate(all="ignore"):  # what isn't finite is refused
-                return {found.direction: found.storey for found in take_off(self.takeoff).directions}
-        except ModelError as error:
-            why = str(error)
-        except ArithmeticError as error:
-            why = f"can't be calculated from these numbers: {error}"
-        self.problems.append(CellProblem(None, None, f"{self.card.model.members}, {why}"))
-        return {}
+            return taken_off(self.takeoff, self.card.model.members)
+        except InputError as error:
+            self.refuse(None, None, error)
+            return {}
 
     def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind

@@ -57,6 +57,8 @@ def test_columns_held_by_beams():
     found = built(held)
     row = found.members[0]
     assert row.ratio == pytest.approx([1.875, 1.40625])
+    assert row.beams_above == pytest.approx([30_000.0, 30_000.0])
+    assert row.beams_below == pytest.approx([0.0, 30_000.0])
     assert row.alone == pytest.approx([12_000 * 2.375 / 3.875, 28_444.444 * 1.40625 / 3.40625], rel=1e-6)
     # ρ: each column brings half of its two beams: 15 000/16 000 and 15 000/21 333.3
     assert found.directions[0].joint_rotation == pytest.approx([0.9375, 0.703125])
@@ -84,6 +86,9 @@ def test_walls_braces_and_shares():
     assert found.directions[0].kind == ("wall", "brace")
     assert found.directions[0].share[:, 0] == pytest.approx([k / (k + 57_600.0), 57_600.0 / (k + 57_600.0)])
     assert found.members[0].share[0, 0] == pytest.approx(found.directions[0].share[0, 0])
+    # half of EI and 0.4 of GA_s: 64/(3·6.75e6) + 4/2.5e6
+    cracked = built(member("wall", "cantilever", "W", factor=0.5, shear_factor=0.4), heights=(4.0,))
+    assert cracked.directions[0].storey == pytest.approx([1.0 / (64.0 / 20.25e6 + 4.0 / 2.5e6)])
     for way in ("single", "pair in tension only"):
         assert built(member("brace", way, "D", run=3.0), heights=(4.0,)).directions[0].storey == pytest.approx(
             [28_800.0]

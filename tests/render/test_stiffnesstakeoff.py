@@ -75,8 +75,8 @@ def test_the_inputs_are_complete(members_folder, document):
     inputs = job.payload(TAKEOFF)["inputs"]
     for group in ("members", "sections", "materials"):
         assert all(item["name"] in seen for item in inputs[group])
-    for words in ("4 to Roof", "35° from x", "beams on pinned base with shear", "cracked", "B70", "·10"):
-        assert (words in seen) == (words != "·10")
+    for words in ("4 to Roof", "35° from x", "beams on pinned base with shear", "cracked", "B70"):
+        assert words in seen
 
 
 @pytest.mark.parametrize("us", [False, True])
