@@ -12,6 +12,7 @@ import numpy as np
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+from calcsheet.core.stiffnesstakeoff import Takeoff
 from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
@@ -19,6 +20,7 @@ from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
+from calcsheet.job.memberfile import MemberTables, read_members, taken_off
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
@@ -63,6 +65,10 @@ class StoreyReading:
         What is left out, a sentence each.
     storeys : Storeys or None
         In core units; None where there is any problem.
+    takeoff : Takeoff or None
+        The stiffness take-off; None without its tables, or where there is any problem with it.
+    takeoff_problems : tuple of str
+        Why there is none, though there are tables.
     """
 
     table: TextTable
@@ -71,6 +77,8 @@ class StoreyReading:
     problems: tuple[CellProblem, ...]
     notices: tuple[str, ...]
     storeys: Storeys | None
+    takeoff: Takeoff | None = None
+    takeoff_problems: tuple[str, ...] = ()
 
     @property
     def rows(self) -> tuple[tuple[str, ...], ...]:
@@ -78,7 +86,12 @@ class StoreyReading:
         return tuple(cells[: len(self.columns)] for cells in self.table.rows)
 
 
-def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable] | None = None) -> StoreyReading:
+def read_storeys(
+    table: TextTable,
+    card: Card,
+    matrices: Mapping[str, TextTable] | None = None,
+    members: MemberTables | str | None = None,
+) -> StoreyReading:
     """Read a storey table.
 
     Parameters
@@ -89,6 +102,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
         By direction, the tables of the matrices that the card names.
+    members : MemberTables or str, optional
+        The tables of the stiffness take-off, or why they can't be read.
 
     Returns
     -------
@@ -100,6 +115,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
     reader.problems += [CellProblem(None, key, str(error)) for key, error in headings.problems]
     reader.check_rows()
     reader.read_columns()
+    if members is not None:
+        reader.take_off(members)
     storeys = None
     if not reader.problems:
         with np.errstate(over="ignore"):  # what overflows is refused as infinite
@@ -111,6 +128,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         tuple(reader.problems),
         (*headings.notices, *reader.notices),
         None if reader.problems else storeys,
+        reader.takeoff,
+        tuple(reader.takeoff_problems),
     )
 
 
@@ -129,6 +148,8 @@ class _Reader:
         self.names = tuple("" if place is None else " ".join(cells[place].split()) for cells in table.rows)
         self.uses = Counter(self.names)
         base = " ".join(card.levels.effective_base.split())
+        self.takeoff: Takeoff | None = None
+        self.takeoff_problems: list[str] = []
         self.base_row = next((row for row in self.rows if base and self.names[row] == base), None)
 
     def refuse(self, row: int | None, column: str | None, error: InputError) -> None:
@@ -267,15 +288,39 @@ class _Reader:
         numbers = self.from_base(key)[below:] if key in self.values else None
         return None if numbers is None or np.isnan(numbers).any() else numbers
 
-    def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
-        """Put the storeys together, with the last problems that only the whole shows."""
+    def take_off(self, members: MemberTables | str) -> None:
+        """Read the stiffness take-off for the storeys of the model, whatever is wrong with their other columns."""
+        if isinstance(members, str):
+            self.takeoff_problems = [members]
+        elif not self.has_heights():
+            self.takeoff_problems = [p.message for p in self.problems]
+            return  # the storeys have these problems already
+        else:
+            levels, _, height = self.levels()
+            n = sum(not self.is_above(row) for row in self.rows)
+            self.takeoff, problems = read_members(members, self.card, levels[n:], height[n:])
+            self.takeoff_problems = [str(error) for error in problems]
+        if self.card.model.members is not None:
+            self.problems += [CellProblem(None, None, message) for message in self.takeoff_problems]
+
+    def has_heights(self) -> bool:
+        """Whether levels and storey heights are all there."""
+        heights = [self.values[key] for key in ("elevation", "storey height") if key in self.values]
+        wrong = {problem.column for problem in self.problems} & {LEVEL, "elevation", "storey height"}
+        return LEVEL in self.columns and not wrong and len(heights) == 1 and len(heights[0]) == len(self.rows) > 0
+
+    def levels(self) -> tuple[list[str], np.ndarray, np.ndarray]:
+        """Names of all levels, their elevations [m], and the heights of the storeys below them [m]."""
         levels = [self.names[row] for row in self.rows[::-1]]
         if "elevation" in self.values:
             elevation = self.from_base("elevation")
-            height = np.diff(elevation, prepend=self.foot)
-        else:
-            height = self.from_base("storey height")
-            elevation = self.foot + np.cumsum(height)
+            return levels, elevation, np.diff(elevation, prepend=self.foot)
+        height = self.from_base("storey height")
+        return levels, self.foot + np.cumsum(height), height
+
+    def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
+        """Put the storeys together, with the last problems that only the whole shows."""
+        levels, elevation, height = self.levels()
         weight = "weight" in self.values
         mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
         n = sum(not self.is_above(row) for row in self.rows)
@@ -300,16 +345,30 @@ class _Reader:
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
         sets = []
+        taken_off = self.taken_off()
+        if self.problems:
+            return None
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
             for d in self.card.directions.analysed:
                 key = stiffness_key(d, name if basis.own else None)
                 try:
-                    lateral[d] = Chain(storey=self.from_base(key)[below:] * (basis.factor_of(d) or 1.0))
+                    storey = taken_off[d] if d in taken_off else self.from_base(key)[below:]
+                    lateral[d] = Chain(storey=storey * (basis.factor_of(d) or 1.0))
                 except ModelError as error:
                     self.problems.append(CellProblem(None, key, f"{self.table.file}, {error}"))
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
+
+    def taken_off(self) -> Mapping[str, np.ndarray]:
+        """Storey stiffnesses by direction where the card takes them from members [kN/m]."""
+        if self.card.model.members is None or self.takeoff is None:
+            return {}
+        try:
+            return taken_off(self.takeoff, self.card.model.members)
+        except InputError as error:
+            self.refuse(None, None, error)
+            return {}
 
     def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind

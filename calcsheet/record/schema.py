@@ -176,6 +176,7 @@ class _Made:
     """Schemas of types; each record type is defined once, under its name."""
 
     def __init__(self) -> None:
+        self.names: dict[type, str] = {}
         self.defs: dict[str, Schema] = {"numbers": {"anyOf": [{"type": "number"}, _array({"$ref": "#/$defs/numbers"})]}}
 
     def of(self, hint: Any) -> Schema:
@@ -207,8 +208,10 @@ class _Made:
         return {"$ref": f"#/$defs/{hint.__name__}"}
 
     def _defined(self, hint: Any) -> Schema:
-        name = hint.__name__
-        if name not in self.defs:
+        if hint not in self.names:
+            # two records may share a name: the later one's says where it is from
+            free = hint.__name__ not in self.defs
+            name = self.names[hint] = hint.__name__ if free else f"{hint.__module__.rpartition('.')[2]}.{hint.__name__}"
             self.defs[name] = {}  # a type may hold its own kind
             hints, kind = get_type_hints(hint), getattr(hint, "kind", None)
             members = {f.name: self.of(hints[f.name]) for f in dataclasses.fields(hint)}
@@ -216,7 +219,7 @@ class _Made:
             tag = {} if kind is None else {"kind": {"const": kind}}
             needed = {key: value for key, value in members.items() if key not in given}
             self.defs[name] = _object(tag | needed, {key: members[key] for key in members if key in given})
-        return {"$ref": f"#/$defs/{name}"}
+        return {"$ref": f"#/$defs/{self.names[hint]}"}
 
 
 PLAIN: Mapping[Any, Schema] = {

@@ -17,6 +17,7 @@ import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
+from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable
@@ -30,7 +31,8 @@ LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
 
 
-FROM_FILES = ("card", "storeys", "basis")
+TAKEOFF = "stiffness take-off"
+FROM_FILES = ("card", "storeys", "basis", TAKEOFF)
 """Steps whose inputs are the job's files."""
 
 
@@ -271,7 +273,7 @@ class Job:
             self.files = self.folder.save_storeys(files, table, overwrite)
             self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
         except NotSavedError as error:
-            reading = read_storeys(table, files.card, files.matrices)
+            reading = read_storeys(table, files.card, files.matrices, files.members)
             self.files, self._unsaved = replace(files, reading=reading), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
         self._update()
@@ -281,6 +283,10 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
+        if (
+            self.files is not None and self.files.card.model.members is not None
+        ):  # the record shows what storeys are made from
+            self._nodes.setdefault(TAKEOFF, _Node(STEPS[TAKEOFF], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -326,10 +332,12 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        problems = self.files.problems
-        if problems:
-            more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-            raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        if key == TAKEOFF:
+            if self.files.reading.takeoff is None:
+                raise _RefusedError(_few(self.files.reading.takeoff_problems or (f"no {MEMBERS} in the job folder",)))
+            return self.files.reading.takeoff
+        if self.files.problems:
+            raise _RefusedError(_few(self.files.problems))
         return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
@@ -360,6 +368,12 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _few(problems: Sequence[str]) -> str:
+    """The first problems, and how many more there are."""
+    more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+    return "; ".join(problems[:LISTED]) + more
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:
