@@ -13,6 +13,12 @@ CORE = {
     "square metres": "m**2",
     "feet": "m",
     "area": "m**2",
+    "member length": "m",
+    "section size": "m",
+    "section area": "m**2",
+    "second moment": "m**4",
+    "modulus": "kN/m**2",
+    "rotational stiffness": "kN*m",
     "pressure": "kN/m**2",
     "ordinate": "standard_gravity",
     "mass": "tonne",
@@ -44,6 +50,8 @@ PINT = {
     "g": "standard_gravity",
     "psf": "lbf/ft**2",
     "t·m²": "tonne*m**2",
+    "10⁶ mm⁴": "km*mm**3",  # pint takes no number in a unit
+    "·10⁶ mm⁴": "km*mm**3",
     "%": "percent",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
     "s⁻²": "s**-2",
@@ -57,7 +65,7 @@ PINT = {
 
 def in_core(symbol: str, quantity: str) -> float:
     """The factor of a unit by pint, which knows nothing of the table."""
-    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2"))
+    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2").replace("⁴", "**4"))
     return REGISTRY.Quantity(1.0, spelled).to(CORE[quantity] or "dimensionless").magnitude
 
 
@@ -83,6 +91,11 @@ def test_gravity_is_pints():
 )
 def test_spellings_of_a_mass(spelled):
     assert parse_unit(spelled, "mass") == parse_unit("kip·s²/in", "mass")
+
+
+@pytest.mark.parametrize("spelled", ["10⁶ mm⁴", "10^6 mm^4", "10⁶·mm⁴"])
+def test_spellings_of_a_second_moment(spelled):
+    assert parse_unit(spelled, "second moment") == parse_unit("10⁶ mm⁴", "second moment")
 
 
 def test_pounds_of_force():

@@ -63,7 +63,7 @@ def test_build_revise_issue_check_comment_and_sign(shell, tmp_path):
         outside.mkdir()
         shutil.copy(first.with_suffix(kind), outside / f"received{kind}")
         said = shell("check", str(outside / f"received{kind}"))
-        assert said.endswith("Nothing differs.\n")
+        assert said.rstrip().endswith("Nothing differs.")
         assert [path.name for path in outside.iterdir()] == [f"received{kind}"]
     # the checker comments on it
     shell("comment", str(first), "Which plant is this mass for?", "--by", "Tomas Adeyemi", "--where", "Storeys, Plant")

@@ -9,7 +9,7 @@ import numpy as np
 
 from calcsheet.core.alongside import at_and_above, elevations, heights, to_level_below
 from calcsheet.job.headings import GRAVITY, OPTIONAL
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.render.numbers import decimals_given, text
 from calcsheet.units import STANDARD_GRAVITY, Display, display
 

@@ -13,7 +13,7 @@ from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.widgets import LiveWidget, Message, TableWidget
 from calcsheet.job import edits
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 
 LISTED = 40

@@ -116,13 +116,17 @@ class Directions(_Table):
 
 
 class ModelChoice(_Table):
-    """Table [model]: how the lateral stiffness is given, and the file of each matrix."""
+    """Table [model]: how the lateral stiffness is given, the file of each matrix, and that of the members taken off."""
 
     kind: Literal["storey chain", "stiffness matrix", "flexibility matrix"] = Field(
         description='"storey chain", "stiffness matrix" or "flexibility matrix"'
     )
     x: FileName = None
     y: FileName = None
+    members: Annotated[
+        Annotated[str, Field(pattern=FILE_NAME)] | None,
+        Field(description='the name of a file in the job folder, such as "members.csv"'),
+    ] = None
 
     @property
     def files(self) -> Mapping[str, str]:
@@ -360,7 +364,13 @@ def _contradictions(card: Card) -> Iterator[InputError]:
         if not chain and d in analysed and d not in card.model.files:
             allowed = f"must be {ModelChoice.model_fields[d].description}"
             yield InputError(FILE, f"model.{d}", "missing", allowed)
+    if card.model.members is not None and not chain:
+        found = f'got "{card.model.members}"'
+        yield InputError(FILE, "model.members", found, f'must be left out unless model.kind is "{CHAIN}"')
     for name, basis in card.stiffness.items():
+        if basis.own and card.model.members is not None:
+            allowed = "must be left out with model.members, which gives the stiffnesses of every set"
+            yield InputError(FILE, dotted(["stiffness", name, "own"]), "got true", allowed)
         yield from _set_basis(name, basis, analysed, chain)
     for i, other in enumerate(card.second_model):
         wanted = ("",) if other.quantity == "weight" else analysed

@@ -52,10 +52,10 @@ def read_cell(
     if not text:
         if may_be_blank:
             return math.nan
-        raise InputError(file, where, f"{name} is blank", f"must be a number in {unit.symbol}, {allowed}")
+        raise InputError(file, where, f"{name} is blank", f"{_wanted(unit)}, {allowed}")
     if mark is None and is_ambiguous(text):
         dot, comma = (format_number(readings(text)[m], "," if "," in text else ".") for m in ".,")
-        found = f"{name} {text} {unit.symbol} can be read as {dot} or {comma}"
+        found = f"{_with_unit(name, text, unit)} can be read as {dot} or {comma}"
         raise InputError(file, where, found, "must be written so that it can be read in one way")
     try:
         value = parse_number(text, mark or ".")
@@ -65,16 +65,24 @@ def read_cell(
     if not math.isfinite(core):
         allowed = ANY
     if not {ANY: math.isfinite(core), POSITIVE: core > 0, NOT_NEGATIVE: core >= 0}[allowed]:
-        raise InputError(file, where, f"{name} {shorten(text)} {unit.symbol}", f"must be {allowed}")
+        raise InputError(file, where, _with_unit(name, shorten(text), unit), f"must be {allowed}")
     return core
 
 
 def _number_wanted(text: str, unit: Unit, mark: str | None) -> str:
-    wanted = f"must be a number in {unit.symbol}"
+    wanted = _wanted(unit)
     if mark is not None and readings(text):
         return f'{wanted} with the decimal mark "{mark}", as in the other cells'
-    symbol = split_amount(text)[1]
+    symbol = split_amount(text)[1] if unit.symbol else ""
     others = quantities_of(symbol)
     if others and not {*others} & {*quantities_of(unit.symbol)}:
         return f'{wanted}, and "{symbol}" is a unit of {others[0]}'
     return f"{wanted}, the heading's unit, without a unit of its own" if symbol else wanted
+
+
+def _wanted(unit: Unit) -> str:
+    return f"must be a number in {unit.symbol}" if unit.symbol else "must be a number"
+
+
+def _with_unit(name: str, text: str, unit: Unit) -> str:
+    return f"{name} {text} {unit.symbol}".rstrip()

@@ -6,15 +6,19 @@ A row is given by its index, roof first, or by its level; a column by its key.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import replace
 
 from calcsheet.job import table as text_table
 from calcsheet.job.amounts import as_written
 from calcsheet.job.clipboard import mark_of, read_block
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import decimal_mark, format_number
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
+
+DIGITS = 6
+"""Significant digits of numbers that the program writes into a table of the engineer's."""
 
 Row = int | str
 
@@ -46,6 +50,31 @@ def set_number(reading: StoreyReading, row: Row, column: str, value: float) -> T
     place = column_index(reading, column)
     text = format_number(value, _marks(reading, place)[1])
     return text_table.set_cell(reading.table, row_index(reading, row), place, text)
+
+
+def set_columns(reading: StoreyReading, numbers: Mapping[str, Mapping[str, float]]) -> TextTable:
+    """Return the table with numbers written into whole columns, in one edit.
+
+    Parameters
+    ----------
+    reading : StoreyReading
+        The table as read.
+    numbers : mapping of str to mapping of str to float
+        By column key and level, numbers in core units; they are written to `DIGITS` significant digits in the heading's unit.
+
+    Raises
+    ------
+    InputError
+        There is no such column, or its heading gives no unit.
+    """
+    for key, by_level in numbers.items():
+        column = reading.columns[column_index(reading, key)]
+        if column.unit is None:
+            raise InputError(reading.table.file, f'heading "{column.heading}"', "no unit", "must give one")
+        for level, number in by_level.items():
+            written = float(f"{number / column.unit.factor:.{DIGITS}g}")
+            reading = replace(reading, table=set_number(reading, level, key, written))
+    return reading.table
 
 
 def insert_rows(reading: StoreyReading, below: Row | None, count: int = 1) -> TextTable:

@@ -12,7 +12,9 @@ from calcsheet.job import storeyfile, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import CHAIN, Card, parse_card
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.memberfile import MemberTables, member_files
+from calcsheet.job.storeyfile import read_storeys
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
 
@@ -39,6 +41,8 @@ class JobFiles:
         The basis of the demand; None where the card has none, or a wrong one.
     basis_problem : str
         Why there is none, or empty: all else can be calculated without one.
+    members : MemberTables or str or None
+        The tables of the stiffness take-off, or why they can't be read; None where the folder has none.
     """
 
     card: Card
@@ -49,6 +53,7 @@ class JobFiles:
     stamps: Mapping[str, Stamp | None]
     basis: Basis | None = None
     basis_problem: str = ""
+    members: MemberTables | str | None = None
 
     @property
     def problems(self) -> tuple[str, ...]:
@@ -85,9 +90,10 @@ class JobFolder:
             d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
             for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
         }
-        reading = read_storeys(storeys, card, matrices)
+        members = self._members(card, stamps)
+        reading = read_storeys(storeys, card, matrices, members)
         basis, problem = self._basis(card, stamps)
-        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem)
+        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem, members)
 
     def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
         """Write the storey table, whatever is wrong in its cells, and read it anew.
@@ -109,7 +115,7 @@ class JobFolder:
             It can't be written.
         """
         stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
-        return replace(files, reading=read_storeys(table, files.card, files.matrices), stamps=stamps)
+        return replace(files, reading=read_storeys(table, files.card, files.matrices, files.members), stamps=stamps)
 
     def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
         """Write the job card and read everything anew under it.
@@ -125,7 +131,7 @@ class JobFolder:
         before = spectrum_files(files.card).values()
         kept = {name: stamp for name, stamp in stamps.items() if name not in before}
         basis, problem = self._basis(card, kept)
-        reading = read_storeys(files.reading.table, card, files.matrices)
+        reading = read_storeys(files.reading.table, card, files.matrices, files.members)
         return replace(
             files, card=card, card_text=text, reading=reading, stamps=kept, basis=basis, basis_problem=problem
         )
@@ -149,6 +155,20 @@ class JobFolder:
             return read_basis(card, tables), ""
         except InputError as error:
             return None, str(error)
+
+    def _members(self, card: Card, stamps: dict[str, Stamp | None]) -> MemberTables | str | None:
+        """The tables of the stiffness take-off, or what is wrong with them; None where there are none."""
+        names = member_files(card)
+        if card.model.members is None and not (self.path / names[0]).exists():
+            return None
+        for name in names:
+            stamps[name] = textfile.stamp(self.path / name)
+        try:
+            return MemberTables(
+                *(self._table(name, "must be there for a stiffness take-off", stamps) for name in names)
+            )
+        except InputError as error:
+            return str(error)
 
     def _write(
         self, name: str, content: bytes, stamps: Mapping[str, Stamp | None], overwrite: bool

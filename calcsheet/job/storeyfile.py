@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Mapping
-from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
@@ -13,6 +12,7 @@ from calcsheet.core.alongside import elevations, heights
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+from calcsheet.core.stiffnesstakeoff import Takeoff
 from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
@@ -20,78 +20,21 @@ from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
+from calcsheet.job.memberfile import MemberTables, read_members, taken_off
 from calcsheet.job.numbers import decimal_mark
+from calcsheet.job.storeyreading import CellProblem, StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
 
 FILE = "storeys.csv"
 
 
-@dataclass(frozen=True)
-class CellProblem:
-    """One thing that is wrong.
-
-    Parameters
-    ----------
-    row : int or None
-        Index of the table's row, roof first; None for a heading, a whole column or another file.
-    column : str or None
-        Key of the column; None for a row or a file as a whole.
-    message : str
-        The sentence.
-    """
-
-    row: int | None
-    column: str | None
-    message: str
-
-
-@dataclass(frozen=True, eq=False)
-class StoreyReading:
-    """What a storey table holds: every problem with it, or the storeys.
-
-    Parameters
-    ----------
-    table : TextTable
-        The table read.
-    columns : tuple of Column
-        Its columns.
-    levels : tuple of str
-        The level of each row; "" where it has no name.
-    problems : tuple of CellProblem
-        All that is wrong.
-    notices : tuple of str
-        What is left out, a sentence each.
-    storeys : Storeys or None
-        In core units; None where there is any problem.
-    used : tuple of int
-        Indices of the rows that are levels, roof first.
-    above : int
-        How many of these are above the effective base.
-    foot : float
-        Elevation of the foot of the lowest storey [m].
-    numbers : mapping of str to (n,) array
-        The numbers of the levels in core units, roof first, by column key; NaN where a cell is blank or wrong.
-    """
-
-    table: TextTable
-    columns: tuple[Column, ...]
-    levels: tuple[str, ...]
-    problems: tuple[CellProblem, ...]
-    notices: tuple[str, ...]
-    storeys: Storeys | None
-    used: tuple[int, ...]
-    above: int
-    foot: float
-    numbers: Mapping[str, np.ndarray]
-
-    @property
-    def rows(self) -> tuple[tuple[str, ...], ...]:
-        """The cells of each row, a cell a column."""
-        return tuple(cells[: len(self.columns)] for cells in self.table.rows)
-
-
-def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable] | None = None) -> StoreyReading:
+def read_storeys(
+    table: TextTable,
+    card: Card,
+    matrices: Mapping[str, TextTable] | None = None,
+    members: MemberTables | str | None = None,
+) -> StoreyReading:
     """Read a storey table.
 
     Parameters
@@ -102,6 +45,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
         By direction, the tables of the matrices that the card names.
+    members : MemberTables or str, optional
+        The tables of the stiffness take-off, or why they can't be read.
 
     Returns
     -------
@@ -113,6 +58,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
     reader.problems += [CellProblem(None, key, str(error)) for key, error in headings.problems]
     reader.check_rows()
     reader.read_columns()
+    if members is not None:
+        reader.take_off(members)
     storeys = None
     if not reader.problems:
         with np.errstate(over="ignore"):  # what overflows is refused as infinite
@@ -128,6 +75,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         sum(map(reader.is_above, reader.rows)),
         reader.foot,
         reader.numbers(),
+        reader.takeoff,
+        tuple(reader.takeoff_problems),
     )
 
 
@@ -146,6 +95,8 @@ class _Reader:
         self.names = tuple("" if place is None else " ".join(cells[place].split()) for cells in table.rows)
         self.uses = Counter(self.names)
         base = " ".join(card.levels.effective_base.split())
+        self.takeoff: Takeoff | None = None
+        self.takeoff_problems: list[str] = []
         self.base_row = next((row for row in self.rows if base and self.names[row] == base), None)
 
     def refuse(self, row: int | None, column: str | None, error: InputError) -> None:
@@ -292,15 +243,39 @@ class _Reader:
         numbers = self.from_base(key)[below:] if key in self.values else None
         return None if numbers is None or np.isnan(numbers).any() else numbers
 
-    def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
-        """Put the storeys together, with the last problems that only the whole shows."""
+    def take_off(self, members: MemberTables | str) -> None:
+        """Read the stiffness take-off for the storeys of the model, whatever is wrong with their other columns."""
+        if isinstance(members, str):
+            self.takeoff_problems = [members]
+        elif not self.has_heights():
+            self.takeoff_problems = [p.message for p in self.problems]
+            return  # the storeys have these problems already
+        else:
+            levels, _, height = self.levels()
+            n = sum(not self.is_above(row) for row in self.rows)
+            self.takeoff, problems = read_members(members, self.card, levels[n:], height[n:])
+            self.takeoff_problems = [str(error) for error in problems]
+        if self.card.model.members is not None:
+            self.problems += [CellProblem(None, None, message) for message in self.takeoff_problems]
+
+    def has_heights(self) -> bool:
+        """Whether levels and storey heights are all there."""
+        heights = [self.values[key] for key in ("elevation", "storey height") if key in self.values]
+        wrong = {problem.column for problem in self.problems} & {LEVEL, "elevation", "storey height"}
+        return LEVEL in self.columns and not wrong and len(heights) == 1 and len(heights[0]) == len(self.rows) > 0
+
+    def levels(self) -> tuple[list[str], np.ndarray, np.ndarray]:
+        """Names of all levels, their elevations [m], and the heights of the storeys below them [m]."""
         levels = [self.names[row] for row in self.rows[::-1]]
         if "elevation" in self.values:
             elevation = self.from_base("elevation")
-            height = heights(elevation, self.foot)
-        else:
-            height = self.from_base("storey height")
-            elevation = elevations(height, self.foot)
+            return levels, elevation, heights(elevation, self.foot)
+        height = self.from_base("storey height")
+        return levels, elevations(height, self.foot), height
+
+    def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
+        """Put the storeys together, with the last problems that only the whole shows."""
+        levels, elevation, height = self.levels()
         weight = "weight" in self.values
         mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
         n = sum(not self.is_above(row) for row in self.rows)
@@ -325,16 +300,30 @@ class _Reader:
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
         sets = []
+        taken_off = self.taken_off()
+        if self.problems:
+            return None
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
             for d in self.card.directions.analysed:
                 key = stiffness_key(d, name if basis.own else None)
                 try:
-                    lateral[d] = Chain(storey=self.from_base(key)[below:] * (basis.factor_of(d) or 1.0))
+                    storey = taken_off[d] if d in taken_off else self.from_base(key)[below:]
+                    lateral[d] = Chain(storey=storey * (basis.factor_of(d) or 1.0))
                 except ModelError as error:
                     self.problems.append(CellProblem(None, key, f"{self.table.file}, {error}"))
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
+
+    def taken_off(self) -> Mapping[str, np.ndarray]:
+        """Storey stiffnesses by direction where the card takes them from members [kN/m]."""
+        if self.card.model.members is None or self.takeoff is None:
+            return {}
+        try:
+            return taken_off(self.takeoff, self.card.model.members)
+        except InputError as error:
+            self.refuse(None, None, error)
+            return {}
 
     def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind

@@ -16,7 +16,7 @@ from calcsheet.record.errors import RecordError
 from calcsheet.record.own import printable
 from calcsheet.record.parts import Own, Part, Shown, Words
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import Job
+from calcsheet.steps.graph import TAKEOFF, Job
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
@@ -90,6 +90,12 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
         if fingerprint(to_json(here)) != fingerprint(content.payloads["basis"]["inputs"]):
             raise RecordError(
                 "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
+            )
+    if TAKEOFF in content.payloads:
+        takeoff = None if job.files is None else job.files.reading.takeoff
+        if fingerprint(to_json(takeoff)) != fingerprint(content.payloads[TAKEOFF]["inputs"]):
+            raise RecordError(
+                "the notebook is stale: the stiffness take-off in this folder isn't what it shows; run all its cells and save it"
             )
     for key in ("card", "storeys"):
         if now[key]["state"] != "ok":

@@ -14,6 +14,7 @@ from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plot import PLOT
+from calcsheet.render.stiffnesstakeoff import MEMBERS, TAKEOFF
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 
@@ -21,6 +22,8 @@ VIEWS: Mapping[str, View] = {
     view.name: view
     for view in (
         CARD,
+        TAKEOFF,
+        MEMBERS,
         STOREYS,
         MODES,
         PLOT,
@@ -34,3 +37,4 @@ VIEWS: Mapping[str, View] = {
         CHANGES,
     )
 }
+"""Every view by its name."""

@@ -6,7 +6,6 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
-import datetime as dt
 import re
 import threading
 from collections.abc import Callable, Sequence
@@ -19,22 +18,22 @@ import numpy as np
 from calcsheet.job.differences import Difference, differences
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
+from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.storeyfile import read_storeys
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.history import History
-from calcsheet.steps.listen import Listener, Status
+from calcsheet.steps.listen import Listener, Status, clock, few
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
 from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinished
 
 KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
-LISTED = 3
-"""Problems quoted where a step says why it can't be done; the others are counted."""
 
-
-FROM_FILES = ("card", "storeys", "basis")
+TAKEOFF = "stiffness take-off"
+FROM_FILES = ("card", "storeys", "basis", TAKEOFF)
 """Steps whose inputs are the job's files."""
 
 
@@ -174,7 +173,7 @@ class Job:
             try:
                 self.files, self._problem = self.folder.load(), ""
                 table = self.files.reading.table
-                self.status = Status("saved", f"{table.file}: as read from disk at {_now()}")
+                self.status = Status("saved", f"{table.file}: as read from disk at {clock()}")
                 if before is not None and before.reading.table.content() != table.content():
                     self.history.did(f"{table.file} loaded from disk", before.reading.table)
             except InputError as error:
@@ -285,9 +284,9 @@ class Job:
         files = self._read()
         try:
             self.files = self.folder.save_storeys(files, table, overwrite)
-            self.status, self._unsaved = Status("saved", f"saved to {table.file} at {_now()}"), False
+            self.status, self._unsaved = Status("saved", f"saved to {table.file} at {clock()}"), False
         except NotSavedError as error:
-            reading = read_storeys(table, files.card, files.matrices)
+            reading = read_storeys(table, files.card, files.matrices, files.members)
             self.files, self._unsaved = replace(files, reading=reading), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
         self._update()
@@ -298,6 +297,10 @@ class Job:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
         self._newer.set()
+        if (
+            self.files is not None and self.files.card.model.members is not None
+        ):  # the record shows what storeys are made from
+            self._nodes.setdefault(TAKEOFF, _Node(STEPS[TAKEOFF], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -343,10 +346,12 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        problems = self.files.problems
-        if problems:
-            more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-            raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        if key == TAKEOFF:
+            if self.files.reading.takeoff is None:
+                raise _RefusedError(few(self.files.reading.takeoff_problems or (f"no {MEMBERS} in the job folder",)))
+            return self.files.reading.takeoff
+        if self.files.problems:
+            raise _RefusedError(few(self.files.problems))
         return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
@@ -379,10 +384,6 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
-
-
-def _now() -> str:
-    return dt.datetime.now().strftime("%H:%M:%S")
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

@@ -2,8 +2,13 @@
 
 from __future__ import annotations
 
+import datetime as dt
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Protocol
+
+LISTED = 3
+"""Problems quoted where a step says why it can't be done; the others are counted."""
 
 
 class Listener(Protocol):
@@ -30,3 +35,14 @@ class Status:
 
     kind: str
     text: str
+
+
+def clock() -> str:
+    """The time of day, for who reads when something was done."""
+    return dt.datetime.now().strftime("%H:%M:%S")
+
+
+def few(problems: Sequence[str]) -> str:
+    """The first problems, and how many more there are."""
+    more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+    return "; ".join(problems[:LISTED]) + more

@@ -14,8 +14,10 @@ from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
 from calcsheet.steps.step import Step
+from calcsheet.steps.stiffnesstakeoff import STIFFNESS_TAKEOFF
 from calcsheet.steps.storeys import STOREYS
 
 STEPS: Mapping[str, Step] = {
-    step.kind: step for step in (CARD, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, EARLIER)
+    step.kind: step
+    for step in (CARD, STIFFNESS_TAKEOFF, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, EARLIER)
 }

@@ -16,12 +16,14 @@ from calcsheet.blocks import (
     ModeSolver,
     ParticipationSummary,
     StaticComparison,
+    StiffnessTakeoff,
     StoreyActions,
     StoreyTable,
 )
 
 WANTED = {
     StoreyTable: JobCard,
+    StiffnessTakeoff: JobCard,
     ModeSolver: StoreyTable,
     ModePlot: ModeSolver,
     ParticipationSummary: ModeSolver,
