@@ -21,7 +21,8 @@ def sheet(lab, flavour, opener):
         shutil.copy(DEMO / file, folder)
     sheet = opener(f"{folder.name}/calc.ipynb")
     sheet.run_all()
-    sheet.until(lambda: sheet.page.locator(".calcsheet-live").count() == 5, "the five blocks", 60)
+    sheet.until(lambda: sheet.block("participation").count() == 1, "the blocks", 60)
+    sheet.wait_for_kernel()
     sheet.file = folder / "storeys.csv"
     return sheet
 

@@ -9,8 +9,8 @@ function render({ model, el, signal }) {
   const numbers = make("div", "calcsheet-scroll");
   const figures = make("div", "calcsheet-figures");
   const failed = make("p", "calcsheet-status", { role: "status", "data-kind": "unsaved" });
-  const motion = makeMotion(signal);
-  root.append(choices, note, numbers, figures, motion.node, failed);
+  let motion = null; // made for a view that has one
+  root.append(choices, note, numbers, figures, failed);
 
   const selects = new Map(); // key -> {label, select, drawn}
   const shown = new Map(); // name -> {figure, image, wanted}
@@ -104,7 +104,12 @@ function render({ model, el, signal }) {
     if (nodes.length !== figures.children.length || nodes.some((node, index) => figures.children[index] !== node)) {
       figures.replaceChildren(...nodes);
     }
-    motion.update(hides ? [] : model.get("motion") ?? []);
+    const swings = hides ? [] : model.get("motion") ?? [];
+    if (swings.length && !motion) {
+      motion = makeMotion(signal);
+      figures.after(motion.node);
+    }
+    motion?.update(swings);
     drawChoices();
     drawFailed();
   }
