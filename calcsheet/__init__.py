@@ -15,6 +15,7 @@ if TYPE_CHECKING:
         DriftCheck,
         JobCard,
         ModalTable,
+        ModeMotion,
         ModePlot,
         ModeSolver,
         ParticipationSummary,
@@ -22,6 +23,7 @@ if TYPE_CHECKING:
         StoreyActions,
         StoreyTable,
         WhatChanged,
+        WhatIf,
     )
 
 __version__ = "0.1.0"
@@ -31,6 +33,7 @@ __all__ = [
     "DriftCheck",
     "JobCard",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -38,6 +41,7 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
     "__version__",
 ]
 

@@ -6,8 +6,10 @@ from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.cautions import Cautions
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
+from calcsheet.blocks.motion import ModeMotion
 from calcsheet.blocks.storeytable import StoreyTable
 from calcsheet.blocks.whatchanged import WhatChanged
+from calcsheet.blocks.whatif import WhatIf
 
 __all__ = [
     "Cautions",
@@ -15,6 +17,7 @@ __all__ = [
     "DriftCheck",
     "JobCard",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -22,4 +25,5 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
 ]
