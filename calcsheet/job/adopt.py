@@ -15,6 +15,8 @@ from calcsheet.job.numbers import decimal_mark, format_number, parse_number
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
 
+MASSES = ("mass", "weight")
+"""Columns that give the masses: a table has one of them."""
 DIGITS = 10
 """Significant digits that a multiplied number is written to: 402 × 1.1 is 442.2, not 442.20000000000005."""
 
@@ -52,7 +54,7 @@ def adoption(files: JobFiles, stiffness: str, mass: float, along: Mapping[str, f
     along : mapping of str to float
         Factor on the stiffnesses by direction.
     """
-    columns = {c.key: mass for c in files.reading.columns if c.used and c.key in ("mass", "weight") and mass != 1.0}
+    columns = {c.key: mass for c in files.reading.columns if c.used and c.key in MASSES and mass != 1.0}
     changed = {d: factor for d, factor in along.items() if factor != 1.0}
     values: dict[tuple[str, ...], float | None] = {}
     basis = files.card.stiffness[stiffness]
@@ -112,7 +114,11 @@ def _changes(
         key, old = dotted(["stiffness", stiffness, name]), before[name]
         was, now = ("none" if number is None else f"{number:.{DIGITS}g}" for number in (old, value))
         said.append(f"{key} of {job_card.FILE} from {was} to {now}")
-    kept = f'; column "{headings[GRAVITY]}" stays as it is' if GRAVITY in headings and columns else ""
+    kept = (
+        f'; column "{headings[GRAVITY]}" stays as it is'
+        if GRAVITY in headings and not columns.keys().isdisjoint(MASSES)
+        else ""
+    )
     return _listed(said) + kept if said else ""
 
 

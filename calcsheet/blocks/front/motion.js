@@ -3,7 +3,7 @@
 
 const SVG = "http://www.w3.org/2000/svg";
 const BOX = { width: 560, height: 380, left: 128, right: 20, top: 16, bottom: 50 };
-const SPEEDS = [["4", "4 s"], ["2", "2 s"], ["8", "8 s"]]; // the first is taken
+const SPEEDS = ["2", "4", "8"]; // s
 const CROWDED = 14; // px between levels below which not each is named
 
 function draws(tag, attributes = {}, text = "") {
@@ -31,7 +31,8 @@ function render({ model, el, signal }) {
   controls.append(direction.label, mode.label, speed.label, button, phase);
   figure.append(svg, caption);
   root.append(note, controls, figure);
-  speed.fill(SPEEDS);
+  speed.fill(SPEEDS.map((seconds) => [seconds, `${seconds} s`]));
+  speed.select.value = "4";
 
   const still = window.matchMedia("(prefers-reduced-motion: reduce)");
   let wants = !still.matches; // whether the reader lets it move
@@ -95,8 +96,7 @@ function render({ model, el, signal }) {
     const heights = levels.map(({ elevation }) => y(elevation));
     const path = (factor) => shape.map((u, i) => `${x(factor * u).toFixed(1)},${heights[i].toFixed(1)}`).join(" ");
 
-    const parts = [draws("title", {}, `Mode ${n + 1} in ${name}, T = ${period} s, moving`)];
-    parts.push(draws("line", { class: "axis", x1: BOX.left, x2: BOX.left, y1: BOX.top, y2: ground }));
+    const parts = [draws("line", { class: "axis", x1: BOX.left, x2: BOX.left, y1: BOX.top, y2: ground })];
     parts.push(draws("line", { class: "rest", x1: x(0), x2: x(0), y1: BOX.top, y2: ground }));
     let free = Infinity;
     levels.forEach(({ name: level, label }, i) => {
