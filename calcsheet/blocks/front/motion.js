@@ -2,7 +2,9 @@
 // while it is seen and nobody has paused it; where the reader asks for reduced motion it stands still, with a slider.
 
 const SVG = "http://www.w3.org/2000/svg";
-const BOX = { width: 560, height: 380, left: 128, right: 20, top: 16, bottom: 50 };
+const BOX = { height: 380, left: 136, right: 20, top: 16, bottom: 50 }; // px
+const NARROW = { ...BOX, left: 76, right: 10 }; // without the names of the levels
+const WIDTHS = [200, 640]; // px: drawn as wide as there is room, so that its words keep their size
 const SPEEDS = ["2", "4", "8"]; // s
 const CROWDED = 14; // px between levels below which not each is named
 
@@ -25,7 +27,7 @@ function render({ model, el, signal }) {
   const slider = make("input", "", { type: "range", min: "0", max: "360", step: "5", value: "0" });
   const degrees = make("output");
   const figure = make("figure");
-  const svg = draws("svg", { viewBox: `0 0 ${BOX.width} ${BOX.height}`, role: "img", class: "calcsheet-motion" });
+  const svg = draws("svg", { role: "img", class: "calcsheet-motion" });
   const caption = make("figcaption");
   phase.append("phase", slider, degrees);
   controls.append(direction.label, mode.label, speed.label, button, phase);
@@ -79,36 +81,43 @@ function render({ model, el, signal }) {
     mode.fill(chosen.modes.map(({ period }, n) => [String(n), `${n + 1}, T = ${period} s`]));
     const n = Number(mode.select.value);
     const { period, shape } = chosen.modes[n];
-    const wanted = JSON.stringify([levels, unit, chosen.name, n, period, shape]);
-    if (wanted !== drawn) axes(levels, unit, chosen.name, n, period, shape);
+    const width = Math.min(Math.max(figure.clientWidth, WIDTHS[0]), WIDTHS[1]);
+    const wanted = JSON.stringify([width, levels, unit, chosen.name, n, period, shape]);
+    if (wanted !== drawn) axes(width, levels, unit, chosen.name, n, period, shape);
     drawn = wanted;
     go();
   }
 
-  function axes(levels, unit, name, n, period, shape) {
+  function axes(width, levels, unit, name, n, period, shape) {
+    const narrow = width < 360;
+    const box = narrow ? NARROW : BOX;
+    svg.setAttribute("viewBox", `0 0 ${width} ${box.height}`);
+    svg.setAttribute("width", width);
+    svg.setAttribute("height", box.height);
     const foot = levels[0].elevation;
     const top = levels.at(-1).elevation;
-    const middle = (BOX.left + BOX.width - BOX.right) / 2;
-    const reach = (BOX.width - BOX.right - BOX.left) / 2 / 1.12;
-    const ground = BOX.height - BOX.bottom;
+    const middle = (box.left + width - box.right) / 2;
+    const reach = (width - box.right - box.left) / 2 / 1.12;
+    const ground = box.height - box.bottom;
     const x = (u) => middle + reach * u;
-    const y = (e) => ground - ((e - foot) / (top - foot)) * (ground - BOX.top);
+    const y = (e) => ground - ((e - foot) / (top - foot)) * (ground - box.top);
     const heights = levels.map(({ elevation }) => y(elevation));
     const path = (factor) => shape.map((u, i) => `${x(factor * u).toFixed(1)},${heights[i].toFixed(1)}`).join(" ");
 
-    const parts = [draws("line", { class: "axis", x1: BOX.left, x2: BOX.left, y1: BOX.top, y2: ground })];
-    parts.push(draws("line", { class: "rest", x1: x(0), x2: x(0), y1: BOX.top, y2: ground }));
+    const parts = [draws("line", { class: "axis", x1: box.left, x2: box.left, y1: box.top, y2: ground })];
+    parts.push(draws("line", { class: "rest", x1: x(0), x2: x(0), y1: box.top, y2: ground }));
     let free = Infinity;
     levels.forEach(({ name: level, label }, i) => {
       const last = i === levels.length - 1;
       if (i > 0 && !last && (free - heights[i] < CROWDED || heights[i] - heights.at(-1) < CROWDED)) return;
       free = heights[i];
-      const short = level.length <= 12 ? level : `${level.slice(0, 11)}…`;
-      parts.push(draws("line", { class: "axis", x1: BOX.left - 4, x2: BOX.left, y1: heights[i], y2: heights[i] }));
-      parts.push(draws("text", { x: BOX.left - 8, y: heights[i] + 4, "text-anchor": "end" }, `${short}  ${label}`));
+      const short = level.length <= 10 ? level : `${level.slice(0, 9)}…`;
+      parts.push(draws("line", { class: "axis", x1: box.left - 4, x2: box.left, y1: heights[i], y2: heights[i] }));
+      const words = narrow ? label : `${short}\u2002\u2002${label}`;
+      parts.push(draws("text", { x: box.left - 8, y: heights[i] + 4, "text-anchor": "end" }, words));
     });
-    parts.push(draws("line", { class: "ground", x1: BOX.left, x2: BOX.width - BOX.right, y1: ground, y2: ground }));
-    for (let at = BOX.left + 8; at <= BOX.width - BOX.right; at += 12) {
+    parts.push(draws("line", { class: "ground", x1: box.left, x2: width - box.right, y1: ground, y2: ground }));
+    for (let at = box.left + 8; at <= width - box.right; at += 12) {
       parts.push(draws("line", { class: "axis", x1: at, x2: at - 8, y1: ground, y2: ground + 7 })); // the fixed base
     }
     for (const u of [-1, 0, 1]) {
@@ -116,17 +125,17 @@ function render({ model, el, signal }) {
       parts.push(draws("text", { x: x(u), y: ground + 21, "text-anchor": "middle" }, words));
     }
     const across = `displacement in ${name}, largest = 1`;
-    parts.push(draws("text", { x: middle, y: BOX.height - 8, "text-anchor": "middle" }, across));
-    const turn = `rotate(-90 14 ${(BOX.top + ground) / 2})`;
-    const upward = { x: 14, y: (BOX.top + ground) / 2, "text-anchor": "middle", transform: turn };
-    parts.push(draws("text", upward, `level, elevation [${unit}]`));
+    parts.push(draws("text", { x: middle, y: box.height - 8, "text-anchor": "middle" }, across));
+    const turn = `rotate(-90 14 ${(box.top + ground) / 2})`;
+    const upward = { x: 14, y: (box.top + ground) / 2, "text-anchor": "middle", transform: turn };
+    parts.push(draws("text", upward, `${narrow ? "" : "level, "}elevation [${unit}]`));
     for (const factor of [1, -1]) parts.push(draws("polyline", { class: "extreme", points: path(factor) }));
     const line = draws("polyline", { class: "shape" });
     const dots = levels.length > 60 ? [] : shape.slice(1).map(() => draws("circle", { class: "level", r: 3.5 }));
     svg.replaceChildren(...parts, line, ...dots);
     svg.setAttribute("aria-label", `Mode ${n + 1} in ${name}, T = ${period} s: displacements of the levels over elevation, `
       + "between the extremes drawn dashed, above the fixed base");
-    setText(caption, `Mode ${n + 1} in ${name}, T = ${period} s, slowed down or quickened to the cycle chosen; dashed: its extremes.`);
+    setText(caption, `Mode ${n + 1} in ${name}, T = ${period} s, whatever the cycle on the screen; dashed: its extremes.`);
     moving = { line, dots, path, shape, x, heights };
     place();
   }
@@ -193,8 +202,11 @@ function render({ model, el, signal }) {
     go();
   });
   watcher.observe(figure);
+  const sizes = new ResizeObserver(start);
+  sizes.observe(figure);
   signal.addEventListener("abort", () => {
     watcher.disconnect();
+    sizes.disconnect();
     stop();
   });
 

@@ -16,12 +16,12 @@ function render({ model, el, signal }) {
   const no = make("button", "calcsheet-button", { type: "button" });
   const note = make("p", "calcsheet-note", { role: "status" });
   const short = make("p", "calcsheet-short", { role: "status" });
-  const numbers = make("div", "calcsheet-scroll");
+  const numbers = make("div", "calcsheet-scroll", { role: "region", "aria-label": "saved and what-if values" });
   const status = make("p", "calcsheet-status", { role: "status" });
   title.id = `calcsheet-${fresh()}`;
   inputs.setAttribute("aria-labelledby", title.id);
   confirm.setAttribute("aria-labelledby", sentence.id);
-  confirm.hidden = true;
+  error.hidden = confirm.hidden = true;
   setText(title, "What if");
   setText(reset, "back to 1");
   setText(adopt, "adopt …");
@@ -31,7 +31,7 @@ function render({ model, el, signal }) {
   const choice = make("div", "calcsheet-row");
   choice.append(yes, no);
   confirm.append(sentence, choice);
-  root.append(title, notice, inputs, error, buttons, confirm, note, short, numbers, status);
+  root.append(title, notice, inputs, error, buttons, confirm, status, note, short, numbers);
 
   const rows = new Map(); // key -> {row, words, slider, field}
   let wanted = null; // factors that wait until the question on its way is answered
@@ -53,6 +53,7 @@ function render({ model, el, signal }) {
     const slider = make("input", "", { type: "range", min: least(), max: most(), step: "0.01" });
     const field = make("input", "calcsheet-number", { id, type: "number", min: least(), max: most(), step: "0.01" });
     row.append(words, slider, field);
+    field.value = slider.value = "1";
     slider.addEventListener("input", () => {
       field.value = slider.value;
       changed();
@@ -93,15 +94,14 @@ function render({ model, el, signal }) {
     drawStatus();
   }
 
-  /** Name what is not allowed; words once the field is left, so that nobody is corrected in mid-number. */
+  /** Name what is not allowed once its field is left: nobody is corrected in mid-number. */
   function drawErrors(left) {
     const wrong = [];
     for (const { field, words } of rows.values()) {
-      const good = allowed(read(field));
-      if (good || left) field.toggleAttribute("aria-invalid", false);
-      if (good) {
+      if (!left || allowed(read(field))) {
+        field.removeAttribute("aria-invalid");
         field.removeAttribute("aria-describedby");
-      } else if (left) {
+      } else {
         field.setAttribute("aria-invalid", "true");
         field.setAttribute("aria-describedby", error.id);
         wrong.push(`${words.textContent}: must be a number from ${least()} to ${most()}`);
@@ -120,10 +120,9 @@ function render({ model, el, signal }) {
       setText(words, label);
       slider.setAttribute("aria-label", `${label}, slider`);
       // What the engineer is at stays: Python's value is shown once nothing is on its way and nothing is half-typed.
-      if (asking || wanted || (document.activeElement === field && !allowed(read(field)))) continue;
+      if (asking || wanted || !allowed(read(field))) continue;
       const value = String(factors[key] ?? 1);
-      if (Number(field.value) !== Number(value) || field.value === "") field.value = value;
-      if (Number(slider.value) !== Number(value)) slider.value = value;
+      if (read(field) !== Number(value)) field.value = slider.value = value;
     }
     const nodes = fields.map(({ key }) => rows.get(key).row);
     if (nodes.length !== inputs.children.length || nodes.some((node, index) => inputs.children[index] !== node)) {
@@ -155,7 +154,6 @@ function render({ model, el, signal }) {
     html = model.get("html");
     if (!asking) numbers.setAttribute("aria-busy", "false");
     if (sentence.textContent !== model.get("adopting")) close(false);
-    drawErrors(rows.size > 0 && ![...rows.values()].some(({ field }) => document.activeElement === field));
     drawStatus();
   }
 
@@ -193,6 +191,14 @@ function render({ model, el, signal }) {
   confirm.addEventListener("keydown", (event) => {
     if (event.key === "Escape") close(true);
   });
+
+  // Where it is too narrow for its tables, it can be scrolled by keyboard.
+  const sizes = new ResizeObserver(() => {
+    if (numbers.scrollWidth > numbers.clientWidth) numbers.setAttribute("tabindex", "0");
+    else numbers.removeAttribute("tabindex");
+  });
+  sizes.observe(numbers);
+  signal.addEventListener("abort", () => sizes.disconnect());
 
   keepKeys(root, () => {});
   redrawOn(model, signal, ["fields", "factors", "html", "short", "adopting", "done", "note", "revision"], draw);
