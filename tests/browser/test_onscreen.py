@@ -216,9 +216,10 @@ def test_everything_is_labelled_and_legible_also_at_200_per_cent(sheet, theme):
     what_if(sheet).get_by_text("adopt …").click()
     found = axe.Axe().run(page, context=".calcsheet-live")
     assert found.response["violations"] == [], found.generate_report()
-    page.set_viewport_size({"width": 640, "height": 900})  # what 1280 px hold at 200 %
     drawing = motion(sheet).get_by_role("img")
-    until(lambda: drawing.bounding_box()["width"] < 500, "a narrower drawing")
+    before = drawing.bounding_box()["width"]
+    page.set_viewport_size({"width": 640, "height": 900})  # what 1280 px hold at 200 %
+    until(lambda: drawing.bounding_box()["width"] < before, "a narrower drawing")
     until(lambda: drawing.locator("text").first.bounding_box()["height"] > 12, "words of their own size")
     found = axe.Axe().run(page, context=".calcsheet-live")
     assert found.response["violations"] == [], found.generate_report()

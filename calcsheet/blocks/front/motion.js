@@ -211,6 +211,8 @@ function render({ model, el, signal }) {
   });
 
   keepKeys(root, () => {});
+  // The notebook takes arrows and Enter from whatever is focused and no text field, unless that very element says no.
+  root.addEventListener("focusin", (event) => event.target.setAttribute("data-lm-suppress-shortcuts", "true"));
   redrawOn(model, signal, ["motion", "note"], start);
   el.append(root);
   start();

@@ -3,7 +3,7 @@
 
 function render({ model, el, signal }) {
   const root = make("div", "calcsheet calcsheet-live", { "data-block": model.get("block") });
-  const title = make("h3");
+  const title = make("p", "calcsheet-title");
   const notice = make("p", "below");
   const inputs = make("div", "calcsheet-factors", { role: "group" });
   const error = make("p", "calcsheet-errors", { id: `calcsheet-${fresh()}`, role: "alert" });
@@ -201,6 +201,8 @@ function render({ model, el, signal }) {
   signal.addEventListener("abort", () => sizes.disconnect());
 
   keepKeys(root, () => {});
+  // The notebook takes arrows and Enter from whatever is focused and no text field, unless that very element says no.
+  root.addEventListener("focusin", (event) => event.target.setAttribute("data-lm-suppress-shortcuts", "true"));
   redrawOn(model, signal, ["fields", "factors", "html", "short", "adopting", "done", "note", "revision"], draw);
   el.append(root);
   draw();
