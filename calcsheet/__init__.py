@@ -15,6 +15,7 @@ if TYPE_CHECKING:
         DriftCheck,
         JobCard,
         ModalTable,
+        ModeMotion,
         ModePlot,
         ModeSolver,
         ParticipationSummary,
@@ -23,6 +24,7 @@ if TYPE_CHECKING:
         StoreyActions,
         StoreyTable,
         WhatChanged,
+        WhatIf,
     )
 
 __version__ = "0.1.0"
@@ -32,6 +34,7 @@ __all__ = [
     "DriftCheck",
     "JobCard",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -40,6 +43,7 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
     "__version__",
 ]
 

@@ -167,7 +167,7 @@ class Shown:
         block = self.block
         revision, payloads = block.job.now()
         payload = payloads[block.key]
-        if payload["state"] == "ok":
+        if payload["state"] == "ok" or not block.view.printed:
             html = self.rendered(payloads, block.options).html + images(self.drawn(payloads, block.options))
             self.show_live_figures(self.drawn(payloads, self.options), revision)
         else:

@@ -124,6 +124,8 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("peaks of all quantities combined", "response.combine", _CQC),
     Formula("T₁, h, w of a direction", "response.facts_of", "definition"),
     Formula("ordinate of what the modes leave out", "response.left_over", _CHOPRA),
+    Formula("αm, βK of the whole model", "whatif.multiplied", "definition"),
+    Formula("T, M*/Σm and modal base shear of a building", "whatif.answered", _CHOPRA),
     Formula("design drifts, θ, screens", "design.drifts", "the edition's clauses"),
     Formula("design storey actions", "design.actions", "the edition's clauses"),
     Formula("F = V wh^k/Σwh^k", "codes.common.by_height", _ASCE.format("12.8.3")),
