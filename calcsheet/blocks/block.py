@@ -157,7 +157,7 @@ class Shown:
                 self.widget.set_trait("choices", choices)
                 self.widget.set_trait("html", self.rendered(payloads, self.options).html)
             self.widget.set_trait("revision", revision)
-        self.widget.done()
+        self.widget.answered()
 
     def show_live_figures(self, drawings: tuple[Drawing, ...], revision: int) -> None:
         if self.widget is not None:
@@ -171,7 +171,7 @@ class Shown:
         block = self.block
         revision, payloads = block.job.now()
         payload = payloads[block.key]
-        if payload["state"] == "ok":
+        if payload["state"] == "ok" or not block.view.printed:
             html = self.rendered(payloads, block.options).html + images(self.drawn(payloads, block.options))
             self.show_live_figures(self.drawn(payloads, self.options), revision)
         else:

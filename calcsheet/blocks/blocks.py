@@ -2,21 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from numbers import Integral, Real
-from typing import Any
 
-import numpy as np
-
-from calcsheet.blocks.block import Block, Shown, must_be
+from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.storeytable import StoreyTable
-from calcsheet.core.modes import scaled
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
-from calcsheet.steps.step import Payload
-
-SWINGING = 6
-"""Modes that can be shown swinging in each direction."""
 
 
 class ModeSolver(Block):
@@ -82,42 +73,6 @@ class ModePlot(Block):
     def __init__(self, modes: ModeSolver, *, normalise: str = "largest", values: str = "shown") -> None:
         must_be(self, modes, ModeSolver)
         super().__init__(modes.job, modes.key, normalise=normalise, values=values)
-
-    def shown(self) -> Shown:
-        return ShownPlot(self)
-
-
-class ShownPlot(Shown):
-    """A display of mode shapes: the live one can show them swinging."""
-
-    def show_numbers(self) -> None:
-        super().show_numbers()
-        payloads = self.block.job.payloads()
-        if self.widget is not None and payloads[self.block.key]["state"] == "ok":
-            self.widget.set_trait("motion", swings(payloads, self.block.key))
-
-
-def swings(payloads: Mapping[str, Payload], key: str) -> list[dict[str, Any]]:
-    """The first shapes of each model, largest 1, with the elevations of base and levels [m] that they belong to.
-
-    Parameters
-    ----------
-    payloads : mapping of str to payload
-        The job's.
-    key : str
-        Key of the modes.
-    """
-    storeys = payloads[payloads[key]["needs"]["storeys"]]["inputs"]
-    found = []
-    for model in payloads[key]["result"]["models"]:
-        shapes = scaled(np.array(model["modes"]["psi"]), "largest")[:, :SWINGING]
-        modes = [
-            {"label": f"mode {n + 1} in {model['name']}, T = {period:.3g} s", "shape": [0.0, *shape.tolist()]}
-            for n, (period, shape) in enumerate(zip(model["modes"]["period"], shapes.T, strict=False))
-        ]
-        elevations = [storeys["base_elevation"], *storeys["elevation"]]
-        found.append({"name": model["name"], "elevations": elevations, "modes": modes})
-    return found
 
 
 class ParticipationSummary(Block):

@@ -120,7 +120,7 @@ class ShownTable(Shown):
             self.widget.set_trait("status", {"kind": kind, "text": words})
             self.widget.set_trait("differences", {"cells": listed, "more": len(differences) - len(listed)})
             self.widget.set_trait("revision", revision)
-        self.widget.done()
+        self.widget.answered()
 
     def show_live_figures(self, drawings: Any, revision: int) -> None:
         """A table has none."""

@@ -1,35 +1,77 @@
-"""What the periods would be with all masses or stiffnesses multiplied: a question, no part of the calculation.
-
-Nothing is saved until it is adopted, and nothing of it goes into a record.
-"""
+"""A what-if on the whole model, as a block on screen only: nothing is saved until it is adopted."""
 
 from __future__ import annotations
 
+import threading
 from collections.abc import Mapping
+from dataclasses import asdict
+from typing import Any
 
-from traitlets import Dict, Unicode
+from traitlets import Dict, Float, List, Unicode
 
 from calcsheet.blocks.block import Block, Shown, must_be
 from calcsheet.blocks.blocks import ModeSolver
 from calcsheet.blocks.widgets import LiveWidget, Message, front
-from calcsheet.core.model import models_of
-from calcsheet.core.modes import modes_of
-from calcsheet.core.scaled import scaled
-from calcsheet.core.storeys import Storeys
-from calcsheet.job import edits
+from calcsheet.core.errors import ModelError
+from calcsheet.core.whatif import Answered
+from calcsheet.job.adopt import Adoption, adoption, multiplied_columns
 from calcsheet.job.errors import InputError
-from calcsheet.render.numbers import decimals_for, text
-from calcsheet.render.table import Column, table
+from calcsheet.job.folder import JobFiles
+from calcsheet.job.table import TextTable
+from calcsheet.render.view import system_of
+from calcsheet.render.whatif import NOTICE, compared, in_short
+from calcsheet.steps.graph import Values
+from calcsheet.steps.step import Payload
+from calcsheet.steps.whatif import LEAST, MOST, NAMES, Asked, Factors, asked, shown_by
 
-RANGE = (0.5, 2.0)
-"""Factors that can be asked for."""
-SHOWN = 6
-"""Modes listed in each direction, at most."""
-AS_SAVED = {"mass": 1.0, "stiffness": 1.0}
+SAVED = Factors()
+"""The saved model's own factors."""
+
+
+class WhatIfWidget(LiveWidget):
+    """Factors that are set, and what the model then answers.
+
+    Messages: ``factors`` (mass, x, y) and ``adopt`` (sentence: the one shown, which must still be what would change).
+
+    Attributes
+    ----------
+    fields : list of dict
+        {key, label}: the factors that can be set, ``least`` to ``most``.
+    factors : dict
+        {mass, x, y}: those that ``html`` is of.
+    html, short : str
+        The answers as tables, and in one sentence.
+    adopting : str
+        The sentence that says what adopting changes; empty where there is nothing to adopt.
+    done : str
+        What was adopted last.
+    notice : str
+        That this is on screen only.
+    note : dict
+        ``kind`` and ``text`` that stand in place of the answers.
+    """
+
+    _esm = front("link.js", "whatif.js")
+    _css = front("calcsheet.css")
+
+    fields = List(Dict()).tag(sync=True)
+    least = Float(LEAST).tag(sync=True)
+    most = Float(MOST).tag(sync=True)
+    factors = Dict().tag(sync=True)
+    html = Unicode().tag(sync=True)
+    short = Unicode().tag(sync=True)
+    adopting = Unicode().tag(sync=True)
+    done = Unicode().tag(sync=True)
+    notice = Unicode(NOTICE).tag(sync=True)
+    note = Dict().tag(sync=True)
 
 
 class WhatIf(Block):
-    """Periods under a factor on all masses and one on all stiffnesses, by two sliders.
+    """What if every mass, or every stiffness in a direction, were another.
+
+    The saved inputs stay as they are until the factors are adopted on the page: the mass (or weight) column of storeys.csv
+    is then multiplied, and the factor of the stiffness set that the modes use, which is the one that serves forces unless
+    the solver was given another.
 
     Parameters
     ----------
@@ -41,7 +83,7 @@ class WhatIf(Block):
     >>> WhatIf(modes)  # doctest: +SKIP
     """
 
-    view_name = "modes"
+    view_name = "what if"
 
     def __init__(self, modes: ModeSolver) -> None:
         must_be(self, modes, ModeSolver)
@@ -51,122 +93,103 @@ class WhatIf(Block):
         return ShownWhatIf(self)
 
 
-class WhatIfWidget(LiveWidget):
-    """Two factors, the numbers under them, and buttons to adopt them.
-
-    Messages: ``factors`` (mass, stiffness), ``adopt`` (what: mass or stiffness).
-
-    Attributes
-    ----------
-    factors : dict
-        ``mass`` and ``stiffness``.
-    html : str
-        The periods, as saved and under the factors.
-    note : str
-        Why there are none.
-    """
-
-    _esm = front("link.js", "whatif.js")
-    _css = front("calcsheet.css")
-
-    factors = Dict().tag(sync=True)
-    html = Unicode().tag(sync=True)
-    note = Unicode().tag(sync=True)
-
-
 class ShownWhatIf(Shown):
-    """A display of the question: live alone, without a twin."""
+    """A display of a what-if, with factors of its own."""
 
     def __init__(self, block: Block) -> None:
         super().__init__(block)
-        self.factors = dict(AS_SAVED)
+        self.factors = SAVED
+        self.done = ""
+        self._turn = threading.RLock()  # one answer at a time; never held while the job is changed
+        self._read: tuple[Payload, ...] = ()
+        self._saved: tuple[Asked, tuple[Answered, ...]] | None = None
 
     def make_widget(self) -> LiveWidget:
-        return WhatIfWidget(self.answer, block="what if")
+        return WhatIfWidget(self.answer, block=self.block.view_name)
 
     def answer(self, message: Message) -> str | None:
         try:
-            if message["op"] == "factors":
-                asked = {key: float(message[key]) for key in AS_SAVED}
-                if not all(RANGE[0] <= value <= RANGE[1] for value in asked.values()):
-                    return f"factors must be from {RANGE[0]} to {RANGE[1]}"
-                self.factors = asked
-            elif message["op"] == "adopt" and message["what"] in AS_SAVED:
-                factor, self.factors = self.factors[message["what"]], self.factors | {message["what"]: 1.0}
-                try:
-                    self.adopt(message["what"], factor)
-                except InputError:
-                    self.factors[message["what"]] = factor
-                    raise
-            else:
-                return f"{message['op']}: not known to this block"
-        except (InputError, ValueError) as error:
+            match message["op"]:
+                case "factors":
+                    factors = Factors(*(message.get(key, 1.0) for key in NAMES))
+                    with self._turn:
+                        self.factors, self.done = factors, ""
+                        self.show_numbers()
+                case "adopt":
+                    self._adopt(message["sentence"])
+                case op:
+                    return f"{op}: not known to this block"
+        except (ValueError, InputError) as error:
             return str(error)
-        with self.block.job.telling:
-            self.show_numbers()
         return None
 
-    def adopt(self, what: str, factor: float) -> None:
-        """Write the masses to the table, in one edit, or the factor of the stiffness set to the job card."""
-        job = self.block.job
-        if what == "mass":
-            job.edit(lambda reading: edits.multiply(reading, ("mass", "weight"), factor), f"masses × {factor:g}")
-            return
-        name = self.block.payload["result"]["stiffness"]
-        card = job.payload("card")["inputs"]
-        given = card["stiffness"][name]
-        if given.get("own"):
-            where = f"stiffness.{name}"
-            raise InputError(
-                "job.toml", where, "has stiffnesses of its own", "multiply its columns in the table instead"
-            )
-        present = [key for key in ("factor", "factor_x", "factor_y") if given.get(key) is not None] or ["factor"]
-        for key in present:
-            job.set_value(["stiffness", name, key], float(f"{(given.get(key) or 1.0) * factor:.12g}"))
+    def _adopt(self, sentence: str) -> None:
+        """Put the factors into the files, where that changes what the sentence says and nothing else."""
+        factors = self.factors
+
+        def change(files: JobFiles) -> tuple[TextTable, Values]:
+            found = self._adoption(self.block.payload, files, factors)
+            if not sentence or _said(found) != sentence:
+                raise ValueError("nothing adopted: what would change is no longer what was said; adopt again")
+            self.done = f"Adopted: {found.changes}. The factors are back at 1."
+            self.factors = SAVED  # before the listeners hear of the new model, this one among them
+            return multiplied_columns(files.reading, found.columns), found.values
+
+        try:
+            self.block.job.edit_both(change)
+        except InputError:
+            self.factors, self.done = factors, ""
+            raise
+
+    def _adoption(self, payload: Payload, files: JobFiles, factors: Factors) -> Adoption:
+        if payload["state"] != "ok":
+            raise ValueError(f"nothing adopted: {payload['why']}")
+        result = payload["result"]
+        along = {model["name"]: factors.along(model["name"]) for model in result["models"]}
+        return adoption(files, result["stiffness"], factors.mass, along)
 
     def show_numbers(self) -> None:
         if self.widget is None:
             return
-        revision, payloads = self.block.job.now()
-        payload = payloads[self.block.key]
-        with self.block.job.lock:
-            files = self.block.job.files
-        storeys = None if files is None or payload["state"] != "ok" else files.reading.storeys
-        with self.widget.hold_sync():
-            self.widget.set_trait("factors", dict(self.factors))
-            self.widget.set_trait("note", "" if storeys is not None else f"Waits: {payload['why']}")
-            shown = "" if storeys is None else periods(storeys, payload["result"]["stiffness"], self.factors)
-            self.widget.set_trait("html", shown)
-            self.widget.set_trait("revision", revision)
-        self.widget.done()
+        with self._turn:
+            with self.block.job.lock:
+                (revision, payloads), files = self.block.job.now(), self.block.job.files
+            payload, factors = payloads[self.block.key], self.factors
+            note = {"kind": payload["state"], "text": payload["why"]}
+            shown: dict[str, Any] = {"html": "", "short": "", "adopting": ""}
+            if payload["state"] == "ok" and files is not None:
+                try:
+                    shown = self._answers(payloads, factors)
+                    shown["adopting"] = _said(self._adoption(payload, files, factors))
+                    note = {}
+                except (ModelError, ArithmeticError) as error:  # such as a period that the spectrum does not reach
+                    note = {"kind": "refused", "text": f"With these factors: {error}"}
+            with self.widget.hold_sync():
+                for name, value in shown.items():
+                    self.widget.set_trait(name, value)
+                self.widget.set_trait("note", note)
+                self.widget.set_trait("done", self.done)
+                self.widget.set_trait("factors", asdict(factors))
+                self.widget.set_trait("revision", revision)
 
-    def show_figures(self) -> None:
-        """There are none, and no twin: a question is no part of the calculation."""
+    def _answers(self, payloads: Mapping[str, Payload], factors: Factors) -> dict[str, Any]:
+        """What the multiplied model answers beside the saved one, which is solved again only where it has changed."""
+        read = shown_by(payloads, self.block.key)
+        if self._saved is None or tuple(map(id, read)) != tuple(map(id, self._read)):
+            model = asked(payloads, self.block.key)
+            self._read, self._saved = read, (model, model.answered())
+        model, saved = self._saved
+        now = model.answered(factors)
+        return {
+            "fields": [{"key": k, "label": NAMES[k]} for k in ("mass", *model.directions)],
+            "html": compared(saved, now, factors, model.waits, system_of(payloads)),
+            "short": in_short(saved, now),
+        }
+
+    def show_live_figures(self, drawings: Any, revision: int) -> None:
+        """It has none."""
 
 
-def periods(storeys: Storeys, stiffness: str, factors: Mapping[str, float]) -> str:
-    """HTML of the periods of a building as saved and under factors.
-
-    Parameters
-    ----------
-    storeys : Storeys
-        The building.
-    stiffness : str
-        The stiffness set.
-    factors : mapping of str to float
-        Of "mass" and "stiffness".
-    """
-    asked = models_of(scaled(storeys, factors["mass"], factors["stiffness"]), stiffness)
-    parts = []
-    for now, then in zip(models_of(storeys, stiffness), asked, strict=True):
-        keep = min(SHOWN, now.size)
-        saved, under = (modes_of(model, keep).period.tolist() for model in (now, then))
-        decimals = decimals_for([*saved, *under], 4)
-        columns = [
-            Column("mode", tuple(str(i + 1) for i in range(keep))),
-            Column("T as saved [s]", tuple(text(value, decimals) for value in saved)),
-            Column("T if [s]", tuple(text(value, decimals) for value in under)),
-            Column("T if / T", tuple(text(b / a, 3) for a, b in zip(saved, under, strict=True))),
-        ]
-        parts.append(table(columns, kind="values", caption=f"Periods in {' and '.join(now.direction)}"))
-    return "".join(parts)
+def _said(found: Adoption) -> str:
+    """What stands beside the button that adopts; empty where nothing would change."""
+    return f"Adopting changes {found.changes}." if found.changes else ""

@@ -69,7 +69,7 @@ class LiveWidget(AnyWidget):
         finally:
             self._acknowledge(why_not)
 
-    def done(self) -> None:
+    def answered(self) -> None:
         """Tell the page already now that the message which this thread answers is done: what is still to do is drawing."""
         self._acknowledge(None)
 
@@ -126,19 +126,16 @@ class ViewWidget(LiveWidget):
         Numbers and tables, from our own renderers, escaped there.
     figures : list of dict
         {name, alt, svg}, optional ``revision``: a figure of an older revision than the widget's is shown as being redrawn.
-    motion : list of dict
-        {name, elevations, modes: [{label, shape}]}, base first: shapes, at most 1, that can be shown swinging.
     note : dict
         ``kind`` and ``text``; with ``waiting`` or ``refused`` the words stand in place of numbers and figures.
     choices : list of dict
         {key, label, value, options: [{value, label}]}.
     """
 
-    _esm = front("link.js", "motion.js", "view.js")
+    _esm = front("link.js", "view.js")
     _css = front("calcsheet.css")
 
     html = Unicode().tag(sync=True)
     figures = List(Dict()).tag(sync=True)
-    motion = List(Dict()).tag(sync=True)
     note = Dict().tag(sync=True)
     choices = List(Dict()).tag(sync=True)

@@ -117,23 +117,6 @@ def fill_down(reading: StoreyReading, first: Row, last: Row, columns: Iterable[s
     return text_table.set_cells(reading.table, dict.fromkeys(range(top + 1, bottom + 1), above))
 
 
-def multiply(reading: StoreyReading, columns: Iterable[str], factor: float) -> TextTable:
-    """Return the table with the numbers of some columns multiplied, in the levels above the effective base.
-
-    They are rounded to 12 significant digits. Columns that aren't there, and cells without a number, are left.
-    """
-    texts: dict[int, dict[int, str]] = {}
-    for place, column in enumerate(reading.columns):
-        if column.key not in columns or column.unit is None or column.key not in reading.numbers:
-            continue
-        usual = _marks(reading, place)[1]
-        for row, core in zip(reading.used[: reading.above], reading.numbers[column.key], strict=False):
-            value = float(f"{core * factor / column.unit.factor:.12g}")
-            if math.isfinite(value):
-                texts.setdefault(row, {})[place] = format_number(value, usual)
-    return text_table.set_cells(reading.table, texts)
-
-
 def paste(reading: StoreyReading, row: Row, column: str, text: str, rows: int = 1, columns: int = 1) -> TextTable:
     """Return the table with a block pasted from a cell to the right and down; rows are added as needed.
 

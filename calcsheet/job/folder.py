@@ -140,6 +140,19 @@ class JobFolder:
         """The storey table as it now is on disk, refusing (InputError) what is no table."""
         return self._table(storeyfile.FILE, "must have a row for each level", {})
 
+    def save_both(self, files: JobFiles, table: TextTable, text: str) -> JobFiles:
+        """Write storey table and job card: both, or neither; arguments and errors are those of the two above."""
+        parse_card(text)
+        saved = files if table == files.reading.table else self.save_storeys(files, table)
+        if text == files.card_text:
+            return saved
+        try:
+            return self.save_card(saved, text)
+        except InputError:
+            if saved is not files:
+                self.save_storeys(saved, files.reading.table)
+            raise
+
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
         return tuple(name for name, stamp in files.stamps.items() if textfile.stamp(self.path / name) != stamp)

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import re
 import threading
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Any, ClassVar
@@ -31,6 +31,7 @@ from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinish
 
 KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
+Values = Mapping[tuple[str, ...], Value | None]
 
 TAKEOFF = "stiffness take-off"
 FROM_FILES = ("card", "storeys", "basis", TAKEOFF)
@@ -235,6 +236,33 @@ class Job:
         with self.lock:
             files = self._read()
             self.files = self.folder.save_card(files, with_value(files.card_text, key, value))
+            self._update()
+        self._tell()
+
+    def edit_both(self, change: Callable[[JobFiles], tuple[TextTable, Values]]) -> None:
+        """Edit the storey table and set keys of the job card: both are written through, or neither.
+
+        Parameters
+        ----------
+        change : callable
+            From the files as read to the table wanted and the values wanted, by key as in `set_value`.
+
+        Raises
+        ------
+        InputError
+            The card would not be valid, or a file is not saved or was changed on disk; nothing has changed.
+        """
+        with self.lock:
+            files = self._read()
+            if self.status.kind != "saved":
+                raise InputError("", "", self.status.text, "put that right first")
+            (table, values), text = change(files), files.card_text
+            for key, value in values.items():
+                text = with_value(text, key, value)
+            self.files = self.folder.save_both(files, table, text)
+            if table.content() != files.reading.table.content():
+                self.history.did("adopted", files.reading.table)
+            self.status = Status("saved", f"saved to {table.file} at {clock()}")
             self._update()
         self._tell()
 

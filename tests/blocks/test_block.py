@@ -325,13 +325,3 @@ def test_a_folder_without_a_job_shows_why(shell, tmp_path, monkeypatch):
     assert "no job.toml in" in shell.twin("storeys")["text/html"]
     assert "edit" not in shell.outputs
     assert shell.link("storeys").say(op="set", row="row-1", key="mass", text="1")["ok"] is False
-
-
-def test_the_shapes_that_can_swing_are_those_of_the_payload(sheet):
-    along, across = sheet.link("plot").state["motion"]
-    storeys, modes = (sheet.twin("card")[MIME]["payloads"][key] for key in ("storeys", "modes"))
-    assert along["elevations"] == [storeys["inputs"]["base_elevation"], *storeys["inputs"]["elevation"]]
-    assert [m["label"].split(",")[0] for m in across["modes"]] == [f"mode {i} in y" for i in range(1, 6)]
-    psi = [row[1] for row in modes["result"]["models"][0]["modes"]["psi"]]
-    scale = max(psi, key=abs)
-    assert along["modes"][1]["shape"] == pytest.approx([0.0, *(value / scale for value in psi)])

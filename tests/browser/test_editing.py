@@ -278,29 +278,6 @@ def test_eighty_rows_of_five_are_pasted_and_recomputed(sheet):
     saved(sheet, MASSES)
 
 
-def test_a_mode_swings_when_it_is_asked_to_and_rests_otherwise(sheet):
-    plot = sheet.block("mode plot")
-    path = plot.locator(".calcsheet-motion path")
-    rest = path.get_attribute("d")
-    sheet.page.wait_for_timeout(300)
-    assert path.get_attribute("d") == rest, "nothing moves by itself"
-    plot.get_by_role("button", name="play").click()
-    sheet.until(lambda: path.get_attribute("d") != rest, "motion")
-    figure = plot.locator("figure img").first.get_attribute("src")
-    sheet.cell("mass, level 6").click()
-    sheet.keys("'700")
-    sheet.until(lambda: sheet.focused() == "mass, level 6", "the focus")
-    sheet.keys("Enter")
-    sheet.until(lambda: plot.locator("figure img").first.get_attribute("src") != figure, "the figure in place")
-    assert sheet.focused() == "mass, level 5"
-    plot.get_by_role("button", name="rest").click()
-    plot.locator(".calcsheet-motion select").select_option(
-        label=plot.locator(".calcsheet-motion option").nth(1).text_content()
-    )
-    assert path.get_attribute("d") != rest
-    sheet.shot("motion")
-
-
 def test_a_building_of_thirty_storeys_is_entered_and_revised_by_keyboard_alone(sheet):
     sheet.keys("Control+a", "Alt+Delete")
     sheet.until(lambda: len(levels(sheet)) == 0, "an empty table")

@@ -9,7 +9,6 @@ function render({ model, el, signal }) {
   const numbers = make("div", "calcsheet-scroll");
   const figures = make("div", "calcsheet-figures");
   const failed = make("p", "calcsheet-status", { role: "status", "data-kind": "unsaved" });
-  let motion = null; // made for a view that has one
   root.append(choices, note, numbers, figures, failed);
 
   const selects = new Map(); // key -> {label, select, drawn}
@@ -104,18 +103,12 @@ function render({ model, el, signal }) {
     if (nodes.length !== figures.children.length || nodes.some((node, index) => figures.children[index] !== node)) {
       figures.replaceChildren(...nodes);
     }
-    const swings = hides ? [] : model.get("motion") ?? [];
-    if (swings.length && !motion) {
-      motion = makeMotion(signal);
-      figures.after(motion.node);
-    }
-    motion?.update(swings);
     drawChoices();
     drawFailed();
   }
 
   keepKeys(root, () => {});
-  redrawOn(model, signal, ["html", "figures", "motion", "note", "choices", "revision"], draw);
+  redrawOn(model, signal, ["html", "figures", "note", "choices", "revision"], draw);
   el.append(root);
   draw();
   watchTwin(model, root, signal);
