@@ -14,6 +14,7 @@ CORE = {
     "feet": "m",
     "area": "m**2",
     "pressure": "kN/m**2",
+    "unit weight": "kN/m**3",
     "ordinate": "standard_gravity",
     "mass": "tonne",
     "weight": "kN",
@@ -42,6 +43,7 @@ PINT = {
     "t": "tonne",
     "g": "standard_gravity",
     "psf": "lbf/ft**2",
+    "pcf": "lbf/ft**3",
     "t·m²": "tonne*m**2",
     "%": "percent",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
@@ -56,7 +58,7 @@ PINT = {
 
 def in_core(symbol: str, quantity: str) -> float:
     """The factor of a unit by pint, which knows nothing of the table."""
-    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2"))
+    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2").replace("³", "**3"))
     return REGISTRY.Quantity(1.0, spelled).to(CORE[quantity] or "dimensionless").magnitude
 
 
@@ -84,7 +86,13 @@ def test_spellings_of_a_mass(spelled):
     assert parse_unit(spelled, "mass") == parse_unit("kip·s²/in", "mass")
 
 
+@pytest.mark.parametrize("spelled", ["kN/m³", "kN/m3", "kN / m^3"])
+def test_spellings_of_a_unit_weight(spelled):
+    assert parse_unit(spelled, "unit weight") == parse_unit("kN/m³", "unit weight")
+
+
 def test_pounds_of_force():
+    assert parse_unit("lb/ft^2", "pressure").factor == parse_unit("psf", "pressure").factor
     assert parse_unit("lb", "weight") == parse_unit("lbf", "weight")
     assert parse_unit("lb/in", "stiffness").symbol == "lbf/in"
 

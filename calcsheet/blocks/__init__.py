@@ -6,11 +6,13 @@ from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.storeytable import StoreyTable
+from calcsheet.blocks.takeoff import MassTakeoff
 
 __all__ = [
     "DemandSpectrum",
     "DriftCheck",
     "JobCard",
+    "MassTakeoff",
     "ModalTable",
     "ModePlot",
     "ModeSolver",

@@ -156,6 +156,12 @@ class LoadShare(_Table):
     clause: Text = ""
 
 
+class MassSource(_Table):
+    """Table [masses]: where the masses come from, other than from storeys.csv itself."""
+
+    source: Literal["floors.csv"] = Field(description='"floors.csv"')
+
+
 class OtherModel(_Table):
     """One of [[second_model]]: a result of another model or a hand calculation, and where it comes from."""
 
@@ -237,6 +243,7 @@ class Card(_Table):
     mass_basis: Annotated[tuple[LoadShare, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[mass_basis]]"
     )
+    masses: MassSource | None = Field(None, description="a table [masses]")
     second_model: Annotated[tuple[OtherModel, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[second_model]]"
     )

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import csv
 import math
+from collections.abc import Mapping
 
 from calcsheet.job import table as text_table
 from calcsheet.job.errors import InputError
@@ -34,14 +35,22 @@ def set_number(reading: StoreyReading, row: int | str, column: str, value: float
     InputError
         There is no such row or column, or the number isn't finite.
     """
-    if not math.isfinite(value):
-        raise InputError(reading.table.file, f'column "{column}"', f"got {value}", "must be a finite number")
+    return set_numbers(reading, column, {row: value})
+
+
+def set_numbers(reading: StoreyReading, column: str, values: Mapping[int | str, float]) -> TextTable:
+    """Return the table with cells of one column set to numbers, by row; errors as in `set_number`."""
     place = column_index(reading, column)
     columns = list(zip(*reading.rows, strict=True))
     # the column itself decides, else the first other column that does
     marks = (decimal_mark(cells, reading.table.delimiter) for cells in (columns[place : place + 1] + columns))
     mark = next((mark for mark in marks if mark), ".")
-    return set_text(reading, row, column, format_number(value, mark))
+    table = reading.table
+    for row, value in values.items():
+        if not math.isfinite(value):
+            raise InputError(reading.table.file, f'column "{column}"', f"got {value}", "must be a finite number")
+        table = text_table.set_cell(table, row_index(reading, row), place, format_number(value, mark))
+    return table
 
 
 def insert_row(reading: StoreyReading, below: int | str | None) -> TextTable:

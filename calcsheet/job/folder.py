@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 from calcsheet.core.basis import Basis
@@ -12,8 +12,10 @@ from calcsheet.job import storeyfile, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import CHAIN, Card, parse_card
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.storeyfile import StoreyReading, read_frame, read_storeys
 from calcsheet.job.table import TextTable, parse_table
+from calcsheet.job.takeofffile import FILES as TAKEOFF_FILES
+from calcsheet.job.takeofffile import TakeoffReading, read_takeoff
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
 
 
@@ -39,6 +41,10 @@ class JobFiles:
         The basis of the demand; None where the card has none, or a wrong one.
     basis_problem : str
         Why there is none, or empty: all else can be calculated without one.
+    takeoff_tables : mapping of str to TextTable or InputError
+        By file, the tables of the mass take-off that there are; or why one is no table.
+    takeoff : TakeoffReading or None
+        The mass take-off, with its problems or the floors; None where the folder has none of its files.
     """
 
     card: Card
@@ -49,6 +55,14 @@ class JobFiles:
     stamps: Mapping[str, Stamp | None]
     basis: Basis | None = None
     basis_problem: str = ""
+    takeoff_tables: Mapping[str, TextTable | InputError] = field(default_factory=dict)
+    takeoff: TakeoffReading | None = None
+
+    def with_storeys(self, table: TextTable, card: Card | None = None) -> JobFiles:
+        """The files with another storey table, or another card, and all that is read anew with it."""
+        card = card or self.card
+        takeoff = _takeoff(self.takeoff_tables, card, table)
+        return replace(self, reading=read_storeys(table, card, self.matrices, takeoff), takeoff=takeoff)
 
     @property
     def problems(self) -> tuple[str, ...]:
@@ -85,9 +99,13 @@ class JobFolder:
             d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
             for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
         }
-        reading = read_storeys(storeys, card, matrices)
+        tables = self._takeoff_tables(stamps)
+        takeoff = _takeoff(tables, card, storeys)
+        reading = read_storeys(storeys, card, matrices, takeoff)
         basis, problem = self._basis(card, stamps)
-        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem)
+        return JobFiles(
+            card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem, tables, takeoff
+        )
 
     def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
         """Write the storey table, whatever is wrong in its cells, and read it anew.
@@ -109,7 +127,7 @@ class JobFolder:
             It can't be written.
         """
         stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
-        return replace(files, reading=read_storeys(table, files.card, files.matrices), stamps=stamps)
+        return replace(files.with_storeys(table), stamps=stamps)
 
     def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
         """Write the job card and read everything anew under it.
@@ -125,10 +143,8 @@ class JobFolder:
         before = spectrum_files(files.card).values()
         kept = {name: stamp for name, stamp in stamps.items() if name not in before}
         basis, problem = self._basis(card, kept)
-        reading = read_storeys(files.reading.table, card, files.matrices)
-        return replace(
-            files, card=card, card_text=text, reading=reading, stamps=kept, basis=basis, basis_problem=problem
-        )
+        files = files.with_storeys(files.reading.table, card)
+        return replace(files, card=card, card_text=text, stamps=kept, basis=basis, basis_problem=problem)
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
@@ -145,6 +161,18 @@ class JobFolder:
             return read_basis(card, tables), ""
         except InputError as error:
             return None, str(error)
+
+    def _takeoff_tables(self, stamps: dict[str, Stamp | None]) -> dict[str, TextTable | InputError]:
+        """The tables of the mass take-off that there are; one that comes later is noticed by its state."""
+        tables: dict[str, TextTable | InputError] = {}
+        for name in TAKEOFF_FILES:
+            stamps[name] = textfile.stamp(self.path / name)
+            if stamps[name] is not None:
+                try:
+                    tables[name] = self._table(name, "", stamps)
+                except InputError as error:
+                    tables[name] = error
+        return tables
 
     def _write(
         self, name: str, content: bytes, stamps: Mapping[str, Stamp | None], overwrite: bool
@@ -163,3 +191,10 @@ class JobFolder:
         source = self._read(name, remedy)
         stamps[name] = source.stamp
         return parse_table(source, name)
+
+
+def _takeoff(tables: Mapping[str, TextTable | InputError], card: Card, storeys: TextTable) -> TakeoffReading | None:
+    """The mass take-off, where the folder has a file of it or the card asks for it."""
+    if not tables and card.masses is None:
+        return None
+    return read_takeoff(tables, card, read_frame(storeys, card))

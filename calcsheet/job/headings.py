@@ -151,7 +151,12 @@ def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
 
     if LEVEL not in keys:
         yield InputError(file, "", f'no column "{LEVEL}"', "must have one")
-    for pair in (("storey height", "elevation"), ("mass", "weight")):
+    pairs = [("storey height", "elevation"), ("mass", "weight")]
+    if card.masses is not None:
+        for key in keys & set(pairs.pop()):
+            allowed = f"must be left out, since the masses come from {card.masses.source} (job.toml, masses.source)"
+            yield InputError(file, "", f'column "{key}"', allowed)
+    for pair in pairs:
         both = [written(key, QUANTITIES[key]) for key in pair]
         if keys.isdisjoint(pair):
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")

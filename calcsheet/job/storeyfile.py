@@ -4,45 +4,31 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import pairwise
 
 import numpy as np
 
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
+from calcsheet.core.masstakeoff import take_off
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
 from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
-from calcsheet.job.errors import InputError
+from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
+from calcsheet.job.takeofffile import Frame, TakeoffReading, read_takeoff
 from calcsheet.units import STANDARD_GRAVITY, display
 
 FILE = "storeys.csv"
-
-
-@dataclass(frozen=True)
-class CellProblem:
-    """One thing that is wrong.
-
-    Parameters
-    ----------
-    row : int or None
-        Index of the table's row, roof first; None for a heading, a whole column or another file.
-    column : str or None
-        Key of the column; None for a row or a file as a whole.
-    message : str
-        The sentence.
-    """
-
-    row: int | None
-    column: str | None
-    message: str
+TAKE_OFF = "take-off"
+"""How the masses are said to be given where they come from the mass take-off."""
+_FRAME, _MASS = (LEVEL, "storey height", "elevation"), ("mass", "weight")
 
 
 @dataclass(frozen=True, eq=False)
@@ -78,7 +64,12 @@ class StoreyReading:
         return tuple(cells[: len(self.columns)] for cells in self.table.rows)
 
 
-def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable] | None = None) -> StoreyReading:
+def read_storeys(
+    table: TextTable,
+    card: Card,
+    matrices: Mapping[str, TextTable] | None = None,
+    takeoff: TakeoffReading | None = None,
+) -> StoreyReading:
     """Read a storey table.
 
     Parameters
@@ -89,6 +80,8 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
         By direction, the tables of the matrices that the card names.
+    takeoff : TakeoffReading, optional
+        The mass take-off, needed where the card takes the masses from it.
 
     Returns
     -------
@@ -96,8 +89,11 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
         With every problem; nothing is raised for one.
     """
     headings = read_headings(table, card)
-    reader = _Reader(table, card, headings.columns)
+    reader = _Reader(table, card, headings.columns, takeoff)
     reader.problems += [CellProblem(None, key, str(error)) for key, error in headings.problems]
+    if card.masses is not None:
+        takeoff = takeoff or read_takeoff({}, card, None)
+        reader.problems += [CellProblem(None, None, message) for message in takeoff.messages]
     reader.check_rows()
     reader.read_columns()
     storeys = None
@@ -114,12 +110,45 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
     )
 
 
+def read_frame(table: TextTable, card: Card) -> Frame | None:
+    """Read the levels and storey heights of a storey table, and the masses that it states, whatever else it lacks.
+
+    Parameters
+    ----------
+    table : TextTable
+        The table of storeys.csv.
+    card : Card
+        The job card.
+
+    Returns
+    -------
+    Frame or None
+        None where levels or storey heights can't be read; without masses where these can't be.
+    """
+    columns = read_headings(table, card).columns
+    reader = _Reader(table, card, tuple(replace(c, used=c.used and c.key in _FRAME + _MASS) for c in columns))
+    reader.check_rows()
+    reader.read_columns()
+    wrong = {problem.column for problem in reader.problems}
+    if not wrong <= {*_MASS} or LEVEL not in reader.columns or not reader.rows:
+        return None
+    if len({"storey height", "elevation"} & reader.values.keys()) != 1:
+        return None
+    stated = len({*_MASS} & reader.values.keys()) == 1 and not wrong
+    below = sum(not reader.is_above(row) for row in reader.rows)
+    levels = tuple(reader.names[row] for row in reader.rows[::-1])
+    return Frame(levels, below, reader.heights()[1], reader.mass() if stated else None)
+
+
 class _Reader:
     """One pass over a table: gathers problems on the way to the storeys."""
 
-    def __init__(self, table: TextTable, card: Card, columns: tuple[Column, ...]) -> None:
+    def __init__(
+        self, table: TextTable, card: Card, columns: tuple[Column, ...], takeoff: TakeoffReading | None = None
+    ) -> None:
         self.table = table
         self.card = card
+        self.floors = None if card.masses is None or takeoff is None else takeoff.floors
         self.columns = {column.key: (i, column) for i, column in enumerate(columns) if column.used}
         self.problems: list[CellProblem] = []
         self.notices: list[str] = []
@@ -270,14 +299,12 @@ class _Reader:
     def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
         """Put the storeys together, with the last problems that only the whole shows."""
         levels = [self.names[row] for row in self.rows[::-1]]
-        if "elevation" in self.values:
-            elevation = self.from_base("elevation")
-            height = np.diff(elevation, prepend=self.foot)
-        else:
-            height = self.from_base("storey height")
-            elevation = self.foot + np.cumsum(height)
-        weight = "weight" in self.values
-        mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
+        elevation, height = self.heights()
+        try:
+            mass = self.mass()
+        except ModelError as error:
+            self.problems.append(CellProblem(None, None, f"mass take-off, {error}"))
+            return None
         n = sum(not self.is_above(row) for row in self.rows)
         stiffness = self.chains(n) if self.card.model.kind == CHAIN else self.matrices(levels[n:], matrices)
         if stiffness is None:
@@ -293,10 +320,26 @@ class _Reader:
             stiffness=stiffness,
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
-            given="mass" if "mass" in self.values else "weight",
+            given=TAKE_OFF if self.floors else "mass" if "mass" in self.values else "weight",
             gravity=self.if_given(GRAVITY, n),
-            area=self.if_given(AREA, n),
+            area=self.floors.area[n:] if self.floors and AREA not in self.values else self.if_given(AREA, n),
         )
+
+    def heights(self) -> tuple[np.ndarray, np.ndarray]:
+        """Elevations and storey heights from the lowest level up [m]."""
+        if "elevation" in self.values:
+            elevation = self.from_base("elevation")
+            return elevation, np.diff(elevation, prepend=self.foot)
+        height = self.from_base("storey height")
+        return self.foot + np.cumsum(height), height
+
+    def mass(self) -> np.ndarray:
+        """Masses from the lowest level up [t], from the take-off where it gives them."""
+        if self.floors is not None:
+            return take_off(self.floors).mass
+        if "weight" in self.values:
+            return self.from_base("weight") / STANDARD_GRAVITY
+        return self.from_base("mass")
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
         sets = []

@@ -98,6 +98,8 @@ def refuse_stale(content: Content, folder: Path) -> None:
         Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
     """
     job = Job(folder.resolve())
+    if "masses" in content.payloads:
+        job.attach("masses", None)
     now = job.payloads()
     if "basis" in content.payloads:
         here = None if job.files is None else job.files.basis
@@ -105,13 +107,13 @@ def refuse_stale(content: Content, folder: Path) -> None:
             raise RecordError(
                 "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
             )
-    for key in ("card", "storeys"):
+    files = {"card": "job.toml", "storeys": "storeys.csv or job.toml", "masses": "a table of the mass take-off"}
+    for key in (key for key in files if key in content.payloads):
         if now[key]["state"] != "ok":
             raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
         if fingerprint(now[key]["inputs"]) != fingerprint(content.payloads[key]["inputs"]):
-            file = "job.toml" if key == "card" else "storeys.csv or job.toml"
             raise RecordError(
-                f"the notebook is stale: {file} in this folder isn't what it shows; run all its cells and save it"
+                f"the notebook is stale: {files[key]} in this folder isn't what it shows; run all its cells and save it"
             )
 
 

@@ -201,10 +201,12 @@ _EVIDENCE = (
 
 def _inputs(payloads: Payloads) -> str:
     parts = [f"<h3>Storeys</h3>{shown(Shown('storeys', 'storeys', {}), payloads)}"]
+    if "masses" in payloads:
+        parts.append(f"<h3>Mass take-off</h3>{shown(Shown('mass take-off', 'masses', {}), payloads)}")
     parts.append(f"<h3>Origin of the tables</h3>{origins(payloads['card']['inputs'])}")
     rows = []
     for key, payload in payloads.items():
-        if payload["inputs"] and key not in ("card", "storeys", "basis"):
+        if payload["inputs"] and key not in ("card", "masses", "storeys", "basis"):
             chosen = ", ".join(f"{k} {'as the job' if v is None else v}" for k, v in payload["inputs"].items())
             rows.append((f"{STEPS[payload['kind']].title}, step \u201c{key}\u201d", escape(chosen)))
     parts.append(f"<h3>Options of the steps</h3>{facts(rows)}")

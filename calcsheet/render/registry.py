@@ -8,6 +8,7 @@ from calcsheet.render.actions import ACTIONS, COMPARISON
 from calcsheet.render.card import CARD
 from calcsheet.render.demand import DEMAND
 from calcsheet.render.drift import DRIFT
+from calcsheet.render.masses import MASSES
 from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
@@ -16,5 +17,6 @@ from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 
 VIEWS: Mapping[str, View] = {
-    view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
+    view.name: view
+    for view in (CARD, MASSES, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
 }

@@ -64,7 +64,8 @@ def run(card: Card) -> Outcome:
         cautions.append(
             Caution(f"to-confirm-{i}", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.")
         )
-    for name in ("storeys.csv", *card.model.files.values(), *spectrum_files(card).values()):
+    taken_off = () if card.masses is None else (card.masses.source, "loads.csv")
+    for name in ("storeys.csv", *taken_off, *card.model.files.values(), *spectrum_files(card).values()):
         if not (name in card.origins and card.origins[name].source.strip()):
             cautions.append(
                 Caution(f"no-origin-{name}", f"{plain(name)}: the origin of its values is not stated.", answer=True)

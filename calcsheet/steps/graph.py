@@ -9,7 +9,7 @@ from __future__ import annotations
 import datetime as dt
 import re
 import threading
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Any, ClassVar, Protocol
@@ -19,7 +19,7 @@ import numpy as np
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
 from calcsheet.job.rewrite import with_value
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
@@ -31,7 +31,7 @@ LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
 
 
-FROM_FILES = ("card", "storeys", "basis")
+FROM_FILES = ("card", "masses", "storeys", "basis")
 """Steps whose inputs are the job's files."""
 
 
@@ -272,8 +272,7 @@ class Job:
             self.files = self.folder.save_storeys(files, table, overwrite)
             self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
         except NotSavedError as error:
-            reading = read_storeys(table, files.card, files.matrices)
-            self.files, self._unsaved = replace(files, reading=reading), True
+            self.files, self._unsaved = files.with_storeys(table), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
         self._update()
 
@@ -282,6 +281,8 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
+        if self.files is not None and self.files.card.masses is not None:  # its masses are to be traced
+            self._nodes.setdefault("masses", _Node(STEPS["masses"], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -326,10 +327,12 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        problems = self.files.problems
-        if problems:
-            more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-            raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        if key == "masses":
+            if self.files.takeoff is None:
+                raise _RefusedError("no floors.csv and loads.csv in the job folder; the mass take-off needs both")
+            _refuse_any(self.files.takeoff.messages)
+            return self.files.takeoff.floors
+        _refuse_any(self.files.problems)
         return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
@@ -360,6 +363,13 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _refuse_any(problems: Sequence[str]) -> None:
+    """Refuse what has problems, the first of them quoted."""
+    if problems:
+        more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+        raise _RefusedError("; ".join(problems[:LISTED]) + more)
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

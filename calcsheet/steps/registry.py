@@ -9,6 +9,7 @@ from calcsheet.steps.basis import BASIS
 from calcsheet.steps.card import CARD
 from calcsheet.steps.demand import DEMAND
 from calcsheet.steps.drift import DRIFT
+from calcsheet.steps.masses import MASSES
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
@@ -16,5 +17,5 @@ from calcsheet.steps.step import Step
 from calcsheet.steps.storeys import STOREYS
 
 STEPS: Mapping[str, Step] = {
-    step.kind: step for step in (CARD, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS)
+    step.kind: step for step in (CARD, MASSES, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS)
 }
