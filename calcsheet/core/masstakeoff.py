@@ -254,7 +254,7 @@ def gathered(part: Parts, levels: int) -> Gathered:
     part : Parts
         The parts, each with its level.
     levels : int
-        How many levels there are; each must have a part.
+        How many levels there are; one without mass has its centre at 0.
     """
     of = part.level
 
@@ -262,9 +262,7 @@ def gathered(part: Parts, levels: int) -> Gathered:
         return np.bincount(of, values, levels).astype(np.float64)
 
     mass = summed(part.mass)
-    # a level without mass has its centre where its parts would have been on average
-    weight = np.where(mass[of] == 0.0, 1.0, part.mass)
-    x, y = (summed(weight * at) / summed(weight) for at in (part.x, part.y))
+    x, y = (_over(summed(part.mass * at), mass) for at in (part.x, part.y))
     moved = np.square(part.x - x[of]) + np.square(part.y - y[of])
     return Gathered(mass, x, y, summed(part.mass * (np.square(part.radius) + moved)))
 
@@ -289,17 +287,17 @@ def take_off(floors: Floors) -> LevelMasses:
         if not found.mass[i] > 0.0:
             raise ModelError(f'weight of level "{floors.level[i]}"', "0 kN", "must be above 0 above the effective base")
     weight = found.mass * GRAVITY
-    radius = np.sqrt(np.divide(found.inertia, found.mass, out=np.zeros_like(weight), where=found.mass > 0.0))
+    bare = found.mass == 0.0
     return LevelMasses(
         counted=np.array([load.counted for load in floors.load]),
         by_load=below + above,
         other=_others(floors),
         weight=weight,
         mass=found.mass,
-        centre_x=found.x,
-        centre_y=found.y,
+        centre_x=np.where(bare, floors.centre_x, found.x),
+        centre_y=np.where(bare, floors.centre_y, found.y),
         inertia=found.inertia,
-        radius=radius,
+        radius=np.sqrt(_over(found.inertia, found.mass)),
         weight_per_area=weight / floors.area,
         foot=float(below[0][_in_storey(floors)].sum()),
         total=float(weight[floors.below :].sum()),
@@ -400,6 +398,11 @@ def evidence_of_take_off(floors: Floors, found: LevelMasses) -> tuple[Evidence, 
     return tuple(
         Evidence(f"take-off-{key}", *words[key], error, LIMIT, error <= LIMIT) for key, error in errors.items()
     )
+
+
+def _over(values: Array, mass: Array) -> Array:
+    """Values over masses, 0 where there is no mass."""
+    return np.divide(values, mass, out=np.zeros_like(mass), where=mass > 0.0)
 
 
 def _in_storey(floors: Floors) -> np.ndarray:

@@ -207,7 +207,7 @@ def _value(i: int, place: str, columns: Columns, refuse: _Refuse) -> float:
     given = {key: columns.numbers[key][i] for key in (needed, other) if key in columns.numbers}
     blank = {key: not columns.texts[key][i] for key in given}
     if place and not blank.get(other, True):
-        refuse(other, f"{other} given with place {place}", f"must be blank: {place} are given by {needed}")
+        refuse(other, f"{other} given with place {place}", f"must be blank: a load with place {place} is given by its {needed}")
     if place and blank.get(needed, True):
         refuse(needed, f"{needed} is blank", f"must be a number with place {place}")
     return given.get(needed, math.nan)

@@ -10,6 +10,7 @@ from calcsheet.blocks import (
     DemandSpectrum,
     DriftCheck,
     JobCard,
+    MassTakeoff,
     ModalTable,
     ModePlot,
     ModeSolver,
@@ -21,6 +22,7 @@ from calcsheet.blocks import (
 
 WANTED = {
     StoreyTable: JobCard,
+    MassTakeoff: JobCard,
     ModeSolver: StoreyTable,
     ModePlot: ModeSolver,
     ParticipationSummary: ModeSolver,

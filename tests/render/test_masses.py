@@ -1,0 +1,76 @@
+"""The view of the mass take-off."""
+
+from __future__ import annotations
+
+import re
+
+import pytest
+
+from calcsheet.render.registry import VIEWS
+from calcsheet.steps.graph import Job
+
+KIP, FOOT = 4.4482216152605, 0.3048  # kN and m, exact by definition
+ONE = {
+    "area": FOOT**2,
+    "amount": FOOT,
+    "plan_x": FOOT,
+    "plan_y": FOOT,
+    "centre_x": FOOT,
+    "centre_y": FOOT,
+    "storey_height": FOOT,
+    "radius": FOOT,
+    "x": FOOT,
+    "y": FOOT,
+    "value": KIP / 1000.0 / FOOT**2,
+    "counted": KIP / 1000.0 / FOOT**2,
+    "weight_per_area": KIP / 1000.0 / FOOT**2,
+    "by_load": KIP,
+    "weight": KIP,
+    "other": KIP,
+    "foot": KIP,
+    "total": KIP,
+    "mass": KIP / FOOT,
+    "inertia": KIP * FOOT,
+    "share": 0.01,
+}
+FILES = {
+    "storeys.csv": "level,elevation [ft],stiffness x [kip/in],stiffness y [kip/in]\n"
+    "Roof,24.5,505,560\n2,12.25,790,715\nPlaza,0,,\n",
+    "floors.csv": "level,floor area [ft²],plan x [ft],plan y [ft],storage [ft],curtain wall [ft]\n"
+    "Roof,4000,80,50,0,260\n2,4000,80,50,70,260\nPlaza,4000,80,50,,\n",
+    "loads.csv": "load,kind,place,load per area [psf]\nstorage,variable,walls,125\ncurtain wall,permanent,façade,15\n",
+    "masses.csv": "level,item,weight [kip],x [ft],y [ft]\nRoof,chiller <b>,24,10,-8\n2,safe,310,0,0\nPlaza,vault,9,0,0\n",
+}
+CARD = (("[answers]", '[[mass_basis]]\nload = "storage"\nshare = 0.25\n[masses]\nsource = "floors.csv"\n[answers]'),)
+
+
+@pytest.fixture
+def payloads(job_folder):
+    return Job(job_folder(CARD, us=True, files=FILES)).payloads()
+
+
+def test_every_number_is_the_rounded_value_at_its_pointer(payloads, document):
+    seen = document(VIEWS["mass take-off"].render(payloads, "masses", {}).html)
+    assert len(seen.numbers) > 60
+    for pointer, shown in seen.numbers:
+        parts = pointer.removeprefix("/").split("/")
+        found = payloads
+        for part in parts:
+            found = found[int(part)] if isinstance(found, list) else found[part]
+        name = next(part for part in reversed(parts) if not part.isdigit())
+        text = re.sub(r"\s", "", shown).replace("\u2212", "-")
+        half = 0.5 * 10.0 ** -len(text.partition(".")[2])
+        assert abs(found / ONE[name] - float(text)) <= half * (1 + 1e-9), (pointer, shown)
+
+
+def test_what_is_shown(payloads, document):
+    seen = document(VIEWS["mass take-off"].render(payloads, "masses", {}).html)
+    assert "storage [ft]" in seen.words
+    assert "load per area counted [psf]" in seen.words
+    assert "chiller <b>" in seen.words
+    assert "unit weight" not in seen.words
+
+
+def test_the_storey_table_says_that_its_masses_are_taken_off(payloads, document):
+    seen = document(VIEWS["storeys"].render(payloads, "storeys", {}).html)
+    assert "mass by take-off [kip·s²/ft]" in seen.words
