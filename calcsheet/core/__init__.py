@@ -75,7 +75,9 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("r² = (a + b)²/12", "masstakeoff.edge_radius", "parallel axis theorem"),
     Formula("parts of a level: m, x, y, r", "masstakeoff.parts_of", "common practice"),
     Formula("Σmx/Σm, I = Σ(I_k + m_k d_k²)", "masstakeoff.gathered", "parallel axis theorem"),
-    Formula("I_O − m(x² + y²), Σ_levels against Σ_loads", "masstakeoff.evidence_of_take_off", "parallel axis theorem"),
+    Formula(
+        "I₀ − m(x² + y²), ΣW of levels against ΣW of loads", "masstakeoff.evidence_of_take_off", "parallel axis theorem"
+    ),
     Formula("K, M, ι of a building", "model.models_of", "definition"),
     Formula("Σ over the degrees of freedom of a level", "model.Model.by_level", "definition"),
     Formula("ω, T = 2π/ω, f = ω/2π", "modes.modes_of", "definition"),

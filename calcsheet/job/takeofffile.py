@@ -10,7 +10,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from calcsheet.core.arrays import Array
-from calcsheet.core.masstakeoff import KINDS, PERMANENT, PLACES, Floors, Load, OtherMass
+from calcsheet.core.floors import KINDS, PERMANENT, PLACES, Floors, Load, OtherMass
 from calcsheet.job.card import FILE as CARD
 from calcsheet.job.card import Card, LoadShare, shorten
 from calcsheet.job.cells import ANY, NOT_NEGATIVE
@@ -54,8 +54,6 @@ MASS_COLUMNS = (
     Column("plan y", "length", NOT_NEGATIVE, optional=True, blank=True),
 )
 _Refuse = Callable[[str, str, str], None]
-AMOUNT = {"floor": "area", "parapet": "area", "façade": "length", "walls": "length", "columns": "area"}
-"""What floors.csv gives of a load, by its place, as a quantity of the unit table."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -139,7 +137,7 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
     system = card.units.system
     columns = read_columns(given[LOADS], LOAD_COLUMNS, "load", system)
     loads = _loads(columns, card.mass_basis, problems[LOADS])
-    amounts = tuple(Column(load.name, AMOUNT[load.place], NOT_NEGATIVE, blank=True) for load in loads)
+    amounts = tuple(Column(load.name, PLACES[load.place].amount, NOT_NEGATIVE, blank=True) for load in loads)
     rows = read_columns(given[FLOORS], (*FLOOR_COLUMNS, *amounts), "level", system)
     _levels(rows, frame, problems[FLOORS])
     others = None
@@ -203,11 +201,17 @@ def _choice(key: str, i: int, columns: Columns, choices: Sequence[str], refuse: 
 
 def _value(i: int, place: str, columns: Columns, refuse: _Refuse) -> float:
     """The value of a load: of columns a unit weight, else a load per area."""
-    needed, other = (PER_VOLUME, PER_AREA) if place == "columns" else (PER_AREA, PER_VOLUME)
+    needed, other = PER_AREA, PER_VOLUME
+    if place and PLACES[place].value == "unit weight":
+        needed, other = other, needed
     given = {key: columns.numbers[key][i] for key in (needed, other) if key in columns.numbers}
     blank = {key: not columns.texts[key][i] for key in given}
     if place and not blank.get(other, True):
-        refuse(other, f"{other} given with place {place}", f"must be blank: a load with place {place} is given by its {needed}")
+        refuse(
+            other,
+            f"{other} given with place {place}",
+            f"must be blank: a load with place {place} is given by its {needed}",
+        )
     if place and blank.get(needed, True):
         refuse(needed, f"{needed} is blank", f"must be a number with place {place}")
     return given.get(needed, math.nan)

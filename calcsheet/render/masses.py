@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from typing import Any
 
+from calcsheet.core.floors import PLACES
 from calcsheet.render.numbers import number
 from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
-from calcsheet.steps.masses import QUANTITY, value_quantity
 from calcsheet.steps.step import Payload
 
-MEASURE = {"area": "area", "length": "length"}
+WIDE = 8
+"""Columns beside the level's that a table may have."""
 
 
 def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]) -> Rendered:
@@ -38,8 +39,8 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
 
 def _loads(loads: Sequence[Mapping[str, Any]], counted: Sequence[float], system: str, key: str) -> str:
     """The loads; of columns the unit weight, so in a column of its own."""
-    columns = [words(name, [load[name] or "" for load in loads]) for name in ("name", "kind", "place")]
-    columns[0] = words("load", [load["name"] for load in loads])
+    named = {"load": "name", "kind": "kind", "place": "place"}
+    columns = [words(title, [load[field] for load in loads]) for title, field in named.items()]
     columns.append(
         values(
             "share in the masses", [load["share"] for load in loads], "share", system, f"/{key}/inputs/load/{{}}/share"
@@ -47,7 +48,7 @@ def _loads(loads: Sequence[Mapping[str, Any]], counted: Sequence[float], system:
     )
     columns.append(words("clause", [load["clause"] for load in loads]))
     for quantity, name in (("pressure", "load per area"), ("unit weight", "unit weight")):
-        held = [value_quantity(load["place"]) == quantity for load in loads]
+        held = [PLACES[load["place"]].value == quantity for load in loads]
         if any(held):
             at = f"/{key}/inputs/load/{{}}/value"
             shown = [load["value"] if h else None for load, h in zip(loads, held, strict=True)]
@@ -68,12 +69,14 @@ def _amounts(given: Mapping[str, Any], system: str, key: str, level: Column, ord
         columns += [own(f"centre {d}", f"centre_{d}", "length") for d in "xy"]
     if any(r is not None for r in given["own_radius"]):
         columns.append(own("radius of gyration", "own_radius", "length"))
+    amounts = []
     for j, load in enumerate(given["load"]):
-        amounts = [row[j] or None for row in given["amount"]]
+        shown = [row[j] or None for row in given["amount"]]
         at = f"/{key}/inputs/amount/{{}}/{j}"
-        quantity = QUANTITY[load["place"]]
-        columns.append(values(load["name"], amounts, quantity, system, at, order=order, as_given=True))
-    return table(columns, kind="values", caption="Floors, and façade, walls and columns of the storey below each")
+        quantity = PLACES[load["place"]].amount
+        amounts.append(values(load["name"], shown, quantity, system, at, order=order, as_given=True))
+    caption = "Loads on each floor; façade, walls and columns of the storey below it"
+    return table(columns, kind="values", caption="Floors") + _in_tables(level, amounts, caption)
 
 
 def _others(other: Sequence[Mapping[str, Any]], system: str, key: str) -> str:
@@ -93,7 +96,7 @@ def _others(other: Sequence[Mapping[str, Any]], system: str, key: str) -> str:
 def _weights(
     given: Mapping[str, Any], found: Mapping[str, Any], system: str, key: str, level: Column, order: list[int]
 ) -> str:
-    columns = [level]
+    columns = []
     for j, load in enumerate(given["load"]):
         weights = [row[j] or None for row in found["by_load"]]
         at = f"/{key}/result/by_load/{{}}/{j}"
@@ -104,7 +107,16 @@ def _weights(
     columns.append(values("weight", found["weight"], "weight", system, f"/{key}/result/weight", order=order))
     at = f"/{key}/result/weight_per_area"
     columns.append(values("weight per area", found["weight_per_area"], "pressure", system, at, order=order))
-    return table(columns, kind="values", caption="Weights by level and load")
+    return _in_tables(level, columns, "Weights by level and load")
+
+
+def _in_tables(level: Column, columns: Sequence[Column], caption: str) -> str:
+    """As many tables as the columns need on the width of a page."""
+    parts = [columns[i : i + WIDE] for i in range(0, len(columns), WIDE)]
+    titles = [caption, *[f"{caption}, continued"] * (len(parts) - 1)]
+    return "".join(
+        table([level, *part], kind="values", caption=title) for part, title in zip(parts, titles, strict=True)
+    )
 
 
 def _places(found: Mapping[str, Any], system: str, key: str, level: Column, order: list[int]) -> str:
@@ -116,7 +128,9 @@ def _places(found: Mapping[str, Any], system: str, key: str, level: Column, orde
         ("polar inertia", "inertia", "mass times length squared"),
         ("radius of gyration", "radius", "length"),
     ):
-        columns.append(values(name, found[field], quantity, system, f"/{key}/result/{field}", order=order))
+        digits = 3 if field.startswith("centre") else None
+        at = f"/{key}/result/{field}"
+        columns.append(values(name, found[field], quantity, system, at, order=order, digits=digits))
     return table(columns, kind="values", caption="Masses, their centres, and how they turn")
 
 

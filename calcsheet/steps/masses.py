@@ -4,22 +4,14 @@ from __future__ import annotations
 
 import numpy as np
 
-from calcsheet.core.masstakeoff import (
-    PLACES,
-    VARIABLE,
-    Floors,
-    LevelMasses,
-    evidence_of_take_off,
-    take_off,
-)
+from calcsheet.core.floors import PLACES, VARIABLE, Floors
+from calcsheet.core.masstakeoff import LevelMasses, evidence_of_take_off, take_off
 from calcsheet.steps.step import Caution, Line, Number, Outcome, Step, plain
 
 USUAL = (5.0, 15.0)
 """Weight per floor area [kN/m²] outside of which a slip is suspected (common practice for floors of buildings)."""
 DIFFERS = 0.01
 """Share of its mass by which a level of the storey table may differ from the take-off before it is named."""
-QUANTITY = {"floor": "area", "parapet": "area", "façade": "length", "walls": "length", "columns": "area"}
-"""What the amount of a load is, by its place."""
 AXES = "parallel axis theorem"
 
 
@@ -33,17 +25,12 @@ def run(floors: Floors) -> Outcome:
 # ---- worked lines ----------------------------------------------------------------------------------------------------
 
 
-def value_quantity(place: str) -> str:
-    """Quantity of a load's value, by its place."""
-    return "unit weight" if place == "columns" else "pressure"
-
-
 def _loads(floors: Floors, found: LevelMasses) -> list[Line]:
     """What the masses hold of each load that isn't held whole."""
     lines = []
     for i, load in enumerate(floors.load):
         if load.share is not None and load.kind == VARIABLE:
-            quantity = value_quantity(load.place)
+            quantity = PLACES[load.place].value
             share = Number(load.share, "share", f"inputs/load/{i}/share")
             value = Number(load.value, quantity, f"inputs/load/{i}/value")
             counted = Number(float(found.counted[i]), quantity, f"result/counted/{i}")
@@ -70,14 +57,14 @@ def _level(floors: Floors, found: LevelMasses, i: int) -> Line:
         held = [row for row in rows if row < len(floors.level) and floors.amount[row, j] > 0.0]
         amounts = []
         for row in held:
-            amount = numbers.put(floors.amount[row, j], QUANTITY[load.place], f"inputs/amount/{row}/{j}")
+            amount = numbers.put(floors.amount[row, j], PLACES[load.place].amount, f"inputs/amount/{row}/{j}")
             if PLACES[load.place].storey:
                 amount = f"{numbers.put(floors.storey_height[row], 'length', f'inputs/storey_height/{row}')} × {amount}"
             amounts.append(amount)
         total = " + ".join(amounts)
         if PLACES[load.place].storey:
             total = f"½ ({total})" if len(amounts) > 1 else f"½ × {total}"
-        value = numbers.put(found.counted[j], value_quantity(load.place), f"result/counted/{j}")
+        value = numbers.put(found.counted[j], PLACES[load.place].value, f"result/counted/{j}")
         terms.append(f"{total} × {value} {plain(load.name)}")
     for k, other in enumerate(floors.other):
         if other.level == floors.level[i]:

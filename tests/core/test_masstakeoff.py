@@ -9,15 +9,8 @@ import numpy as np
 import pytest
 
 from calcsheet.core.errors import ModelError
-from calcsheet.core.masstakeoff import (
-    Floors,
-    Load,
-    OtherMass,
-    edge_radius,
-    evidence_of_take_off,
-    spread_radius,
-    take_off,
-)
+from calcsheet.core.floors import Floors, Load, OtherMass
+from calcsheet.core.masstakeoff import edge_radius, evidence_of_take_off, spread_radius, take_off
 
 G = 9.80665
 SLAB = Load("slab", "permanent", "floor", 7.0, 1.0, "")

@@ -9,7 +9,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from calcsheet.core.masstakeoff import PLACES, Floors, Load, OtherMass, evidence_of_take_off, take_off
+from calcsheet.core.floors import PLACES, Floors, Load, OtherMass
+from calcsheet.core.masstakeoff import evidence_of_take_off, take_off
 
 sizes = st.floats(0.5, 80.0)
 places = st.floats(-60.0, 60.0)

@@ -74,3 +74,21 @@ def test_what_is_shown(payloads, document):
 def test_the_storey_table_says_that_its_masses_are_taken_off(payloads, document):
     seen = document(VIEWS["storeys"].render(payloads, "storeys", {}).html)
     assert "mass by take-off [kip·s²/ft]" in seen.words
+
+
+def test_many_loads_stand_in_several_tables(job_folder, document):
+    names = [f"load {i}" for i in range(11)]
+    heading = ",".join(f"{name} [ft²]" for name in names)
+    cells = ",".join("4000" for _ in names)
+    rows = "\n".join(f"{level},4000,80,50,{cells}" for level in ("Roof", "2", "Plaza"))
+    loads = "\n".join(f"{name},permanent,floor,11" for name in names)
+    files = {
+        "storeys.csv": FILES["storeys.csv"],
+        "floors.csv": f"level,floor area [ft²],plan x [ft],plan y [ft],{heading}\n{rows}\n",
+        "loads.csv": f"load,kind,place,load per area [psf]\n{loads}\n",
+    }
+    payloads = Job(job_folder(CARD, us=True, files=files)).payloads()
+    html = VIEWS["mass take-off"].render(payloads, "masses", {}).html
+    assert html.count("Weights by level and load") == 2
+    pointers = [pointer for pointer, _ in document(html).numbers if "/by_load/1/" in pointer]
+    assert pointers == [f"/masses/result/by_load/1/{i}" for i in range(11)]

@@ -8,7 +8,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from calcsheet.core.masstakeoff import Floors, Load, OtherMass
+from calcsheet.core.floors import Floors, Load, OtherMass
 from calcsheet.job import edits
 from calcsheet.steps.graph import Job
 from calcsheet.steps.masses import run
