@@ -188,6 +188,13 @@ class Origin(_Table):
     note: Text = ""
 
 
+class Import(_Table):
+    """How a spreadsheet file is read, table [imports."its name"]: the sheet, and its headings in this program's words."""
+
+    sheet: Text = ""
+    columns: Mapping[str, str] = Field({}, description="a table of headings")
+
+
 def _as_tuple(value: object) -> object:
     return tuple(value) if isinstance(value, list) else value
 
@@ -251,6 +258,7 @@ class Card(_Table):
         (), description="tables [[assumptions]]"
     )
     origins: Mapping[str, Origin] = Field({}, description="a table for each file")
+    imports: Mapping[str, Import] = Field({}, description="a table for each spreadsheet file")
     answers: Mapping[str, str] = Field({}, description="a text for each caution")
 
 

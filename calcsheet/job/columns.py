@@ -85,6 +85,11 @@ def place(table: TextTable, row: int, name: str, uses: int, word: str) -> str:
     return f'{word} "{name}"' if name and uses == 1 else f"row {table.row_number(row)}"
 
 
+def known(name: str, wanted: Sequence[Column]) -> Column | None:
+    """The column that a heading's name stands for, whatever its capitals; None where it's not known."""
+    return next((column for column in wanted if column.key.casefold() == name.casefold()), None)
+
+
 def read_columns(table: TextTable, wanted: Sequence[Column], word: str, system: str, once: bool = True) -> Columns:
     """Read the known columns of a table.
 
@@ -145,12 +150,11 @@ def _headings(
     table: TextTable, wanted: Sequence[Column], system: str, problems: list[CellProblem]
 ) -> tuple[dict[str, tuple[int, Column]], list[str]]:
     """The columns found, each with its index and unit, and what isn't known."""
-    known = {column.key.casefold(): column for column in wanted}
     found: dict[str, tuple[int, Column]] = {}
     notices = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = known.get(name.casefold())
+        column = known(name, wanted)
         try:
             if column is None:
                 if heading.strip() or any(cells[i].strip() for cells in table.rows):

@@ -129,6 +129,12 @@ class JobFolder:
         stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
         return replace(files.with_storeys(table), stamps=stamps)
 
+    def save_takeoff(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
+        """Write a table of the mass take-off and read anew what builds on it; arguments and errors of `save_storeys`."""
+        stamps = self._write(table.file, table.content(), files.stamps, overwrite)
+        tables = {**files.takeoff_tables, table.file: table}
+        return replace(replace(files, takeoff_tables=tables).with_storeys(files.reading.table), stamps=stamps)
+
     def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
         """Write the job card and read everything anew under it.
 

@@ -91,7 +91,7 @@ def read_headings(table: TextTable, card: Card) -> Headings:
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = _known(name, heading, card)
+        column = known(name, heading, card)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -130,7 +130,8 @@ def stiffness_key(direction: str, set_name: str | None) -> str:
     return f"stiffness {direction}" + (f" {set_name}" if set_name else "")
 
 
-def _known(name: str, heading: str, card: Card) -> Column | None:
+def known(name: str, heading: str, card: Card) -> Column | None:
+    """Return the column that a heading's name stands for in a storey table, without its unit; None where it's not known."""
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)

@@ -137,8 +137,7 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
     system = card.units.system
     columns = read_columns(given[LOADS], LOAD_COLUMNS, "load", system)
     loads = _loads(columns, card.mass_basis, problems[LOADS])
-    amounts = tuple(Column(load.name, PLACES[load.place].amount, NOT_NEGATIVE, blank=True) for load in loads)
-    rows = read_columns(given[FLOORS], (*FLOOR_COLUMNS, *amounts), "level", system)
+    rows = read_columns(given[FLOORS], _floor_columns(loads), "level", system)
     _levels(rows, frame, problems[FLOORS])
     others = None
     if MASSES in given:
@@ -150,6 +149,17 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
             notices += part.notices
     floors = None if any(problems.values()) else _floors(rows, loads, others, frame)
     return TakeoffReading({name: tuple(found) for name, found in problems.items()}, tuple(notices), floors)
+
+
+def floor_columns(loads: TextTable, card: Card) -> tuple[Column, ...]:
+    """The columns that floors.csv may have: its own, and one for each load that can be read."""
+    columns = read_columns(loads, LOAD_COLUMNS, "load", card.units.system)
+    return _floor_columns(_loads(columns, card.mass_basis, []))
+
+
+def _floor_columns(loads: Sequence[Load]) -> tuple[Column, ...]:
+    amounts = (Column(load.name, PLACES[load.place].amount, NOT_NEGATIVE, blank=True) for load in loads)
+    return (*FLOOR_COLUMNS, *amounts)
 
 
 def _loads(columns: Columns, basis: Sequence[LoadShare], problems: list[CellProblem]) -> list[Load]:
