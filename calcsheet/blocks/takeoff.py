@@ -8,6 +8,7 @@ from calcsheet.job import edits
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
+from calcsheet.steps.graph import Job
 from calcsheet.units import UNITS
 
 
@@ -15,7 +16,8 @@ class MassTakeoff(Block):
     """What each level weighs, where its mass lies, and how it turns.
 
     With ``[masses] source = "floors.csv"`` in job.toml the storeys take their masses from here; else `adopt` writes
-    them into the storey table, once.
+    them into the storey table, once. The tables are edited in a spreadsheet or text editor; running the cell again reads
+    what was saved there.
 
     Parameters
     ----------
@@ -32,7 +34,8 @@ class MassTakeoff(Block):
 
     def __init__(self, job: JobCard) -> None:
         must_be(self, job, JobCard)
-        super().__init__(job.job, job.job.attach("masses", None))
+        opened = Job.open(job.job.folder.path)  # read anew where its files changed
+        super().__init__(opened, opened.attach("masses", None))
 
     def adopt(self, digits: int = 6) -> None:
         """Write the masses into the mass or weight column of storeys.csv, rounded to `digits` significant digits.

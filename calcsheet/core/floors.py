@@ -132,6 +132,8 @@ class Floors(Frozen):
         Masses with places of their own.
     stated : (n,) array or None
         Masses that the storey table states by itself [t]; None where it states none.
+    unused : tuple of str
+        What the tables hold that isn't known, a sentence each.
     """
 
     level: tuple[str, ...]
@@ -147,3 +149,4 @@ class Floors(Frozen):
     amount: Array
     other: tuple[OtherMass, ...]
     stated: Array | None = None
+    unused: tuple[str, ...] = ()

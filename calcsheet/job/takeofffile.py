@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from collections import Counter
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -86,14 +86,11 @@ class TakeoffReading:
     ----------
     problems : mapping of str to tuple of CellProblem
         All that is wrong, by file.
-    notices : tuple of str
-        What is left out, a sentence each.
     floors : Floors or None
         In core units; None where there is any problem.
     """
 
     problems: Mapping[str, tuple[CellProblem, ...]]
-    notices: tuple[str, ...]
     floors: Floors | None
 
     @property
@@ -131,9 +128,9 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
     if frame is None:
         what = f"{STOREYS}: its levels and storey heights can't be read; the mass take-off needs them"
         problems[STOREYS].append(CellProblem(None, None, what))
-    notices: list[str] = []
+    unused: list[str] = []
     if any(problems.values()) or frame is None:
-        return TakeoffReading({name: tuple(found) for name, found in problems.items()}, (), None)
+        return TakeoffReading({name: tuple(found) for name, found in problems.items()}, None)
     system = card.units.system
     columns = read_columns(given[LOADS], LOAD_COLUMNS, "load", system)
     loads = _loads(columns, card.mass_basis, problems[LOADS])
@@ -146,9 +143,9 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
     for part in (columns, rows, others):
         if part is not None:
             problems[part.table.file][:0] = part.problems
-            notices += part.notices
-    floors = None if any(problems.values()) else _floors(rows, loads, others, frame)
-    return TakeoffReading({name: tuple(found) for name, found in problems.items()}, tuple(notices), floors)
+            unused += part.notices
+    floors = None if any(problems.values()) else replace(_floors(rows, loads, others, frame), unused=tuple(unused))
+    return TakeoffReading({name: tuple(found) for name, found in problems.items()}, floors)
 
 
 def floor_columns(loads: TextTable, card: Card) -> tuple[Column, ...]:
@@ -166,6 +163,7 @@ def _loads(columns: Columns, basis: Sequence[LoadShare], problems: list[CellProb
     """The loads that can be read, with the shares of the mass basis."""
     table, loads = columns.table, []
     shares = {" ".join(entry.load.split()).casefold(): entry for entry in basis}
+    stated = Counter(" ".join(entry.load.split()).casefold() for entry in basis)
     uses = Counter(name.casefold() for name in columns.names)
     taken = {column.key.casefold() for column in FLOOR_COLUMNS}
     if not columns.rows:
@@ -183,6 +181,8 @@ def _loads(columns: Columns, basis: Sequence[LoadShare], problems: list[CellProb
         elif uses[name.casefold()] > columns.names.count(name):
             refuse("load", "another row has this name but for capitals", "must have a name of its own")
         share = shares.get(name.casefold())
+        if stated[name.casefold()] > 1:
+            refuse("load", f"{stated[name.casefold()]} entries of [[mass_basis]] in {CARD}", "must have one at most")
         if kind == PERMANENT and share is not None and share.share != 1.0:
             refuse(
                 "kind",
@@ -191,8 +191,8 @@ def _loads(columns: Columns, basis: Sequence[LoadShare], problems: list[CellProb
             )
         value = _value(i, place, columns, refuse)
         if len(problems) == before and kind and place:
-            stated = 1.0 if kind == PERMANENT else share.share if share else None
-            loads.append(Load(name, kind, place, value, stated, share.clause if share else ""))
+            counts = 1.0 if kind == PERMANENT else share.share if share else None
+            loads.append(Load(name, kind, place, value, counts, share.clause if share else ""))
     return loads
 
 

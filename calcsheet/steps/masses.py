@@ -97,12 +97,18 @@ def _turning(floors: Floors, found: LevelMasses) -> list[Line]:
 
 def _cautions(floors: Floors, found: LevelMasses) -> list[Caution]:
     return [
+        *_unused(floors),
         *_shares(floors),
         *_per_area(floors, found),
         *_centres(floors, found),
         *_covered(floors),
         *_stated(floors, found),
     ]
+
+
+def _unused(floors: Floors) -> list[Caution]:
+    text = f"Tables of the mass take-off: {plain('; '.join(floors.unused))}."
+    return [Caution("unused-columns", text)] if floors.unused else []
 
 
 def _shares(floors: Floors) -> list[Caution]:

@@ -62,6 +62,16 @@ def test_what_can_not_be_adopted_is_refused(job_folder):
     assert refusal(none) == 'storeys.csv: no column for masses; must have one, such as "mass [t]" or "weight [kN]"'
 
 
+def test_the_cell_run_again_reads_what_was_saved_elsewhere(job_folder):
+    folder = job_folder(files=FILES)
+    job = JobCard(folder)
+    before = MassTakeoff(job).payload["result"]["weight"]
+    (folder / "loads.csv").write_text(FILES["loads.csv"].replace("8.1", "16.2"), encoding="utf-8")
+    again = MassTakeoff(job)
+    assert again.job is job.job
+    assert again.payload["result"]["weight"] == pytest.approx([2 * weight for weight in before])
+
+
 def test_the_twin_shows_the_tables(static, in_folder):
     for name, text in FILES.items():
         (in_folder / name).write_text(text, encoding="utf-8")

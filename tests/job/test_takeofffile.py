@@ -54,7 +54,7 @@ def taken(card, table):
 def test_a_takeoff_is_read_from_the_base_up(taken):
     reading = taken()
     assert reading.messages == ()
-    assert reading.notices == ('floors.csv, column "note" isn\'t known: not used, and kept',)
+    assert reading.floors.unused == ('floors.csv, column "note" isn\'t known: not used, and kept',)
     floors = reading.floors
     assert floors.level == ("1", "2", "Roof")
     assert floors.storey_height.tolist() == [4.4, 3.3, 3.0]
@@ -95,6 +95,13 @@ def test_units_are_converted(taken):
 
 def test_a_variable_load_without_a_share_has_none(taken):
     assert taken(on=()).floors.load[1].share is None
+
+
+def test_a_share_that_is_stated_twice_is_refused(taken):
+    twice = BASIS.replace("[answers]", '[[mass_basis]]\nload = " Offices"\nshare = 0.6\n[answers]')
+    assert taken(on=(("[answers]", twice),)).messages == (
+        'loads.csv, load "Offices": 2 entries of [[mass_basis]] in job.toml; must have one at most',
+    )
 
 
 def test_other_masses_may_be_left_out(taken):

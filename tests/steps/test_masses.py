@@ -111,6 +111,14 @@ def test_a_usual_building_raises_nothing():
     assert keys(floors()) == []
 
 
+def test_columns_that_are_not_known_are_told():
+    (caution,) = run(floors(unused=('floors.csv, column "radius" isn\'t known: not used, and kept',))).cautions
+    assert caution.key == "unused-columns"
+    assert (
+        caution.text == 'Not used in the mass take-off: floors.csv, column "radius" isn\'t known: not used, and kept.'
+    )
+
+
 def test_a_load_without_a_share():
     given = floors()
     bare = replace(given, load=(given.load[0], replace(given.load[1], share=None), *given.load[2:]))
