@@ -6,6 +6,7 @@ from collections.abc import Mapping
 
 from calcsheet.core.errors import ModelError
 from calcsheet.steps.agreement import Difference, differences
+from calcsheet.steps.links import links
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import from_json
 from calcsheet.steps.step import Caution, Evidence, Line, Outcome, Payload, done
@@ -24,7 +25,7 @@ def replay(payloads: Mapping[str, Payload]) -> list[Difference]:
     list of Difference
         Where results, worked lines, cautions or evidence disagree; empty where all agree.
     """
-    return [d for key, payload in payloads.items() for d in _replayed(key, payload, payloads)]
+    return [d for key, payload in payloads.items() for d in _replayed(key, payload, payloads)] + links(payloads)
 
 
 def _replayed(key: str, payload: Payload, payloads: Mapping[str, Payload]) -> list[Difference]:

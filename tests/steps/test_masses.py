@@ -114,9 +114,7 @@ def test_a_usual_building_raises_nothing():
 def test_columns_that_are_not_known_are_told():
     (caution,) = run(floors(unused=('floors.csv, column "radius" isn\'t known: not used, and kept',))).cautions
     assert caution.key == "unused-columns"
-    assert (
-        caution.text == 'Not used in the mass take-off: floors.csv, column "radius" isn\'t known: not used, and kept.'
-    )
+    assert caution.text == 'Tables of the mass take-off: floors.csv, column "radius" isn\'t known: not used, and kept.'
 
 
 def test_a_load_without_a_share():
@@ -172,8 +170,6 @@ def test_a_job_takes_its_masses_from_the_floors(folder):
     assert payloads["storeys"]["inputs"]["mass"] == payloads["masses"]["result"]["mass"]
     assert payloads["storeys"]["inputs"]["given"] == "take-off"
     assert replay(payloads) == []
-    payloads["masses"]["result"]["mass"][1] *= 1.0 + 1e-6
-    assert {d.step for d in replay(payloads)} == {"masses"}
 
 
 def test_a_storey_height_changes_the_masses_at_once(folder):
