@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from calcsheet.blocks import (
+        Cautions,
         DemandSpectrum,
         DriftCheck,
         JobCard,
@@ -21,10 +22,12 @@ if TYPE_CHECKING:
         StaticComparison,
         StoreyActions,
         StoreyTable,
+        WhatChanged,
     )
 
 __version__ = "0.1.0"
 __all__ = [
+    "Cautions",
     "DemandSpectrum",
     "DriftCheck",
     "JobCard",
@@ -36,6 +39,7 @@ __all__ = [
     "StaticComparison",
     "StoreyActions",
     "StoreyTable",
+    "WhatChanged",
     "__version__",
 ]
 

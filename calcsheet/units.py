@@ -136,6 +136,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "circular frequency": _pair(Display("rad/s", 1.0, 4)),
     "share": _pair(Display("%", 0.01, 3)),
     "ratio": _pair(Display("", 1.0, 4)),
+    "count": _pair(Display("", 1.0, 4)),
     "correlation": _pair(Display("", 1.0, 4)),
     "coefficient": _pair(Display("", 1.0, 4)),
     "modal energy": _pair(Display("s⁻²", 1.0, 4)),

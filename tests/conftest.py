@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import io
+import json
 import os
 from collections.abc import Callable, Iterator, Sequence
 from html.parser import HTMLParser
@@ -61,7 +62,7 @@ y = "Along grids A to C."
 kind = "storey chain"
 [stiffness.gross]
 factor = 1.0
-ground = "gross sections"
+ground = "steel, gross sections"
 [stiffness.cracked]
 factor_x = 0.6
 factor_y = 0.5
@@ -509,5 +510,16 @@ def planar() -> Callable[..., Model]:
             influence=np.ones((1, n)),
             lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
         )
+
+    return build
+
+
+@pytest.fixture(scope="session")
+def plain_record() -> Callable[..., dict[str, Any]]:
+    """What an issued record holds of a job: its payloads as JSON has them, status and signatures as asked for."""
+
+    def build(job: Job, status: str = "FOR CHECKING", **parts: Any) -> dict[str, Any]:
+        held = {"format": 2, "status": status, "fingerprints": {"inputs": "ab" * 32, "results": "cd" * 32}, "signatures": []}
+        return json.loads(json.dumps({**held, "payloads": job.payloads(), **parts}))
 
     return build

@@ -2,8 +2,12 @@
 
 from __future__ import annotations
 
+import csv
+import datetime as dt
 import json
+import shutil
 import tomllib
+from pathlib import Path
 
 import nbformat
 import openpyxl
@@ -11,7 +15,7 @@ import pytest
 from click.testing import CliRunner
 
 from calcsheet.cli import main
-from calcsheet.record import issue as issuing
+from calcsheet.record import place
 from calcsheet.record.pdf import CHOICE
 
 
@@ -170,7 +174,7 @@ def test_a_folder_that_cannot_be_written(run, folder, monkeypatch):
     def denied(*_, **__):
         raise PermissionError(13, "Permission denied", str(folder / "issued"))
 
-    monkeypatch.setattr(issuing.tempfile, "mkdtemp", denied)  # a superuser may write anywhere
+    monkeypatch.setattr(place.tempfile, "mkdtemp", denied)  # a superuser may write anywhere
     assert refused(run("issue", folder, "--to", "html")) == f"Permission denied: {folder / 'issued'}"
 
 
@@ -268,3 +272,59 @@ def test_an_import_refused_changes_nothing(run, job_folder, masses, more, senten
 def test_a_folder_without_a_job_is_refused(run, masses, tmp_path):
     assert refused(run("import", tmp_path, masses)).startswith("no job.toml in ")
     assert refused(run("export", tmp_path, "out.xlsx")).startswith("no job.toml in ")
+
+
+# ---- comments, register, tables --------------------------------------------------------------------------------------
+
+QUAY = Path(__file__).parents[1] / "example_notebooks" / "alder-quay"
+
+
+@pytest.fixture
+def quay(tmp_path):
+    """A job of the examples with its issued records."""
+    return Path(shutil.copytree(QUAY, tmp_path / "quay"))
+
+
+def test_comments_are_raised_answered_closed_and_listed(run, quay):
+    author = tomllib.loads((quay / "job.toml").read_text(encoding="utf-8"))["people"]["prepared"]["name"]
+    assert run("comment", quay).stdout.startswith("No comments on revision ")
+    asked = run("comment", quay, "Which edition?", "--by", "T. Adeyemi", "--where", "Demand", "--date", "2026-04-02")
+    assert asked.exit_code == 0
+    assert "Demand, T. Adeyemi, 2026-04-02: Which edition?\n    open\n" in asked.stdout
+    assert run("comment", quay, "--reply", 1, "That of 2016", "--by", author, "--date", "2026-04-03").exit_code == 0
+    assert f"{author}, who prepared the calculation, may not close" in refused(
+        run("comment", quay, "--close", 1, "--by", author)
+    )
+    assert run("comment", quay, "--close", 1, "--by", "T. Adeyemi", "--date", "2026-04-05").exit_code == 0
+    listed = run("comment", quay).stdout.splitlines()
+    assert listed[1:] == [f"    reply, {author}, 2026-04-03: That of 2016", "    closed by T. Adeyemi, 2026-04-05"]
+    assert refused(run("comment", quay / "none", "x")) == f"no {quay / 'none'}; name a job folder or a record's file"
+
+
+def test_a_comment_today(run, quay):
+    run("comment", quay, "Why?", "--by", "T. Adeyemi")
+    with (quay / "comments.csv").open(encoding="utf-8-sig", newline="") as file:
+        (row,) = csv.DictReader(file)
+    assert abs((dt.date.fromisoformat(row["date"]) - dt.date.today()).days) <= 1  # it may be midnight
+
+
+def test_the_register_is_rebuilt_and_printed(run, quay):
+    (quay / "issued" / "register.csv").unlink(missing_ok=True)
+    result = run("register", quay)
+    assert result.exit_code == 0
+    *rows, written = result.stdout.splitlines()
+    assert written == f"Written: {quay / 'issued' / 'register.csv'}"
+    with (quay / "issued" / "register.csv").open(encoding="utf-8-sig", newline="") as file:
+        assert [line.split(" · ")[0] for line in rows] == [row["revision"] for row in csv.DictReader(file)]
+    assert refused(run("register", quay.parent)).startswith("nothing is issued in ")
+
+
+def test_tables_of_an_issued_record(run, quay):
+    folder = quay.parent / "tables"
+    result = run("tables", min((quay / "issued").glob("*/*.html")), folder)
+    assert result.exit_code == 0, result.stderr
+    count = len(list(folder.glob("*.csv"))) - 1
+    assert result.stdout == f"{count} tables, listed in {folder / 'index.csv'}.\n"
+    assert count > 20
+    path = min((quay / "issued").glob("*/*.json"))
+    assert refused(run("tables", path, folder)) == f"{folder} is there already and not empty; name a new folder"

@@ -29,6 +29,7 @@ CORE = {
     "circular frequency": "rad/s",
     "share": "",
     "ratio": "",
+    "count": "",
     "coefficient": "",
     "correlation": "",
     "modal energy": "1/s**2",

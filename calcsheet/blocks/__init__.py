@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
+from calcsheet.blocks.cautions import Cautions
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.storeytable import StoreyTable
 from calcsheet.blocks.takeoff import MassTakeoff
+from calcsheet.blocks.whatchanged import WhatChanged
 
 __all__ = [
+    "Cautions",
     "DemandSpectrum",
     "DriftCheck",
     "JobCard",
@@ -20,4 +23,5 @@ __all__ = [
     "StaticComparison",
     "StoreyActions",
     "StoreyTable",
+    "WhatChanged",
 ]

@@ -10,7 +10,7 @@ import math
 import re
 import tomllib
 from collections.abc import Iterator, Mapping, Sequence
-from typing import Annotated, Any, Literal, get_args
+from typing import Annotated, Any, Literal, get_args, get_origin
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
 
@@ -37,6 +37,9 @@ Factor = Annotated[Annotated[float, Field(gt=0)] | None, Field(description="a nu
 Sentence = Annotated[
     Annotated[str, Field(pattern=_NOT_BLANK)] | None,
     Field(description="a sentence that ties this direction to the drawings' grid"),
+]
+Finding = Annotated[
+    str, Field(pattern="^([0-9a-f]{8})?$", description="the 8 characters that stand beside the finding in the record")
 ]
 FileName = Annotated[
     Annotated[str, Field(pattern=FILE_NAME)] | None,
@@ -79,11 +82,12 @@ class Author(Person):
 
 
 class People(_Table):
-    """Who prepared, checks and approves: table [people]."""
+    """Who prepared, checks and approves: table [people]; whoever prepared may check only where the job allows it."""
 
     prepared: Author = Field(description="a table [people.prepared] with a name")
     checked: Person = Field(Person(), description="a table [people.checked]")
     approved: Person = Field(Person(), description="a table [people.approved]")
+    same_person_may_check: bool = Field(False, description="true or false")
 
 
 class System(_Table):
@@ -195,6 +199,21 @@ class Import(_Table):
     columns: Mapping[str, str] = Field({}, description="a table of headings")
 
 
+class CautionAnswer(_Table):
+    """An answer to a caution, table [answers.KEY]: text, by whom, when, and the finding that it was given to."""
+
+    text: Text = ""
+    by: Text = ""
+    date: MaybeDate = None
+    finding: Finding = ""
+
+
+ANSWER = (
+    'a table with text, by, date and finding, such as { text = "…", by = "…", date = 2026-01-31, '
+    'finding = "0a1b2c3d" }; `calcsheet answer` writes it'
+)
+
+
 def _as_tuple(value: object) -> object:
     return tuple(value) if isinstance(value, list) else value
 
@@ -259,7 +278,7 @@ class Card(_Table):
     )
     origins: Mapping[str, Origin] = Field({}, description="a table for each file")
     imports: Mapping[str, Import] = Field({}, description="a table for each spreadsheet file")
-    answers: Mapping[str, str] = Field({}, description="a text for each caution")
+    answers: Mapping[str, Annotated[CautionAnswer, Field(description=ANSWER)]] = Field({}, description="a table")
 
 
 def parse_card(text: str) -> Card:
@@ -315,7 +334,10 @@ def _plain(error: Any) -> InputError:
             kind, allowed = fields[key].annotation, fields[key].description or allowed
         else:
             kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
-            allowed = "a text" if kind is str else "a table"
+            allowed = "a table"
+            if get_origin(kind) is Annotated:
+                kind, described = get_args(kind)
+                allowed = described.description
     found = "missing" if error["type"] == "missing" else f"got {shown(error['input'])}"
     return InputError(FILE, dotted(place), found, f"must be {allowed}")
 
@@ -366,9 +388,11 @@ def _contradictions(card: Card) -> Iterator[InputError]:
             allowed = f"must name a set under [stiffness]: {names}"
             yield InputError(FILE, f"serves.{purpose}", f'got "{name}"', allowed)
     prepared, checked = card.people.prepared.name, card.people.checked.name
-    if checked.strip().casefold() == prepared.strip().casefold():
+    same = checked.strip().casefold() == prepared.strip().casefold()
+    if same and not card.people.same_person_may_check:
         found = f'got "{checked}", who prepared it'
-        yield InputError(FILE, "people.checked.name", found, "must be another person")
+        allowed = "must be another person, or people.same_person_may_check = true"
+        yield InputError(FILE, "people.checked.name", found, allowed)
 
 
 def _set_basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: bool) -> Iterator[InputError]:

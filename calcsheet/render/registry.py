@@ -6,6 +6,8 @@ from collections.abc import Mapping
 
 from calcsheet.render.actions import ACTIONS, COMPARISON
 from calcsheet.render.card import CARD
+from calcsheet.render.cautions import VIEW as CAUTIONS
+from calcsheet.render.changes import CHANGES
 from calcsheet.render.demand import DEMAND
 from calcsheet.render.drift import DRIFT
 from calcsheet.render.masses import MASSES
@@ -18,5 +20,19 @@ from calcsheet.render.view import View
 
 VIEWS: Mapping[str, View] = {
     view.name: view
-    for view in (CARD, MASSES, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
+    for view in (
+        CARD,
+        MASSES,
+        STOREYS,
+        MODES,
+        PLOT,
+        PARTICIPATION,
+        DEMAND,
+        PEAKS,
+        DRIFT,
+        ACTIONS,
+        COMPARISON,
+        CAUTIONS,
+        CHANGES,
+    )
 }

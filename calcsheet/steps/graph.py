@@ -6,7 +6,6 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
-import datetime as dt
 import re
 import threading
 from collections.abc import Callable, Sequence
@@ -18,7 +17,7 @@ import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
-from calcsheet.job.rewrite import with_value
+from calcsheet.job.rewrite import Value, with_value
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.registry import STEPS
@@ -218,15 +217,15 @@ class Job:
             self._save(change(self._read().reading), overwrite=False)
         self._tell()
 
-    def set_value(self, key: str, value: str | bool | int | float | dt.date | None) -> None:
+    def set_value(self, key: str | Sequence[str | int], value: Value | None) -> None:
         """Set a key of the job card and write it through, comments kept; None takes the key out.
 
         Parameters
         ----------
-        key : str
-            Dotted key, such as "job.revision" or 'answers."no-origin-storeys.csv"'.
-        value : str, bool, int, float, date or None
-            Its value.
+        key : str or sequence
+            Dotted key, such as "job.revision" or 'stiffness."half cracked".factor', or its parts.
+        value : str, bool, int, float, date, mapping of these, or None
+            Its value, a mapping as a table.
 
         Raises
         ------
@@ -302,7 +301,8 @@ class Job:
     def _current(self, node: _Node, upstream: tuple[Payload, ...]) -> bool:
         """Whether a step's payload was calculated from these very inputs."""
         same = len(upstream) == len(node.upstream) and all(a is b for a, b in zip(upstream, node.upstream, strict=True))
-        return same and node.payload["needs"] == node.needs and node.payload["inputs"] == to_json(node.inputs)
+        before = node.payload
+        return same and bool(before) and before["needs"] == node.needs and before["inputs"] == to_json(node.inputs)
 
     def _from_files(self, key: str, node: _Node) -> Payload:
         """The payload of a step whose inputs are the job's files."""

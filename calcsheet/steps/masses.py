@@ -7,9 +7,8 @@ import numpy as np
 from calcsheet.core.floors import PLACES, VARIABLE, Floors
 from calcsheet.core.masstakeoff import LevelMasses, evidence_of_take_off, take_off
 from calcsheet.steps.step import Caution, Line, Number, Outcome, Step, plain
+from calcsheet.steps.storeys import unusual_weights
 
-USUAL = (5.0, 15.0)
-"""Weight per floor area [kN/m²] outside of which a slip is suspected (common practice for floors of buildings)."""
 DIFFERS = 0.01
 """Share of its mass by which a level of the storey table may differ from the take-off before it is named."""
 AXES = "parallel axis theorem"
@@ -99,7 +98,7 @@ def _cautions(floors: Floors, found: LevelMasses) -> list[Caution]:
     return [
         *_unused(floors),
         *_shares(floors),
-        *_per_area(floors, found),
+        *unusual_weights(found.weight_per_area.tolist(), floors.level, floors.below, "take-off"),
         *_centres(floors, found),
         *_covered(floors),
         *_stated(floors, found),
@@ -114,25 +113,15 @@ def _unused(floors: Floors) -> list[Caution]:
 def _shares(floors: Floors) -> list[Caution]:
     return [
         Caution(
-            f"no-mass-share-{load.name}",
+            "no-mass-share",
             f"{plain(load.name)}: [[mass_basis]] of the job states no share of this variable load, and the masses hold "
             "none of it.",
             answer=True,
+            subject=load.name,
         )
         for load in floors.load
         if load.share is None
     ]
-
-
-def _per_area(floors: Floors, found: LevelMasses) -> list[Caution]:
-    low, high = USUAL
-    strange = [i for i, w in enumerate(found.weight_per_area.tolist()) if i >= floors.below and not low <= w <= high]
-    if not strange:
-        return []
-    named = ", ".join(f'{{{n}}} at level "{plain(floors.level[i])}"' for n, i in enumerate(strange))
-    numbers = tuple(Number(float(found.weight_per_area[i]), "pressure", f"result/weight_per_area/{i}") for i in strange)
-    text = f"Weight per floor area outside {low:g} to {high:g} kN/m² (common practice): {named}; check loads, areas and units."
-    return [Caution("weight-per-area", text, numbers)]
 
 
 def _centres(floors: Floors, found: LevelMasses) -> list[Caution]:
@@ -145,7 +134,7 @@ def _centres(floors: Floors, found: LevelMasses) -> list[Caution]:
             numbers = tuple(
                 Number(float(getattr(found, f"centre_{d}")[i]), "length", f"result/centre_{d}/{i}") for d in "xy"
             )
-            cautions.append(Caution(f"centre-outside-plan-{level}", text, numbers, answer=True))
+            cautions.append(Caution("centre-outside-plan", text, numbers, answer=True, subject=level))
     return cautions
 
 
@@ -169,7 +158,7 @@ def _covered(floors: Floors) -> list[Caution]:
                 )
             )
             text = f"{plain(load.name)} covers more than the floor: {named}; check the areas."
-            cautions.append(Caution(f"covers-more-{load.name}", text, numbers))
+            cautions.append(Caution("covers-more", text, numbers, subject=load.name))
     return cautions
 
 

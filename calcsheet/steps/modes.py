@@ -113,9 +113,10 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
     for group in modes.repeated:
         cautions.append(
             Caution(
-                f"repeated-modes-{name}-{group[0]}",
+                "repeated-modes",
                 f"Modes {_listed(group)} in {name} share one frequency: their shapes are one choice of many, and only "
                 "their sum has a meaning.",
+                subject=f"{name}-{group[0]}",
             )
         )
     for group in modes.close:
@@ -124,30 +125,33 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
             numbers = tuple(Number(float(modes.period[g - 1]), "period", f"{at}/period/{g - 1}") for g in ends)
             cautions.append(
                 Caution(
-                    f"close-modes-{name}-{group[0]}",
+                    "close-modes",
                     f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one "
                     "before): peak values are to be combined with their correlation, not by the root of the sum of squares.",
                     numbers,
+                    subject=f"{name}-{group[0]}",
                 )
             )
     for i, local in enumerate(modes.local):
         cautions.append(
             Caution(
-                f"local-mode-{name}-{local.mode}",
+                "local-mode",
                 f'Mode {local.mode} in {name} is local: {{0}} of its kinetic energy is in level "{plain(local.level)}", a light '
                 "one. Base shear says little of what that level itself meets.",
                 (Number(local.energy, "share", f"{at}/local/{i}/energy"),),
+                subject=f"{name}-{local.mode}",
             )
         )
     usual, first = RULE_OF_THUMB * model.levels, float(modes.period[0])
     if not usual / FAR <= first <= usual * FAR:
         cautions.append(
             Caution(
-                f"unusual-period-{name}",
+                "unusual-period",
                 f"The first period in {name}, {{0}}, is far from {RULE_OF_THUMB:g} s a storey (common practice for frames): "
                 "check masses, stiffnesses and their units.",
                 (Number(first, "period", f"{at}/period/0"),),
                 answer=True,
+                subject=name,
             )
         )
     return cautions

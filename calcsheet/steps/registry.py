@@ -9,6 +9,7 @@ from calcsheet.steps.basis import BASIS
 from calcsheet.steps.card import CARD
 from calcsheet.steps.demand import DEMAND
 from calcsheet.steps.drift import DRIFT
+from calcsheet.steps.earlier import EARLIER
 from calcsheet.steps.masses import MASSES
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
@@ -17,5 +18,6 @@ from calcsheet.steps.step import Step
 from calcsheet.steps.storeys import STOREYS
 
 STEPS: Mapping[str, Step] = {
-    step.kind: step for step in (CARD, MASSES, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS)
+    step.kind: step
+    for step in (CARD, MASSES, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, EARLIER)
 }

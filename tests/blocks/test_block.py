@@ -32,7 +32,7 @@ def words(html):
 
 def period(sheet):
     """First period as the twin of the modes shows it."""
-    return re.search(r'<data value="/modes/result/models/0/modes/period/0">([^<]*)', sheet.twin("modes")["text/html"])[
+    return re.search(r'<data value="/modes/result/models/0/modes/period/0"[^>]*>([^<]*)', sheet.twin("modes")["text/html"])[
         1
     ]
 

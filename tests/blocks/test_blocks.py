@@ -7,6 +7,7 @@ import re
 import pytest
 
 from calcsheet.blocks import (
+    Cautions,
     DemandSpectrum,
     DriftCheck,
     JobCard,
@@ -31,6 +32,7 @@ WANTED = {
     DriftCheck: ModalTable,
     StoreyActions: DriftCheck,
     StaticComparison: StoreyActions,
+    Cautions: JobCard,
 }
 
 

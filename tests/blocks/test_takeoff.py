@@ -24,13 +24,13 @@ def test_masses_are_adopted_and_nothing_else_changes(job_folder):
     folder = job_folder(files=FILES)
     before = (folder / "storeys.csv").read_text(encoding="utf-8")
     block = MassTakeoff(JobCard(folder))
-    assert "masses-differ" in {c["key"] for c in block.payload["cautions"]}
+    assert "masses-differ" in {c["kind"] for c in block.payload["cautions"]}
     block.adopt()
     # by hand: 250·8.1/9.80665, 300·8.1/9.80665 and 310·8.1/9.80665 t, to six digits
     expected = before.replace("141.5,", "206.4930,").replace("236,", "247.7910,").replace("244.25,", "247.7910,")
     expected = expected.replace("251,", "247.7910,").replace("268.75,", "256.0510,")
     assert (folder / "storeys.csv").read_text(encoding="utf-8") == expected
-    assert "masses-differ" not in {c["key"] for c in block.payload["cautions"]}
+    assert "masses-differ" not in {c["kind"] for c in block.payload["cautions"]}
 
 
 def test_weights_are_adopted_where_the_table_has_weights(job_folder):

@@ -8,13 +8,20 @@ import shutil
 
 import pytest
 
-from calcsheet.record.headline import brief, in_full
+from calcsheet.record.collect import Content
+from calcsheet.record.document import record_of
+from calcsheet.record.headline import brief
+from calcsheet.record.headline import in_full as of_record
 from calcsheet.record.issue import issue
 from calcsheet.resources import folder
 from calcsheet.steps.demand import DemandOptions
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
 from calcsheet.steps.replay import replay
+
+
+def in_full(payloads):
+    return of_record(record_of(Content((), payloads)))
 
 
 def text(html: str) -> str:

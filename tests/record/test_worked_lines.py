@@ -148,7 +148,7 @@ class Row:
     reference: str
 
 
-NUMBER = re.compile(r'<data value="([^"]*)">([^<]*)</data>(?:\u00a0([^\s<)]+))?')
+NUMBER = re.compile(r'<data value="([^"]*)"[^>]*>([^<]*)</data>(?:\u00a0([^\s<)]+))?')
 
 
 def number(match: re.Match[str]) -> Printed:

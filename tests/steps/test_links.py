@@ -49,3 +49,8 @@ def test_a_takeoff_that_is_not_stored_is_named(payloads):
 
 def test_masses_typed_by_hand_are_held_against_nothing(job_folder):
     assert links(Job(job_folder()).payloads()) == []
+
+
+def test_what_no_step_has_made_is_malformed(payloads):
+    payloads["storeys"]["inputs"]["below"] = 3
+    assert ("masses", "result/mass") in {(d.step, d.field) for d in replay(payloads)}

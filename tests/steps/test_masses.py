@@ -124,11 +124,13 @@ def test_a_load_without_a_share():
     assert (caution.key, caution.answer) == ("no-mass-share-offices", True)
 
 
-@pytest.mark.parametrize(("value", "levels"), [(20.0, [2, 1, 0]), (2.0, [0, 1, 2])])
-def test_weight_per_area_beyond_the_usual(value, levels):
+@pytest.mark.parametrize(
+    ("value", "levels", "asked"), [(20.0, [2, 1, 0], False), (2.0, [0, 1, 2], False), (200.0, [0, 1, 2], True)]
+)
+def test_weight_per_area_beyond_the_usual(value, levels, asked):
     given = floors()
     (caution,) = run(replace(given, load=(replace(given.load[0], value=value), *given.load[1:]))).cautions
-    assert caution.key == "weight-per-area"
+    assert (caution.key, caution.answer) == ("weight-per-area-take-off", asked)
     assert {n.at for n in caution.numbers} == {f"result/weight_per_area/{i}" for i in levels}
 
 
@@ -136,7 +138,7 @@ def test_levels_below_the_base_may_be_heavy():
     given = floors()
     heavy = given.amount.copy()
     heavy[0, 3] = 120.0
-    assert keys(replace(given, amount=heavy)) == ["weight-per-area"]
+    assert keys(replace(given, amount=heavy)) == ["weight-per-area-take-off"]
     assert keys(replace(given, amount=heavy, below=1)) == []
 
 
@@ -213,6 +215,5 @@ def test_a_table_changed_on_disk_is_noticed(folder):
 
 
 def test_the_card_says_where_the_tables_come_from(folder):
-    assert {"no-origin-floors.csv", "no-origin-loads.csv"} <= {
-        c["key"] for c in Job(folder()).payload("card")["cautions"]
-    }
+    asked = {c["subject"] for c in Job(folder()).payload("card")["cautions"] if c["kind"] == "no-origin"}
+    assert {"floors.csv", "loads.csv"} <= asked

@@ -9,6 +9,7 @@ import pytest
 
 from calcsheet.core.matrix import StiffnessMatrix
 from calcsheet.steps.replay import replay
+from calcsheet.steps.step import key_of
 
 
 @pytest.fixture(scope="module")
@@ -118,7 +119,7 @@ def test_a_repeated_frequency_replays_in_another_basis(building, steps_of):
     )
     payloads = steps_of(given)
     assert replay(payloads) == []
-    assert "repeated-modes-x-1" in {c["key"] for c in payloads["modes"]["cautions"]}
+    assert "repeated-modes-x-1" in {key_of(c["kind"], c["subject"]) for c in payloads["modes"]["cautions"]}
     turn = np.array([[np.cos(0.4), -np.sin(0.4)], [np.sin(0.4), np.cos(0.4)]])
     modes = payloads["modes"]["result"]["models"][0]["modes"]
     psi = np.array(modes["psi"])

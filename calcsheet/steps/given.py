@@ -1,0 +1,237 @@
+"""What a calculation was given, leaf by leaf: storey by storey, by key of the job card, by option of a step."""
+
+from __future__ import annotations
+
+import dataclasses
+from collections.abc import Callable, Iterable, Iterator, Mapping
+from typing import Any
+
+from calcsheet.core.codes.registry import EDITIONS
+from calcsheet.job.card import dotted
+from calcsheet.steps.headlines import Payloads
+from calcsheet.steps.step import Payload
+
+PLAIN = "ratio"
+"""Quantity of a number that stands as it was typed."""
+OF_LEVELS = {
+    "storey_height": ("storey height", "length"),
+    "mass": ("mass", "mass"),
+    "gravity": ("gravity load", "force"),
+    "area": ("floor area", "area"),
+}
+OF_LATERAL = {"storey chain": "stiffness", "stiffness matrix": "stiffness", "flexibility matrix": "flexibility"}
+"""Quantity of the numbers of a lateral stiffness, by its kind."""
+OF_SECOND_MODEL = {"period": "period", "weight": "weight", "base shear": "force"}
+LEFT_OUT = ("format", "people", "answers", "levels")
+"""Tables of the job card that are no inputs of the calculation, or that the storeys hold."""
+IDENTITY = ("revision", "date", "reason")
+"""What is another in every revision."""
+NAMED_BY: Mapping[str, tuple[str, ...]] = {
+    "mass_basis": ("load",),
+    "second_model": ("quantity", "direction"),
+    "assumptions": ("text",),
+}
+"""Lists whose entries go by a name of their own, so that one that is put in front doesn't rename the others."""
+
+
+@dataclasses.dataclass(frozen=True)
+class Given:
+    """One input.
+
+    Parameters
+    ----------
+    key : str
+        Stable name within its level, such as "mass" or "basis.q_x".
+    label : str
+        The same in words.
+    level : str
+        Name of its level; empty where it is of none.
+    quantity : str
+        Quantity of its number in the unit table.
+    number : float or None
+        Its number, in core units; None for a text.
+    text : str
+        Its text; empty for a number.
+    at : str
+        JSON pointer of it in the record's payloads.
+    """
+
+    key: str
+    label: str
+    level: str
+    quantity: str
+    number: float | None
+    text: str
+    at: str
+
+
+def inputs_of(payloads: Payloads) -> tuple[Given, ...]:
+    """Inputs of all steps that are "ok", empty ones left out: they say the same as ones that are not there."""
+    with_basis = any(p["kind"] == "basis" for p in payloads.values())
+    return tuple(
+        given
+        for key, payload in payloads.items()
+        if payload["state"] == "ok"
+        for given in INPUTS.get(payload["kind"], _options)(key, payload, with_basis)
+    )
+
+
+# ---- storeys ---------------------------------------------------------------------------------------------------------
+
+
+def _storeys(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    inputs, at = payload["inputs"], f"/{key}/inputs"
+    yield _leaf("levels.effective_base", "effective base", inputs["base"], f"{at}/base")
+    yield _leaf(
+        "levels.base_elevation", "elevation of the base", inputs["base_elevation"], f"{at}/base_elevation", "elevation"
+    )
+    for name, (label, quantity) in OF_LEVELS.items():
+        if name == "mass" and inputs["given"] == "weight":
+            weights = payload["result"]["weight_of_level"]
+            yield from _by_level(inputs, "weight", "weight", "weight", weights, f"/{key}/result/weight_of_level")
+        elif inputs.get(name) is not None:
+            yield from _by_level(inputs, name, label, quantity, inputs[name], f"{at}/{name}")
+    for i, named in enumerate(inputs["stiffness"]):
+        for direction, lateral in named["lateral"].items():
+            place = f"{at}/stiffness/{i}/lateral/{direction}"
+            yield from _lateral(inputs, f"{direction}, {named['name']}", lateral, place)
+    for i, below in enumerate(inputs["below"]):
+        for name, quantity in (("elevation", "elevation"), ("mass", "mass")):
+            label = f"{name}, at or below the base"
+            yield _leaf(f"below.{name}", label, below[name], f"{at}/below/{i}/{name}", quantity, str(below["level"]))
+
+
+def _lateral(inputs: Mapping[str, Any], of: str, lateral: Mapping[str, Any], at: str) -> Iterator[Given]:
+    kind, quantity = lateral["kind"], OF_LATERAL.get(lateral["kind"], PLAIN)
+    for name, numbers in lateral.items():
+        if name == "kind" or numbers is None:
+            continue
+        if kind == "storey chain":
+            yield from _by_level(inputs, f"stiffness {of}", f"stiffness {of}", quantity, numbers, f"{at}/{name}")
+        elif name == "matrix":
+            for j, column in enumerate(inputs["level"]):
+                entries, label = [row[j] for row in numbers], f"{kind} {of}, column {column}"
+                yield from _by_level(inputs, label, label, quantity, entries, f"{at}/{name}/{{}}/{j}")
+        else:
+            label = f"{kind} {of}, {_spoken(name)}"
+            if isinstance(numbers, list) and len(numbers) == len(inputs["level"]):
+                yield from _by_level(inputs, label, label, quantity, numbers, f"{at}/{name}")
+            else:
+                yield from _leaves((label,), numbers, f"{at}/{name}")
+
+
+def _by_level(
+    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float], at: str
+) -> Iterator[Given]:
+    place = at if "{}" in at else f"{at}/{{}}"
+    for i, (level, number) in enumerate(zip(inputs["level"], numbers, strict=True)):
+        yield _leaf(key, label, number, place.format(i), quantity, str(level))
+
+
+# ---- job card, basis, options ----------------------------------------------------------------------------------------
+
+
+def _card(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    left_out = (*LEFT_OUT, *(("basis", "mass_basis", "second_model") if with_basis else ()))
+    for table, value in payload["inputs"].items():
+        at = f"/{key}/inputs/{table}"
+        if table in left_out:
+            continue
+        if table in NAMED_BY:
+            yield from _named(table, value, at, lambda item: PLAIN)
+        else:
+            kept = {k: v for k, v in value.items() if k not in IDENTITY} if table == "job" else value
+            yield from _leaves((table,), kept, at)
+
+
+def _basis(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    for name, value in payload["inputs"].items():
+        at = f"/{key}/inputs/{name}"
+        if name == "edition":
+            yield from _edition(value, at)
+        elif name in NAMED_BY:
+            yield from _named(name, value, at, lambda item: OF_SECOND_MODEL.get(item.get("quantity", ""), PLAIN))
+        else:
+            yield from _leaves(("basis", name), value, at)
+
+
+def _edition(given: Mapping[str, Any], at: str) -> Iterator[Given]:
+    """A code edition with its parameters, each under the words that the edition has for it.
+
+    A parameter that the record has not, since it is of an earlier version, stands at its default.
+    """
+    yield _leaf("basis.edition", "basis.edition", given["kind"], f"{at}/kind")
+    edition = EDITIONS.get(given["kind"])
+    fields = {} if edition is None else {f.name: f for f in dataclasses.fields(edition)}  # type: ignore[arg-type]
+    usual = {n: f.default for n, f in fields.items() if f.default is not dataclasses.MISSING}
+    for name, value in (usual | dict(given)).items():
+        rule = fields[name].metadata.get("key", {}) if name in fields else {}
+        label = f"basis.{name}: {rule['help']}" if rule.get("help") else ""
+        if name != "kind":
+            yield from _leaves(("basis", name), value, f"{at}/{name}", rule.get("quantity", PLAIN), label)
+
+
+def _options(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    yield from _leaves((key,), payload["inputs"], f"/{key}/inputs")
+
+
+INPUTS: Mapping[str, Callable[[str, Payload, bool], Iterator[Given]]] = {
+    "card": _card,
+    "storeys": _storeys,
+    "basis": _basis,
+}
+"""How the inputs of a kind of step are read; those of any other are options."""
+
+
+# ---- leaves ----------------------------------------------------------------------------------------------------------
+
+
+def _named(
+    table: str, items: Iterable[Mapping[str, Any]], at: str, quantity: Callable[[Mapping[str, Any]], str]
+) -> Iterator[Given]:
+    """Entries of a list that go by a name, which is a leaf of its own."""
+    seen: dict[str, int] = {}
+    for i, item in enumerate(items):
+        first, *others = NAMED_BY[table]
+        name = " ".join(str(item[k]) for k in (first, *others) if item[k])
+        seen[name] = seen.get(name, 0) + 1
+        name += f" ({seen[name]})" if seen[name] > 1 else ""
+        label = f"{_spoken(table)} “{name}”"
+        yield _leaf(dotted((table, name)), label, "stated", f"{at}/{i}/{first}")
+        for field, value in item.items():
+            if field not in NAMED_BY[table]:
+                of = quantity(item) if field == "value" else PLAIN
+                yield from _leaves((table, name, field), value, f"{at}/{i}/{field}", of, f"{label}, {_spoken(field)}")
+
+
+def _leaves(
+    keys: tuple[str | int, ...], value: Any, at: str, quantity: str = PLAIN, label: str = ""
+) -> Iterator[Given]:
+    """Leaves of plain JSON under dotted keys."""
+    if value is None or value is False or value in ("", [], {}, ()):
+        return
+    if isinstance(value, Mapping):
+        for key, item in value.items():
+            yield from _leaves((*keys, key), item, f"{at}/{_escaped(key)}", quantity, label)
+    elif isinstance(value, list | tuple):
+        for i, item in enumerate(value):
+            yield from _leaves((*keys, i), item, f"{at}/{i}", quantity, label)
+    else:
+        yield _leaf(dotted(keys), label or dotted(keys), value, at, quantity)
+
+
+def _leaf(key: str, label: str, value: Any, at: str, quantity: str = PLAIN, level: str = "") -> Given:
+    if isinstance(value, bool):
+        return Given(key, label, level, quantity, None, str(value).lower(), at)
+    if isinstance(value, int | float):
+        return Given(key, label, level, quantity, float(value), "", at)
+    return Given(key, label, level, quantity, None, str(value), at)
+
+
+def _escaped(key: str) -> str:
+    """A key as a part of a JSON pointer (RFC 6901)."""
+    return key.replace("~", "~0").replace("/", "~1")
+
+
+def _spoken(name: str) -> str:
+    return name.replace("_", " ")
