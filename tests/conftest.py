@@ -519,7 +519,12 @@ def plain_record() -> Callable[..., dict[str, Any]]:
     """What an issued record holds of a job: its payloads as JSON has them, status and signatures as asked for."""
 
     def build(job: Job, status: str = "FOR CHECKING", **parts: Any) -> dict[str, Any]:
-        held = {"format": 2, "status": status, "fingerprints": {"inputs": "ab" * 32, "results": "cd" * 32}, "signatures": []}
+        held = {
+            "format": 2,
+            "status": status,
+            "fingerprints": {"inputs": "ab" * 32, "results": "cd" * 32},
+            "signatures": [],
+        }
         return json.loads(json.dumps({**held, "payloads": job.payloads(), **parts}))
 
     return build

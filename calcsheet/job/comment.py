@@ -135,7 +135,8 @@ def brought(
         Those that are here.
     others : iterable of Comment
         Those of the other file. One that is here already (same revision, author, day, place and text) is not
-        doubled: its reply and closing are taken over where there is none here. The others get new numbers.
+        doubled: its reply and closing are taken over where there is none here. The others keep their number where it is
+        free, and get the next one else.
     named : Named
         Who is named in the job.
 
@@ -156,9 +157,10 @@ def brought(
             raise InputError(
                 "", f"comment {other.number} of the file brought in", reason, f"must be closed by {other.by}"
             )
-        here = next((c for c in comments if _identity(c) == _identity(other)), None)
+        here = next((c for c in comments if identity(c) == identity(other)), None)
         if here is None:
-            number = max((c.number for c in comments), default=0) + 1
+            taken = {c.number for c in comments}
+            number = other.number if other.number not in taken else max(taken) + 1
             comments = (*comments, replace(other, number=number))
             added.append(number)
             continue
@@ -204,6 +206,7 @@ def _same(name: str, other: str) -> bool:
     return " ".join(name.split()).casefold() == " ".join(other.split()).casefold()
 
 
-def _identity(comment: Comment) -> tuple[str, ...]:
+def identity(comment: Comment) -> tuple[str, ...]:
+    """What makes two comments of two files the same one."""
     parts = (comment.revision, comment.by, comment.date, comment.where, comment.comment)
     return tuple(" ".join(part.split()).casefold() for part in parts)

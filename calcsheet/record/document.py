@@ -19,8 +19,8 @@ from calcsheet.record.fingerprints import fingerprints_of, short
 from calcsheet.record.headline import brief, in_full
 from calcsheet.record.layout import layout_of
 from calcsheet.record.markdown import to_html
-from calcsheet.record.own import own_cell
 from calcsheet.record.migrate import FORMAT
+from calcsheet.record.own import own_cell
 from calcsheet.record.page import Cover, Fact, Page, Person, Section, Target
 from calcsheet.record.parts import Own, Shown, Words, from_plain, to_plain
 from calcsheet.record.signature import sign_off, signature

@@ -10,20 +10,21 @@ from pathlib import Path
 from typing import Any
 
 from calcsheet.job.card import FILE as CARD_FILE
-from calcsheet.job.comments import comments_of
+from calcsheet.job.comment import Comment, Named, brought, identity
+from calcsheet.job.comments import file_of, read_comments
 from calcsheet.record.check.report import checked
 from calcsheet.record.document import settled
 from calcsheet.record.errors import RecordError
 from calcsheet.record.files import KINDS, files_of
 from calcsheet.record.layout import layout_of
+from calcsheet.record.opened import opened
 from calcsheet.record.pdf import FULL, NoEngine, choose_engine
 from calcsheet.record.place import placed_beside
-from calcsheet.record.recordfile import read_record
 from calcsheet.record.register import note_of
 from calcsheet.record.signature import signature
 from calcsheet.record.status import APPROVED_ROLE, CHECKED_ROLE, PREPARED, ROLES, held, open_comments, valid
 from calcsheet.render.answers import raised
-from calcsheet.steps.serial import to_json
+from calcsheet.steps.serial import from_json, to_json
 
 ALL = "all"
 SIGNED = re.compile(rf"-({'|'.join(ROLES)})$")
@@ -82,13 +83,9 @@ def sign(
         The record doesn't agree with itself, is held back, was made by another version, or the role is not this
         signer's to take now.
     """
-    record = read_record(path).record
-    report = checked(path)
-    if report.differs:
+    if checked(path).differs:
         raise RecordError(f"{path.name} can't be signed: it does not agree with itself; `calcsheet check` says where")
-    job = path.resolve().parent.parent.parent  # issued/<revision>/<file>, unless a record stands alone
-    in_job = (job / CARD_FILE).is_file()
-    record = _with_comments(record, job if in_job else path.parent)
+    record = _with_comments(opened(path), path)
     keys = _agreed(record, role, tuple(agree))
     _refuse(record, role, name, registration)
     who = {"name": name, "initials": initials, "qualification": qualification, "registration": registration}
@@ -98,19 +95,21 @@ def sign(
     kinds, note = _kinds(path, new)
     stem = f"{SIGNED.sub('', path.stem)}-{role}"
     files = placed_beside(path.parent, files_of(new, stem, kinds))
-    if in_job:
+    job = file_of(path).parent
+    if (job / CARD_FILE).is_file():
         note = "; ".join(filter(None, (note, note_of(job))))
     return Signed(tuple(files), new["status"], note)
 
 
-def _with_comments(record: Mapping[str, Any], folder: Path) -> dict[str, Any]:
+def _with_comments(record: Mapping[str, Any], path: Path) -> dict[str, Any]:
     """The record with its comments as they stand now, and those made on its revision since."""
-    revision = record["payloads"]["card"]["inputs"]["job"]["revision"]
-    known = {comment["number"] for comment in record["comments"]}
-    now = {c["number"]: c for c in map(to_json, comments_of(folder))}
-    kept = [now.get(comment["number"], comment) for comment in record["comments"]]
-    since = [c for number, c in now.items() if number not in known and c["revision"] == revision]
-    return {**record, "comments": [*kept, *since]}
+    card = record["payloads"]["card"]["inputs"]
+    held_in = tuple(from_json(Comment, comment) for comment in record["comments"])
+    now = read_comments(file_of(path), card["people"]["prepared"]["name"])
+    known = set(map(identity, held_in))
+    since = [c for c in now if c.revision == card["job"]["revision"] or identity(c) in known]
+    merged, *_ = brought(held_in, since, Named.of(card["people"]))
+    return {**record, "comments": [to_json(comment) for comment in merged]}
 
 
 def _agreed(record: Mapping[str, Any], role: str, agree: tuple[str, ...]) -> tuple[str, ...]:

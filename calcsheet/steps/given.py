@@ -7,6 +7,7 @@ from collections.abc import Callable, Iterable, Iterator, Mapping
 from typing import Any
 
 from calcsheet.core.codes.registry import EDITIONS
+from calcsheet.core.floors import PLACES
 from calcsheet.job.card import dotted
 from calcsheet.steps.headlines import Payloads
 from calcsheet.steps.step import Payload
@@ -19,6 +20,16 @@ OF_LEVELS = {
     "gravity": ("gravity load", "force"),
     "area": ("floor area", "area"),
 }
+OF_FLOORS = {
+    "area": ("floor area", "area"),
+    "plan_x": ("plan x", "length"),
+    "plan_y": ("plan y", "length"),
+    "centre_x": ("centre of the floor x", "length"),
+    "centre_y": ("centre of the floor y", "length"),
+    "own_radius": ("radius of gyration given", "length"),
+}
+OF_OTHER = {"weight": "weight", "x": "length", "y": "length", "plan_x": "length", "plan_y": "length"}
+"""Quantities of floors and of masses with places of their own."""
 OF_LATERAL = {"storey chain": "stiffness", "stiffness matrix": "stiffness", "flexibility matrix": "flexibility"}
 """Quantity of the numbers of a lateral stiffness, by its kind."""
 OF_SECOND_MODEL = {"period": "period", "weight": "weight", "base shear": "force"}
@@ -121,11 +132,49 @@ def _lateral(inputs: Mapping[str, Any], of: str, lateral: Mapping[str, Any], at:
 
 
 def _by_level(
-    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float], at: str
+    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float | None], at: str
 ) -> Iterator[Given]:
     place = at if "{}" in at else f"{at}/{{}}"
     for i, (level, number) in enumerate(zip(inputs["level"], numbers, strict=True)):
         yield _leaf(key, label, number, place.format(i), quantity, str(level))
+
+
+# ---- mass take-off ---------------------------------------------------------------------------------------------------
+
+
+def _masses(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    """Floors by level, loads and other masses by name; storey heights and masses stated are the storey table's."""
+    inputs, at = payload["inputs"], f"/{key}/inputs"
+    for name, (label, quantity) in OF_FLOORS.items():
+        yield from _saying(_by_level(inputs, name, label, quantity, inputs[name], f"{at}/{name}"))
+    for j, load in enumerate(inputs["load"]):
+        place, of = PLACES.get(load["place"], PLACES["floor"]), f"load “{load['name']}”"
+        for field, quantity in (
+            ("kind", ""),
+            ("place", ""),
+            ("value", place.value),
+            ("share", "share"),
+            ("clause", ""),
+        ):
+            if load[field] not in (None, ""):
+                label = f"{of}, {field}"
+                yield _leaf(f"{key}.{of}.{field}", label, load[field], f"{at}/load/{j}/{field}", quantity or PLAIN)
+        amounts = [row[j] for row in inputs["amount"]]
+        label = f"{of}, {place.amount}"
+        yield from _saying(_by_level(inputs, label, label, place.amount, amounts, f"{at}/amount/{{}}/{j}"))
+    seen: dict[tuple[str, str], int] = {}
+    for i, other in enumerate(inputs["other"]):
+        named = other["level"], other["name"]
+        seen[named] = seen.get(named, 0) + 1
+        label = f"“{other['name']}”" + (f" ({seen[named]})" if seen[named] > 1 else "")
+        for field, quantity in OF_OTHER.items():
+            words = f"{label}, {_spoken(field)}"
+            yield _leaf(f"other {words}", words, other[field], f"{at}/other/{i}/{field}", quantity, other["level"])
+
+
+def _saying(given: Iterable[Given]) -> Iterator[Given]:
+    """Those of an amount above or below zero: zero and none say the same."""
+    return (g for g in given if g.number)
 
 
 # ---- job card, basis, options ----------------------------------------------------------------------------------------
@@ -177,6 +226,7 @@ def _options(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
 
 INPUTS: Mapping[str, Callable[[str, Payload, bool], Iterator[Given]]] = {
     "card": _card,
+    "masses": _masses,
     "storeys": _storeys,
     "basis": _basis,
 }

@@ -9,7 +9,6 @@ from numpy.linalg import LinAlgError
 
 from calcsheet.core.errors import ModelError
 from calcsheet.steps.agreement import Difference, differences
-from calcsheet.steps.links import links
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import from_json
 from calcsheet.steps.step import Caution, Done, Evidence, Line, Number, Outcome, Payload, Step
@@ -35,11 +34,7 @@ def replay(payloads: Mapping[str, Payload], *, words: bool = True) -> list[Diffe
     list of Difference
         Where results, worked lines, cautions or evidence disagree, or a step is malformed; empty where all agree.
     """
-    found = [d for key, payload in payloads.items() for d in _replayed(key, payload, payloads, words)]
-    try:
-        return found + links(payloads)
-    except MALFORMED as error:
-        return [*found, _malformed("masses", "result/mass", error)]
+    return [d for key, payload in payloads.items() for d in _replayed(key, payload, payloads, words)]
 
 
 def _replayed(key: str, payload: Payload, payloads: Mapping[str, Payload], words: bool) -> list[Difference]:

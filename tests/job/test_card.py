@@ -80,7 +80,8 @@ FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
         (
             'name = ""',
             'name = "a. writer"',
-            'people.checked.name: got "a. writer", who prepared it; must be another person, or people.same_person_may_check = true',
+            'people.checked.name: got "a. writer", who prepared it; must be another person, or '
+            "people.same_person_may_check = true",
         ),
         (
             "base_elevation = 0",

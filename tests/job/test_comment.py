@@ -103,10 +103,11 @@ def test_comments_brought_in_are_numbered_anew_and_not_doubled(asked):
     theirs = (
         replace(asked[0], number=5, comment=" which  edition? "),  # the same, spaced otherwise
         Comment(6, "A", "Remy Aalto", DAY, "", "Masses?"),
+        Comment(1, "A", "Ana Sobol", DAY, "", "Periods?"),
     )
     after, added, completed = brought(asked, theirs, NAMED)
-    assert [(c.number, c.comment) for c in after] == [(1, "Which edition?"), (2, "Masses?")]
-    assert (added, completed) == ((2,), ())
+    assert [(c.number, c.comment) for c in after] == [(1, "Which edition?"), (6, "Masses?"), (7, "Periods?")]
+    assert (added, completed) == ((6, 7), ())
     assert brought(after, theirs, NAMED) == (after, (), ())
 
 

@@ -182,7 +182,8 @@ def test_a_record_issued_end_to_end(quick_kernel, tmp_path, document, where, sys
     assert headline.count("T₁/Ta = ") == 2
     for title in ("Design demand", "Modal peaks", "Drift, second order, irregularities", "Storey actions"):
         assert title in front
-    assert seen.headings.count("Worked lines") >= 5
+    assert sum(heading.startswith("Worked lines: ") for heading in seen.headings) >= 5
     if system == "US":
         for word in (" kN", "[m]", "[kN", " mm"):
-            assert word not in seen.words, word
+            # the usual weight over area is said in both systems
+            assert word not in seen.words.replace("5 to 15 kN/m²", ""), word

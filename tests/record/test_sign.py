@@ -7,8 +7,8 @@ import json
 import nbformat
 import pytest
 
-from calcsheet.job.comments import edited
 from calcsheet.job.comment import Named, closed, raised
+from calcsheet.job.comments import edited
 from calcsheet.job.errors import InputError
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue

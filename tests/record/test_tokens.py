@@ -11,7 +11,24 @@ from hypothesis import strategies as st
 
 from calcsheet.record.tokens import attributes, name_of, tokens
 
-PIECES = ["<p>", "</p>", "<", ">", "<!--", "-->", "<script>", "</script>", "<style", '"', "'", " a=", "x", "&lt;", "<![CDATA[", "<?"]
+PIECES = [
+    "<p>",
+    "</p>",
+    "<",
+    ">",
+    "<!--",
+    "-->",
+    "<script>",
+    "</script>",
+    "<style",
+    '"',
+    "'",
+    " a=",
+    "x",
+    "&lt;",
+    "<![CDATA[",
+    "<?",
+]
 
 
 @given(st.lists(st.sampled_from(PIECES), max_size=30).map("".join) | st.text(max_size=60))
@@ -32,7 +49,7 @@ def test_names_and_attributes():
     assert [name_of(t) for t in ("<Data x>", "</DATA>", "text", "<!-- a -->", "<!DOCTYPE html>", "< b>")] == [
         "data", "/data", "", "", "", "",
     ]  # fmt: skip
-    tag = "<Data Value='/a\"b' data-unit=\"kN&#183;m\" hidden value=\"/c\" n=5>"
+    tag = '<Data Value=\'/a"b\' data-unit="kN&#183;m" hidden value="/c" n=5>'
     assert attributes(tag) == {"value": '/a"b', "data-unit": "kN·m", "hidden": "", "n": "5"}
     assert attributes("text a=b") == {}
 
@@ -50,7 +67,7 @@ class Parsed(HTMLParser):
 def test_it_reads_our_pages_as_an_independent_parser_does(sample):
     from calcsheet.record.page import render_page
 
-    html = render_page(sample("html"), "html")
+    html = render_page(sample("html"), "html", "a4")
     ours = [(name_of(t), dict(attributes(t))) for t in tokens(html) if name_of(t) and not name_of(t).startswith("/")]
     theirs = Parsed(html).tags
     assert [name for name, _ in ours] == [name for name, _ in theirs]

@@ -33,7 +33,9 @@ def test_a_row_each_with_reply_and_who_closed_it():
     html = comments([OPEN, DONE])
     table = BeautifulSoup(html, "html.parser")
     assert [th.get_text() for th in table.find_all("th")] == ["", "revision", "comment", "reply", "closed by"]
-    first, second = ([td.get_text("|").replace(", |", ", ") for td in row.find_all("td")] for row in table.tbody.find_all("tr"))
+    first, second = (
+        [td.get_text("|").replace(", |", ", ") for td in row.find_all("td")] for row in table.tbody.find_all("tr")
+    )
     asked = "Demand & drift:| <script>alert(1)</script>|Which edition?|<b>Remy, 2026-04-02"
     assert first == ["3", "A", asked, "–", "open"]
     assert second == ["4", "A", asked, "That of 2016|Odile, 2026-04-03", "Ana|2026-04-04"]

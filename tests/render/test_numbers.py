@@ -66,7 +66,10 @@ def test_text(value, decimals, shown):
 
 
 def test_a_number_carries_its_place_and_its_unit():
-    assert number(0.47123, "period", "SI", "/modes/result/0") == '<data value="/modes/result/0" data-unit="s">0.4712</data>\u00a0s'
+    assert (
+        number(0.47123, "period", "SI", "/modes/result/0")
+        == '<data value="/modes/result/0" data-unit="s">0.4712</data>\u00a0s'
+    )
     assert number(0.0254, "displacement", "US", "/a") == '<data value="/a" data-unit="in">1.00</data>\u00a0in'
     assert number(0.934, "share", "SI", "/a", unit=False) == '<data value="/a" data-unit="%">93.4</data>'
     assert number(1.25, "ratio", "SI", "/a") == '<data value="/a">1.250</data>'

@@ -9,7 +9,9 @@ NUMBER = {"value": 0.5, "quantity": "period", "at": "result/t"}
 
 def test_places_are_filled_and_all_else_is_text():
     html = filled("T = {0} at level <b> {{0}} & more", [NUMBER], "SI", "/modes")
-    assert html == 'T = <data value="/modes/result/t" data-unit="s">0.5000</data>\u00a0s at level &lt;b&gt; {0} &amp; more'
+    assert (
+        html == 'T = <data value="/modes/result/t" data-unit="s">0.5000</data>\u00a0s at level &lt;b&gt; {0} &amp; more'
+    )
 
 
 def test_a_worked_line_is_a_row(document):

@@ -10,6 +10,7 @@ import pytest
 
 from calcsheet.core.floors import Floors, Load, OtherMass
 from calcsheet.job import edits
+from calcsheet.steps.given import inputs_of
 from calcsheet.steps.graph import Job
 from calcsheet.steps.masses import run
 from calcsheet.steps.modes import ModesOptions
@@ -217,3 +218,19 @@ def test_a_table_changed_on_disk_is_noticed(folder):
 def test_the_card_says_where_the_tables_come_from(folder):
     asked = {c["subject"] for c in Job(folder()).payload("card")["cautions"] if c["kind"] == "no-origin"}
     assert {"floors.csv", "loads.csv"} <= asked
+
+
+def test_what_was_given_goes_by_names_of_loads_levels_and_items(folder):
+    """Another load in front, another level's mass: only these differ, whatever their places in the tables."""
+    masses = "level,item,weight [kN],x [m],y [m]\nRoof,fan,8,1,1\nRoof,fan,9,2,2\n"
+    payloads = Job(folder(**{"masses.csv": masses})).payloads()
+    found = {(g.level, g.key): g for g in inputs_of(payloads)}
+    assert len(found) == len(inputs_of(payloads))
+    for given in found.values():
+        if given.at.startswith("/masses"):
+            value = at(payloads, given.at.removeprefix("/"))
+            assert value == (given.text if given.number is None else given.number)
+    amount = found["Roof", "load “façade”, length"]
+    assert (amount.number, amount.quantity) == (54.0, "length")
+    assert found["", "masses.load “slab”.value"].quantity == "pressure"
+    assert found["Roof", "other “fan” (2), weight"].number == 9.0

@@ -68,7 +68,6 @@ def second_route(payloads: Payloads) -> Iterator[Finding]:
     payloads : mapping of str to payload
         The steps of a record.
     """
-    yield from _sets(payloads)
     solved = False
     for key, payload in payloads.items():
         if payload["kind"] == "modes":
@@ -145,9 +144,9 @@ def _modes(payloads: Payloads, key: str, i: int, name: str) -> Iterator[Finding]
         wrong.append((f"{place}/psi", f"shapes in {name} are not orthonormal through the mass: off by {scale:.2g}"))
     yield from (Finding(PART, DIFFERS, text, at) for at, text in wrong)
     if not wrong:
-        which = "all" if count == sheet.mass.size else "the first"
+        which = f"all {count}" if count == sheet.mass.size else f"the first {count} of {sheet.mass.size}"
         text = (
-            f"{name}: {which} {count} frequencies found again from the flexibility, off by {apart.max():.1e} at most; "
+            f"{name}: {which} frequencies found again from the flexibility, off by {apart.max():.1e} at most; "
             f"residual of the {sheet.omega.size} shapes {residual.max():.1e}, orthonormal within {scale:.1e}"
         )
         yield Finding(PART, AGREES, text)
@@ -179,31 +178,6 @@ def _residuals(sheet: Sheet) -> Array:
     force = np.linalg.solve(sheet.flexibility, sheet.psi)
     high = np.linalg.norm((force / squares - root**2 * sheet.psi) / root, axis=0)
     return np.fmin(low, high)
-
-
-def _sets(payloads: Payloads) -> Iterator[Finding]:
-    """Stiffness sets that are factors on one table: each is its factor times what the others are theirs of."""
-    card = next((p["inputs"] for p in payloads.values() if p["kind"] == "card"), None)
-    given = next((p["inputs"]["stiffness"] for p in payloads.values() if p["kind"] == "storeys"), [])
-    count, wrong = 0, []
-    for direction in ("x", "y"):
-        before: tuple[str, Array] | None = None
-        for i, named in enumerate(given):
-            basis = (card or {}).get("stiffness", {}).get(named["name"])
-            lateral = named["lateral"].get(direction)
-            if basis is None or lateral is None or basis["own"]:
-                continue
-            factor = basis["factor"] if basis["factor"] is not None else basis[f"factor_{direction}"]
-            values = np.array(lateral.get("storey", lateral.get("matrix")), dtype=float)
-            unfactored = values * factor if lateral["kind"] == "flexibility matrix" else values / (factor or 1.0)
-            count += 1
-            if before is not None and not np.allclose(unfactored, before[1], rtol=CLOSE, atol=0.0):
-                text = f'stiffness set "{named["name"]}" and set "{before[0]}" in {direction} are not their factors of one table'
-                wrong.append(Finding(PART, DIFFERS, text, f"/storeys/inputs/stiffness/{i}/lateral/{direction}"))
-            before = before or (named["name"], unfactored)
-    yield from wrong
-    if count > 1 and not wrong:
-        yield Finding(PART, AGREES, f"{count} stiffnesses are their sets' factors times one table a direction")
 
 
 # ---- participation and peaks -----------------------------------------------------------------------------------------

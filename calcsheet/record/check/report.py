@@ -12,6 +12,7 @@ import numpy as np
 from calcsheet.record.check.confirm import second_route
 from calcsheet.record.check.data import data_findings
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding, Report
+from calcsheet.record.check.given import said_twice
 from calcsheet.record.check.layout import same_layout
 from calcsheet.record.check.printed_html import html_findings
 from calcsheet.record.check.printed_pdf import pdf_findings
@@ -58,6 +59,7 @@ def report_on(read: Read, called: str) -> Report:
     record = _present(read.record, called)
     parts: tuple[tuple[str, Callable[[], Iterator[Finding]]], ...] = (
         ("data", lambda: data_findings(read, record)),
+        ("data", lambda: said_twice(record["payloads"])),
         ("print", lambda: _print(read, record)),
         ("replay", lambda: _replay(record)),
         ("second route", lambda: second_route(record["payloads"])),

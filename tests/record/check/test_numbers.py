@@ -37,7 +37,15 @@ def test_each_number_changed_in_turn_is_found(record, numbers, units_said):
 
 
 def test_a_pointer_that_leads_nowhere_is_a_difference(record, numbers):
-    for pointer in ("/storeys/inputs/mass/99", "/nothing", "mass", "", "/storeys/../card", "/storeys/inputs/mass/-1", "/~2"):
+    for pointer in (
+        "/storeys/inputs/mass/99",
+        "/nothing",
+        "mass",
+        "",
+        "/storeys/../card",
+        "/storeys/inputs/mass/-1",
+        "/~2",
+    ):
         value = resolved(record["payloads"], pointer)
         assert value is MISSING
         assert "leads nowhere" in wrong_with(dataclasses.replace(numbers[0], pointer=pointer), value, units_said=True)

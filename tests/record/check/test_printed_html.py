@@ -162,7 +162,9 @@ def test_what_is_long_and_all_different_stays_short(made):
 
 def test_a_level_called_script_stays_text(html, record, document):
     seen = document(html)
-    assert [dict(a) for name, a in seen.tags if name == "script"] == [{"type": "application/json", "id": "calcsheet-data"}]
+    assert [dict(a) for name, a in seen.tags if name == "script"] == [
+        {"type": "application/json", "id": "calcsheet-data"}
+    ]
     assert "<script>alert(2)</script>" in seen.words
     assert json.loads(seen.script) == record
 
