@@ -146,7 +146,7 @@ def _masses(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
     """Floors by level, loads and other masses by name; storey heights and masses stated are the storey table's."""
     inputs, at = payload["inputs"], f"/{key}/inputs"
     for name, (label, quantity) in OF_FLOORS.items():
-        yield from _saying(_by_level(inputs, name, label, quantity, inputs[name], f"{at}/{name}"))
+        yield from _saying(_by_level(inputs, f"{key}.{name}", label, quantity, inputs[name], f"{at}/{name}"))
     for j, load in enumerate(inputs["load"]):
         place, of = PLACES.get(load["place"], PLACES["floor"]), f"load “{load['name']}”"
         for field, quantity in (
