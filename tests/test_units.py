@@ -14,6 +14,7 @@ CORE = {
     "feet": "m",
     "area": "m**2",
     "pressure": "kN/m**2",
+    "area load": "kN/m**2",
     "unit weight": "kN/m**3",
     "ordinate": "standard_gravity",
     "mass": "tonne",

@@ -23,14 +23,14 @@ class Place:
         They run along the floor's edge; else they are spread over the floor.
     amount : {"area", "length"}
         What says how much of them there is.
-    value : {"pressure", "unit weight"}
+    value : {"area load", "unit weight"}
         What their value is.
     """
 
     storey: bool
     edge: bool
     amount: str = "area"
-    value: str = "pressure"
+    value: str = "area load"
 
 
 PLACES: Mapping[str, Place] = {

@@ -193,10 +193,17 @@ class Origin(_Table):
 
 
 class Import(_Table):
-    """How a spreadsheet file is read, table [imports."its name"]: the sheet, and its headings in this program's words."""
+    """How a spreadsheet file is read into a table: the sheet, and the file's headings in this program's words."""
 
     sheet: Text = ""
     columns: Mapping[str, str] = Field({}, description="a table of headings")
+
+
+class Imports(_Table):
+    """Spreadsheet files by name, tables [imports.storeys."masses.xlsx"] and [imports.floors."areas.xlsx"]."""
+
+    storeys: Mapping[str, Import] = Field({}, description="a table for each file")
+    floors: Mapping[str, Import] = Field({}, description="a table for each file")
 
 
 class CautionAnswer(_Table):
@@ -277,7 +284,7 @@ class Card(_Table):
         (), description="tables [[assumptions]]"
     )
     origins: Mapping[str, Origin] = Field({}, description="a table for each file")
-    imports: Mapping[str, Import] = Field({}, description="a table for each spreadsheet file")
+    imports: Imports = Field(Imports(), description="a table [imports.storeys] or [imports.floors]")
     answers: Mapping[str, Annotated[CautionAnswer, Field(description=ANSWER)]] = Field({}, description="a table")
 
 

@@ -80,11 +80,11 @@ def import_file(
         The file or what it would make of the table is refused, by cell address; nothing has changed.
     """
     files = folder.load()
-    before = files.card.imports.get(path.name, Import())
+    before = getattr(files.card.imports, table).get(path.name, Import())
     mapping = dict(before.columns) | dict(mapping or {})
     sheet = sheet or before.sheet
     knows = _knows(files, table)
-    found = find_table(read_sheets(path), sheet, mapping, knows)
+    found = find_table(read_sheets(path), sheet, mapping, knows, ("imports", table, path.name))
     old = _table(files, table)
     new = whole(found, TABLES[table], old) if take_whole or old is None else merged(found, old, knows)
     after = _with(files, table, new)
@@ -92,9 +92,9 @@ def import_file(
     text = files.card_text
     for theirs, ours in mapping.items():
         if before.columns.get(theirs) != ours:
-            text = with_value(text, ["imports", path.name, "columns", theirs], ours)
+            text = with_value(text, ["imports", table, path.name, "columns", theirs], ours)
     if sheet != before.sheet:
-        text = with_value(text, ["imports", path.name, "sheet"], sheet)
+        text = with_value(text, ["imports", table, path.name, "sheet"], sheet)
     save = folder.save_storeys if table == "storeys" else folder.save_takeoff
     files = save(files, new)
     if text != files.card_text:

@@ -94,7 +94,9 @@ class Found:
         return f"cell {address(row, source.place)}"
 
 
-def find_table(sheets: Sequence[Sheet], name: str, mapping: Mapping[str, str], knows: Knows) -> Found:
+def find_table(
+    sheets: Sequence[Sheet], name: str, mapping: Mapping[str, str], knows: Knows, key: Sequence[str] = ("imports",)
+) -> Found:
     """Find the table of levels in a file.
 
     Parameters
@@ -107,6 +109,8 @@ def find_table(sheets: Sequence[Sheet], name: str, mapping: Mapping[str, str], k
         The file's headings to this program's, with units.
     knows : callable
         What a heading of the job's table stands for.
+    key : sequence of str
+        Where the job card keeps the mapping, for messages.
 
     Raises
     ------
@@ -121,7 +125,7 @@ def find_table(sheets: Sequence[Sheet], name: str, mapping: Mapping[str, str], k
     levelled = {" ".join(theirs.split()): ours for theirs, ours in mapping.items()}
     for theirs, ours in levelled.items():
         if knows(split_heading(ours)[0]) is None:
-            where = dotted(["imports", file, "columns", theirs])
+            where = dotted([*key, "columns", theirs])
             raise InputError(CARD, where, f'got "{ours}"', "must be a heading of the job's table, with its unit")
     found = [(sheet, row) for sheet in wanted if (row := _heading_row(sheet, levelled, knows)) is not None]
     if len(found) > 1:

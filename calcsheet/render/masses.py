@@ -47,7 +47,7 @@ def _loads(loads: Sequence[Mapping[str, Any]], counted: Sequence[float], system:
         )
     )
     columns.append(words("clause", [load["clause"] for load in loads]))
-    for quantity, name in (("pressure", "load per area"), ("unit weight", "unit weight")):
+    for quantity, name in (("area load", "load per area"), ("unit weight", "unit weight")):
         held = [PLACES[load["place"]].value == quantity for load in loads]
         if any(held):
             at = f"/{key}/inputs/load/{{}}/value"

@@ -74,7 +74,7 @@ def _level(floors: Floors, found: LevelMasses, i: int) -> Line:
         f"({' + '.join(terms) or '0'}) / g",
         tuple(numbers),
         Number(float(found.mass[i]), "mass", f"result/mass/{i}"),
-        "common practice; g = 9.80665 m/s²",
+        "common practice; g = 9.80665 m/s² = 32.174 ft/s²",
     )
 
 

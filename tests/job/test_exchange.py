@@ -76,7 +76,7 @@ def test_headings_are_mapped_once_and_kept(folder, book):
     mapping = {"Floor": "level", "Seismic mass": "mass [t]"}
     done = import_file(folder, path, mapping=mapping)
     assert done.notices == ('masses.xlsx, sheet "Masses", cell C3: "Note" isn\'t known, its column is left out',)
-    assert dict(folder.load().card.imports["masses.xlsx"].columns) == mapping
+    assert dict(folder.load().card.imports.storeys["masses.xlsx"].columns) == mapping
     text = folder.load().card_text
     again = import_file(folder, path)
     assert (again.changed, folder.load().card_text) == (0, text)
@@ -87,7 +87,7 @@ def test_a_sheet_is_chosen_and_kept(folder, book):
     assert refusal(folder, path) == 'masses.xlsx: tables of levels in sheets "A", "B"; choose one with --sheet'
     assert refusal(folder, path, sheet="C") == 'masses.xlsx: no sheet "C"; must be one of "A", "B"'
     import_file(folder, path, sheet="A")
-    assert folder.load().card.imports["masses.xlsx"].sheet == "A"
+    assert folder.load().card.imports.storeys["masses.xlsx"].sheet == "A"
     assert import_file(folder, path).place == 'masses.xlsx, sheet "A"'
 
 
@@ -144,7 +144,8 @@ def test_other_refusals(folder, book):
         'masses.xlsx, sheet "M", cell C1: "mass [t]" is given in B1 as well; must be given once'
     )
     assert refusal(folder, book(M=ROWS), mapping={"Note": "remarks"}) == (
-        'job.toml, imports."masses.xlsx".columns.Note: got "remarks"; must be a heading of the job\'s table, with its unit'
+        'job.toml, imports.storeys."masses.xlsx".columns.Note: got "remarks"; '
+        "must be a heading of the job's table, with its unit"
     )
     both = [["level", "weight [kN]"], *[[level, 10 * mass] for level, mass in ROWS[1:]]]
     assert 'columns "mass [t]" and "weight [kN]"; must have exactly one of them' in refusal(folder, book(M=both))
@@ -228,6 +229,16 @@ def test_floors_are_made_and_then_set(job_folder, book):
     assert refusal(folder, book("areas.xlsx", F=less), table="floors") == (
         'areas.xlsx, sheet "F", cell B3: level "4": slab -1 m²; must be 0 or above'
     )
+
+
+def test_a_file_has_a_sheet_and_headings_for_each_table(job_folder, book):
+    folder = JobFolder(job_folder(files={"loads.csv": LOADS}))
+    path = book("all.xlsx", F=[["Floor", *FLOORS[0][1:]], *FLOORS[1:]], M=[["Floor", "m"], *ROWS[1:]])
+    import_file(folder, path, sheet="M", mapping={"Floor": "level", "m": "mass [t]"})
+    import_file(folder, path, table="floors", mapping={"Floor": "level"})
+    imports = folder.load().card.imports
+    assert (imports.storeys["all.xlsx"].sheet, imports.floors["all.xlsx"].sheet) == ("M", "")
+    assert import_file(folder, path).changed == import_file(folder, path, table="floors").changed == 0
 
 
 def test_floors_need_the_loads_that_name_their_columns(folder, book):

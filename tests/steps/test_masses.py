@@ -232,5 +232,5 @@ def test_what_was_given_goes_by_names_of_loads_levels_and_items(folder):
             assert value == (given.text if given.number is None else given.number)
     amount = found["Roof", "load “façade”, length"]
     assert (amount.number, amount.quantity) == (54.0, "length")
-    assert found["", "masses.load “slab”.value"].quantity == "pressure"
+    assert found["", "masses.load “slab”.value"].quantity == "area load"
     assert found["Roof", "other “fan” (2), weight"].number == 9.0
