@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 import re
+from html import unescape
 
 import pytest
 
 from calcsheet.render.registry import VIEWS
+from calcsheet.render.words import worked
 from calcsheet.steps.graph import Job
 
 KIP, FOOT = 4.4482216152605, 0.3048  # kN and m, exact by definition
@@ -61,6 +63,20 @@ def test_every_number_is_the_rounded_value_at_its_pointer(payloads, document):
         text = re.sub(r"\s", "", shown).replace("\u2212", "-")
         half = 0.5 * 10.0 ** -len(text.partition(".")[2])
         assert abs(found / ONE[name] - float(text)) <= half * (1 + 1e-9), (pointer, shown)
+
+
+def test_a_level_can_be_worked_out_from_its_printed_line(payloads):
+    """Its words as a formula in kip, ft and s; four printed digits a number give three that can be relied on."""
+    lines = [line for line in payloads["masses"]["lines"] if line["quantity"].startswith("Mass, ")]
+    for line, level in zip(lines, (2, 1, 0), strict=True):
+        row = worked([("/masses", line)], "US").partition("<tbody>")[2]
+        printed = [unescape(re.sub("<[^>]+>", "", cell)) for cell in re.findall("<td[^>]*>(.*?)</td>", row)]
+        formula = re.sub("storage|curtain wall|chiller <b>|safe|vault|[\u202f\u00a0]", "", printed[2])
+        for old, new in {"psf": "* 0.001", "kip": "", "ft": "", "×": "*", "½ (": "0.5 * (", "½": "0.5"}.items():
+            formula = formula.replace(old, new)
+        found = eval(formula.replace("/ g", "/ 32.174"))
+        assert found == pytest.approx(payloads["masses"]["result"]["mass"][level] / (KIP / FOOT), rel=1e-3)
+        assert float(printed[3].split("\u00a0")[0]) == pytest.approx(found, rel=1e-3)
 
 
 def test_what_is_shown(payloads, document):
