@@ -13,6 +13,12 @@ CORE = {
     "square metres": "m**2",
     "feet": "m",
     "area": "m**2",
+    "member length": "m",
+    "section size": "m",
+    "section area": "m**2",
+    "second moment": "m**4",
+    "modulus": "kN/m**2",
+    "rotational stiffness": "kN*m",
     "pressure": "kN/m**2",
     "area load": "kN/m**2",
     "unit weight": "kN/m**3",
@@ -47,6 +53,8 @@ PINT = {
     "psf": "lbf/ft**2",
     "pcf": "lbf/ft**3",
     "t·m²": "tonne*m**2",
+    "10⁶ mm⁴": "km*mm**3",  # pint takes no number in a unit
+    "·10⁶ mm⁴": "km*mm**3",
     "%": "percent",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
     "s⁻²": "s**-2",
@@ -60,7 +68,8 @@ PINT = {
 
 def in_core(symbol: str, quantity: str) -> float:
     """The factor of a unit by pint, which knows nothing of the table."""
-    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2").replace("³", "**3"))
+    powers = {"²": "**2", "³": "**3", "⁴": "**4", "·": "*"}
+    spelled = PINT.get(symbol, symbol.translate(str.maketrans(powers)))
     return REGISTRY.Quantity(1.0, spelled).to(CORE[quantity] or "dimensionless").magnitude
 
 
@@ -91,6 +100,11 @@ def test_spellings_of_a_mass(spelled):
 @pytest.mark.parametrize("spelled", ["kN/m³", "kN/m3", "kN / m^3"])
 def test_spellings_of_a_unit_weight(spelled):
     assert parse_unit(spelled, "unit weight") == parse_unit("kN/m³", "unit weight")
+
+
+@pytest.mark.parametrize("spelled", ["10⁶ mm⁴", "10^6 mm^4", "10⁶·mm⁴"])
+def test_spellings_of_a_second_moment(spelled):
+    assert parse_unit(spelled, "second moment") == parse_unit("10⁶ mm⁴", "second moment")
 
 
 def test_pounds_of_force():

@@ -6,8 +6,9 @@ from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.cautions import Cautions
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
+from calcsheet.blocks.masstakeoff import MassTakeoff
+from calcsheet.blocks.stiffnesstakeoff import StiffnessTakeoff
 from calcsheet.blocks.storeytable import StoreyTable
-from calcsheet.blocks.takeoff import MassTakeoff
 from calcsheet.blocks.whatchanged import WhatChanged
 
 __all__ = [
@@ -21,6 +22,7 @@ __all__ = [
     "ModeSolver",
     "ParticipationSummary",
     "StaticComparison",
+    "StiffnessTakeoff",
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",

@@ -9,12 +9,13 @@ import datetime as dt
 import math
 import re
 import tomllib
-from collections.abc import Iterator, Mapping, Sequence
-from typing import Annotated, Any, Literal, get_args, get_origin
+from collections.abc import Iterator, Mapping
+from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
 
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted, refusal, shown
 
 FILE = "job.toml"
 CHAIN = "storey chain"
@@ -116,13 +117,17 @@ class Directions(_Table):
 
 
 class ModelChoice(_Table):
-    """Table [model]: how the lateral stiffness is given, and the file of each matrix."""
+    """Table [model]: how the lateral stiffness is given, the file of each matrix, and that of the members taken off."""
 
     kind: Literal["storey chain", "stiffness matrix", "flexibility matrix"] = Field(
         description='"storey chain", "stiffness matrix" or "flexibility matrix"'
     )
     x: FileName = None
     y: FileName = None
+    members: Annotated[
+        Annotated[str, Field(pattern=FILE_NAME)] | None,
+        Field(description='the name of a file in the job folder, such as "members.csv"'),
+    ] = None
 
     @property
     def files(self) -> Mapping[str, str]:
@@ -304,7 +309,7 @@ def card_of(values: Mapping[str, Any]) -> Card:
     try:
         card = Card.model_validate(values)
     except ValidationError as error:
-        raise _plain(error.errors()[0]) from None
+        raise refusal(FILE, Card, error.errors()[0]) from None
     for wrong in _contradictions(card):
         raise wrong
     return card
@@ -322,53 +327,6 @@ def parse_toml(text: str) -> dict[str, Any]:
         raise InputError(FILE, place, what[:1].lower() + what[1:], "must be TOML") from None
 
 
-def dotted(keys: Sequence[str | int]) -> str:
-    """Return keys joined by points, quoted where they need it: `stiffness."half cracked".factor`."""
-    return ".".join(str(key) if re.fullmatch(r"[\w-]+", str(key), re.ASCII) else f'"{key}"' for key in keys)
-
-
-def _plain(error: Any) -> InputError:
-    """One sentence for one of pydantic's errors."""
-    place: list[str | int] = []
-    kind: Any = Card
-    allowed = "a table"
-    for key in error["loc"]:
-        fields = kind.model_fields if isinstance(kind, type) and issubclass(kind, BaseModel) else None
-        if fields is not None and key not in fields:  # an unknown key
-            return InputError(FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}")
-        place.append(key)
-        if fields is not None:
-            kind, allowed = fields[key].annotation, fields[key].description or allowed
-        else:
-            kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
-            allowed = "a table"
-            if get_origin(kind) is Annotated:
-                kind, described = get_args(kind)
-                allowed = described.description
-    found = "missing" if error["type"] == "missing" else f"got {shown(error['input'])}"
-    return InputError(FILE, dotted(place), found, f"must be {allowed}")
-
-
-def shorten(text: str) -> str:
-    """Return a text short enough for a message."""
-    return text if len(text) <= 60 else f"{text[:59]}…"
-
-
-def shown(value: object) -> str:
-    """Return a value of TOML as a message quotes it."""
-    match value:
-        case bool():
-            return "true" if value else "false"
-        case str():
-            return f'"{shorten(value)}"'
-        case int() | float() | dt.date() | dt.time():
-            return shorten(str(value))
-        case dict():
-            return "a table"
-        case _:
-            return "a list"
-
-
 def _contradictions(card: Card) -> Iterator[InputError]:
     """What is right key by key, and wrong together."""
     analysed = card.directions.analysed
@@ -382,7 +340,13 @@ def _contradictions(card: Card) -> Iterator[InputError]:
         if not chain and d in analysed and d not in card.model.files:
             allowed = f"must be {ModelChoice.model_fields[d].description}"
             yield InputError(FILE, f"model.{d}", "missing", allowed)
+    if card.model.members is not None and not chain:
+        found = f'got "{card.model.members}"'
+        yield InputError(FILE, "model.members", found, f'must be left out unless model.kind is "{CHAIN}"')
     for name, basis in card.stiffness.items():
+        if basis.own and card.model.members is not None:
+            allowed = "must be left out with model.members, which gives the stiffnesses of every set"
+            yield InputError(FILE, dotted(["stiffness", name, "own"]), "got true", allowed)
         yield from _set_basis(name, basis, analysed, chain)
     for i, other in enumerate(card.second_model):
         wanted = ("",) if other.quantity == "weight" else analysed

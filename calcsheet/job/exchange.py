@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from pathlib import Path
 
-from calcsheet.job import columns, headings, storeyfile, takeofffile
+from calcsheet.job import columns, floorfile, headings, storeycells
 from calcsheet.job.card import Import
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.folder import JobFiles, JobFolder
@@ -16,7 +16,7 @@ from calcsheet.job.rewrite import with_value
 from calcsheet.job.table import TextTable
 from calcsheet.job.workbook import read_sheets, write_workbook
 
-TABLES = {"storeys": storeyfile.FILE, "floors": takeofffile.FLOORS}
+TABLES = {"storeys": storeycells.FILE, "floors": floorfile.FLOORS}
 """The tables that a sheet can be brought into."""
 
 
@@ -125,11 +125,13 @@ def export_file(folder: JobFolder, path: Path) -> tuple[str, ...]:
         A table can't be read, or the file can't be written.
     """
     files = folder.load()
-    tables = {Path(storeyfile.FILE).stem: files.reading.table}
-    for name, table in files.takeoff_tables.items():
+    tables = {Path(storeycells.FILE).stem: files.reading.table}
+    for name in floorfile.FILES:
+        table = files.takeoff_tables.get(name)
         if isinstance(table, InputError):
             raise table
-        tables[Path(name).stem] = table
+        if table is not None:
+            tables[Path(name).stem] = table
     write_workbook(path, tables)
     return tuple(tables)
 
@@ -138,11 +140,11 @@ def _knows(files: JobFiles, table: str) -> Knows:
     """What headings stand for in a table of the job."""
     if table == "storeys":
         return lambda name: headings.known(name, name, files.card)
-    loads = files.takeoff_tables.get(takeofffile.LOADS)
+    loads = files.takeoff_tables.get(floorfile.LOADS)
     if not isinstance(loads, TextTable):
         what = "no loads.csv in the job folder"
         raise loads or InputError("", "", what, "make it first: the columns of floors.csv are named after its loads")
-    wanted = takeofffile.floor_columns(loads, files.card)
+    wanted = floorfile.floor_columns(loads, files.card)
     return lambda name: columns.known(name, wanted)
 
 
@@ -158,14 +160,13 @@ def _table(files: JobFiles, table: str) -> TextTable | None:
 def _with(files: JobFiles, table: str, new: TextTable) -> JobFiles:
     if table == "storeys":
         return files.with_storeys(new)
-    tables = {**files.takeoff_tables, new.file: new}
-    return replace(files, takeoff_tables=tables).with_storeys(files.reading.table)
+    return files.with_takeoff(new)
 
 
 def _problems(files: JobFiles, table: str) -> tuple[CellProblem, ...]:
     if table == "storeys":
         return files.reading.problems
-    return () if files.takeoff is None else files.takeoff.problems[TABLES[table]]
+    return () if files.floors is None else files.floors.problems[TABLES[table]]
 
 
 def _refuse_worse(

@@ -8,14 +8,16 @@ from pathlib import Path
 
 from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
-from calcsheet.job import storeyfile, textfile
+from calcsheet.job import storeycells, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import CHAIN, Card, parse_card
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import StoreyReading, read_frame, read_storeys
+from calcsheet.job.floorfile import FILES as FLOOR_FILES
+from calcsheet.job.floorfile import FloorReading, read_floors
+from calcsheet.job.memberfile import MemberReading, member_files, read_members
+from calcsheet.job.storeycells import read_frame
+from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable, parse_table
-from calcsheet.job.takeofffile import FILES as TAKEOFF_FILES
-from calcsheet.job.takeofffile import TakeoffReading, read_takeoff
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
 
 
@@ -42,9 +44,11 @@ class JobFiles:
     basis_problem : str
         Why there is none, or empty: all else can be calculated without one.
     takeoff_tables : mapping of str to TextTable or InputError
-        By file, the tables of the mass take-off that there are; or why one is no table.
-    takeoff : TakeoffReading or None
+        By file, the tables of the two take-offs that there are; or why one is no table.
+    floors : FloorReading or None
         The mass take-off, with its problems or the floors; None where the folder has none of its files.
+    members : MemberReading or None
+        The stiffness take-off, with its problems or the members; None where the folder has no table of members.
     """
 
     card: Card
@@ -56,13 +60,20 @@ class JobFiles:
     basis: Basis | None = None
     basis_problem: str = ""
     takeoff_tables: Mapping[str, TextTable | InputError] = field(default_factory=dict)
-    takeoff: TakeoffReading | None = None
+    floors: FloorReading | None = None
+    members: MemberReading | None = None
 
     def with_storeys(self, table: TextTable, card: Card | None = None) -> JobFiles:
         """The files with another storey table, or another card, and all that is read anew with it."""
-        card = card or self.card
-        takeoff = _takeoff(self.takeoff_tables, card, table)
-        return replace(self, reading=read_storeys(table, card, self.matrices, takeoff), takeoff=takeoff)
+        card, tables = card or self.card, self.takeoff_tables
+        floors, members = _takeoffs(tables, card, table)
+        reading = read_storeys(table, card, self.matrices, floors, members)
+        return replace(self, card=card, reading=reading, floors=floors, members=members)
+
+    def with_takeoff(self, table: TextTable) -> JobFiles:
+        """The files with another table of a take-off, and all that is read anew with it."""
+        changed = replace(self, takeoff_tables={**self.takeoff_tables, table.file: table})
+        return changed.with_storeys(self.reading.table)
 
     @property
     def problems(self) -> tuple[str, ...]:
@@ -94,17 +105,27 @@ class JobFolder:
         card_file = self._read(job_card.FILE, f"`calcsheet new {self.path}` makes one")
         card = parse_card(card_file.text)
         stamps: dict[str, Stamp | None] = {job_card.FILE: card_file.stamp}
-        storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
+        storeys = self._table(storeycells.FILE, "must have a row for each level", stamps)
         matrices = {
             d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
             for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
         }
-        tables = self._takeoff_tables(stamps)
-        takeoff = _takeoff(tables, card, storeys)
-        reading = read_storeys(storeys, card, matrices, takeoff)
+        tables = self._takeoff_tables(card, stamps)
+        floors, members = _takeoffs(tables, card, storeys)
+        reading = read_storeys(storeys, card, matrices, floors, members)
         basis, problem = self._basis(card, stamps)
         return JobFiles(
-            card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem, tables, takeoff
+            card=card,
+            card_text=card_file.text,
+            card_encoding=card_file.encoding,
+            reading=reading,
+            matrices=matrices,
+            stamps=stamps,
+            basis=basis,
+            basis_problem=problem,
+            takeoff_tables=tables,
+            floors=floors,
+            members=members,
         )
 
     def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
@@ -126,14 +147,13 @@ class JobFolder:
         NotSavedError
             It can't be written.
         """
-        stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
+        stamps = self._write(storeycells.FILE, table.content(), files.stamps, overwrite)
         return replace(files.with_storeys(table), stamps=stamps)
 
     def save_takeoff(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
-        """Write a table of the mass take-off and read anew what builds on it; arguments and errors of `save_storeys`."""
+        """Write a table of a take-off and read anew what builds on it; arguments and errors of `save_storeys`."""
         stamps = self._write(table.file, table.content(), files.stamps, overwrite)
-        tables = {**files.takeoff_tables, table.file: table}
-        return replace(replace(files, takeoff_tables=tables).with_storeys(files.reading.table), stamps=stamps)
+        return replace(files.with_takeoff(table), stamps=stamps)
 
     def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
         """Write the job card and read everything anew under it.
@@ -150,7 +170,7 @@ class JobFolder:
         kept = {name: stamp for name, stamp in stamps.items() if name not in before}
         basis, problem = self._basis(card, kept)
         files = files.with_storeys(files.reading.table, card)
-        return replace(files, card=card, card_text=text, stamps=kept, basis=basis, basis_problem=problem)
+        return replace(files, card_text=text, stamps=kept, basis=basis, basis_problem=problem)
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
@@ -168,10 +188,10 @@ class JobFolder:
         except InputError as error:
             return None, str(error)
 
-    def _takeoff_tables(self, stamps: dict[str, Stamp | None]) -> dict[str, TextTable | InputError]:
-        """The tables of the mass take-off that there are; one that comes later is noticed by its state."""
+    def _takeoff_tables(self, card: Card, stamps: dict[str, Stamp | None]) -> dict[str, TextTable | InputError]:
+        """The tables of the take-offs that there are; one that comes later is noticed by its state."""
         tables: dict[str, TextTable | InputError] = {}
-        for name in TAKEOFF_FILES:
+        for name in (*FLOOR_FILES, *member_files(card)):
             stamps[name] = textfile.stamp(self.path / name)
             if stamps[name] is not None:
                 try:
@@ -199,8 +219,14 @@ class JobFolder:
         return parse_table(source, name)
 
 
-def _takeoff(tables: Mapping[str, TextTable | InputError], card: Card, storeys: TextTable) -> TakeoffReading | None:
-    """The mass take-off, where the folder has a file of it or the card asks for it."""
-    if not tables and card.masses is None:
-        return None
-    return read_takeoff(tables, card, read_frame(storeys, card))
+def _takeoffs(
+    tables: Mapping[str, TextTable | InputError], card: Card, storeys: TextTable
+) -> tuple[FloorReading | None, MemberReading | None]:
+    """The take-offs of masses and of stiffnesses, each where the folder has it or the card asks for it."""
+    frame = read_frame(storeys, card)
+    has_floors = card.masses is not None or not tables.keys().isdisjoint(FLOOR_FILES)
+    has_members = card.model.members is not None or member_files(card)[0] in tables
+    return (
+        read_floors(tables, card, frame) if has_floors else None,
+        read_members(tables, card, frame) if has_members else None,
+    )

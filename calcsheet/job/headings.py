@@ -119,7 +119,7 @@ def read_headings(table: TextTable, card: Card) -> Headings:
 
 def needed_stiffness(card: Card) -> dict[str, tuple[str, str | None]]:
     """Return the stiffness columns needed: key -> direction, set (None: what factors apply to)."""
-    if card.model.kind != CHAIN:
+    if card.model.kind != CHAIN or card.model.members is not None:
         return {}
     sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
     return {stiffness_key(d, name): (d, name) for name in sets for d in card.directions.analysed}

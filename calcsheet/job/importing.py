@@ -9,12 +9,12 @@ from typing import Protocol
 
 from calcsheet.job import table as text_table
 from calcsheet.job.card import FILE as CARD
-from calcsheet.job.card import dotted, shorten
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import LEVEL, heading_unit, split_heading
 from calcsheet.job.numbers import decimal_mark, format_number, is_ambiguous, parse_number
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
+from calcsheet.job.wording import dotted, shorten
 from calcsheet.job.workbook import Cell, Sheet, address
 from calcsheet.units import Unit
 

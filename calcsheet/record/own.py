@@ -10,6 +10,7 @@ from typing import Any
 import bleach
 
 from calcsheet.record.parts import Own
+from calcsheet.record.tokens import without_scripts
 
 TAGS = frozenset(
     "a abbr b br caption code col colgroup div em h3 h4 h5 h6 hr i li ol p pre s small span strong sub sup table tbody "
@@ -19,7 +20,6 @@ IMAGES = ("image/png", "image/jpeg")
 HTML = "text/html"
 PLAIN = "text/plain"
 COLOUR_CODES = re.compile(r"\x1b\[[0-9;]*m")
-NOT_WORDS = re.compile(r"<(script|style)\b.*?</\1\s*>", re.DOTALL | re.IGNORECASE)
 NOT_BASE64 = re.compile(r"[^A-Za-z0-9+/=]")
 
 
@@ -59,7 +59,7 @@ def _output(output: Mapping[str, str]) -> str:
             return f'<p><img alt="{escape(output[PLAIN])}" src="data:{kind};base64,{data}"></p>'
     if HTML in output:
         return bleach.clean(
-            NOT_WORDS.sub("", output[HTML]),
+            without_scripts(output[HTML]),
             tags=TAGS,
             attributes={"td": ["colspan", "rowspan"], "th": ["colspan", "rowspan"]},
             strip=True,

@@ -1,9 +1,13 @@
-"""The JSON Schema of a record, made from the types that its steps take and give."""
+"""The JSON Schema of a record, made from the types that its steps take and give.
+
+``python -m calcsheet.record.schema > calcsheet/record/record.schema.json`` writes it anew.
+"""
 
 from __future__ import annotations
 
 import dataclasses
 import json
+import sys
 import types
 from collections.abc import Iterator, Mapping
 from functools import cache
@@ -60,6 +64,11 @@ def schema() -> Schema:
         for step in STEPS.values()
     ]
     return {"$schema": DIALECT, "title": "Calculation record", **record, "$defs": dict(sorted(made.defs.items()))}
+
+
+def as_text() -> str:
+    """The schema as the text of its file."""
+    return json.dumps(schema(), ensure_ascii=False, indent=1) + "\n"
 
 
 def refusal(record: Any) -> str:
@@ -158,7 +167,8 @@ MOST_PARTS = 2000
 
 def _comment() -> Schema:
     texts = ("revision", "by", "where", "comment", "reply", "replied_by", "closed_by")
-    dates = dict.fromkeys(("date", "replied_on", "closed_on"), {"anyOf": [DATE, {"type": "null"}, {"const": ""}]})
+    maybe = {"anyOf": [DATE, {"type": "null"}, {"const": ""}]}
+    dates = {key: maybe for key in ("date", "replied_on", "closed_on")}
     return _object({"number": {"type": "integer", "minimum": 1}, **dict.fromkeys(texts, TEXT), **dates})
 
 
@@ -166,6 +176,7 @@ class _Made:
     """Schemas of types; each record type is defined once, under its name."""
 
     def __init__(self) -> None:
+        self.names: dict[type, str] = {}
         self.defs: dict[str, Schema] = {"numbers": {"anyOf": [{"type": "number"}, _array({"$ref": "#/$defs/numbers"})]}}
 
     def of(self, hint: Any) -> Schema:
@@ -197,8 +208,10 @@ class _Made:
         return {"$ref": f"#/$defs/{hint.__name__}"}
 
     def _defined(self, hint: Any) -> Schema:
-        name = hint.__name__
-        if name not in self.defs:
+        if hint not in self.names:
+            # two records may share a name: the later one's says where it is from
+            free = hint.__name__ not in self.defs
+            name = self.names[hint] = hint.__name__ if free else f"{hint.__module__.rpartition('.')[2]}.{hint.__name__}"
             self.defs[name] = {}  # a type may hold its own kind
             hints, kind = get_type_hints(hint), getattr(hint, "kind", None)
             members = {f.name: self.of(hints[f.name]) for f in dataclasses.fields(hint)}
@@ -206,7 +219,7 @@ class _Made:
             tag = {} if kind is None else {"kind": {"const": kind}}
             needed = {key: value for key, value in members.items() if key not in given}
             self.defs[name] = _object(tag | needed, {key: members[key] for key in members if key in given})
-        return {"$ref": f"#/$defs/{name}"}
+        return {"$ref": f"#/$defs/{self.names[hint]}"}
 
 
 PLAIN: Mapping[Any, Schema] = {
@@ -220,3 +233,8 @@ PLAIN: Mapping[Any, Schema] = {
 
 def _has_default(field: dataclasses.Field[Any]) -> bool:
     return field.default is not dataclasses.MISSING or field.default_factory is not dataclasses.MISSING
+
+
+if __name__ == "__main__":
+    sys.stdout.reconfigure(encoding="utf-8")  # type: ignore[union-attr]
+    sys.stdout.write(as_text())

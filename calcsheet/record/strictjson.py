@@ -111,4 +111,4 @@ def _unicode(text: str) -> None:
         try:
             text.encode()
         except UnicodeEncodeError:
-            raise _Refused(f"its data hold text that is not Unicode: {ascii(text[:40])}") from None
+            raise _Refused(f"its data hold text that is not Unicode: {text[:40]!a}") from None

@@ -58,3 +58,17 @@ def attributes(tag: str) -> Mapping[str, str]:
         for name, *values in ATTRIBUTE.findall(tag, start.end()):
             found.setdefault(name.lower(), unescape("".join(values)))
     return found
+
+
+def without_scripts(html: str) -> str:
+    """HTML without its scripts and styles, content and all: what they hold is no words."""
+    kept, left_out = [], ""
+    for token in tokens(html):
+        name = name_of(token)
+        if not left_out and name not in RAW:
+            kept.append(token)
+        elif not left_out:
+            left_out = name
+        elif name == f"/{left_out}":
+            left_out = ""
+    return "".join(kept)

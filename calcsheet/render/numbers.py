@@ -74,5 +74,5 @@ def exponent(value: float, at: str) -> str:
 
 def heading(name: str, quantity: str, system: str) -> str:
     """A column's heading with its unit: "mass [t]"."""
-    symbol = display(quantity, system).symbol
+    symbol = display(quantity, system).symbol.lstrip("·")  # a dot parts a power of ten from the number before it
     return f"{name} [{symbol}]" if symbol else name

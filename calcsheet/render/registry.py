@@ -15,6 +15,7 @@ from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plot import PLOT
+from calcsheet.render.stiffnesstakeoff import MEMBERS, STIFFNESSES
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 
@@ -23,6 +24,8 @@ VIEWS: Mapping[str, View] = {
     for view in (
         CARD,
         MASSES,
+        STIFFNESSES,
+        MEMBERS,
         STOREYS,
         MODES,
         PLOT,
@@ -36,3 +39,4 @@ VIEWS: Mapping[str, View] = {
         CHANGES,
     )
 }
+"""Every view by its name."""

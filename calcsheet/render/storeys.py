@@ -55,6 +55,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         at = f"/{key}/result/weight_per_area"
         columns.append(values("weight per area", sums["weight_per_area"], "pressure", system, at, order=roof_first))
     matrices = []
+    members = payloads["card"]["inputs"]["model"].get("members")
     for i, named in enumerate(given["stiffness"]):
         for direction, lateral in named["lateral"].items():
             at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", f"stiffness {direction}"
@@ -63,7 +64,13 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             if lateral["kind"] == "storey chain":
                 columns.append(
                     values(
-                        title, lateral["storey"], "stiffness", system, f"{at}/storey", order=roof_first, as_given=True
+                        title,
+                        lateral["storey"],
+                        "stiffness",
+                        system,
+                        f"{at}/storey",
+                        order=roof_first,
+                        as_given=not members,
                     )
                 )
             else:
@@ -79,6 +86,10 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             "elevation " + number(given["base_elevation"], "elevation", system, f"/{key}/inputs/base_elevation"),
         ),
     ]
+    if members is not None:
+        rows.append(
+            ("storey stiffnesses", f"taken off from {escape(members)}, before the factors of the stiffness sets")
+        )
     rows += [
         (
             f'stiffness set "{named["name"]}"',

@@ -116,6 +116,35 @@ CAUTIONS: Mapping[str, Why] = {
         "Two sets of masses in one record leave it open which of them the results stand for.",
         "The storey table takes over the take-off's masses, or the difference is explained.",
     ),
+    # ---- stiffness take-off
+    "walls-by-storey": Why(
+        "A wall that bends over its whole height has no stiffness of one storey alone: the sum of storey stiffnesses misleads.",
+        "Such walls are modelled as cantilever sticks, or the lateral stiffness matrix of the frame is given.",
+    ),
+    "flexible-beams": Why(
+        "With flexible beams a storey's stiffness depends on the storeys around it.",
+        "The lateral stiffness matrix or the flexibility of the whole frame is taken from a frame analysis.",
+    ),
+    "rigid-beams": Why(
+        "Joints that turn make columns softer than their stiffness between fixed ends.",
+        "Beam sections and spans are given, so that the restraint is counted, or the upper bound is justified.",
+    ),
+    "d-values-one-storey": Why(
+        "The formula counts on columns above that share the beams' restraint.",
+        "A single storey is worked out as a portal frame, or from a frame analysis.",
+    ),
+    "reduced-twice": Why(
+        "Factors that multiply may soften sections for cracking twice, which lowers demand and raises drift.",
+        "Cracking is put either into the members or into the stiffness set, and the other is kept at 1.",
+    ),
+    "no-ground-of-members": Why(
+        "A reduction of stiffness changes demand and drift, and rests on a clause or a section analysis.",
+        "The clause or calculation behind each factor is written in the row.",
+    ),
+    "skew-members": Why(
+        "Members at an angle turn a push in x into a force in y.",
+        "The coupling is shown to be small, or rigid floors with lines of resistance are used.",
+    ),
     # ---- modes and participation
     "repeated-modes": Why(
         "Single shapes of a repeated frequency are arbitrary, so values of one of them alone mean nothing.",

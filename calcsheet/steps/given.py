@@ -8,9 +8,11 @@ from typing import Any
 
 from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.core.floors import PLACES
-from calcsheet.job.card import dotted
+from calcsheet.job.sectionfile import HEADINGS
+from calcsheet.job.wording import dotted
 from calcsheet.steps.headlines import Payloads
 from calcsheet.steps.step import Payload
+from calcsheet.steps.stiffnesslines import along_words
 
 PLAIN = "ratio"
 """Quantity of a number that stands as it was typed."""
@@ -30,6 +32,18 @@ OF_FLOORS = {
 }
 OF_OTHER = {"weight": "weight", "x": "length", "y": "length", "plan_x": "length", "plan_y": "length"}
 """Quantities of floors and of masses with places of their own."""
+OF_PARTS: Mapping[str, Mapping[str, str]] = {
+    "material": {"modulus": "modulus", "shear_modulus": "modulus"},
+    "section": {
+        **dict.fromkeys(("depth", "width", "thickness"), "section size"),
+        **dict.fromkeys(("area", "shear_area"), "section area"),
+        **dict.fromkeys(("major", "minor"), "second moment"),
+    },
+    "member": dict.fromkeys(("height", "run", "spans"), "length"),
+}
+"""What a stiffness take-off is made from, with the quantities of its numbers; the others stand as they were typed."""
+SPOKEN = {field: heading for heading, field in HEADINGS.items()} | {"factor": "stiffness factor"}
+"""Fields of sections and members that go by other words than their own."""
 OF_LATERAL = {"storey chain": "stiffness", "stiffness matrix": "stiffness", "flexibility matrix": "flexibility"}
 """Quantity of the numbers of a lateral stiffness, by its kind."""
 OF_SECOND_MODEL = {"period": "period", "weight": "weight", "base shear": "force"}
@@ -177,6 +191,26 @@ def _saying(given: Iterable[Given]) -> Iterator[Given]:
     return (g for g in given if g.number)
 
 
+# ---- stiffness take-off ----------------------------------------------------------------------------------------------
+
+
+def _stiffnesses(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    """Materials, sections and members by name; storey heights, factors of sets and origins are given elsewhere."""
+    inputs = payload["inputs"]
+    for part, quantities in OF_PARTS.items():
+        for i, item in enumerate(inputs[f"{part}s"]):
+            of, at = f"{part} “{item['name']}”", f"/{key}/inputs/{part}s/{i}"
+            for field, value in item.items():
+                if field not in ("name", "first", "last", "along"):
+                    words = f"{of}, {SPOKEN.get(field, _spoken(field))}"
+                    quantity = quantities.get(field, PLAIN)
+                    yield from _leaves((key, of, field), value, f"{at}/{field}", quantity, words)
+            if part == "member":
+                ends = [level for j, level in enumerate(inputs["level"]) if j in (item["first"], item["last"])]
+                yield _leaf(dotted((key, of, "storeys")), f"{of}, storeys", " to ".join(ends), f"{at}/first")
+                yield _leaf(dotted((key, of, "along")), f"{of}, direction", along_words(item["along"]), f"{at}/along")
+
+
 # ---- job card, basis, options ----------------------------------------------------------------------------------------
 
 
@@ -227,6 +261,7 @@ def _options(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
 INPUTS: Mapping[str, Callable[[str, Payload, bool], Iterator[Given]]] = {
     "card": _card,
     "masses": _masses,
+    "stiffness take-off": _stiffnesses,
     "storeys": _storeys,
     "basis": _basis,
 }

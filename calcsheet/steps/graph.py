@@ -17,6 +17,7 @@ import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
+from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
@@ -30,7 +31,9 @@ LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
 
 
-FROM_FILES = ("card", "masses", "storeys", "basis")
+MASSES, STIFFNESSES = "masses", "stiffness take-off"
+"""The take-offs, which may feed the storeys."""
+FROM_FILES = ("card", MASSES, STIFFNESSES, "storeys", "basis")
 """Steps whose inputs are the job's files."""
 
 
@@ -280,8 +283,11 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
-        if self.files is not None and self.files.card.masses is not None:  # its masses are to be traced
-            self._nodes.setdefault("masses", _Node(STEPS["masses"], {}, None))
+        card = None if self.files is None else self.files.card
+        if card is not None:  # what the storeys are made from is to be traced
+            for key, feeds in ((MASSES, card.masses), (STIFFNESSES, card.model.members)):
+                if feeds is not None:
+                    self._nodes.setdefault(key, _Node(STEPS[key], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -327,11 +333,16 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        if key == "masses":
-            if self.files.takeoff is None:
+        if key == MASSES:
+            if self.files.floors is None:
                 raise _RefusedError("no floors.csv and loads.csv in the job folder; the mass take-off needs both")
-            _refuse_any(self.files.takeoff.messages)
-            return self.files.takeoff.floors
+            _refuse_any(self.files.floors.messages)
+            return self.files.floors.floors
+        if key == STIFFNESSES:
+            if self.files.members is None:
+                raise _RefusedError(f"no {MEMBERS} in the job folder; the stiffness take-off needs it")
+            _refuse_any(self.files.members.messages)
+            return self.files.members.takeoff
         _refuse_any(self.files.problems)
         return self.files.reading.storeys
 

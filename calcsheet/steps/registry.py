@@ -15,9 +15,23 @@ from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
 from calcsheet.steps.step import Step
+from calcsheet.steps.stiffnesstakeoff import STIFFNESSES
 from calcsheet.steps.storeys import STOREYS
 
 STEPS: Mapping[str, Step] = {
     step.kind: step
-    for step in (CARD, MASSES, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, EARLIER)
+    for step in (
+        CARD,
+        MASSES,
+        STIFFNESSES,
+        STOREYS,
+        MODES,
+        PARTICIPATION,
+        BASIS,
+        DEMAND,
+        PEAKS,
+        DRIFT,
+        ACTIONS,
+        EARLIER,
+    )
 }

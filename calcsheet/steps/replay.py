@@ -111,17 +111,13 @@ def _without_words(stored: Outcome, outcome: Outcome) -> Iterator[tuple[str, str
 
 def _misplaced(stored: Outcome, payload: Payload) -> Iterator[tuple[str, str, str, str]]:
     """Numbers in words that are not what stands at their place in the payload."""
-    for part, group in (("lines", stored.lines), ("cautions", stored.cautions)):
-        for i, item in enumerate(group):
-            for number in (*item.numbers, *((item.result,) if isinstance(item, Line) else ())):
-                held = _at(payload, number)
-                if not isinstance(held, int | float) or abs(held - number.value) > 1e-12 + 1e-7 * abs(number.value):
-                    yield (
-                        f"/{part}/{i}",
-                        f"{number.value:.12g}",
-                        f"{held!r} at {number.at}",
-                        "must be what stands at its place",
-                    )
+    said = [(f"/lines/{i}", (*line.numbers, line.result)) for i, line in enumerate(stored.lines)]
+    said += [(f"/cautions/{i}", caution.numbers) for i, caution in enumerate(stored.cautions)]
+    for place, numbers in said:
+        for number in numbers:
+            held = _at(payload, number)
+            if not isinstance(held, int | float) or abs(held - number.value) > 1e-12 + 1e-7 * abs(number.value):
+                yield place, f"{number.value:.12g}", f"{held!r} at {number.at}", "must be what stands at its place"
 
 
 def _at(payload: Payload, number: Number) -> Any:

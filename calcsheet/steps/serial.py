@@ -70,6 +70,8 @@ def from_json(hint: Any, data: Any) -> Any:
     if isinstance(hint, type) and issubclass(hint, BaseModel):
         return hint.model_validate_json(json.dumps(data))
     if dataclasses.is_dataclass(hint) and isinstance(hint, type):
+        if not isinstance(data, Mapping):
+            raise TypeError(f"{hint.__name__}: got {type(data).__name__}; must be an object")
         hints = get_type_hints(hint)
         given = [f for f in dataclasses.fields(hint) if f.name in data or not _optional(f)]
         return hint(**{f.name: from_json(hints[f.name], data[f.name]) for f in given})
@@ -85,7 +87,8 @@ def _chosen(args: tuple[Any, ...], data: Any) -> Any:
     members = [a for a in args if a is not type(None)]
     if len(members) == 1:
         return members[0]
-    return next(a for a in members if getattr(a, "kind", None) == data["kind"])
+    kinds = {getattr(a, "kind", None): a for a in members}
+    return kinds[data["kind"]]
 
 
 def fingerprint(data: Any) -> str:

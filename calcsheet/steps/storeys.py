@@ -14,8 +14,8 @@ JUMP = 20.0
 """Ratio of neighbouring storeys' stiffnesses or levels' masses from which a slip of unit is suspected."""
 HEIGHTS = (2.0, 12.0)
 """Storey heights [m] outside of which a slip is suspected."""
-WEIGHTS = (5.0, 15.0)
-"""Usual weight of a level over its floor area [kN/m²] (common practice)."""
+WEIGHTS = (3.0, 15.0)
+"""Usual weight of a level over its floor area [kN/m²], from steel and timber with light decks up (common practice)."""
 FAR = 2.0
 """Factor beyond these from which a slip of unit is suspected."""
 NAMED = 4
@@ -99,7 +99,7 @@ def unusual_weights(found: list[float], levels: tuple[str, ...], below: int = 0,
     more = f" and {len(strange) - NAMED} more" if len(strange) > NAMED else ""
     numbers = tuple(Number(found[i], "pressure", f"result/weight_per_area/{i}") for i in strange[:NAMED])
     text = (
-        f"Weight over floor area outside {low:g} to {high:g} kN/m², about 100 to 300 psf (common practice): {named}{more}; "
+        f"Weight over floor area outside {low:g} to {high:g} kN/m², about 60 to 300 psf (common practice): {named}{more}; "
         "check masses and areas."
     )
     far = sum(not low / FAR <= weight <= high * FAR for weight in found[below:])

@@ -17,6 +17,7 @@ from calcsheet.blocks import (
     ModeSolver,
     ParticipationSummary,
     StaticComparison,
+    StiffnessTakeoff,
     StoreyActions,
     StoreyTable,
 )
@@ -24,6 +25,7 @@ from calcsheet.blocks import (
 WANTED = {
     StoreyTable: JobCard,
     MassTakeoff: JobCard,
+    StiffnessTakeoff: JobCard,
     ModeSolver: StoreyTable,
     ModePlot: ModeSolver,
     ParticipationSummary: ModeSolver,

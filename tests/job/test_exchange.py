@@ -7,7 +7,7 @@ import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
-from calcsheet.job import headings, storeyfile
+from calcsheet.job import headings, storeycells
 from calcsheet.job.errors import InputError
 from calcsheet.job.exchange import export_file, import_file
 from calcsheet.job.folder import JobFolder
@@ -191,10 +191,10 @@ def test_csv_files_with_decimal_commas(folder, tmp_path):
 
 def test_the_jobs_own_decimal_comma_is_kept(job_folder, book):
     path = job_folder()
-    text = (path / storeyfile.FILE).read_text(encoding="utf-8").replace(",", ";").replace(".", ",")
-    (path / storeyfile.FILE).write_text(text, encoding="utf-8")
+    text = (path / storeycells.FILE).read_text(encoding="utf-8").replace(",", ";").replace(".", ",")
+    (path / storeycells.FILE).write_text(text, encoding="utf-8")
     import_file(JobFolder(path), book(M=ROWS))
-    assert (path / storeyfile.FILE).read_text(encoding="utf-8").splitlines()[1].split(";")[2] == "150,25"
+    assert (path / storeycells.FILE).read_text(encoding="utf-8").splitlines()[1].split(";")[2] == "150,25"
 
 
 def test_headings_two_rows_high(folder, tmp_path, book):
@@ -221,10 +221,10 @@ def test_floors_are_made_and_then_set(job_folder, book):
     folder = JobFolder(job_folder(files={"loads.csv": LOADS}))
     done = import_file(folder, book("areas.xlsx", F=FLOORS), table="floors")
     assert (done.table, done.levels) == ("floors.csv", 5)
-    assert folder.load().takeoff.floors.area.tolist() == [300.5] * 5
+    assert folder.load().floors.floors.area.tolist() == [300.5] * 5
     less = [["level", "slab [m²]"], *[[row[0], 280.25] for row in FLOORS[1:]]]
     assert import_file(folder, book("areas.xlsx", F=less), table="floors").changed == 5
-    assert folder.load().takeoff.floors.amount[:, 0].tolist() == [280.25] * 5
+    assert folder.load().floors.floors.amount[:, 0].tolist() == [280.25] * 5
     less[2][1] = -1
     assert refusal(folder, book("areas.xlsx", F=less), table="floors") == (
         'areas.xlsx, sheet "F", cell B3: level "4": slab -1 m²; must be 0 or above'
@@ -261,7 +261,7 @@ def test_tables_are_exported_and_come_back_to_the_fifteenth_digit(job_folder, tm
     import_file(folder, tmp_path / "out.xlsx", sheet="floors", table="floors", take_whole=True)
     after = folder.load()
     assert after.reading.storeys.mass.tolist() == before.reading.storeys.mass.tolist()
-    assert after.takeoff.floors.area.tolist() == [third] * 5
+    assert after.floors.floors.area.tolist() == [third] * 5
     for d in "xy":
         chains = [files.reading.storeys.stiffness[0].lateral[d].storey.tolist() for files in (before, after)]
         assert chains[0] == chains[1]

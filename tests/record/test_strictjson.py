@@ -35,11 +35,13 @@ def test_what_json_can_hold_comes_back_and_can_be_fingerprinted(value):
 @given(st.binary(max_size=200))
 @settings(max_examples=300, deadline=None)
 def test_any_bytes_are_read_or_refused_in_one_sentence(data):
+    said = "a.json: "
     try:
         rfc8785.dumps(parsed(data, "a.json"))
     except RecordError as error:
-        assert str(error).startswith("a.json: ")
-        assert "\n" not in str(error)
+        said = str(error)
+    assert said.startswith("a.json: ")
+    assert "\n" not in said
 
 
 @pytest.mark.parametrize(
@@ -62,7 +64,7 @@ def test_any_bytes_are_read_or_refused_in_one_sentence(data):
     ],
 )
 def test_what_is_refused(text, said):
-    with pytest.raises(RecordError, match="^a.json: ") as caught:
+    with pytest.raises(RecordError, match=r"^a\.json: ") as caught:
         parsed(text.encode(), "a.json")
     assert said in str(caught.value)
 

@@ -9,7 +9,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from calcsheet.record.tokens import attributes, name_of, tokens
+from calcsheet.record.tokens import attributes, name_of, tokens, without_scripts
 
 PIECES = [
     "<p>",
@@ -52,6 +52,12 @@ def test_names_and_attributes():
     tag = '<Data Value=\'/a"b\' data-unit="kN&#183;m" hidden value="/c" n=5>'
     assert attributes(tag) == {"value": '/a"b', "data-unit": "kN·m", "hidden": "", "n": "5"}
     assert attributes("text a=b") == {}
+
+
+def test_scripts_and_styles_are_left_out_with_what_they_hold():
+    assert without_scripts("a<script x>1 < 2</b></SCRIPT >b<STYLE>p {}</style><b>c</b>") == "ab<b>c</b>"
+    assert without_scripts("a<script>b") == "a"
+    assert without_scripts("a</script>b<scripture>c</scripture>") == "a</script>b<scripture>c</scripture>"
 
 
 class Parsed(HTMLParser):

@@ -126,7 +126,7 @@ def test_a_load_without_a_share():
 
 
 @pytest.mark.parametrize(
-    ("value", "levels", "asked"), [(20.0, [2, 1, 0], False), (2.0, [0, 1, 2], False), (200.0, [0, 1, 2], True)]
+    ("value", "levels", "asked"), [(20.0, [2, 1, 0], False), (0.5, [0, 1, 2], False), (200.0, [0, 1, 2], True)]
 )
 def test_weight_per_area_beyond_the_usual(value, levels, asked):
     given = floors()

@@ -130,7 +130,7 @@ def _modes(payloads: Payloads, key: str, i: int, name: str) -> Iterator[Finding]
     residual = _residuals(sheet)
     scale = np.abs(sheet.psi.T @ (sheet.mass[:, None] * sheet.psi) - np.eye(sheet.omega.size)).max()
     wrong = [
-        (f"{place}/omega/{n}", f"\u03c9 stored {sheet.omega[n]:.9g} rad/s, second route {found[n]:.9g} rad/s")
+        (f"{place}/omega/{n}", f"ω stored {sheet.omega[n]:.9g} rad/s, second route {found[n]:.9g} rad/s")
         for n in np.flatnonzero(~(apart <= CLOSE))
     ]
     wrong += [
@@ -203,8 +203,9 @@ def _participation(payloads: Payloads, key: str) -> Iterator[Finding]:
             text = f"{name.replace('_', ' ')} stored {_at(part[name], n)}, second route {_at(again, n)}"
             yield Finding(PART, DIFFERS, text, f"{place}/{name}/{n}")
         if not wrong:
-            text = f"{part['direction']}: \u0393\u2081 = {sheet.gamma[0]:.6g} \u221at, effective mass of mode 1 {sheet.gamma[0] ** 2:.6g} t"
-            yield Finding(PART, AGREES, f"{text} of {total:.6g} t, and those of all {sheet.omega.size} modes")
+            first = sheet.gamma[0]
+            text = f"Γ₁ = {first:.6g} √t, effective mass of mode 1 {first**2:.6g} t of {total:.6g} t"
+            yield Finding(PART, AGREES, f"{part['direction']}: {text}, and those of all {sheet.omega.size} modes")
 
 
 def _peaks(payloads: Payloads, key: str) -> Iterator[Finding]:
@@ -233,23 +234,23 @@ def _first_mode(sheet: Sheet, item: Mapping[str, Any], demand: Mapping[str, Any]
     roof = sheet.gamma[0] * sheet.psi[-1, 0] * ordinate / sheet.omega[0] ** 2
     wrong = []
     checks = (
-        ("ordinate", np.array(item["ordinate"], dtype=float)[:1], np.array([ordinate]), ordinate, "m/s\u00b2"),
+        ("ordinate", np.array(item["ordinate"], dtype=float)[:1], np.array([ordinate]), ordinate, "m/s²"),
         ("shear", _column(item["shear"]), shear, base, "kN"),
-        ("moment", _column(item["moment"]), moment, abs(moment[0]), "kN\u00b7m"),
+        ("moment", _column(item["moment"]), moment, abs(moment[0]), "kN·m"),
     )
     for name, stored, again, scale, unit in checks:
         for n in _off(stored, again, scale):
             at = f"{place}/{name}/{n}" + ("" if name == "ordinate" else "/0")
             wrong.append((at, f"mode 1, {name} stored {_at(stored, n)}, second route {_at(again, n)} {unit}"))
     if not abs(force.sum() - base) <= CLOSE * abs(base):
-        wrong.append((place, f"mode 1: storey forces add up to {force.sum():.9g} kN, M\u2081* S_a is {base:.9g} kN"))
+        wrong.append((place, f"mode 1: storey forces add up to {force.sum():.9g} kN, M₁* S_a is {base:.9g} kN"))
     yield from (Finding(PART, DIFFERS, text, at) for at, text in wrong)
     if not wrong:
         text = (
-            f"{item['direction']}: first mode from first principles, M\u2081* = {sheet.gamma[0] ** 2:.6g} t times S_a = "
-            f"{ordinate:.6g} m/s\u00b2 gives V\u2081 = {base:.6g} kN, which its storey forces add up to within "
-            f"{abs(force.sum() / base - 1.0) if base else 0.0:.1e}; roof displacement {1000.0 * roof:.6g} mm; stored storey shears "
-            "and moments are these"
+            f"{item['direction']}: first mode from first principles, M₁* = {sheet.gamma[0] ** 2:.6g} t times S_a = "
+            f"{ordinate:.6g} m/s² gives V₁ = {base:.6g} kN, which its storey forces add up to within "
+            f"{abs(force.sum() / base - 1.0) if base else 0.0:.1e}; roof displacement {1000.0 * roof:.6g} mm; "
+            "stored storey shears and moments are these"
         )
         yield Finding(PART, AGREES, text)
 
@@ -272,11 +273,8 @@ def _displacements(sheet: Sheet, item: Mapping[str, Any], place: str) -> Iterato
         text = f"combined displacement stored {_at(1000.0 * stored, n)} mm, second route {_at(1000.0 * again, n)} mm"
         yield Finding(PART, DIFFERS, text, f"{place}/forces/displacement/{n}")
     if not wrong:
-        yield Finding(
-            PART,
-            AGREES,
-            f"{item['direction']}: {item['rule']} of the modal displacements gives {1000.0 * again[-1]:.6g} mm at the roof, as stored",
-        )
+        text = f"{item['rule']} of the modal displacements gives {1000.0 * again[-1]:.6g} mm at the roof, as stored"
+        yield Finding(PART, AGREES, f"{item['direction']}: {text}")
 
 
 def _column(rows: list[list[float]]) -> Array:

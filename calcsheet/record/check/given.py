@@ -1,4 +1,4 @@
-"""Inputs that a record holds twice, held against each other: job card, storey table, mass take-off, basis."""
+"""Inputs that a record holds twice, held against each other: job card, storey table, take-offs, basis."""
 
 from __future__ import annotations
 
@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, Finding
-from calcsheet.record.check.takenoff import missing, taken_off
+from calcsheet.record.check.takenoff import Wrong, masses, missing, stiffnesses
 
 PART = "data"
 CLOSE = 1e-9
@@ -17,8 +17,6 @@ IN_FEET = (1.0, 0.3048, 0.3048**2)
 """What a value of the card in US units may be multiplied by: none, a length, an area."""
 
 Payloads = Mapping[str, Mapping[str, Any]]
-Wrong = tuple[str, str]
-"""Place and what is wrong there."""
 
 
 def said_twice(payloads: Payloads) -> Iterator[Finding]:
@@ -38,7 +36,9 @@ def said_twice(payloads: Payloads) -> Iterator[Finding]:
         elif payload["kind"] == "basis":
             wrong += [item for card in cards for item in _edition(key, payload["inputs"]["edition"], card)]
         elif payload["kind"] == "masses":
-            wrong += taken_off(key, payloads)
+            wrong += masses(key, payloads)
+        elif payload["kind"] == "stiffness take-off":
+            wrong += stiffnesses(key, payloads)
     wrong += missing(payloads)
     yield from (Finding(PART, DIFFERS, text, place) for place, text in wrong)
     if not wrong:

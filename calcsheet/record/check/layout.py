@@ -6,7 +6,10 @@ from collections.abc import Mapping
 from typing import Any
 
 from calcsheet.record.layout import layout_of
+from calcsheet.record.own import HTML
 from calcsheet.record.pdf import NoEngine, choose_engine
+
+MOST_CHARACTERS = 100_000
 
 
 def same_layout(record: Mapping[str, Any]) -> bool:
@@ -14,6 +17,20 @@ def same_layout(record: Mapping[str, Any]) -> bool:
     layout = record["layout"]
     here = layout_of(layout["paper"], layout["engine"])
     return layout["code"] == here["code"] and layout["libraries"] == here["libraries"]
+
+
+def too_long(record: Mapping[str, Any]) -> str:
+    """Why a record's words are too long to be printed again for an unknown sender's sake, in a clause; "" where they aren't.
+
+    Readers of markdown, equations and HTML take time that grows with the square of a text's length, where it is made to.
+    """
+    words = sum(len(part.get("words", "")) for part in record["notebook"])
+    html = sum(len(output.get(HTML, "")) for part in record["notebook"] for output in part.get("outputs", ()))
+    if max(words, html) <= MOST_CHARACTERS:
+        return ""
+    return (
+        f"{words} characters of words and {html} of HTML outputs; at most {MOST_CHARACTERS} of each are printed again"
+    )
 
 
 def same_engine(record: Mapping[str, Any]) -> bool:

@@ -17,6 +17,8 @@ FACTORS: Mapping[str, float] = {how.symbol: how.factor for pair in DISPLAY.value
 """Core units to a unit of print, by its symbol."""
 PLAIN = re.compile(r"\u2212?\d{1,3}(?:\u202f?\d{3})*(?:\.(\d{1,12}))?")
 BRACKETED = re.compile(r"\[([^\]]+)\]$")
+EVIDENCE = re.compile(r"^/[^/]+/evidence/\d+/(value|limit)$")
+"""Pointers to figures of evidence, which are always printed as powers of ten: a zero is a true one."""
 SCRIPT = re.compile(r"<script", re.IGNORECASE | re.ASCII)
 MISSING = object()
 
@@ -127,7 +129,7 @@ def wrong_with(number: Printed, value: Any, *, units_said: bool) -> str:
         return f'{shown} in "{number.unit[:20]}", which is no unit of a record'
     if number.unit and number.shown_unit and number.shown_unit != number.unit:
         return f'{shown} with unit "{number.shown_unit[:20]}", should be {number.unit}'
-    if "\u00b710" in number.text:
+    if "\u00b710" in number.text or EVIDENCE.search(number.pointer):
         should = "".join("^" if name_of(t) == "sup" else "" if name_of(t) else t for t in tokens(exponent(value, "")))
         return "" if number.text == should else f"{shown}, should be {should}"
     plain = PLAIN.fullmatch(number.text)

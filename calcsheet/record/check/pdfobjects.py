@@ -156,9 +156,8 @@ class _Same:
             elif isinstance(a, ArrayObject) and isinstance(b, ArrayObject) and len(a) == len(b):
                 pairs = zip(_entries(a), _entries(b), strict=True)
                 left += [(x, y, f"{at}/{i}") for i, (x, y) in enumerate(pairs)]
-            elif type(a) is not type(b) or a != b:
-                if not _near(a, b):
-                    wrong.append(at or "its catalogue")
+            elif (type(a) is not type(b) or a != b) and not _near(a, b):
+                wrong.append(at or "its catalogue")
         return sorted(set(wrong))
 
 

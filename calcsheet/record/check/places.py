@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
+from dataclasses import dataclass
 from html import unescape
-from typing import NamedTuple
 
 from calcsheet.record.tokens import attributes, name_of
 
@@ -12,7 +12,8 @@ HEADINGS = ("h1", "h2", "h3", "h4", "caption")
 CLOSING = tuple(f"/{name}" for name in HEADINGS)
 
 
-class Located(NamedTuple):
+@dataclass(frozen=True, slots=True)
+class Located:
     """A token with its place.
 
     Parameters

@@ -9,9 +9,9 @@ from html import unescape
 from itertools import islice
 from typing import Any
 
-from calcsheet.job.card import shorten
+from calcsheet.job.wording import shorten
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding
-from calcsheet.record.check.layout import same_layout, to_install
+from calcsheet.record.check.layout import same_layout, to_install, too_long
 from calcsheet.record.check.numbers import active, differing
 from calcsheet.record.check.places import Located, located
 from calcsheet.record.files import html_of
@@ -37,10 +37,12 @@ def html_findings(read: Read, record: Mapping[str, Any]) -> Iterator[Finding]:
         Its record in the present format.
     """
     html = read.source.decode("utf-8-sig").replace("\r\n", "\n")
-    if same_layout(record):
+    beyond = too_long(record)
+    if same_layout(record) and not beyond:
         yield from _made_again(html, html_of(record))
     else:
         yield from _by_numbers(html, record, units_said=read.record["format"] >= 2)
+        yield Finding(PART, NOT_ASSESSED, f"words, figures, equations: {beyond or to_install(record)}")
 
 
 def _made_again(found: str, made: str) -> Iterator[Finding]:
@@ -64,7 +66,6 @@ def _by_numbers(html: str, record: Mapping[str, Any], *, units_said: bool) -> It
         units = "" if units_said else ", each in one of the units of a record"
         verdict = AGREES if count else NOT_ASSESSED
         yield Finding(PART, verdict, f"{count} printed numbers are those of the data, to their last digit{units}")
-    yield Finding(PART, NOT_ASSESSED, f"words, figures, equations: {to_install(record)}")
 
 
 def compared(old: Sequence[Located], new: Sequence[Located]) -> tuple[list[tuple[str, str]], float]:
@@ -92,7 +93,7 @@ def compared(old: Sequence[Located], new: Sequence[Located]) -> tuple[list[tuple
     while end < min(len(old), len(new)) - start and _apart(old[-1 - end], new[-1 - end]) is not None:
         end += 1
     old_rest, new_rest = old[start : len(old) - end], new[start : len(new) - end]
-    wrong = []
+    wrong: list[tuple[Located, Sequence[Located], Sequence[Located]]] = []
     for here, there in _pairs(old_rest, new_rest):
         if len(here) == len(there):
             wrong += [(b, [a], [b]) for a, b in zip(here, there, strict=True) if _apart(a, b) is None]

@@ -6,7 +6,7 @@ from collections.abc import Iterator, Mapping
 from typing import Any
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding
-from calcsheet.record.check.layout import same_engine, same_layout, to_install
+from calcsheet.record.check.layout import same_engine, same_layout, to_install, too_long
 from calcsheet.record.check.pdfobjects import compared
 from calcsheet.record.files import paged
 from calcsheet.record.recordfile import Read
@@ -27,8 +27,9 @@ def pdf_findings(read: Read, record: Mapping[str, Any]) -> Iterator[Finding]:
     record : mapping
         Its record in the present format.
     """
-    if not (same_layout(record) and same_engine(record)):
-        yield Finding(PART, NOT_ASSESSED, f"pages: {to_install(record)}")
+    beyond = too_long(record)
+    if beyond or not (same_layout(record) and same_engine(record)):
+        yield Finding(PART, NOT_ASSESSED, f"pages: {beyond or to_install(record)}")
         return
     made = paged(record, read.name, read.data)
     if read.source == made:

@@ -86,7 +86,7 @@ def test_the_unit_beside_a_number_and_in_its_column_is_read():
 
 @pytest.mark.parametrize("value", [3.14e-15, 1e-10, 0.0, 6.6e-9])
 def test_powers_of_ten(value):
-    (shown,) = printed(exponent(value, "/a"))
+    (shown,) = printed(exponent(value, "/modes/evidence/3/value"))
     assert wrong_with(shown, value, units_said=True) == ""
     assert wrong_with(shown, value * 1.2 + 1e-9, units_said=True)
 

@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-import dataclasses
 import json
 import re
+from dataclasses import replace
 
 import pytest
 
@@ -51,7 +51,7 @@ def test_each_printed_number_changed_in_turn_is_named_by_its_pointer(made):
     changed = 0
     for i, at in enumerate(made):
         if at.pointer and re.search(r"\d", at.token) and not at.token.startswith("<"):
-            wrong, _ = compared([*made[:i], at._replace(token=one_digit(at.token)), *made[i + 1 :]], made)
+            wrong, _ = compared([*made[:i], replace(at, token=one_digit(at.token)), *made[i + 1 :]], made)
             assert len(wrong) == 1
             place, text = wrong[0]
             assert place.endswith(at.pointer)
@@ -105,7 +105,7 @@ def test_drawings_may_differ_by_what_cannot_be_seen(made):
 
     def moved(by):
         token = path.token.replace(f' d="M {number}', f' d="M {float(number) + by:.6f}', 1)
-        return compared([*made[:i], path._replace(token=token), *made[i + 1 :]], made)
+        return compared([*made[:i], replace(path, token=token), *made[i + 1 :]], made)
 
     wrong, by = moved(0.01)
     assert wrong == []
@@ -119,7 +119,7 @@ def test_text_in_a_drawing_has_no_tolerance(made):
     i, at = next(
         (i, at) for i, at in enumerate(made) if at.inside == "svg" and re.fullmatch(r"\s*\d\.\d+\s*", at.token)
     )
-    wrong, _ = compared([*made[:i], at._replace(token=one_digit(at.token)), *made[i + 1 :]], made)
+    wrong, _ = compared([*made[:i], replace(at, token=one_digit(at.token)), *made[i + 1 :]], made)
     assert len(wrong) == 1
 
 
@@ -171,4 +171,4 @@ def test_a_level_called_script_stays_text(html, record, document):
 
 def test_the_print_is_made_from_the_data_alone(html, record):
     assert html_of(json.loads(json.dumps(record))) == html
-    assert dataclasses.asdict(record_in(html.encode(), "x"))["record"] == record
+    assert record_in(html.encode(), "x").record == record

@@ -86,7 +86,9 @@ def test_a_forger_who_makes_all_fingerprints_anew_is_found_by_recalculation(reco
     found = report.as_json()["parts"]
     assert found["signatures"] == AGREES or "status" in report.words()
     assert report.exit_code == 1
-    assert any(f.verdict == DIFFERS and (f.part in ("replay", "second route") or "inputs" in f.place) for f in report.findings)
+    assert any(
+        f.verdict == DIFFERS and (f.part in ("replay", "second route") or "inputs" in f.place) for f in report.findings
+    )
 
 
 def test_a_difference_names_its_step(record):

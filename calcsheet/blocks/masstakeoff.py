@@ -8,7 +8,7 @@ from calcsheet.job import edits
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
-from calcsheet.steps.graph import Job
+from calcsheet.steps.graph import MASSES, Job
 from calcsheet.units import UNITS
 
 
@@ -35,10 +35,10 @@ class MassTakeoff(Block):
     def __init__(self, job: JobCard) -> None:
         must_be(self, job, JobCard)
         opened = Job.open(job.job.folder.path)  # read anew where its files changed
-        super().__init__(opened, opened.attach("masses", None))
+        super().__init__(opened, opened.attach(MASSES, None))
 
-    def adopt(self, digits: int = 6) -> None:
-        """Write the masses into the mass or weight column of storeys.csv, rounded to `digits` significant digits.
+    def adopt(self) -> None:
+        """Write the masses into the mass or weight column of storeys.csv, once, to six significant digits.
 
         Raises
         ------
@@ -55,10 +55,9 @@ class MassTakeoff(Block):
             if self.job.payload("card")["inputs"]["masses"] is not None:
                 found_, allowed = "the storeys take their masses from floors.csv already", "there is nothing to adopt"
                 raise InputError("job.toml", "masses.source", found_, allowed)
-            if column is None or column.unit is None:
+            if column is None:
                 wanted = f'"mass [{UNITS["mass"][0].symbol}]" or "weight [{UNITS["weight"][0].symbol}]"'
                 raise InputError(reading.table.file, "", "no column for masses", f"must have one, such as {wanted}")
-            shown = [float(f"{v / column.unit.factor:.{digits}g}") for v in found[column.key]]
-            return edits.set_numbers(reading, column.key, dict(zip(given["level"], shown, strict=True)))
+            return edits.set_columns(reading, {column.key: dict(zip(given["level"], found[column.key], strict=True))})
 
         self.job.edit(change)

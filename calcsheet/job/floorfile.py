@@ -12,19 +12,20 @@ import numpy as np
 from calcsheet.core.arrays import Array
 from calcsheet.core.floors import KINDS, PERMANENT, PLACES, Floors, Load, OtherMass
 from calcsheet.job.card import FILE as CARD
-from calcsheet.job.card import Card, LoadShare, shorten
+from calcsheet.job.card import Card, LoadShare
 from calcsheet.job.cells import ANY, NOT_NEGATIVE
 from calcsheet.job.columns import Column, Columns, read_columns
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.headings import AREA, LEVEL
+from calcsheet.job.storeycells import FILE as STOREYS
+from calcsheet.job.storeycells import Frame
 from calcsheet.job.table import TextTable
+from calcsheet.job.wording import shorten
 from calcsheet.units import STANDARD_GRAVITY
 
 FLOORS, LOADS, MASSES = "floors.csv", "loads.csv", "masses.csv"
 FILES = (FLOORS, LOADS, MASSES)
 """The take-off's files; the last may be missing."""
-STOREYS = "storeys.csv"
-"""Where the levels and their storey heights come from."""
 
 PER_AREA, PER_VOLUME = "load per area", "unit weight"
 LOAD_COLUMNS = (
@@ -57,30 +58,8 @@ _Refuse = Callable[[str, str, str], None]
 
 
 @dataclass(frozen=True, eq=False)
-class Frame:
-    """What the storey table tells the take-off, the lowest level first.
-
-    Parameters
-    ----------
-    level : tuple of str
-        Every level.
-    below : int
-        How many lie at or below the effective base.
-    storey_height : (n,) array
-        Height of the storey below each [m].
-    stated : (n,) array or None
-        Masses that the table itself gives [t].
-    """
-
-    level: tuple[str, ...]
-    below: int
-    storey_height: Array
-    stated: Array | None
-
-
-@dataclass(frozen=True, eq=False)
-class TakeoffReading:
-    """What the tables of the take-off hold: every problem with them, or the floors.
+class FloorReading:
+    """What the tables of the mass take-off hold: every problem with them, or the floors.
 
     Parameters
     ----------
@@ -99,13 +78,13 @@ class TakeoffReading:
         return tuple(problem.message for found in self.problems.values() for problem in found)
 
 
-def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame: Frame | None) -> TakeoffReading:
-    """Read the tables of the take-off.
+def read_floors(tables: Mapping[str, TextTable | InputError], card: Card, frame: Frame | None) -> FloorReading:
+    """Read the tables of the mass take-off.
 
     Parameters
     ----------
     tables : mapping of str to TextTable or InputError
-        By file, those of `FILES` that there are; or why one is no table.
+        By file, those of `FILES` that there are, or why one is no table; others are left alone.
     card : Card
         The job card: mass basis and system of units.
     frame : Frame or None
@@ -113,14 +92,17 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
 
     Returns
     -------
-    TakeoffReading
+    FloorReading
         With every problem; nothing is raised for one.
     """
     problems: dict[str, list[CellProblem]] = {name: [] for name in (*FILES, STOREYS)}
-    given = {name: table for name, table in tables.items() if isinstance(table, TextTable)}
-    for name, table in tables.items():
-        if isinstance(table, InputError):
-            problems[name].append(CellProblem(None, None, str(table)))
+    given: dict[str, TextTable] = {}
+    for name in FILES:
+        match tables.get(name):
+            case InputError() as error:
+                problems[name].append(CellProblem(None, None, str(error)))
+            case TextTable() as table:
+                given[name] = table
     for name, allowed in ((FLOORS, "a row for each level"), (LOADS, "a row for each load")):
         if name not in tables:
             what = f"no {name} in the job folder; the mass take-off needs one with {allowed}"
@@ -130,7 +112,7 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
         problems[STOREYS].append(CellProblem(None, None, what))
     unused: list[str] = []
     if any(problems.values()) or frame is None:
-        return TakeoffReading({name: tuple(found) for name, found in problems.items()}, None)
+        return FloorReading({name: tuple(found) for name, found in problems.items()}, None)
     system = card.units.system
     columns = read_columns(given[LOADS], LOAD_COLUMNS, "load", system)
     loads = _loads(columns, card.mass_basis, problems[LOADS])
@@ -145,7 +127,7 @@ def read_takeoff(tables: Mapping[str, TextTable | InputError], card: Card, frame
             problems[part.table.file][:0] = part.problems
             unused += part.notices
     floors = None if any(problems.values()) else replace(_floors(rows, loads, others, frame), unused=tuple(unused))
-    return TakeoffReading({name: tuple(found) for name, found in problems.items()}, floors)
+    return FloorReading({name: tuple(found) for name, found in problems.items()}, floors)
 
 
 def floor_columns(loads: TextTable, card: Card) -> tuple[Column, ...]:

@@ -7,8 +7,9 @@ from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import read_frame, read_storeys
-from calcsheet.job.takeofffile import read_takeoff
+from calcsheet.job.floorfile import read_floors
+from calcsheet.job.storeycells import read_frame
+from calcsheet.job.storeyfile import read_storeys
 
 STOREYS = """\
 level,storey height [m],stiffness x [kN/m],stiffness y [kN/m]
@@ -46,7 +47,7 @@ def taken(card, table):
             texts[name] = texts[name].replace(old, new, 1)
         tables = {f"{name}.csv": table(text, f"{name}.csv") for name, text in texts.items() if text is not None}
         chosen = card(*on)
-        return read_takeoff(tables, chosen, read_frame(table(storeys), chosen))
+        return read_floors(tables, chosen, read_frame(table(storeys), chosen))
 
     return read
 
@@ -212,7 +213,7 @@ def test_a_file_that_is_missing_is_named(taken, name):
 
 def test_a_file_that_is_no_table_is_named(card):
     wrong = InputError("loads.csv", "", "the file is empty", "must have a line of headings")
-    messages = read_takeoff({"loads.csv": wrong}, card(), None).messages
+    messages = read_floors({"loads.csv": wrong}, card(), None).messages
     assert messages[1] == "loads.csv: the file is empty; must have a line of headings"
 
 
@@ -276,7 +277,7 @@ def test_any_text_is_read_or_refused(card, table, name, data):
             tables[f"{key}.csv"] = error
     chosen = card(WITH_BASIS, FROM)
     storeys = table(STOREYS)
-    reading = read_takeoff(tables, chosen, read_frame(storeys, chosen))
+    reading = read_floors(tables, chosen, read_frame(storeys, chosen))
     assert (reading.floors is None) == bool(reading.messages)
     assert all(message.strip() for message in reading.messages)
     whole = read_storeys(storeys, chosen, {}, reading)
