@@ -71,6 +71,19 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
     ),
     "weight": _FORCE,
     "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
+    "pressure": (
+        Unit("kN/m²", 1.0),
+        Unit("kPa", 1.0),
+        Unit("N/m²", 0.001),
+        Unit("psf", POUND_FORCE / FOOT**2),
+        Unit("lbf/ft²", POUND_FORCE / FOOT**2),
+        Unit("kip/ft²", KIP / FOOT**2),
+    ),
+    "unit weight": (
+        Unit("kN/m³", 1.0),
+        Unit("pcf", POUND_FORCE / FOOT**3),
+        Unit("lbf/ft³", POUND_FORCE / FOOT**3),
+    ),
     "section area": (
         Unit("m²", 1.0),
         Unit("cm²", 1e-4),
@@ -141,6 +154,8 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "weight": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "force": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "pressure": _pair(Display("kN/m²", 1.0, 3), Display("psf", POUND_FORCE / FOOT**2, 3)),
+    "area load": _pair(Display("kN/m²", 1.0, 4), Display("psf", POUND_FORCE / FOOT**2, 4)),
+    "unit weight": _pair(Display("kN/m³", 1.0, 4), Display("pcf", POUND_FORCE / FOOT**3, 4)),
     "stiffness": _pair(Display("kN/m", 1.0, 4), Display("kip/in", KIP / INCH, 4)),
     "flexibility": _pair(Display("mm/kN", 0.001, 4), Display("in/kip", INCH / KIP, 4)),
     "moment": _pair(Display("kN·m", 1.0, 4), Display("kip·ft", KIP * FOOT, 4)),

@@ -10,6 +10,7 @@ import tomllib
 from pathlib import Path
 
 import nbformat
+import openpyxl
 import pytest
 from click.testing import CliRunner
 
@@ -48,7 +49,7 @@ def refused(result) -> str:
 
 
 def test_help_has_examples(run):
-    for command in ([], ["new"], ["issue"], ["demo"]):
+    for command in ([], ["new"], ["import"], ["export"], ["issue"], ["demo"]):
         result = run(*command, "--help")
         assert result.exit_code == 0
         assert "Examples:\n" in result.stdout
@@ -211,6 +212,66 @@ def test_the_demo_is_copied_issued_and_shown_where(run, quick_kernel, tmp_path, 
         "job.toml",
         "storeys.csv",
     }
+
+
+@pytest.fixture
+def masses(tmp_path):
+    """A workbook of masses under headings of another office."""
+    book = openpyxl.Workbook()
+    for row in (
+        ["Floor", "Seismic mass"],
+        ["Roof", 150.5],
+        [4, 240],
+        [3, 251],
+        [2, 252],
+        [1, 270],
+        [],
+        ["Sum", 1163.5],
+    ):
+        book.active.append(row)
+    book.save(tmp_path / "masses.xlsx")
+    return tmp_path / "masses.xlsx"
+
+
+def test_masses_are_imported(run, job_folder, masses):
+    folder = job_folder()
+    result = run("import", folder, masses, "--map", "Floor=level", "--map", "Seismic mass=mass [t]")
+    assert result.exit_code == 0, result.output
+    assert result.stdout == ('storeys.csv: mass [t] of 5 levels from masses.xlsx, sheet "Sheet"; 5 cells changed.\n')
+    assert result.stderr == 'Note: masses.xlsx, sheet "Sheet", rows 8 to 8: below a blank row, left out.\n'
+    assert "Roof,2.95,150.5,88000" in (folder / "storeys.csv").read_text(encoding="utf-8")
+    again = run("import", folder, masses)  # the headings are known by now
+    assert again.stdout.endswith("; 0 cells changed.\n")
+
+
+def test_tables_are_exported(run, job_folder, tmp_path):
+    folder = job_folder()
+    result = run("export", folder, "out.xlsx")
+    assert (result.exit_code, result.stdout) == (0, "out.xlsx: sheets storeys.\n")
+    assert openpyxl.load_workbook(tmp_path / "out.xlsx")["storeys"]["C2"].value == 141.5
+    assert refused(run("export", folder, "out.xlsx")) == "out.xlsx: is there already; name a new file"
+
+
+@pytest.mark.parametrize(
+    ("more", "sentence"),
+    [
+        (["--map", "Floor"], '--map: got "Floor"; must be like "Seismic mass=mass [t]"'),
+        (["--map", "Floor="], '--map: got "Floor="; must be like "Seismic mass=mass [t]"'),
+        (["--sheet", "B"], 'masses.xlsx: no sheet "B"; must be one of "Sheet"'),
+        ([], 'masses.xlsx, sheet "Sheet": no row with the heading "level" and another that is known in the first 50 rows; '
+             "name the file's headings with --map"),
+    ],
+)  # fmt: skip
+def test_an_import_refused_changes_nothing(run, job_folder, masses, more, sentence):
+    folder = job_folder()
+    before = {path.name: path.read_bytes() for path in folder.iterdir()}
+    assert refused(run("import", folder, masses, *more)) == sentence
+    assert {path.name: path.read_bytes() for path in folder.iterdir()} == before
+
+
+def test_a_folder_without_a_job_is_refused(run, masses, tmp_path):
+    assert refused(run("import", tmp_path, masses)).startswith("no job.toml in ")
+    assert refused(run("export", tmp_path, "out.xlsx")).startswith("no job.toml in ")
 
 
 # ---- comments, register, tables --------------------------------------------------------------------------------------

@@ -6,6 +6,7 @@ from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.cautions import Cautions
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
+from calcsheet.blocks.masstakeoff import MassTakeoff
 from calcsheet.blocks.motion import ModeMotion
 from calcsheet.blocks.stiffnesstakeoff import StiffnessTakeoff
 from calcsheet.blocks.storeytable import StoreyTable
@@ -17,6 +18,7 @@ __all__ = [
     "DemandSpectrum",
     "DriftCheck",
     "JobCard",
+    "MassTakeoff",
     "ModalTable",
     "ModeMotion",
     "ModePlot",

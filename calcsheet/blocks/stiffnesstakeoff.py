@@ -9,8 +9,8 @@ from calcsheet.job import edits
 from calcsheet.job.card import FILE
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import stiffness_key
-from calcsheet.job.storeyfile import FILE as STOREYS
-from calcsheet.steps.graph import TAKEOFF
+from calcsheet.job.storeycells import FILE as STOREYS
+from calcsheet.steps.graph import STIFFNESSES, Job
 from calcsheet.steps.serial import from_json
 
 
@@ -18,7 +18,8 @@ class StiffnessTakeoff(Block):
     """Storey stiffnesses added up from the members of members.csv, with sections.csv and materials.csv.
 
     With ``members = "members.csv"`` under [model] in job.toml they are the storey table's stiffnesses; without it they
-    stand beside the table until adopted.
+    stand beside the table until adopted. The tables are edited in a spreadsheet or text editor; running the cell again
+    reads what was saved there.
 
     Parameters
     ----------
@@ -37,7 +38,8 @@ class StiffnessTakeoff(Block):
 
     def __init__(self, job: JobCard, *, rows: str = "shown") -> None:
         must_be(self, job, JobCard)
-        super().__init__(job.job, job.job.attach(TAKEOFF, None), rows=rows)
+        opened = Job.open(job.job.folder.path)  # read anew where its files changed
+        super().__init__(opened, opened.attach(STIFFNESSES, None), rows=rows)
 
     def adopt(self) -> None:
         """Write the stiffnesses into the columns "stiffness x" and "stiffness y" of the storey table, once, in one edit.

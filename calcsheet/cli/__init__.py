@@ -1,4 +1,7 @@
-"""The command line: jobs (new, issue, answer, demo) and issued records (check, sign, comment, compare, register, tables)."""
+"""The command line.
+
+For jobs: new, import, export, issue, answer, demo; for issued records: check, sign, comment, compare, register, tables.
+"""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""Commands for a job folder: new, issue, answer, demo."""
+"""Commands for a job folder: new, import, export, issue, answer, demo."""
 
 from __future__ import annotations
 
@@ -26,6 +26,12 @@ Examples:
   calcsheet issue tower --to csv  as without it, with every table as CSV besides
   calcsheet issue tower --to pdf --paper letter
 """
+IMPORT_EXAMPLES = """\b
+Examples:
+  calcsheet import tower masses.xlsx
+  calcsheet import tower masses.xlsx --sheet Masses --map "Seismic mass=mass [t]"
+  calcsheet import tower areas.csv --table floors
+"""
 ANSWER_EXAMPLES = """\b
 Examples:
   calcsheet answer tower
@@ -45,6 +51,46 @@ def new(folder: Path, template: str) -> None:
     click.echo(f"Open it:   jupyter lab {folder / 'calc.ipynb'}")
     click.echo('           (without JupyterLab: python -m pip install "jupyterlab>=4" first)')
     click.echo(f"Issue it:  calcsheet issue {folder}")
+
+
+@main.command("import", epilog=IMPORT_EXAMPLES)
+@click.argument("folder", type=click.Path(path_type=Path))
+@click.argument("file", type=click.Path(path_type=Path))
+@click.option("--table", type=click.Choice(["storeys", "floors"]), default="storeys", show_default=True, help="Table.")
+@click.option("--sheet", default="", help="Sheet of FILE; its only table of levels where omitted.")
+@click.option("--map", "maps", multiple=True, metavar="THEIRS=OURS", help="A heading of FILE in this program's words.")
+@click.option("--replace", "take_whole", is_flag=True, help="Take the sheet as the whole table.")
+def import_(folder: Path, file: Path, table: str, sheet: str, maps: tuple[str, ...], take_whole: bool) -> None:
+    """Bring the levels of FILE (.xlsx or .csv) into a table of job FOLDER.
+
+    Columns are set level by level, other columns are kept. Headings given with --map are kept in job.toml, for the next
+    time.
+    """
+    from calcsheet.job.exchange import import_file
+    from calcsheet.job.folder import JobFolder
+
+    mapping = {}
+    for pair in maps:
+        theirs, equals, ours = pair.rpartition("=")
+        if not (theirs.strip() and equals and ours.strip()):
+            raise Refusal(f'--map: got "{pair}"; must be like "Seismic mass=mass [t]"')
+        mapping[" ".join(theirs.split())] = ours.strip()
+    done = import_file(JobFolder(folder), file, table=table, sheet=sheet, mapping=mapping, take_whole=take_whole)
+    cells = f"{done.changed} cell{'' if done.changed == 1 else 's'} changed"
+    click.echo(f"{done.table}: {', '.join(done.columns)} of {done.levels} levels from {done.place}; {cells}.")
+    for notice in done.notices:
+        click.echo(f"Note: {notice}.", err=True)
+
+
+@main.command(epilog="\b\nExamples:\n  calcsheet export tower tower.xlsx\n")
+@click.argument("folder", type=click.Path(path_type=Path))
+@click.argument("file", type=click.Path(path_type=Path))
+def export(folder: Path, file: Path) -> None:
+    """Write the tables of job FOLDER to a new FILE.xlsx, a sheet each: units in the headings, numbers as numbers."""
+    from calcsheet.job.exchange import export_file
+    from calcsheet.job.folder import JobFolder
+
+    click.echo(f"{file}: sheets {', '.join(export_file(JobFolder(folder), file))}.")
 
 
 @main.command(epilog=ISSUE_EXAMPLES)

@@ -77,6 +77,15 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("h = z_i − z_(i−1)", "alongside.heights", "definition"),
     Formula("Σ over a level and those above it", "alongside.at_and_above", "definition"),
     Formula("m_i/m_(i−1)", "alongside.to_level_below", "definition"),
+    Formula("Σ share·q·A, ½Σ h·share·q·L, m = W/g of a level", "masstakeoff.take_off", "common practice"),
+    Formula("half a storey to each level", "masstakeoff.by_row", "common practice"),
+    Formula("r² = (a² + b²)/12", "masstakeoff.spread_radius", "handbook formula of a rectangle (from memory)"),
+    Formula("r² = (a + b)²/12", "masstakeoff.edge_radius", "parallel axis theorem"),
+    Formula("parts of a level: m, x, y, r", "masstakeoff.parts_of", "common practice"),
+    Formula("Σmx/Σm, I = Σ(I_k + m_k d_k²)", "masstakeoff.gathered", "parallel axis theorem"),
+    Formula(
+        "I₀ − m(x² + y²), ΣW of levels against ΣW of loads", "masstakeoff.evidence_of_take_off", "parallel axis theorem"
+    ),
     Formula("A, I, A_s of a section", "sections.properties_of", _ROARK),
     Formula("I, A_s about an axis", "sections.Properties.about", "definition"),
     Formula("βEI/h³", "memberstiffness.bending", _BEAMS),

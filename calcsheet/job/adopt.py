@@ -6,13 +6,13 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from calcsheet.job import card as job_card
-from calcsheet.job import storeyfile
+from calcsheet.job import storeycells
 from calcsheet.job import table as text_table
 from calcsheet.job.card import dotted
 from calcsheet.job.folder import JobFiles
 from calcsheet.job.headings import GRAVITY, stiffness_key
 from calcsheet.job.numbers import decimal_mark, format_number, parse_number
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 
 MASSES = ("mass", "weight")
@@ -107,7 +107,7 @@ def _changes(
     values: Mapping[tuple[str, ...], float | None],
 ) -> str:
     headings = {c.key: c.heading.strip() for c in files.reading.columns}
-    said = [f'column "{headings[key]}" of {storeyfile.FILE} by a factor of {f:g}' for key, f in columns.items()]
+    said = [f'column "{headings[key]}" of {storeycells.FILE} by a factor of {f:g}' for key, f in columns.items()]
     basis = files.card.stiffness[stiffness]
     before = {"factor": basis.factor, "factor_x": basis.factor_x, "factor_y": basis.factor_y}
     for (*_, name), value in values.items():

@@ -9,12 +9,13 @@ import datetime as dt
 import math
 import re
 import tomllib
-from collections.abc import Iterator, Mapping, Sequence
-from typing import Annotated, Any, Literal, get_args, get_origin
+from collections.abc import Iterator, Mapping
+from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
 
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted, refusal, shown
 
 FILE = "job.toml"
 CHAIN = "storey chain"
@@ -164,6 +165,12 @@ class LoadShare(_Table):
     clause: Text = ""
 
 
+class MassSource(_Table):
+    """Table [masses]: where the masses come from, other than from storeys.csv itself."""
+
+    source: Literal["floors.csv"] = Field(description='"floors.csv"')
+
+
 class OtherModel(_Table):
     """One of [[second_model]]: a result of another model or a hand calculation, and where it comes from."""
 
@@ -188,6 +195,20 @@ class Origin(_Table):
     revision: Text = ""
     date: MaybeDate = None
     note: Text = ""
+
+
+class Import(_Table):
+    """How a spreadsheet file is read into a table: the sheet, and the file's headings in this program's words."""
+
+    sheet: Text = ""
+    columns: Mapping[str, str] = Field({}, description="a table of headings")
+
+
+class Imports(_Table):
+    """Spreadsheet files by name, tables [imports.storeys."masses.xlsx"] and [imports.floors."areas.xlsx"]."""
+
+    storeys: Mapping[str, Import] = Field({}, description="a table for each file")
+    floors: Mapping[str, Import] = Field({}, description="a table for each file")
 
 
 class CautionAnswer(_Table):
@@ -260,6 +281,7 @@ class Card(_Table):
     mass_basis: Annotated[tuple[LoadShare, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[mass_basis]]"
     )
+    masses: MassSource | None = Field(None, description="a table [masses]")
     second_model: Annotated[tuple[OtherModel, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[second_model]]"
     )
@@ -267,6 +289,7 @@ class Card(_Table):
         (), description="tables [[assumptions]]"
     )
     origins: Mapping[str, Origin] = Field({}, description="a table for each file")
+    imports: Imports = Field(Imports(), description="a table [imports.storeys] or [imports.floors]")
     answers: Mapping[str, Annotated[CautionAnswer, Field(description=ANSWER)]] = Field({}, description="a table")
 
 
@@ -286,7 +309,7 @@ def card_of(values: Mapping[str, Any]) -> Card:
     try:
         card = Card.model_validate(values)
     except ValidationError as error:
-        raise _plain(error.errors()[0]) from None
+        raise refusal(FILE, Card, error.errors()[0]) from None
     for wrong in _contradictions(card):
         raise wrong
     return card
@@ -302,53 +325,6 @@ def parse_toml(text: str) -> dict[str, Any]:
         if place == "end of document":
             place = f"line {len(text.splitlines())}"
         raise InputError(FILE, place, what[:1].lower() + what[1:], "must be TOML") from None
-
-
-def dotted(keys: Sequence[str | int]) -> str:
-    """Return keys joined by points, quoted where they need it: `stiffness."half cracked".factor`."""
-    return ".".join(str(key) if re.fullmatch(r"[\w-]+", str(key), re.ASCII) else f'"{key}"' for key in keys)
-
-
-def _plain(error: Any) -> InputError:
-    """One sentence for one of pydantic's errors."""
-    place: list[str | int] = []
-    kind: Any = Card
-    allowed = "a table"
-    for key in error["loc"]:
-        fields = kind.model_fields if isinstance(kind, type) and issubclass(kind, BaseModel) else None
-        if fields is not None and key not in fields:  # an unknown key
-            return InputError(FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}")
-        place.append(key)
-        if fields is not None:
-            kind, allowed = fields[key].annotation, fields[key].description or allowed
-        else:
-            kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
-            allowed = "a table"
-            if get_origin(kind) is Annotated:
-                kind, described = get_args(kind)
-                allowed = described.description
-    found = "missing" if error["type"] == "missing" else f"got {shown(error['input'])}"
-    return InputError(FILE, dotted(place), found, f"must be {allowed}")
-
-
-def shorten(text: str) -> str:
-    """Return a text short enough for a message."""
-    return text if len(text) <= 60 else f"{text[:59]}…"
-
-
-def shown(value: object) -> str:
-    """Return a value of TOML as a message quotes it."""
-    match value:
-        case bool():
-            return "true" if value else "false"
-        case str():
-            return f'"{shorten(value)}"'
-        case int() | float() | dt.date() | dt.time():
-            return shorten(str(value))
-        case dict():
-            return "a table"
-        case _:
-            return "a list"
 
 
 def _contradictions(card: Card) -> Iterator[InputError]:

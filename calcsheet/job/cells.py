@@ -5,9 +5,9 @@ from __future__ import annotations
 import math
 
 from calcsheet.job.amounts import split_amount
-from calcsheet.job.card import shorten
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import format_number, is_ambiguous, parse_number, readings
+from calcsheet.job.wording import shorten
 from calcsheet.units import Unit, quantities_of
 
 ANY, POSITIVE, NOT_NEGATIVE = "a finite number", "above 0", "0 or above"

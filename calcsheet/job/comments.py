@@ -11,13 +11,14 @@ from typing import Any
 
 from calcsheet.job import card as job_card
 from calcsheet.job import textfile
-from calcsheet.job.card import parse_card, shorten
+from calcsheet.job.card import parse_card
 from calcsheet.job.comment import ANSWERED, CLOSED, Comment, conflict
 from calcsheet.job.csvfile import as_meant, csv_bytes, harmless
 from calcsheet.job.errors import ConflictError, InputError
 from calcsheet.job.issued import FOLDER as ISSUED
 from calcsheet.job.table import TextTable, insert_row, parse_table, set_cell
 from calcsheet.job.textfile import Stamp
+from calcsheet.job.wording import shorten
 
 FILE = "comments.csv"
 TRIES = 20

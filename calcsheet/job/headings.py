@@ -91,7 +91,7 @@ def read_headings(table: TextTable, card: Card) -> Headings:
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = _known(name, heading, card)
+        column = known(name, heading, card)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -130,7 +130,8 @@ def stiffness_key(direction: str, set_name: str | None) -> str:
     return f"stiffness {direction}" + (f" {set_name}" if set_name else "")
 
 
-def _known(name: str, heading: str, card: Card) -> Column | None:
+def known(name: str, heading: str, card: Card) -> Column | None:
+    """Return the column that a heading's name stands for in a storey table, without its unit; None where it's not known."""
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)
@@ -151,7 +152,12 @@ def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
 
     if LEVEL not in keys:
         yield InputError(file, "", f'no column "{LEVEL}"', "must have one")
-    for pair in (("storey height", "elevation"), ("mass", "weight")):
+    pairs = [("storey height", "elevation"), ("mass", "weight")]
+    if card.masses is not None:
+        for key in keys & set(pairs.pop()):
+            allowed = f"must be left out, since the masses come from {card.masses.source} (job.toml, masses.source)"
+            yield InputError(file, "", f'column "{key}"', allowed)
+    for pair in pairs:
         both = [written(key, QUANTITIES[key]) for key in pair]
         if keys.isdisjoint(pair):
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")

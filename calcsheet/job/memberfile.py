@@ -17,6 +17,8 @@ from calcsheet.job.errors import InputError
 from calcsheet.job.listfile import ListColumn, ListRow, read_list
 from calcsheet.job.numbers import readings
 from calcsheet.job.sectionfile import MATERIALS, SECTIONS, read_materials, read_sections
+from calcsheet.job.storeycells import FILE as STOREYS
+from calcsheet.job.storeycells import Frame
 from calcsheet.job.table import TextTable
 
 FILE = "members.csv"
@@ -46,13 +48,25 @@ OF_BEAMS = ("beam", "beam below", "spans", "beam factor")
 OF_BENDING = ("axis", "shear", "shear factor", *OF_BEAMS)
 
 
-@dataclass(frozen=True)
-class MemberTables:
-    """The three tables of a stiffness take-off."""
+@dataclass(frozen=True, eq=False)
+class MemberReading:
+    """What the tables of the stiffness take-off hold: every problem with them, or the take-off.
 
-    members: TextTable
-    sections: TextTable
-    materials: TextTable
+    Parameters
+    ----------
+    problems : tuple of InputError
+        All that is wrong.
+    takeoff : Takeoff or None
+        In core units; None where there is any problem.
+    """
+
+    problems: tuple[InputError, ...]
+    takeoff: Takeoff | None
+
+    @property
+    def messages(self) -> tuple[str, ...]:
+        """All that is wrong, a sentence each."""
+        return tuple(map(str, self.problems))
 
 
 def member_files(card: Card) -> tuple[str, str, str]:
@@ -60,42 +74,59 @@ def member_files(card: Card) -> tuple[str, str, str]:
     return card.model.members or FILE, SECTIONS, MATERIALS
 
 
-def read_members(
-    tables: MemberTables, card: Card, levels: Sequence[str], heights: Array
-) -> tuple[Takeoff | None, list[InputError]]:
-    """Read a stiffness take-off.
+def read_members(tables: Mapping[str, TextTable | InputError], card: Card, frame: Frame | None) -> MemberReading:
+    """Read the tables of the stiffness take-off.
 
     Parameters
     ----------
-    tables : MemberTables
-        Its tables.
+    tables : mapping of str to TextTable or InputError
+        By file, those of `member_files` that there are, or why one is no table; others are left alone.
     card : Card
         The job card: directions, stiffness sets, origins.
-    levels : sequence of str
-        Levels above the effective base, lowest first, n of them.
-    heights : (n,) array
-        Height of the storey below each [m].
+    frame : Frame or None
+        Levels and storey heights; None where the storey table doesn't give them.
 
     Returns
     -------
-    takeoff : Takeoff or None
-        None where there is any problem.
-    problems : list of InputError
-        Every problem.
+    MemberReading
+        With every problem; nothing is raised for one.
     """
-    rows, problems = read_list(tables.members, COLUMNS)
-    materials, wrong = read_materials(tables.materials)
+    problems: list[InputError] = []
+    given: list[TextTable] = []
+    for name in member_files(card):
+        match tables.get(name):
+            case None:
+                problems.append(InputError("", "", f"no {name} in the job folder", "the stiffness take-off needs it"))
+            case InputError() as error:
+                problems.append(error)
+            case TextTable() as table:
+                given.append(table)
+    if frame is None:
+        found = "its levels and storey heights can't be read"
+        problems.append(InputError(STOREYS, "", found, "the stiffness take-off needs them"))
+    if problems or frame is None:
+        return MemberReading(tuple(problems), None)
+    takeoff, problems = _takeoff(given, card, frame)
+    return MemberReading(tuple(problems), takeoff)
+
+
+def _takeoff(tables: Sequence[TextTable], card: Card, frame: Frame) -> tuple[Takeoff | None, list[InputError]]:
+    """The take-off of the tables of members, sections and materials, or every problem with them."""
+    members, sections, materials = tables
+    rows, problems = read_list(members, COLUMNS)
+    made_of, wrong = read_materials(materials)
     problems += wrong
     if problems:  # what follows would only repeat that a name isn't there
         return None, problems
-    sections, problems = read_sections(tables.sections, {m.name: m for m in materials})
+    shapes, problems = read_sections(sections, {m.name: m for m in made_of})
     if problems:
         return None, problems
-    reader = _Reader(levels, sections, materials)
-    members = []
+    levels = frame.level[frame.below :]
+    reader = _Reader(levels, shapes, made_of)
+    found = []
     for row in rows:
         try:
-            members.append(reader.member(row))
+            found.append(reader.member(row))
         except InputError as error:
             problems.append(error)
     if problems:
@@ -110,7 +141,14 @@ def read_members(
         name for name in member_files(card) if name not in card.origins or not card.origins[name].source.strip()
     )
     takeoff = Takeoff(
-        tuple(levels), heights, card.directions.analysed, materials, sections, tuple(members), factors, unstated
+        level=levels,
+        storey_height=frame.storey_height[frame.below :],
+        direction=card.directions.analysed,
+        materials=made_of,
+        sections=shapes,
+        members=tuple(found),
+        factors=factors,
+        no_origin=unstated,
     )
     return takeoff, []
 

@@ -11,8 +11,9 @@ from typing import Any
 
 import tomlkit
 
-from calcsheet.job.card import FILE, dotted, parse_toml
+from calcsheet.job.card import FILE, parse_toml
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted
 
 Scalar = str | bool | int | float | dt.date
 Value = Scalar | Mapping[str, Scalar]

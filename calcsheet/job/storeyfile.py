@@ -1,39 +1,37 @@
-"""The storey table, storeys.csv: roof first, a row a level, read into core units from the base up."""
+"""The storey table as storeys: its cells with the masses and stiffnesses of the take-offs, from the base up."""
 
 from __future__ import annotations
 
-from collections import Counter
 from collections.abc import Mapping
-from itertools import pairwise
 
 import numpy as np
 
-from calcsheet.core.alongside import elevations, heights
+from calcsheet.core.arrays import Array
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
+from calcsheet.core.masstakeoff import take_off
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-from calcsheet.core.stiffnesstakeoff import Takeoff
 from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
-from calcsheet.job import card as job_card
 from calcsheet.job.card import CHAIN, Card
-from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
-from calcsheet.job.errors import InputError
-from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
+from calcsheet.job.errors import CellProblem, InputError
+from calcsheet.job.floorfile import FloorReading, read_floors
+from calcsheet.job.headings import AREA, GRAVITY, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
-from calcsheet.job.memberfile import MemberTables, read_members, taken_off
-from calcsheet.job.numbers import decimal_mark
-from calcsheet.job.storeyreading import CellProblem, StoreyReading
+from calcsheet.job.memberfile import MemberReading, read_members, taken_off
+from calcsheet.job.storeycells import StoreyCells
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
-from calcsheet.units import STANDARD_GRAVITY, display
 
-FILE = "storeys.csv"
+TAKE_OFF = "take-off"
+"""How the masses are said to be given where they come from the mass take-off."""
 
 
 def read_storeys(
     table: TextTable,
     card: Card,
     matrices: Mapping[str, TextTable] | None = None,
-    members: MemberTables | str | None = None,
+    floors: FloorReading | None = None,
+    members: MemberReading | None = None,
 ) -> StoreyReading:
     """Read a storey table.
 
@@ -45,8 +43,10 @@ def read_storeys(
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
         By direction, the tables of the matrices that the card names.
-    members : MemberTables or str, optional
-        The tables of the stiffness take-off, or why they can't be read.
+    floors : FloorReading, optional
+        The mass take-off, needed where the card takes the masses from it.
+    members : MemberReading, optional
+        The stiffness take-off, needed where the card takes the stiffnesses from it.
 
     Returns
     -------
@@ -54,238 +54,73 @@ def read_storeys(
         With every problem; nothing is raised for one.
     """
     headings = read_headings(table, card)
-    reader = _Reader(table, card, headings.columns)
-    reader.problems += [CellProblem(None, key, str(error)) for key, error in headings.problems]
-    reader.check_rows()
-    reader.read_columns()
-    if members is not None:
-        reader.take_off(members)
+    cells = StoreyCells(table, card, headings.columns)
+    messages: list[str] = []
+    if card.masses is None:
+        floors = None
+    else:
+        floors = floors or read_floors({}, card, None)
+        messages += floors.messages
+    if card.model.members is None:
+        members = None
+    else:
+        members = members or read_members({}, card, None)
+        messages += members.messages
+    problems = [
+        *(CellProblem(None, key, str(error)) for key, error in headings.problems),
+        *cells.problems,
+        *(CellProblem(None, None, message) for message in messages),
+    ]
     storeys = None
-    if not reader.problems:
+    if not problems:
         with np.errstate(over="ignore"):  # what overflows is refused as infinite
-            storeys = reader.build(matrices or {})
+            builder = _Builder(cells, card, floors, members)
+            storeys = builder.storeys(matrices or {})
+            problems = builder.problems
     return StoreyReading(
         table,
         headings.columns,
-        reader.names,
-        tuple(reader.problems),
-        (*headings.notices, *reader.notices),
-        None if reader.problems else storeys,
-        tuple(reader.rows),
-        sum(map(reader.is_above, reader.rows)),
-        reader.foot,
-        reader.numbers(),
-        reader.takeoff,
-        tuple(reader.takeoff_problems),
+        cells.names,
+        tuple(problems),
+        (*headings.notices, *cells.notices),
+        None if problems else storeys,
+        tuple(cells.rows),
+        sum(map(cells.is_above, cells.rows)),
+        cells.foot,
+        cells.numbers(),
     )
 
 
-class _Reader:
-    """One pass over a table: gathers problems on the way to the storeys."""
+class _Builder:
+    """Puts the storeys together, with the last problems that only the whole shows."""
 
-    def __init__(self, table: TextTable, card: Card, columns: tuple[Column, ...]) -> None:
-        self.table = table
+    def __init__(
+        self, cells: StoreyCells, card: Card, floors: FloorReading | None, members: MemberReading | None
+    ) -> None:
+        self.cells = cells
         self.card = card
-        self.columns = {column.key: (i, column) for i, column in enumerate(columns) if column.used}
+        self.floors = None if floors is None else floors.floors
+        self.members = None if members is None else members.takeoff
         self.problems: list[CellProblem] = []
-        self.notices: list[str] = []
-        self.values: dict[str, dict[int, float]] = {}
-        self.rows = [i for i, cells in enumerate(table.rows) if any(cell.strip() for cell in cells)]
-        place = self.columns[LEVEL][0] if LEVEL in self.columns else None
-        self.names = tuple("" if place is None else " ".join(cells[place].split()) for cells in table.rows)
-        self.uses = Counter(self.names)
-        base = " ".join(card.levels.effective_base.split())
-        self.takeoff: Takeoff | None = None
-        self.takeoff_problems: list[str] = []
-        self.base_row = next((row for row in self.rows if base and self.names[row] == base), None)
 
-    def refuse(self, row: int | None, column: str | None, error: InputError) -> None:
-        self.problems.append(CellProblem(row, column, str(error)))
+    def refuse(self, message: str, column: str | None = None) -> None:
+        self.problems.append(CellProblem(None, column, message))
 
-    def where(self, row: int) -> str:
-        name = self.names[row]
-        return f'level "{name}"' if name and self.uses[name] == 1 else f"row {self.number(row)}"
-
-    def number(self, row: int) -> str:
-        """A row's number as a spreadsheet shows it."""
-        return str(self.table.row_number(row))
-
-    def is_above(self, row: int) -> bool:
-        """Whether a row's level is above the effective base, so in the model."""
-        return self.base_row is None or row < self.base_row
-
-    def check_rows(self) -> None:
-        file, width = self.table.file, len(self.table.headings)
-        blank = [self.number(row) for row in sorted({*range(len(self.table.rows))} - {*self.rows})]
-        if blank:
-            plural = "s" if len(blank) > 1 else ""
-            self.notices.append(f"{file}, row{plural} {_listed(blank)}: blank, not a level, and kept")
-        if not self.rows:
-            allowed = "must have a row for each level, roof first"
-            self.refuse(None, None, InputError(file, "", "no levels", allowed))
-        for row in self.rows:
-            cells = self.table.rows[row]
-            if any(cell.strip() for cell in cells[width:]):
-                found = f"{len(cells)} cells"
-                allowed = f"must be {width}, one for each heading"
-                self.refuse(row, None, InputError(file, f"row {self.number(row)}", found, allowed))
-        if LEVEL in self.columns:
-            self.check_names()
-
-    def check_names(self) -> None:
-        for row in self.rows:
-            name = self.names[row]
-            if not name:
-                error = InputError(self.table.file, self.where(row), "level is blank", "must have a name")
-                self.refuse(row, LEVEL, error)
-            elif row != self.names.index(name):
-                same = [self.number(i) for i in self.rows if self.names[i] == name]
-                found = f"named in rows {_listed(same)}"
-                allowed = "each level needs its own name"
-                self.refuse(row, LEVEL, InputError(self.table.file, f'level "{name}"', found, allowed))
-        base = self.card.levels.effective_base
-        if base.strip() and self.base_row is None:
-            names = ", ".join(f'"{self.names[i]}"' for i in self.rows)
-            self.refuse_base(f'got "{base}"', f'must be "" or a level of {self.table.file}: {names}')
-        elif self.rows and self.base_row == self.rows[0]:
-            self.refuse_base(f'got "{base}", the top level', "must have at least one level above it")
-
-    def refuse_base(self, found: str, allowed: str) -> None:
-        self.refuse(None, LEVEL, InputError(job_card.FILE, "levels.effective_base", found, allowed))
-
-    def read_columns(self) -> None:
-        for key, (place, column) in self.columns.items():
-            if column.unit is None:
-                continue
-            mark = decimal_mark((self.table.rows[row][place] for row in self.rows), self.table.delimiter)
-            numbers = self.values[key] = {}
-            for row in self.rows:
-                try:
-                    numbers[row] = read_cell(
-                        self.table.rows[row][place],
-                        self.table.file,
-                        self.where(row),
-                        key,
-                        column.unit,
-                        mark,
-                        self.allowed(row, key),
-                        may_be_blank=key in OPTIONAL or (column.quantity == "stiffness" and not self.is_above(row)),
-                    )
-                except InputError as error:
-                    self.refuse(row, key, error)
-        self.check_elevations()
-        for key in OPTIONAL:
-            self.check_whole(key)
-
-    def allowed(self, row: int, key: str) -> str:
-        """What a number of a column must be in a row."""
-        if key == "elevation":
-            return ANY
-        if key == GRAVITY or (key in ("mass", "weight") and not self.is_above(row)):
-            return NOT_NEGATIVE
-        return POSITIVE
-
-    def check_whole(self, key: str) -> None:
-        """A column that may be left out is given for all levels of the model, or for none."""
-        above = {row: number for row, number in self.values.get(key, {}).items() if self.is_above(row)}
-        blank = [row for row, number in above.items() if np.isnan(number)]
-        if blank and len(blank) == sum(map(self.is_above, self.rows)):
-            heading = self.columns[key][1].heading
-            self.notices.append(f'{self.table.file}, column "{heading}" is blank: not used, and kept')
-            return
-        for row in blank:
-            allowed = "must be given for each level above the effective base, or for none"
-            self.refuse(row, key, InputError(self.table.file, self.where(row), f"{key} is blank", allowed))
-
-    def check_elevations(self) -> None:
-        """Elevations fall from row to row, and stay above the foot of the lowest storey."""
-        numbers = self.values.get("elevation", {})
-        if not numbers:
-            return
-        place, column = self.columns["elevation"]
-        symbol = column.unit.symbol if column.unit else ""
-
-        def written(row: int) -> str:
-            return f"{self.table.rows[row][place].strip()} {symbol}"
-
-        def refuse(row: int, allowed: str) -> None:
-            found = f"elevation {written(row)}"
-            self.refuse(row, "elevation", InputError(self.table.file, self.where(row), found, allowed))
-
-        rows = list(numbers)
-        for above, row in pairwise(rows):
-            if numbers[row] >= numbers[above]:
-                refuse(row, f"must be below {written(above)}, that of {self.where(above)} above it")
-        if rows[-1] == self.rows[-1] and numbers[rows[-1]] <= self.foot:
-            unit = display("elevation", self.card.units.system).symbol
-            given = f"{self.card.levels.base_elevation:g} {unit}"
-            refuse(rows[-1], f"must be above {given}, levels.base_elevation in {job_card.FILE}")
-
-    @property
-    def foot(self) -> float:
-        """Elevation of the foot of the lowest storey [m]."""
-        return self.card.levels.base_elevation * display("elevation", self.card.units.system).factor
-
-    def numbers(self) -> dict[str, np.ndarray]:
-        """Every column's numbers, roof first, NaN where the cell is blank or wrong."""
-        wrong = {(problem.row, problem.column) for problem in self.problems}
-        return {
-            key: np.array([np.nan if (row, key) in wrong else numbers.get(row, np.nan) for row in self.rows])
-            for key, numbers in self.values.items()
-        }
-
-    def from_base(self, key: str) -> np.ndarray:
-        """A column's numbers from the lowest row up, NaN where blank."""
-        return np.array([self.values[key][row] for row in self.rows[::-1]])
-
-    def if_given(self, key: str, below: int) -> np.ndarray | None:
-        """The numbers of a column that may be left out, for the levels of the model."""
-        numbers = self.from_base(key)[below:] if key in self.values else None
-        return None if numbers is None or np.isnan(numbers).any() else numbers
-
-    def take_off(self, members: MemberTables | str) -> None:
-        """Read the stiffness take-off for the storeys of the model, whatever is wrong with their other columns."""
-        if isinstance(members, str):
-            self.takeoff_problems = [members]
-        elif not self.has_heights():
-            self.takeoff_problems = [p.message for p in self.problems]
-            return  # the storeys have these problems already
-        else:
-            levels, _, height = self.levels()
-            n = sum(not self.is_above(row) for row in self.rows)
-            self.takeoff, problems = read_members(members, self.card, levels[n:], height[n:])
-            self.takeoff_problems = [str(error) for error in problems]
-        if self.card.model.members is not None:
-            self.problems += [CellProblem(None, None, message) for message in self.takeoff_problems]
-
-    def has_heights(self) -> bool:
-        """Whether levels and storey heights are all there."""
-        heights = [self.values[key] for key in ("elevation", "storey height") if key in self.values]
-        wrong = {problem.column for problem in self.problems} & {LEVEL, "elevation", "storey height"}
-        return LEVEL in self.columns and not wrong and len(heights) == 1 and len(heights[0]) == len(self.rows) > 0
-
-    def levels(self) -> tuple[list[str], np.ndarray, np.ndarray]:
-        """Names of all levels, their elevations [m], and the heights of the storeys below them [m]."""
-        levels = [self.names[row] for row in self.rows[::-1]]
-        if "elevation" in self.values:
-            elevation = self.from_base("elevation")
-            return levels, elevation, heights(elevation, self.foot)
-        height = self.from_base("storey height")
-        return levels, elevations(height, self.foot), height
-
-    def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
-        """Put the storeys together, with the last problems that only the whole shows."""
-        levels, elevation, height = self.levels()
-        weight = "weight" in self.values
-        mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
-        n = sum(not self.is_above(row) for row in self.rows)
+    def storeys(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
+        cells, n, levels = self.cells, self.cells.below, self.cells.levels
+        elevation, height = cells.heights()
+        try:
+            mass = cells.mass() if self.floors is None else take_off(self.floors).mass
+        except ModelError as error:
+            self.refuse(f"mass take-off, {error}")
+            return None
         stiffness = self.chains(n) if self.card.model.kind == CHAIN else self.matrices(levels[n:], matrices)
         if stiffness is None:
             return None
         return Storeys(
             base=levels[n - 1] if n else "base",
-            base_elevation=float(elevation[n - 1]) if n else self.foot,
-            level=tuple(levels[n:]),
+            base_elevation=float(elevation[n - 1]) if n else cells.foot,
+            level=levels[n:],
             elevation=elevation[n:],
             storey_height=height[n:],
             mass=mass[n:],
@@ -293,14 +128,14 @@ class _Reader:
             stiffness=stiffness,
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
-            given="mass" if "mass" in self.values else "weight",
-            gravity=self.if_given(GRAVITY, n),
-            area=self.if_given(AREA, n),
+            given=TAKE_OFF if self.floors else "mass" if "mass" in cells.values else "weight",
+            gravity=cells.if_given(GRAVITY, n),
+            area=self.floors.area[n:] if self.floors and AREA not in cells.values else cells.if_given(AREA, n),
         )
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
         sets = []
-        taken_off = self.taken_off()
+        taken = self.taken_off()
         if self.problems:
             return None
         for name, basis in self.card.stiffness.items():
@@ -308,29 +143,30 @@ class _Reader:
             for d in self.card.directions.analysed:
                 key = stiffness_key(d, name if basis.own else None)
                 try:
-                    storey = taken_off[d] if d in taken_off else self.from_base(key)[below:]
+                    storey = taken[d] if d in taken else self.cells.from_base(key)[below:]
                     lateral[d] = Chain(storey=storey * (basis.factor_of(d) or 1.0))
                 except ModelError as error:
-                    self.problems.append(CellProblem(None, key, f"{self.table.file}, {error}"))
+                    self.refuse(f"{self.cells.table.file}, {error}", key)
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
 
-    def taken_off(self) -> Mapping[str, np.ndarray]:
-        """Storey stiffnesses by direction where the card takes them from members [kN/m]."""
-        if self.card.model.members is None or self.takeoff is None:
+    def taken_off(self) -> Mapping[str, Array]:
+        """Storey stiffnesses by direction where they come from members [kN/m]."""
+        if self.members is None or self.card.model.members is None:
             return {}
         try:
-            return taken_off(self.takeoff, self.card.model.members)
+            return taken_off(self.members, self.card.model.members)
         except InputError as error:
-            self.refuse(None, None, error)
+            self.refuse(str(error))
             return {}
 
-    def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
+    def matrices(self, levels: tuple[str, ...], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind
         given = {}
         for d in self.card.directions.analysed:
             matrix, problems = read_matrix(tables[d], levels, "flexibility" if flexible else "stiffness")
-            self.problems += [CellProblem(None, None, str(error)) for error in problems]
+            for error in problems:
+                self.refuse(str(error))
             given[d] = matrix
         if self.problems:
             return None
@@ -345,10 +181,6 @@ class _Reader:
                     else:
                         lateral[d] = StiffnessMatrix(matrix=matrix * factor)
                 except ModelError as error:
-                    self.problems.append(CellProblem(None, None, f"{tables[d].file}, {error}"))
+                    self.refuse(f"{tables[d].file}, {error}")
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
-
-
-def _listed(words: list[str]) -> str:
-    return " and ".join(filter(None, [", ".join(words[:-1]), words[-1]]))

@@ -7,29 +7,10 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from calcsheet.core.stiffnesstakeoff import Takeoff
 from calcsheet.core.storeys import Storeys
+from calcsheet.job.errors import CellProblem
 from calcsheet.job.headings import Column
 from calcsheet.job.table import TextTable
-
-
-@dataclass(frozen=True)
-class CellProblem:
-    """One thing that is wrong.
-
-    Parameters
-    ----------
-    row : int or None
-        Index of the table's row, roof first; None for a heading, a whole column or another file.
-    column : str or None
-        Key of the column; None for a row or a file as a whole.
-    message : str
-        The sentence.
-    """
-
-    row: int | None
-    column: str | None
-    message: str
 
 
 @dataclass(frozen=True, eq=False)
@@ -58,10 +39,6 @@ class StoreyReading:
         Elevation of the foot of the lowest storey [m].
     numbers : mapping of str to (n,) array
         The numbers of the levels in core units, roof first, by column key; NaN where a cell is blank or wrong.
-    takeoff : Takeoff or None
-        The stiffness take-off; None without its tables, or where there is any problem with it.
-    takeoff_problems : tuple of str
-        Why there is none, though there are tables.
     """
 
     table: TextTable
@@ -74,8 +51,6 @@ class StoreyReading:
     above: int
     foot: float
     numbers: Mapping[str, np.ndarray]
-    takeoff: Takeoff | None = None
-    takeoff_problems: tuple[str, ...] = ()
 
     @property
     def rows(self) -> tuple[tuple[str, ...], ...]:

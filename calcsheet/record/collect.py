@@ -16,7 +16,7 @@ from calcsheet.record.errors import RecordError
 from calcsheet.record.own import printable
 from calcsheet.record.parts import Own, Part, Shown, Words
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import TAKEOFF, Job
+from calcsheet.steps.graph import MASSES, STIFFNESSES, Job
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
@@ -84,6 +84,9 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
         Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
     """
     job = Job(folder.resolve())
+    for key in (MASSES, STIFFNESSES):
+        if key in content.payloads:
+            job.attach(key, None)
     now = job.payloads()
     if "basis" in content.payloads:
         here = None if job.files is None else job.files.basis
@@ -91,20 +94,19 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
             raise RecordError(
                 "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
             )
-    if TAKEOFF in content.payloads:
-        takeoff = None if job.files is None else job.files.reading.takeoff
-        if fingerprint(to_json(takeoff)) != fingerprint(content.payloads[TAKEOFF]["inputs"]):
-            raise RecordError(
-                "the notebook is stale: the stiffness take-off in this folder isn't what it shows; run all its cells and save it"
-            )
-    for key in ("card", "storeys"):
+    files = {
+        "card": "job.toml",
+        MASSES: "storeys.csv or a table of the mass take-off",
+        STIFFNESSES: "storeys.csv or a table of the stiffness take-off",
+        "storeys": "storeys.csv or job.toml",
+    }
+    for key in (key for key in files if key in content.payloads):
         if now[key]["state"] != "ok":
             raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
         compared = ({k: v for k, v in p["inputs"].items() if k not in but} for p in (now[key], content.payloads[key]))
         if len({fingerprint(inputs) for inputs in compared}) > 1:
-            file = "job.toml" if key == "card" else "storeys.csv or job.toml"
             raise RecordError(
-                f"the notebook is stale: {file} in this folder isn't what it shows; run all its cells and save it"
+                f"the notebook is stale: {files[key]} in this folder isn't what it shows; run all its cells and save it"
             )
 
 

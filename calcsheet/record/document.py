@@ -33,7 +33,7 @@ from calcsheet.render.table import facts
 from calcsheet.render.view import system_of
 from calcsheet.render.words import evidence, worked
 from calcsheet.steps.compare import EARLIER
-from calcsheet.steps.graph import FROM_FILES, TAKEOFF
+from calcsheet.steps.graph import FROM_FILES, MASSES, STIFFNESSES
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.step import Payload
 
@@ -242,8 +242,10 @@ _EVIDENCE = (
 
 def _inputs(payloads: Payloads) -> str:
     parts = [f"<h3>Storeys</h3>{shown(Shown('storeys', 'storeys', {}), payloads)}"]
-    if TAKEOFF in payloads:
-        parts.append(f"<h3>Stiffness take-off</h3>{shown(Shown('members', TAKEOFF, {}), payloads)}")
+    if MASSES in payloads:
+        parts.append(f"<h3>Mass take-off</h3>{shown(Shown('mass take-off', MASSES, {}), payloads)}")
+    if STIFFNESSES in payloads:
+        parts.append(f"<h3>Stiffness take-off</h3>{shown(Shown('members', STIFFNESSES, {}), payloads)}")
     parts.append(f"<h3>Origin of the tables</h3>{origins(payloads['card']['inputs'])}")
     rows = []
     for key, payload in payloads.items():

@@ -6,7 +6,7 @@ import re
 from collections.abc import Iterable, Iterator, Mapping
 from typing import Any
 
-from calcsheet.job.card import dotted, shorten
+from calcsheet.job.wording import dotted, shorten
 from calcsheet.record.fingerprints import Record, covered, fingerprints_of
 from calcsheet.render.answers import raised
 from calcsheet.steps.step import Payload

@@ -13,8 +13,9 @@ from dataclasses import dataclass
 from html import unescape
 from typing import Any, Literal
 
-from calcsheet.job.card import FILE, dotted
+from calcsheet.job.card import FILE
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted
 from calcsheet.render.view import system_of
 from calcsheet.render.words import filled
 from calcsheet.steps.step import Payload, key_of

@@ -6,7 +6,7 @@ from collections.abc import Collection, Iterator, Mapping, Sequence
 from html import escape
 from typing import Any
 
-from calcsheet.job.card import dotted
+from calcsheet.job.wording import dotted
 from calcsheet.render.answers import Raised, raised, unasked
 from calcsheet.render.view import Rendered, View, system_of
 from calcsheet.render.words import filled

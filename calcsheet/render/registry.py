@@ -10,12 +10,13 @@ from calcsheet.render.cautions import VIEW as CAUTIONS
 from calcsheet.render.changes import CHANGES
 from calcsheet.render.demand import DEMAND
 from calcsheet.render.drift import DRIFT
+from calcsheet.render.masses import MASSES
 from calcsheet.render.modes import MODES
 from calcsheet.render.motion import MOTION
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plot import PLOT
-from calcsheet.render.stiffnesstakeoff import MEMBERS, TAKEOFF
+from calcsheet.render.stiffnesstakeoff import MEMBERS, STIFFNESSES
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.view import View
 from calcsheet.render.whatif import WHAT_IF
@@ -24,7 +25,8 @@ VIEWS: Mapping[str, View] = {
     view.name: view
     for view in (
         CARD,
-        TAKEOFF,
+        MASSES,
+        STIFFNESSES,
         MEMBERS,
         STOREYS,
         MODES,

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Mapping, Sequence
 from typing import Any
 
@@ -14,6 +13,7 @@ from calcsheet.render.plot import LABELLED
 from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Choice, Rendered, View, system_of
 from calcsheet.steps.step import Payload
+from calcsheet.steps.stiffnesslines import along_words
 from calcsheet.units import display
 
 FILLS: Mapping[str, tuple[str, str]] = {
@@ -158,7 +158,7 @@ def _members(given: Mapping[str, Any], system: str, key: str) -> str:
         words("storeys below levels", [_run(row, level) for row in rows]),
         words("kind", [row["kind"] for row in rows]),
         words("section", [row["section"] + " (minor axis)" * (row["axis"] == "minor") for row in rows]),
-        words("acts along", [_direction(row["along"]) for row in rows]),
+        words("acts along", [along_words(row["along"]) for row in rows]),
         Column(
             "count",
             tuple(f'<data value="/{key}/inputs/members/{i}/count">{row["count"]}</data>' for i, row in enumerate(rows)),
@@ -251,13 +251,8 @@ def _run(row: Mapping[str, Any], level: Sequence[str]) -> str:
     return first if row["first"] == row["last"] else f"{first} to {last}"
 
 
-def _direction(along: Sequence[float]) -> str:
-    named = {(1.0, 0.0): "x", (0.0, 1.0): "y"}.get((along[0], along[1]))
-    return named or f"{math.degrees(math.atan2(along[1], along[0])):.6g}° from x"
-
-
 ROWS = {"shown": "shown", "hidden": "hidden"}
-TAKEOFF = View(
+STIFFNESSES = View(
     "stiffness take-off", "Stiffness take-off", "stiffness take-off", render, (Choice("rows", "members", ROWS),)
 )
 MEMBERS = View("members", "Members, sections and materials", "stiffness take-off", render_members)

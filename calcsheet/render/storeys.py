@@ -97,14 +97,16 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         )
         for named in given["stiffness"]
     ]
-    below = _below(given["below"], system, key) if given["below"] else ""
+    below = _below(given, system, key) if given["below"] else ""
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
 
 
 def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]) -> list[Column]:
-    """Mass as given; or weight as given, with the mass that follows from it."""
-    if given["given"] == "mass":
-        return [values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=order, as_given=True)]
+    """Mass as given or taken off; or weight as given, with the mass that follows from it."""
+    if given["given"] in ("mass", "take-off"):
+        name, at, typed = "mass", f"/{key}/inputs/mass", given["given"] == "mass"
+        name = name if typed else "mass by take-off"
+        return [values(name, given["mass"], "mass", system, at, order=order, as_given=typed)]
     at = f"/{key}/result/weight_of_level"
     return [
         values("weight", sums["weight_of_level"], "weight", system, at, order=order, as_given=True),
@@ -117,12 +119,14 @@ def _serves(name: str, given: Mapping[str, Any]) -> str:
     return f"serves {' and '.join(served)}; " if served else ""
 
 
-def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
+def _below(given: Mapping[str, Any], system: str, key: str) -> str:
+    below = given["below"]
     order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
     columns = [words("level", [below[i]["level"] for i in order])]
     for name, field in (("elevation", "elevation"), ("mass", "mass")):
+        typed = field == "elevation" or given["given"] != "take-off"
         columns.append(
-            values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True)
+            values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=typed)
         )
     return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 

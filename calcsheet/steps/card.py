@@ -73,7 +73,8 @@ def run(card: Card) -> Outcome:
         cautions.append(
             Caution("to-confirm", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.", subject=str(i))
         )
-    for name in ("storeys.csv", *card.model.files.values(), *spectrum_files(card).values()):
+    taken_off = () if card.masses is None else (card.masses.source, "loads.csv")
+    for name in ("storeys.csv", *taken_off, *card.model.files.values(), *spectrum_files(card).values()):
         if not (name in card.origins and card.origins[name].source.strip()):
             cautions.append(
                 Caution(

@@ -95,6 +95,27 @@ CAUTIONS: Mapping[str, Why] = {
         "Weight over floor area is the quickest test for loads left out, counted twice or given in another unit.",
         "The take-off is compared with the build-up of a typical floor; light roofs and plant floors are explained.",
     ),
+    # ---- mass take-off
+    "unused-columns": Why(
+        "A column that is not read adds nothing, however carefully it was filled in.",
+        "Its heading is corrected, or it is kept as a remark.",
+    ),
+    "no-mass-share": Why(
+        "A variable load that is left out makes the building lighter, its periods shorter and its forces smaller.",
+        "The share is stated with its clause, 0 where the code asks for none.",
+    ),
+    "centre-outside-plan": Why(
+        "A centre of mass outside its floor comes from a position measured from elsewhere, or a weight in another unit.",
+        "Positions are measured from one origin for floors and other masses alike.",
+    ),
+    "covers-more": Why(
+        "An area larger than its floor counts a load twice or belongs to another level.",
+        "The areas are compared with the plans.",
+    ),
+    "masses-differ": Why(
+        "Two sets of masses in one record leave it open which of them the results stand for.",
+        "The storey table takes over the take-off's masses, or the difference is explained.",
+    ),
     # ---- stiffness take-off
     "walls-by-storey": Why(
         "A wall that bends over its whole height has no stiffness of one storey alone: the sum of storey stiffnesses misleads.",

@@ -7,9 +7,12 @@ from collections.abc import Callable, Iterable, Iterator, Mapping
 from typing import Any
 
 from calcsheet.core.codes.registry import EDITIONS
-from calcsheet.job.card import dotted
+from calcsheet.core.floors import PLACES
+from calcsheet.job.sectionfile import HEADINGS
+from calcsheet.job.wording import dotted
 from calcsheet.steps.headlines import Payloads
 from calcsheet.steps.step import Payload
+from calcsheet.steps.stiffnesslines import along_words
 
 PLAIN = "ratio"
 """Quantity of a number that stands as it was typed."""
@@ -19,6 +22,28 @@ OF_LEVELS = {
     "gravity": ("gravity load", "force"),
     "area": ("floor area", "area"),
 }
+OF_FLOORS = {
+    "area": ("floor area", "area"),
+    "plan_x": ("plan x", "length"),
+    "plan_y": ("plan y", "length"),
+    "centre_x": ("centre of the floor x", "length"),
+    "centre_y": ("centre of the floor y", "length"),
+    "own_radius": ("radius of gyration given", "length"),
+}
+OF_OTHER = {"weight": "weight", "x": "length", "y": "length", "plan_x": "length", "plan_y": "length"}
+"""Quantities of floors and of masses with places of their own."""
+OF_PARTS: Mapping[str, Mapping[str, str]] = {
+    "material": {"modulus": "modulus", "shear_modulus": "modulus"},
+    "section": {
+        **dict.fromkeys(("depth", "width", "thickness"), "section size"),
+        **dict.fromkeys(("area", "shear_area"), "section area"),
+        **dict.fromkeys(("major", "minor"), "second moment"),
+    },
+    "member": dict.fromkeys(("height", "run", "spans"), "length"),
+}
+"""What a stiffness take-off is made from, with the quantities of its numbers; the others stand as they were typed."""
+SPOKEN = {field: heading for heading, field in HEADINGS.items()} | {"factor": "stiffness factor"}
+"""Fields of sections and members that go by other words than their own."""
 OF_LATERAL = {"storey chain": "stiffness", "stiffness matrix": "stiffness", "flexibility matrix": "flexibility"}
 """Quantity of the numbers of a lateral stiffness, by its kind."""
 OF_SECOND_MODEL = {"period": "period", "weight": "weight", "base shear": "force"}
@@ -121,11 +146,69 @@ def _lateral(inputs: Mapping[str, Any], of: str, lateral: Mapping[str, Any], at:
 
 
 def _by_level(
-    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float], at: str
+    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float | None], at: str
 ) -> Iterator[Given]:
     place = at if "{}" in at else f"{at}/{{}}"
     for i, (level, number) in enumerate(zip(inputs["level"], numbers, strict=True)):
         yield _leaf(key, label, number, place.format(i), quantity, str(level))
+
+
+# ---- mass take-off ---------------------------------------------------------------------------------------------------
+
+
+def _masses(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    """Floors by level, loads and other masses by name; storey heights and masses stated are the storey table's."""
+    inputs, at = payload["inputs"], f"/{key}/inputs"
+    for name, (label, quantity) in OF_FLOORS.items():
+        yield from _saying(_by_level(inputs, f"{key}.{name}", label, quantity, inputs[name], f"{at}/{name}"))
+    for j, load in enumerate(inputs["load"]):
+        place, of = PLACES.get(load["place"], PLACES["floor"]), f"load “{load['name']}”"
+        for field, quantity in (
+            ("kind", ""),
+            ("place", ""),
+            ("value", place.value),
+            ("share", "share"),
+            ("clause", ""),
+        ):
+            if load[field] not in (None, ""):
+                label = f"{of}, {field}"
+                yield _leaf(f"{key}.{of}.{field}", label, load[field], f"{at}/load/{j}/{field}", quantity or PLAIN)
+        amounts = [row[j] for row in inputs["amount"]]
+        label = f"{of}, {place.amount}"
+        yield from _saying(_by_level(inputs, label, label, place.amount, amounts, f"{at}/amount/{{}}/{j}"))
+    seen: dict[tuple[str, str], int] = {}
+    for i, other in enumerate(inputs["other"]):
+        named = other["level"], other["name"]
+        seen[named] = seen.get(named, 0) + 1
+        label = f"“{other['name']}”" + (f" ({seen[named]})" if seen[named] > 1 else "")
+        for field, quantity in OF_OTHER.items():
+            words = f"{label}, {_spoken(field)}"
+            yield _leaf(f"other {words}", words, other[field], f"{at}/other/{i}/{field}", quantity, other["level"])
+
+
+def _saying(given: Iterable[Given]) -> Iterator[Given]:
+    """Those of an amount above or below zero: zero and none say the same."""
+    return (g for g in given if g.number)
+
+
+# ---- stiffness take-off ----------------------------------------------------------------------------------------------
+
+
+def _stiffnesses(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
+    """Materials, sections and members by name; storey heights, factors of sets and origins are given elsewhere."""
+    inputs = payload["inputs"]
+    for part, quantities in OF_PARTS.items():
+        for i, item in enumerate(inputs[f"{part}s"]):
+            of, at = f"{part} “{item['name']}”", f"/{key}/inputs/{part}s/{i}"
+            for field, value in item.items():
+                if field not in ("name", "first", "last", "along"):
+                    words = f"{of}, {SPOKEN.get(field, _spoken(field))}"
+                    quantity = quantities.get(field, PLAIN)
+                    yield from _leaves((key, of, field), value, f"{at}/{field}", quantity, words)
+            if part == "member":
+                ends = [level for j, level in enumerate(inputs["level"]) if j in (item["first"], item["last"])]
+                yield _leaf(dotted((key, of, "storeys")), f"{of}, storeys", " to ".join(ends), f"{at}/first")
+                yield _leaf(dotted((key, of, "along")), f"{of}, direction", along_words(item["along"]), f"{at}/along")
 
 
 # ---- job card, basis, options ----------------------------------------------------------------------------------------
@@ -177,6 +260,8 @@ def _options(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
 
 INPUTS: Mapping[str, Callable[[str, Payload, bool], Iterator[Given]]] = {
     "card": _card,
+    "masses": _masses,
+    "stiffness take-off": _stiffnesses,
     "storeys": _storeys,
     "basis": _basis,
 }

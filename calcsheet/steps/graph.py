@@ -20,7 +20,6 @@ from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
 from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
-from calcsheet.job.storeyfile import read_storeys
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.history import History
@@ -33,8 +32,9 @@ KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
 Values = Mapping[tuple[str, ...], Value | None]
 
-TAKEOFF = "stiffness take-off"
-FROM_FILES = ("card", "storeys", "basis", TAKEOFF)
+MASSES, STIFFNESSES = "masses", "stiffness take-off"
+"""The take-offs, which may feed the storeys."""
+FROM_FILES = ("card", MASSES, STIFFNESSES, "storeys", "basis")
 """Steps whose inputs are the job's files."""
 
 
@@ -314,8 +314,7 @@ class Job:
             self.files = self.folder.save_storeys(files, table, overwrite)
             self.status, self._unsaved = Status("saved", f"saved to {table.file} at {clock()}"), False
         except NotSavedError as error:
-            reading = read_storeys(table, files.card, files.matrices, files.members)
-            self.files, self._unsaved = replace(files, reading=reading), True
+            self.files, self._unsaved = files.with_storeys(table), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
         self._update()
 
@@ -325,10 +324,11 @@ class Job:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
         self._newer.set()
-        if (
-            self.files is not None and self.files.card.model.members is not None
-        ):  # the record shows what storeys are made from
-            self._nodes.setdefault(TAKEOFF, _Node(STEPS[TAKEOFF], {}, None))
+        card = None if self.files is None else self.files.card
+        if card is not None:  # what the storeys are made from is to be traced
+            for key, feeds in ((MASSES, card.masses), (STIFFNESSES, card.model.members)):
+                if feeds is not None:
+                    self._nodes.setdefault(key, _Node(STEPS[key], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -374,12 +374,17 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        if key == TAKEOFF:
-            if self.files.reading.takeoff is None:
-                raise _RefusedError(few(self.files.reading.takeoff_problems or (f"no {MEMBERS} in the job folder",)))
-            return self.files.reading.takeoff
-        if self.files.problems:
-            raise _RefusedError(few(self.files.problems))
+        if key == MASSES:
+            if self.files.floors is None:
+                raise _RefusedError("no floors.csv and loads.csv in the job folder; the mass take-off needs both")
+            _refuse_any(self.files.floors.messages)
+            return self.files.floors.floors
+        if key == STIFFNESSES:
+            if self.files.members is None:
+                raise _RefusedError(f"no {MEMBERS} in the job folder; the stiffness take-off needs it")
+            _refuse_any(self.files.members.messages)
+            return self.files.members.takeoff
+        _refuse_any(self.files.problems)
         return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
@@ -412,6 +417,12 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _refuse_any(problems: Sequence[str]) -> None:
+    """Refuse what has problems, the first of them quoted."""
+    if problems:
+        raise _RefusedError(few(problems))
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

@@ -10,14 +10,28 @@ from calcsheet.steps.card import CARD
 from calcsheet.steps.demand import DEMAND
 from calcsheet.steps.drift import DRIFT
 from calcsheet.steps.earlier import EARLIER
+from calcsheet.steps.masses import MASSES
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
 from calcsheet.steps.step import Step
-from calcsheet.steps.stiffnesstakeoff import STIFFNESS_TAKEOFF
+from calcsheet.steps.stiffnesstakeoff import STIFFNESSES
 from calcsheet.steps.storeys import STOREYS
 
 STEPS: Mapping[str, Step] = {
     step.kind: step
-    for step in (CARD, STIFFNESS_TAKEOFF, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, EARLIER)
+    for step in (
+        CARD,
+        MASSES,
+        STIFFNESSES,
+        STOREYS,
+        MODES,
+        PARTICIPATION,
+        BASIS,
+        DEMAND,
+        PEAKS,
+        DRIFT,
+        ACTIONS,
+        EARLIER,
+    )
 }

@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Sequence
+
 from calcsheet.core.memberstiffness import RESTRAINT
 from calcsheet.core.stiffnesstakeoff import (
     DIAGONAL,
@@ -18,6 +21,12 @@ MECHANICS = "beams with bending and shear"
 MUTO = "Muto, Aseismic Design Analysis of Buildings, 1974 (from memory)"
 GEOMETRY = "geometry"
 STATICS = "pin-ended diagonal"
+
+
+def along_words(along: Sequence[float]) -> str:
+    """The direction of a unit vector in words: x, y, or degrees from x."""
+    named = {(1.0, 0.0): "x", (0.0, 1.0): "y"}.get((along[0], along[1]))
+    return named or f"{math.degrees(math.atan2(along[1], along[0])):.6g}° from x"
 
 
 def lines_of_row(given: Takeoff, result: StoreyStiffness, i: int) -> list[Line]:

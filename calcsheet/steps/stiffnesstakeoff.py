@@ -49,4 +49,4 @@ of a pair both act, or one at a time where they take tension only. Stretching of
 slip of joints are left out. Where walls bend over several storeys no stiffness of one storey describes them well.
 """
 
-STIFFNESS_TAKEOFF = Step("stiffness take-off", 1, "Stiffness take-off", Takeoff, StoreyStiffness, (), run, METHOD)
+STIFFNESSES = Step("stiffness take-off", 1, "Stiffness take-off", Takeoff, StoreyStiffness, (), run, METHOD)

@@ -30,7 +30,7 @@ ROOF = re.compile(r"\s*(roof|top)( level| floor| slab)?\s*", re.IGNORECASE)
 def run(storeys: Storeys) -> Outcome:
     cautions = [*_jumps("mass", storeys.mass.tolist(), storeys.level, "inputs/mass", "mass")]
     sums = totals(storeys)
-    cautions = [*_order(storeys.level), *_heights(storeys), *_weights(sums, storeys.level), *cautions]
+    cautions = [*_order(storeys.level), *_heights(storeys), *_weights(sums, storeys), *cautions]
     for i, given in enumerate(storeys.stiffness):
         cautions += _of_set(given, storeys.level, f"inputs/stiffness/{i}")
     return Outcome(sums, cautions=tuple(cautions))
@@ -70,13 +70,29 @@ def _heights(storeys: Storeys) -> list[Caution]:
     return [Caution("storey-heights", text, numbers, answer=True)]
 
 
-def _weights(sums: Totals, levels: tuple[str, ...]) -> list[Caution]:
-    """Levels of unusual weight over floor area; an answer is asked for where most levels are far from the usual."""
-    if sums.weight_per_area is None:
+def _weights(sums: Totals, storeys: Storeys) -> list[Caution]:
+    """Levels of unusual weight; the take-off names them itself where the masses come from it."""
+    if sums.weight_per_area is None or storeys.given == "take-off":
         return []
+    return unusual_weights(sums.weight_per_area.tolist(), storeys.level)
+
+
+def unusual_weights(found: list[float], levels: tuple[str, ...], below: int = 0, subject: str = "") -> list[Caution]:
+    """Levels of unusual weight over floor area; an answer is asked for where most levels are far from the usual.
+
+    Parameters
+    ----------
+    found : list of float
+        Weight over floor area of each level, in `result/weight_per_area` [kN/m²].
+    levels : tuple of str
+        The levels.
+    below : int
+        How many of them, from the first, are left out.
+    subject : str
+        Subject of the caution.
+    """
     low, high = WEIGHTS
-    found = sums.weight_per_area.tolist()
-    strange = [i for i, weight in enumerate(found) if not low <= weight <= high]
+    strange = [i for i, weight in enumerate(found) if i >= below and not low <= weight <= high]
     if not strange:
         return []
     named = ", ".join(f'{{{n}}} at level "{plain(levels[i])}"' for n, i in enumerate(strange[:NAMED]))
@@ -86,8 +102,8 @@ def _weights(sums: Totals, levels: tuple[str, ...]) -> list[Caution]:
         f"Weight over floor area outside {low:g} to {high:g} kN/m², about 60 to 300 psf (common practice): {named}{more}; "
         "check masses and areas."
     )
-    far = sum(not low / FAR <= weight <= high * FAR for weight in found)
-    return [Caution("weight-per-area", text, numbers, answer=2 * far > len(found))]
+    far = sum(not low / FAR <= weight <= high * FAR for weight in found[below:])
+    return [Caution("weight-per-area", text, numbers, answer=2 * far > len(found) - below, subject=subject)]
 
 
 def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Caution]:

@@ -11,6 +11,7 @@ from calcsheet.blocks import (
     DemandSpectrum,
     DriftCheck,
     JobCard,
+    MassTakeoff,
     ModalTable,
     ModePlot,
     ModeSolver,
@@ -23,6 +24,7 @@ from calcsheet.blocks import (
 
 WANTED = {
     StoreyTable: JobCard,
+    MassTakeoff: JobCard,
     StiffnessTakeoff: JobCard,
     ModeSolver: StoreyTable,
     ModePlot: ModeSolver,

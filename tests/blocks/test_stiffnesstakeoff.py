@@ -8,7 +8,7 @@ import pytest
 
 from calcsheet.blocks import JobCard, StiffnessTakeoff
 from calcsheet.job.errors import InputError
-from calcsheet.steps.graph import TAKEOFF
+from calcsheet.steps.graph import STIFFNESSES
 
 
 def test_a_cell_shows_it_with_its_twin(shell, members_folder, monkeypatch):
@@ -37,7 +37,7 @@ def test_adopted_stiffnesses_are_those_of_the_table_to_six_digits(members_folder
     before = path.read_text().splitlines()
     takeoff.adopt()
     adopted = card.job.payload("storeys")["inputs"]["stiffness"][0]["lateral"]
-    for item in card.job.payload(TAKEOFF)["result"]["directions"]:
+    for item in card.job.payload(STIFFNESSES)["result"]["directions"]:
         assert adopted[item["direction"]]["storey"] == pytest.approx(item["storey"], rel=5e-6)
     after = path.read_text().splitlines()
     assert [line.split(",")[:3] for line in after] == [line.split(",")[:3] for line in before]
@@ -63,7 +63,8 @@ def test_what_feeds_the_table_is_not_adopted(members_folder):
 
 def test_what_is_not_there_is_not_adopted(job_folder, members_folder):
     with pytest.raises(
-        InputError, match=r"^no stiffness take-off to adopt: no members\.csv in the job folder; put that right"
+        InputError,
+        match=r"^no stiffness take-off to adopt: no members\.csv in the job folder; the stiffness take-off needs it; put",
     ):
         StiffnessTakeoff(JobCard(job_folder())).adopt()
     folder = members_folder(feeds=False, name="bare")

@@ -7,8 +7,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from calcsheet.job.card import Card, card_of, dotted, parse_card, parse_toml
+from calcsheet.job.card import Card, card_of, parse_card, parse_toml
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted
 from calcsheet.steps.serial import fingerprint, from_json, to_json
 
 MATRIX = ('"storey chain"', '"stiffness matrix"\nx = "kx.csv"\ny = "ky.csv"')

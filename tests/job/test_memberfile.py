@@ -14,7 +14,8 @@ from calcsheet.core.errors import ModelError
 from calcsheet.core.stiffnesstakeoff import take_off
 from calcsheet.job.card import parse_card
 from calcsheet.job.errors import InputError
-from calcsheet.job.memberfile import MemberTables, read_members
+from calcsheet.job.memberfile import read_members
+from calcsheet.job.storeycells import Frame
 from calcsheet.job.table import parse_table
 from calcsheet.job.textfile import Stamp, TextFile, decode
 
@@ -42,7 +43,8 @@ W,Roof,wall,W4,30°,2,cantilever,,,,0.5,yes,0.4,,,,
 X,2,brace,Bar,y,1,pair in tension only,,,5.5,,,,,,,
 I,1,infill strut,Strut,x,3,,,,5.5,,,,,,,
 """
-LEVELS, HEIGHTS = ["1", "2", "3", "Roof"], np.array([4.4, 3.3, 3.3, 3.1])
+FRAME = Frame(("G", "1", "2", "3", "Roof"), 1, np.array([3.6, 4.4, 3.3, 3.3, 3.1]), None)
+"""The level at the base is no storey of the model."""
 
 
 def table(text, file):
@@ -57,7 +59,8 @@ def read(card):
         for file, old, new in changes:
             assert old in texts[file]
             texts[file] = texts[file].replace(old, new, 1)
-        return read_members(MemberTables(*(table(t, file) for file, t in texts.items())), card, LEVELS, HEIGHTS)
+        reading = read_members({file: table(t, file) for file, t in texts.items()}, card, FRAME)
+        return reading.takeoff, list(reading.problems)
 
     return of
 
@@ -94,7 +97,7 @@ def test_rows_become_members_in_core_units(read):
     assert (steel.shear_modulus, brick.shear_modulus) == (81e6, 0.0)
     own = takeoff.sections[3]
     assert (own.area, own.major, own.minor) == pytest.approx((76.8e-4, 9100e-8, 3090e-8))
-    assert takeoff.storey_height.tolist() == HEIGHTS.tolist()
+    assert takeoff.storey_height.tolist() == [4.4, 3.3, 3.3, 3.1]
     assert [(f.name, f.direction, f.factor) for f in takeoff.factors] == [
         ("gross", "x", 1.0), ("gross", "y", 1.0), ("cut", "x", 0.5), ("cut", "y", 0.6)
     ]  # fmt: skip

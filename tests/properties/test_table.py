@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 
 from calcsheet.blocks import JobCard, StoreyTable
 from calcsheet.job.clipboard import read_block
-from calcsheet.job.storeyfile import FILE
+from calcsheet.job.storeycells import FILE
 from calcsheet.job.table import parse_table
 from calcsheet.job.textfile import read
 from calcsheet.resources import DEMO, folder

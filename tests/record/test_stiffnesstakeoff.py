@@ -12,7 +12,7 @@ from calcsheet.record.equations import to_svg
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue
 from calcsheet.record.markdown import to_html
-from calcsheet.steps.graph import TAKEOFF
+from calcsheet.steps.graph import STIFFNESSES
 from calcsheet.steps.replay import replay
 from calcsheet.steps.stiffnesstakeoff import METHOD
 
@@ -53,7 +53,7 @@ def test_it_is_printed_with_method_lines_and_inputs(folder, document):
 def test_storeys_taken_from_members_carry_them_into_the_record_unasked(folder, document):
     cells = tuple(cell for cell in CELLS if "takeoff =" not in cell)
     html, data = (path.read_text(encoding="utf-8") for path in issue(folder(cells), to=["html"]).files)
-    assert json.loads(data)["payloads"][TAKEOFF]["state"] == "ok"
+    assert json.loads(data)["payloads"][STIFFNESSES]["state"] == "ok"
     assert "Sections and their properties" in document(html).words
 
 
@@ -65,7 +65,7 @@ def test_members_changed_since_are_noticed(folder, static, feeds, monkeypatch):
     refuse_stale(content, made)
     path = made / "members.csv"
     path.write_text(path.read_text().replace("Core,all,wall,W3,y,2", "Core,all,wall,W3,y,3"))
-    with pytest.raises(RecordError, match="the notebook is stale: the stiffness take-off in this folder"):
+    with pytest.raises(RecordError, match=r"the notebook is stale: storeys\.csv or a table of the stiffness take-off"):
         refuse_stale(content, made)
 
 

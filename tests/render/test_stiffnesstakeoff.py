@@ -7,7 +7,7 @@ import re
 import pytest
 
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import TAKEOFF, Job
+from calcsheet.steps.graph import STIFFNESSES, Job
 
 KIP, INCH = 4.4482216152605, 0.0254  # kN and m, exact by definition
 ONE = {
@@ -33,7 +33,7 @@ QUANTITY = {field: quantity for quantity, fields in FIELDS.items() for field in 
 
 def html(job, name, **options):
     view = VIEWS[name]
-    return view.render(job.payloads(), TAKEOFF, view.chosen(options)).html
+    return view.render(job.payloads(), STIFFNESSES, view.chosen(options)).html
 
 
 @pytest.mark.parametrize("us", [False, True])
@@ -61,7 +61,7 @@ def test_each_storey_has_its_shares_and_each_row_its_stiffness(members_folder, d
     shares = [at for at, _ in seen.numbers if "/directions/0/share/0/" in at]
     assert [int(at.rpartition("/")[2]) for at in shares] == [4, 3, 2, 1, 0]
     rows = [at for at, _ in seen.numbers if at.endswith("/alone/0") or at.endswith("/alone/3")]
-    assert f"/{TAKEOFF}/result/members/1/alone/3" in rows  # "Inner upper" begins in the storey below level 4
+    assert f"/{STIFFNESSES}/result/members/1/alone/3" in rows  # "Inner upper" begins in the storey below level 4
 
 
 def test_rows_may_be_hidden(members_folder, document):
@@ -72,7 +72,7 @@ def test_rows_may_be_hidden(members_folder, document):
 def test_the_inputs_are_complete(members_folder, document):
     job = Job(members_folder())
     seen = document(html(job, "members")).words
-    inputs = job.payload(TAKEOFF)["inputs"]
+    inputs = job.payload(STIFFNESSES)["inputs"]
     for group in ("members", "sections", "materials"):
         assert all(item["name"] in seen for item in inputs[group])
     for words in ("4 to Roof", "35° from x", "beams on pinned base with shear", "cracked", "B70"):
@@ -83,8 +83,8 @@ def test_the_inputs_are_complete(members_folder, document):
 def test_bars_by_kind(members_folder, us):
     job = Job(members_folder(us=us))
     view = VIEWS["stiffness take-off"]
-    (drawing,) = view.render(job.payloads(), TAKEOFF, view.chosen({})).draw()
-    again = view.render(job.payloads(), TAKEOFF, view.chosen({})).draw()[0]
+    (drawing,) = view.render(job.payloads(), STIFFNESSES, view.chosen({})).draw()
+    again = view.render(job.payloads(), STIFFNESSES, view.chosen({})).draw()[0]
     assert drawing.svg == again.svg
     for word in ("column", "brace", "wall", f"storey stiffness x [{'kip/in' if us else 'kN/m'}]", "Roof"):
         assert f">{word}<" in drawing.svg

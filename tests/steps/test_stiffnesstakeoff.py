@@ -10,7 +10,8 @@ import pytest
 
 from calcsheet.core.sections import Material, Section
 from calcsheet.core.stiffnesstakeoff import Member, SetFactor, Takeoff
-from calcsheet.steps.graph import TAKEOFF, Job
+from calcsheet.steps.given import inputs_of
+from calcsheet.steps.graph import STIFFNESSES, Job
 from calcsheet.steps.replay import replay
 from calcsheet.steps.serial import from_json, to_json
 from calcsheet.steps.stiffnesstakeoff import run
@@ -43,8 +44,8 @@ def cautions(*members, storeys=2, factors=(), direction=("x",), **more):
 
 def test_the_storey_table_takes_it_times_the_factor_of_each_set(members_folder):
     payloads = Job(members_folder()).payloads()
-    assert {key: p["state"] for key, p in payloads.items()} == {"card": "ok", "storeys": "ok", TAKEOFF: "ok"}
-    taken = {d["direction"]: np.array(d["storey"]) for d in payloads[TAKEOFF]["result"]["directions"]}
+    assert {key: p["state"] for key, p in payloads.items()} == {"card": "ok", "storeys": "ok", STIFFNESSES: "ok"}
+    taken = {d["direction"]: np.array(d["storey"]) for d in payloads[STIFFNESSES]["result"]["directions"]}
     for given in payloads["storeys"]["inputs"]["stiffness"]:
         factor = {"gross": {"x": 1.0, "y": 1.0}, "cracked": {"x": 0.6, "y": 0.5}}[given["name"]]
         for d, lateral in given["lateral"].items():
@@ -63,16 +64,16 @@ def test_it_stands_beside_the_table_where_it_does_not_feed_it(members_folder):
     job = Job(members_folder(feeds=False))
     assert set(job.payloads()) == {"card", "storeys"}
     assert job.payload("storeys")["inputs"]["stiffness"][0]["lateral"]["x"]["storey"][0] == 171000
-    job.attach(TAKEOFF, None)
-    assert job.payload(TAKEOFF)["state"] == "ok"
+    job.attach(STIFFNESSES, None)
+    assert job.payload(STIFFNESSES)["state"] == "ok"
 
 
 def test_without_its_files_it_is_refused_and_the_storeys_are_not(job_folder):
     job = Job(job_folder())
-    job.attach(TAKEOFF, None)
-    assert (job.payload(TAKEOFF)["state"], job.payload(TAKEOFF)["why"]) == (
+    job.attach(STIFFNESSES, None)
+    assert (job.payload(STIFFNESSES)["state"], job.payload(STIFFNESSES)["why"]) == (
         "refused",
-        "no members.csv in the job folder",
+        "no members.csv in the job folder; the stiffness take-off needs it",
     )
     assert job.payload("storeys")["state"] == "ok"
 
@@ -80,9 +81,11 @@ def test_without_its_files_it_is_refused_and_the_storeys_are_not(job_folder):
 @pytest.mark.parametrize("feeds", [True, False])
 def test_what_is_wrong_in_it_holds_up_what_takes_it(members_folder, feeds):
     job = Job(members_folder([("Posts,all", "Posts,7")], feeds=feeds))
-    job.attach(TAKEOFF, None)
-    assert job.payload(TAKEOFF)["state"] == "refused"
-    assert job.payload(TAKEOFF)["why"].startswith('members.csv, row 6, member "Posts": storeys "7"; must be a level')
+    job.attach(STIFFNESSES, None)
+    assert job.payload(STIFFNESSES)["state"] == "refused"
+    assert job.payload(STIFFNESSES)["why"].startswith(
+        'members.csv, row 6, member "Posts": storeys "7"; must be a level'
+    )
     assert job.payload("storeys")["state"] == ("refused" if feeds else "ok")
     assert job.payload("card")["state"] == "ok"
 
@@ -97,7 +100,7 @@ def test_a_storey_without_members_is_named(members_folder):
     assert job.payload("storeys")["why"] == (
         'members.csv, stiffness x of the storey below level "Roof": no member acts; must have at least one that acts in x'
     )
-    assert job.payload(TAKEOFF)["state"] == "refused"
+    assert job.payload(STIFFNESSES)["state"] == "refused"
 
 
 def test_a_missing_file_is_named(members_folder):
@@ -129,7 +132,7 @@ def test_numbers_out_of_range_are_refused_in_words(members_folder, changes, why)
         assert old in text
         (folder / file).write_text(text.replace(old, new, 1))
     job = Job(folder)
-    assert {job.payload(key)["state"] for key in ("storeys", TAKEOFF)} == {"refused"}
+    assert {job.payload(key)["state"] for key in ("storeys", STIFFNESSES)} == {"refused"}
     assert job.payload("storeys")["why"].startswith(why)
 
 
@@ -138,10 +141,13 @@ def test_wrong_masses_do_not_hold_up_the_take_off(members_folder):
     table = (folder / "storeys.csv").read_text()
     (folder / "storeys.csv").write_text(table.replace("141.5", "abc"))
     job = Job(folder)
-    assert (job.payload("storeys")["state"], job.payload(TAKEOFF)["state"]) == ("refused", "ok")
+    assert (job.payload("storeys")["state"], job.payload(STIFFNESSES)["state"]) == ("refused", "ok")
     (folder / "storeys.csv").write_text(table.replace("2.95", "abc"))
     job.load()
-    assert job.payload(TAKEOFF)["why"].startswith('storeys.csv, level "Roof": storey height "abc"')
+    assert job.payload(STIFFNESSES)["why"] == (
+        "storeys.csv: its levels and storey heights can't be read; the stiffness take-off needs them"
+    )
+    assert job.payload("storeys")["why"].startswith('storeys.csv, level "Roof": storey height "abc"')
 
 
 def test_an_edit_of_a_height_goes_through_both(members_folder):
@@ -152,13 +158,13 @@ def test_an_edit_of_a_height_goes_through_both(members_folder):
     assert job.folder.changed_on_disk(job.files) == ("members.csv",)
     job.load()
     after = job.payloads()
-    for key, at in ((TAKEOFF, "result"), ("storeys", "inputs")):
+    for key, at in ((STIFFNESSES, "result"), ("storeys", "inputs")):
         assert before[key][at] != after[key][at]
 
 
 def test_levels_at_the_base_and_below_are_no_storeys(members_folder):
     job = Job(members_folder(us=True))
-    assert job.payload(TAKEOFF)["inputs"]["level"] == ["2", "3", "4", "5", "Roof"]
+    assert job.payload(STIFFNESSES)["inputs"]["level"] == ["2", "3", "4", "5", "Roof"]
     assert job.payload("storeys")["inputs"]["below"][0]["level"] == "Plaza"
 
 
@@ -167,9 +173,9 @@ def test_replay_and_storage(members_folder, us):
     payloads = Job(members_folder(us=us)).payloads()
     assert replay(payloads) == []
     stored = json.loads(json.dumps(payloads))
-    inputs = stored[TAKEOFF]["inputs"]
+    inputs = stored[STIFFNESSES]["inputs"]
     assert to_json(from_json(Takeoff, inputs)) == inputs
-    stored[TAKEOFF]["result"]["directions"][0]["storey"][1] *= 1.0001
+    stored[STIFFNESSES]["result"]["directions"][0]["storey"][1] *= 1.0001
     assert [d.field for d in replay(stored)] == ["result/directions/0/storey/1"]
 
 
@@ -182,6 +188,41 @@ def test_cards_that_contradict_it(members_folder):
     assert Job(members_folder(card=[matrix], name="matrix")).payload("card")["why"] == (
         'job.toml, model.members: got "members.csv"; must be left out unless model.kind is "storey chain"'
     )
+
+
+def test_what_was_given_goes_by_names_of_materials_sections_and_members(members_folder):
+    payloads = Job(members_folder()).payloads()
+    given = [g for g in inputs_of(payloads) if g.at.startswith(f"/{STIFFNESSES}/")]
+    found = {g.label: g for g in given}
+    assert len({g.key for g in given}) == len(given)
+    for g in given:
+        value = payloads[STIFFNESSES]
+        for part in g.at.split("/")[2:]:
+            value = value[int(part)] if isinstance(value, list) else value[part]
+        assert g.number is None or g.number == value
+    modulus, depth = found["material “Concrete”, modulus"], found["section “C55”, depth"]
+    assert (modulus.number, modulus.quantity) == (31.5e6, "modulus")
+    assert (depth.number, depth.quantity) == (0.55, "section size")
+    assert found["section “W2”, second moment major"].quantity == "second moment"
+    assert found["member “Inner”, count"].number == 6
+    assert found["member “Inner”, storeys"].text == "1 to 3"
+    assert found["member “Pier”, storeys"].text == "1"
+    assert found["member “Ties”, direction"].text == "35° from x"
+    assert (found["member “Inner”, stiffness factor"].number, found["member “Core”, shear"].text) == (0.7, "true")
+
+
+def test_another_member_in_front_changes_no_other(members_folder):
+    """What differs is told by member, section and material, whatever their rows."""
+    more = ("Inner,1 to 3", "New,2,column,C40,y,1,fixed-fixed,,,,,,,,,,\nInner,1 to 3")
+    before, after = (
+        {g.key: (g.number, g.text) for g in inputs_of(Job(folder).payloads()) if g.at.startswith(f"/{STIFFNESSES}/")}
+        for folder in (members_folder(), members_folder([more, ("C55,x,6", "C55,x,7")], name="after"))
+    )
+    assert before.keys() <= after.keys()
+    assert all("member “New”" in key for key in after.keys() - before.keys())
+    (changed,) = [key for key in before if before[key] != after[key]]
+    assert "member “Inner”" in changed
+    assert changed.endswith(".count")
 
 
 # ---- cautions --------------------------------------------------------------------------------------------------------

@@ -1,4 +1,4 @@
-"""Inputs that a record holds twice, held against each other: job card, storey table, basis."""
+"""Inputs that a record holds twice, held against each other: job card, storey table, take-offs, basis."""
 
 from __future__ import annotations
 
@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, Finding
+from calcsheet.record.check.takenoff import Wrong, masses, missing, stiffnesses
 
 PART = "data"
 CLOSE = 1e-9
@@ -16,8 +17,6 @@ IN_FEET = (1.0, 0.3048, 0.3048**2)
 """What a value of the card in US units may be multiplied by: none, a length, an area."""
 
 Payloads = Mapping[str, Mapping[str, Any]]
-Wrong = tuple[str, str]
-"""Place and what is wrong there."""
 
 
 def said_twice(payloads: Payloads) -> Iterator[Finding]:
@@ -36,6 +35,11 @@ def said_twice(payloads: Payloads) -> Iterator[Finding]:
             wrong += [item for card in cards for item in _factors(key, payload["inputs"], card)]
         elif payload["kind"] == "basis":
             wrong += [item for card in cards for item in _edition(key, payload["inputs"]["edition"], card)]
+        elif payload["kind"] == "masses":
+            wrong += masses(key, payloads)
+        elif payload["kind"] == "stiffness take-off":
+            wrong += stiffnesses(key, payloads)
+    wrong += missing(payloads)
     yield from (Finding(PART, DIFFERS, text, place) for place, text in wrong)
     if not wrong:
         yield Finding(PART, AGREES, "storey heights, stiffness sets and basis say the same wherever they stand twice")

@@ -9,7 +9,7 @@ from html import unescape
 from itertools import islice
 from typing import Any
 
-from calcsheet.job.card import shorten
+from calcsheet.job.wording import shorten
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding
 from calcsheet.record.check.layout import same_layout, to_install, too_long
 from calcsheet.record.check.numbers import active, differing
