@@ -6,7 +6,7 @@ import shutil
 from pathlib import Path
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from calcsheet.blocks import JobCard, StoreyTable
@@ -79,6 +79,7 @@ def test_a_paste_changes_its_own_rows_alone(job, block, at, key, high, wide):
     assert path.read_bytes() == start
 
 
+@settings(deadline=None)
 @given(
     st.lists(
         st.tuples(
