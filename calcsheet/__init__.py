@@ -16,6 +16,7 @@ if TYPE_CHECKING:
         JobCard,
         MassTakeoff,
         ModalTable,
+        ModeMotion,
         ModePlot,
         ModeSolver,
         ParticipationSummary,
@@ -24,6 +25,7 @@ if TYPE_CHECKING:
         StoreyActions,
         StoreyTable,
         WhatChanged,
+        WhatIf,
     )
 
 __version__ = "0.1.0"
@@ -34,6 +36,7 @@ __all__ = [
     "JobCard",
     "MassTakeoff",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -42,6 +45,7 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
     "__version__",
 ]
 

@@ -82,6 +82,10 @@ FORMULAS: tuple[Formula, ...] = (
     Formula(
         "I₀ − m(x² + y²), ΣW of levels against ΣW of loads", "masstakeoff.evidence_of_take_off", "parallel axis theorem"
     ),
+    Formula("z = z_0 + Σh", "alongside.elevations", "definition"),
+    Formula("h = z_i − z_(i−1)", "alongside.heights", "definition"),
+    Formula("Σ over a level and those above it", "alongside.at_and_above", "definition"),
+    Formula("m_i/m_(i−1)", "alongside.to_level_below", "definition"),
     Formula("A, I, A_s of a section", "sections.properties_of", _ROARK),
     Formula("I, A_s about an axis", "sections.Properties.about", "definition"),
     Formula("βEI/h³", "memberstiffness.bending", _BEAMS),
@@ -133,6 +137,8 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("peaks of all quantities combined", "response.combine", _CQC),
     Formula("T₁, h, w of a direction", "response.facts_of", "definition"),
     Formula("ordinate of what the modes leave out", "response.left_over", _CHOPRA),
+    Formula("αm, βK of the whole model", "whatif.multiplied", "definition"),
+    Formula("T, M*/Σm and modal base shear of a building", "whatif.answered", _CHOPRA),
     Formula("design drifts, θ, screens", "design.drifts", "the edition's clauses"),
     Formula("design storey actions", "design.actions", "the edition's clauses"),
     Formula("F = V wh^k/Σwh^k", "codes.common.by_height", _ASCE.format("12.8.3")),

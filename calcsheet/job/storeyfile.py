@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -16,47 +15,15 @@ from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
 from calcsheet.job.card import CHAIN, Card
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.floorfile import FloorReading, read_floors
-from calcsheet.job.headings import AREA, GRAVITY, Column, read_headings, stiffness_key
+from calcsheet.job.headings import AREA, GRAVITY, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
 from calcsheet.job.memberfile import MemberReading, read_members, taken_off
 from calcsheet.job.storeycells import StoreyCells
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 
 TAKE_OFF = "take-off"
 """How the masses are said to be given where they come from the mass take-off."""
-
-
-@dataclass(frozen=True, eq=False)
-class StoreyReading:
-    """What a storey table holds: every problem with it, or the storeys.
-
-    Parameters
-    ----------
-    table : TextTable
-        The table read.
-    columns : tuple of Column
-        Its columns.
-    levels : tuple of str
-        The level of each row; "" where it has no name.
-    problems : tuple of CellProblem
-        All that is wrong.
-    notices : tuple of str
-        What is left out, a sentence each.
-    storeys : Storeys or None
-        In core units; None where there is any problem.
-    """
-
-    table: TextTable
-    columns: tuple[Column, ...]
-    levels: tuple[str, ...]
-    problems: tuple[CellProblem, ...]
-    notices: tuple[str, ...]
-    storeys: Storeys | None
-
-    @property
-    def rows(self) -> tuple[tuple[str, ...], ...]:
-        """The cells of each row, a cell a column."""
-        return tuple(cells[: len(self.columns)] for cells in self.table.rows)
 
 
 def read_storeys(
@@ -117,6 +84,10 @@ def read_storeys(
         tuple(problems),
         (*headings.notices, *cells.notices),
         None if problems else storeys,
+        tuple(cells.rows),
+        len(cells.rows) - cells.below,
+        cells.foot,
+        cells.numbers(),
     )
 
 
