@@ -60,4 +60,4 @@ class MassTakeoff(Block):
                 raise InputError(reading.table.file, "", "no column for masses", f"must have one, such as {wanted}")
             return edits.set_columns(reading, {column.key: dict(zip(given["level"], found[column.key], strict=True))})
 
-        self.job.edit(change)
+        self.job.edit(change, "masses taken off")

@@ -160,8 +160,10 @@ class ShownWhatIf(Shown):
             if payload["state"] == "ok" and files is not None:
                 try:
                     shown = self._answers(payloads, factors)
-                    shown["adopting"] = _said(self._adoption(payload, files, factors))
                     note = {}
+                    shown["adopting"] = _said(self._adoption(payload, files, factors))
+                except InputError as error:  # answered, but not to be adopted
+                    note = {"kind": "refused", "text": str(error)}
                 except (ModelError, ArithmeticError) as error:  # such as a period that the spectrum does not reach
                     note = {"kind": "refused", "text": f"With these factors: {error}"}
             with self.widget.hold_sync():

@@ -8,12 +8,13 @@ from dataclasses import dataclass
 from calcsheet.job import card as job_card
 from calcsheet.job import storeycells
 from calcsheet.job import table as text_table
-from calcsheet.job.card import dotted
+from calcsheet.job.errors import InputError
 from calcsheet.job.folder import JobFiles
 from calcsheet.job.headings import GRAVITY, stiffness_key
 from calcsheet.job.numbers import decimal_mark, format_number, parse_number
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
+from calcsheet.job.wording import dotted
 
 MASSES = ("mass", "weight")
 """Columns that give the masses: a table has one of them."""
@@ -53,7 +54,16 @@ def adoption(files: JobFiles, stiffness: str, mass: float, along: Mapping[str, f
         Factor on the masses.
     along : mapping of str to float
         Factor on the stiffnesses by direction.
+
+    Raises
+    ------
+    InputError
+        A factor on masses that come from the mass take-off: no column holds them.
     """
+    source = files.card.masses
+    if source is not None and mass != 1.0:
+        found = f"the masses come from {source.source}"
+        raise InputError(job_card.FILE, "masses.source", found, "must be changed there: a mass factor can't be adopted")
     columns = {c.key: mass for c in files.reading.columns if c.used and c.key in MASSES and mass != 1.0}
     changed = {d: factor for d, factor in along.items() if factor != 1.0}
     values: dict[tuple[str, ...], float | None] = {}

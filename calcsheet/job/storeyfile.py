@@ -85,7 +85,7 @@ def read_storeys(
         (*headings.notices, *cells.notices),
         None if problems else storeys,
         tuple(cells.rows),
-        sum(map(cells.is_above, cells.rows)),
+        len(cells.rows) - cells.below,
         cells.foot,
         cells.numbers(),
     )

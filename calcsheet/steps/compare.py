@@ -69,7 +69,8 @@ class HeadlineChange(_Pair):
     before, now : Headline or None
         None where there is none.
     change : float or None
-        What was added, as a share of the value before; None where one is missing or the value before is 0.
+        What was added, as a share of the value before; None where one is missing, the value before is 0 or the
+        share beyond what can be calculated.
     same : bool
         Whether both agree.
     """
@@ -184,7 +185,8 @@ def compared(before: Facts, now: Facts) -> Changes:
 def _headline(before: Headline | None, now: Headline | None) -> HeadlineChange:
     if before is None or now is None:
         return HeadlineChange(before, now, None, same=False)
-    change = None if before.value == 0.0 else (now.value - before.value) / before.value
+    share = math.inf if before.value == 0.0 else (now.value - before.value) / before.value
+    change = share if math.isfinite(share) else None
     return HeadlineChange(before, now, change, math.isclose(before.value, now.value, rel_tol=SAME_RESULT))
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import pytest
 
@@ -103,6 +104,13 @@ def test_all_masses_by_a_factor(demand_job):
     shares = [h for h in changes.headlines if "share" in h.one.key and "participation" in h.one.key]
     assert len(shares) == 4
     assert all(h.same for h in shares)
+
+
+def test_a_share_beyond_what_can_be_calculated_is_none(demand_job):
+    before = facts_of(demand_job("EN").payloads())
+    tiny, huge = (replace(before, headlines=(replace(before.headlines[0], value=value),)) for value in (1e-200, 1e200))
+    (found,) = compared(tiny, huge).headlines
+    assert (found.change, found.same) == (None, False)
 
 
 def test_a_limit_newly_exceeded(demand_job):
