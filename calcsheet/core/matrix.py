@@ -18,6 +18,8 @@ from scipy.sparse.linalg import eigsh
 
 from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.errors import ModelError
+from calcsheet.core.given import Given
+from calcsheet.core.planar import Planar
 
 ASYMMETRY_LIMIT = 1e-3
 """Largest |A - Aᵀ| over the largest |A| that is still taken as rounding of a symmetric matrix."""
@@ -26,10 +28,11 @@ DENSE_UP_TO = 400
 
 
 @dataclass(frozen=True, eq=False)
-class _Matrix(Frozen):
+class _Matrix(Planar, Frozen):
     matrix: Array
     kind: ClassVar[str]
     quantity: ClassVar[str]
+    columns: ClassVar[tuple[Given, ...]] = ()
 
     def __post_init__(self) -> None:
         super().__post_init__()
@@ -72,20 +75,9 @@ class _Matrix(Frozen):
         """The symmetric part, ½(A + Aᵀ), (n, n)."""
         return 0.5 * (self.matrix + self.matrix.T)
 
-    def force(self, u: Array) -> Array:
-        raise NotImplementedError
-
     def energy(self, u: Array) -> Array:
         """Products uᵀKu, (m, m), of displacements u, (n, m)."""
         return u.T @ self.force(u)
-
-    def storey_energy(self, u: Array) -> Array:
-        """Storey shear times storey drift, (n, m), of displacements u, (n, m); the sum is uᵀKu.
-
-        In a model with bending one storey's product can be negative.
-        """
-        shear = np.cumsum(self.force(u)[::-1], axis=0)[::-1]
-        return shear * np.diff(u, axis=0, prepend=np.zeros((1, u.shape[1])))
 
 
 @dataclass(frozen=True, eq=False)
@@ -105,6 +97,16 @@ class StiffnessMatrix(_Matrix):
 
     kind: ClassVar[str] = "stiffness matrix"
     quantity: ClassVar[str] = "lateral stiffness matrix [kN/m]"
+    table: ClassVar[str] = "stiffness"
+
+    def times(self, factor: float) -> StiffnessMatrix:
+        """The same with every stiffness multiplied."""
+        return StiffnessMatrix(self.matrix * factor)
+
+    @property
+    def root(self) -> Array:
+        """Upper triangular C with CᵀC = K, (n, n)."""
+        return linalg.cholesky(self.symmetric)
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
         """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""
@@ -150,6 +152,16 @@ class FlexibilityMatrix(_Matrix):
 
     kind: ClassVar[str] = "flexibility matrix"
     quantity: ClassVar[str] = "lateral flexibility matrix [m/kN]"
+    table: ClassVar[str] = "flexibility"
+
+    def times(self, factor: float) -> FlexibilityMatrix:
+        """The same with every stiffness multiplied."""
+        return FlexibilityMatrix(self.matrix / factor)
+
+    @property
+    def root(self) -> Array:
+        """Lower triangular C with CᵀC = F⁻¹, (n, n)."""
+        return linalg.solve_triangular(linalg.cholesky(self.symmetric, lower=True), np.eye(self.size), lower=True)
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
         """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""
