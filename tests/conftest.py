@@ -20,8 +20,8 @@ from traitlets.config import Config
 
 from calcsheet.blocks import block as blocks
 from calcsheet.core.chain import Chain
+from calcsheet.core.lateral import Lateral
 from calcsheet.core.model import Model
-from calcsheet.core.storeys import Lateral
 from calcsheet.record import issue
 from calcsheet.record.execute import execute
 from calcsheet.steps.actions import ActionsOptions

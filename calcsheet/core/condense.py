@@ -33,7 +33,7 @@ def condensed(root: Array, keep: Sequence[int], names: Sequence[str] | None = No
     Parameters
     ----------
     root : (r, N) array
-        C with K = CᵀC, r ≥ N.
+        C with K = CᵀC.
     keep : sequence of int
         The k degrees of freedom kept, from 0, in the order wanted.
     names : sequence of str, optional
@@ -52,9 +52,8 @@ def condensed(root: Array, keep: Sequence[int], names: Sequence[str] | None = No
     kept = list(keep)
     left = [i for i in range(root.shape[1]) if i not in set(kept)]
     order = left + kept
-    if root.shape[0] < len(order):
-        raise ModelError("lateral stiffness", "a mechanism", "every displacement must meet resistance")
-    (triangle,) = linalg.qr(root[:, order], mode="r", check_finite=False)
+    rows = np.vstack([root[:, order], np.zeros((max(len(order) - root.shape[0], 0), len(order)))])
+    (triangle,) = linalg.qr(rows, mode="r", check_finite=False)
     triangle = triangle[: len(order)]
     diagonal, size = np.abs(np.diag(triangle)), np.linalg.norm(root[:, order], axis=0)
     loose = ~(diagonal > RIGID * size)

@@ -9,7 +9,10 @@ import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, positive
 from calcsheet.core.errors import ModelError
-from calcsheet.core.storeys import Lateral, Storeys
+from calcsheet.core.floors import DIRECTIONS, Floors
+from calcsheet.core.lateral import Lateral
+from calcsheet.core.standing import Standing
+from calcsheet.core.storeys import Storeys
 
 
 @dataclass(frozen=True, eq=False)
@@ -30,8 +33,11 @@ class Model(Frozen):
         Directions of excitation, d of them, such as ("x",).
     influence : (d, N) array
         Displacement of each degree of freedom when the base moves by 1 in each direction, ι.
-    lateral : Chain, StiffnessMatrix or FlexibilityMatrix
+    lateral : Chain, StiffnessMatrix, FlexibilityMatrix, Stick, Standing or Floors
         Lateral stiffness, of N degrees of freedom.
+    tilt : (L,) array or None
+        Gravity load at and above each storey over its height [kN/m], where it is in the stiffness: a storey's frames hold
+        that times its drift beside the shear of the forces.
 
     Raises
     ------
@@ -45,7 +51,8 @@ class Model(Frozen):
     level_of: tuple[int, ...]
     direction: tuple[str, ...]
     influence: Array
-    lateral: Lateral
+    lateral: Lateral | Standing | Floors
+    tilt: Array | None = None
 
     def __post_init__(self) -> None:
         super().__post_init__()
@@ -78,11 +85,39 @@ class Model(Frozen):
         moving = np.abs(self.influence).max(axis=0) > 0.0
         return self.by_level(np.where(moving, self.mass, 0.0)) / np.maximum(self.by_level(moving.astype(float)), 1.0)
 
+    def along(self, direction: str, values: Array) -> Array:
+        """Values of the degrees of freedom, (N, m), that belong to one `direction`, (L, m): its translations."""
+        return self.by_level(self.influence[self.direction.index(direction)][:, None] * values)
+
     def by_level(self, values: Array) -> Array:
         """Sums over the degrees of freedom of each level, (L, …), of values (N, …)."""
         sums = np.zeros((self.levels, *values.shape[1:]))
         np.add.at(sums, np.asarray(self.level_of), values)
         return sums
+
+
+def spatial_model(floors: Floors, mass: Array, tilt: Array | None = None) -> Model:
+    """The model of rigid floors, in both directions at once.
+
+    Parameters
+    ----------
+    floors : Floors
+        Lateral stiffness and plan.
+    mass : (L,) array
+        Mass of each level [t].
+    tilt : (L,) array or None
+        As `Model` takes it.
+    """
+    return Model(
+        level=floors.level,
+        height=np.cumsum(floors.storey_height),
+        mass=floors.inertia(mass),
+        level_of=tuple(np.repeat(np.arange(floors.levels), 3).tolist()),
+        direction=DIRECTIONS,
+        influence=floors.influence,
+        lateral=floors,
+        tilt=tilt,
+    )
 
 
 def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:

@@ -17,50 +17,11 @@ from scipy import linalg
 from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.chain import Chain
 from calcsheet.core.condense import condensed
-from calcsheet.core.errors import ModelError
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import Planar, drifts
 from calcsheet.core.rooted import Rooted
 from calcsheet.core.second_order import Critical, critical, refuse_buckled, softened
-from calcsheet.core.stick import Stick
-
-Alone = Chain | StiffnessMatrix | FlexibilityMatrix | Stick
-"""Planar lateral models on a fixed base."""
-
-
-@dataclass(frozen=True)
-class BaseSprings:
-    """Springs between a building and the ground, in one direction.
-
-    Parameters
-    ----------
-    translation : float or None
-        Stiffness against translation [kN/m]; None where the base does not move.
-    rocking : float or None
-        Stiffness against rocking [kN·m/rad]; None where the base does not turn.
-    damping : float or None
-        Damping ratio that goes with them: kept and printed, used nowhere.
-
-    Raises
-    ------
-    ModelError
-        A value that is not finite and above zero.
-    """
-
-    translation: float | None = None
-    rocking: float | None = None
-    damping: float | None = None
-
-    def __post_init__(self) -> None:
-        for name in ("translation", "rocking", "damping"):
-            value = getattr(self, name)
-            if value is not None and not 0.0 < value < np.inf:
-                raise ModelError(f"base, {name}", f"got {value:g}", "must be finite and above 0")
-
-    @property
-    def fixed(self) -> bool:
-        """Whether the base neither moves nor turns."""
-        return self.translation is None and self.rocking is None
+from calcsheet.core.springs import BaseSprings
 
 
 @dataclass(frozen=True, eq=False)
@@ -79,7 +40,7 @@ class Standing(Rooted, Planar, Frozen):
         Gravity load at and above each storey [kN]; zero where it is not in the stiffness.
     """
 
-    lateral: Alone
+    lateral: Lateral
     storey_height: Array
     springs: BaseSprings
     load: Array
@@ -159,8 +120,8 @@ class Standing(Rooted, Planar, Frozen):
 
 
 def standing(
-    lateral: Alone, storey_height: Array, springs: BaseSprings, load: Array | None, names: Sequence[str]
-) -> Alone | Standing:
+    lateral: Lateral, storey_height: Array, springs: BaseSprings, load: Array | None, names: Sequence[str]
+) -> Lateral | Standing:
     """A lateral stiffness with base springs and gravity load.
 
     Parameters
@@ -197,7 +158,7 @@ def standing(
     return held
 
 
-def critical_load(lateral: Alone, storey_height: Array, springs: BaseSprings, load: Array) -> Critical | None:
+def critical_load(lateral: Lateral, storey_height: Array, springs: BaseSprings, load: Array) -> Critical | None:
     """Elastic critical load factor of a building, None without any load.
 
     Parameters

@@ -6,10 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from calcsheet.core.arrays import Array
-from calcsheet.core.chain import Chain
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-
-Lateral = Chain | StiffnessMatrix | FlexibilityMatrix
+from calcsheet.core.lateral import Lateral
 
 
 @dataclass(frozen=True, eq=False)

@@ -11,7 +11,8 @@ from calcsheet.core.errors import ModelError
 from calcsheet.core.evidence import evidence_of_modes
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.core.modes import modes_of
-from calcsheet.core.standing import BaseSprings, Standing, critical_load, standing
+from calcsheet.core.springs import BaseSprings
+from calcsheet.core.standing import Standing, critical_load, standing
 from calcsheet.core.stick import Stick
 
 HEIGHT = np.array([4.2, 3.1, 3.3, 3.0])
