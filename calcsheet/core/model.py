@@ -11,8 +11,10 @@ from calcsheet.core.arrays import Array, Frozen, positive
 from calcsheet.core.errors import ModelError
 from calcsheet.core.floors import DIRECTIONS, Floors
 from calcsheet.core.lateral import Lateral
-from calcsheet.core.standing import Standing
-from calcsheet.core.storeys import Storeys
+from calcsheet.core.planar import above
+from calcsheet.core.springs import BaseSprings
+from calcsheet.core.standing import Standing, standing
+from calcsheet.core.storeys import StiffnessSet, Storeys
 
 
 @dataclass(frozen=True, eq=False)
@@ -138,12 +140,10 @@ def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
     Raises
     ------
     ModelError
-        No such set, or a stiffness of another size than the levels.
+        No such set, a stiffness of another size than the levels, or gravity loads that buckle the building.
     """
-    found = [s for s in storeys.stiffness if s.name == stiffness]
-    if not found:
-        names = " or ".join(f'"{s.name}"' for s in storeys.stiffness)
-        raise ModelError("stiffness set", f'got "{stiffness}"', f"must be {names}")
+    lateral = set_of(storeys, stiffness).lateral
+    load = above(gravity_of(storeys)) if storeys.second_order else None
     n = len(storeys.level)
     return tuple(
         Model(
@@ -151,9 +151,63 @@ def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
             height=storeys.elevation - storeys.base_elevation,
             mass=storeys.mass,
             level_of=tuple(range(n)),
-            direction=(direction,),
+            direction=(d,),
             influence=np.ones((1, n)),
-            lateral=lateral,
+            lateral=standing(lateral[d], storeys.storey_height, springs_of(storeys, d), load, storeys.level),
+            tilt=None if load is None else load / storeys.storey_height,
         )
-        for direction, lateral in sorted(found[0].lateral.items())
+        for d in sorted(lateral)
     )
+
+
+def set_of(storeys: Storeys, stiffness: str) -> StiffnessSet:
+    """A stiffness set by its name.
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+    stiffness : str
+        Name of the set.
+
+    Raises
+    ------
+    ModelError
+        No such set.
+    """
+    for given in storeys.stiffness:
+        if given.name == stiffness:
+            return given
+    names = " or ".join(f'"{s.name}"' for s in storeys.stiffness)
+    raise ModelError("stiffness set", f'got "{stiffness}"', f"must be {names}")
+
+
+def springs_of(storeys: Storeys, direction: str) -> BaseSprings:
+    """Springs at the base in a direction, none where it is fixed.
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+    direction : str
+        "x" or "y".
+    """
+    return storeys.springs.get(direction, BaseSprings())
+
+
+def gravity_of(storeys: Storeys) -> Array:
+    """Gravity load of each level, (n,) [kN].
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+
+    Raises
+    ------
+    ModelError
+        Its table has none.
+    """
+    if storeys.gravity is None:
+        raise ModelError("gravity load", "not given", "must be given with second-order effects in the stiffness")
+    return storeys.gravity

@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from calcsheet.core.arrays import Array
 from calcsheet.core.lateral import Lateral
+from calcsheet.core.springs import BaseSprings
 
 
 @dataclass(frozen=True, eq=False)
@@ -38,7 +39,7 @@ class StiffnessSet:
         Name of the set, such as "cracked".
     ground : str
         Why these values: the engineer's words.
-    lateral : mapping of str to Chain, StiffnessMatrix or FlexibilityMatrix
+    lateral : mapping of str to Chain, StiffnessMatrix, FlexibilityMatrix or Stick
         Lateral stiffness by direction, "x" and "y" (one or both).
     """
 
@@ -77,6 +78,10 @@ class Storeys:
         Gravity load of each level for second-order effects [kN]; None where the table has none.
     area : (n,) array or None
         Floor area of each level [m²]; None where the table has none.
+    springs : mapping of str to BaseSprings
+        Springs at the base by direction; a direction without any is fixed.
+    second_order : bool
+        Whether the gravity loads are in the stiffness.
     """
 
     base: str
@@ -92,3 +97,5 @@ class Storeys:
     given: str = "mass"
     gravity: Array | None = None
     area: Array | None = None
+    springs: Mapping[str, BaseSprings] = field(default_factory=dict)
+    second_order: bool = False

@@ -65,7 +65,8 @@ def from_json(hint: Any, data: Any) -> Any:
         return hint.model_validate_json(json.dumps(data))
     if dataclasses.is_dataclass(hint) and isinstance(hint, type):
         hints = get_type_hints(hint)
-        return hint(**{f.name: from_json(hints[f.name], data[f.name]) for f in dataclasses.fields(hint)})
+        given = {f.name: from_json(hints[f.name], data[f.name]) for f in dataclasses.fields(hint) if f.name in data}
+        return hint(**given)  # what is missing has its default
     return float(data) if hint is float else data
 
 

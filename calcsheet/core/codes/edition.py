@@ -370,11 +370,13 @@ class Edition(ABC):
         """Limit of the design drift of each storey of `facts`, (n,) [m], and how it comes about in the lowest."""
 
     @abstractmethod
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder | None:
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder | None:
         """Stability of each storey of `facts`, None where the edition has no such check.
 
         From the gravity load at and above it [kN], its shear [kN] and its design drift [m], (n,) each, the last two of one
-        unscaled set.
+        unscaled set. With second-order effects `in_stiffness` the drift holds them, and no factor follows.
         """
 
     @abstractmethod

@@ -344,12 +344,16 @@ class EN1998(Edition):
         )  # fmt: skip
         return limit, relation
 
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder:
-        theta = stability(gravity, drift, shear, facts.storey_height)
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder:
+        theta = stability(gravity, drift, shear, facts.storey_height, in_stiffness)
         worst = float(theta.max())
         verdict: Verdict = "passes"
         if worst <= 0.1:
             text = "second-order effects need not be taken into account"
+        elif in_stiffness and worst <= 0.3:
+            text = "second-order effects are in the stiffness"
         elif worst <= 0.2:
             text = "actions are multiplied by 1/(1 − θ)"
         elif worst <= 0.3:
@@ -357,7 +361,8 @@ class EN1998(Edition):
             text = "an explicit second-order analysis is called for; the values here are multiplied by 1/(1 − θ)"
         else:
             verdict, text = "exceeds", "not allowed: stiffen the building"
-        return SecondOrder(theta, drift, 0.1, 0.3, amplified(theta, 0.1), verdict, text, "4.4.2.2(2) to (4)")
+        factor = np.ones(theta.size) if in_stiffness else amplified(theta, 0.1)
+        return SecondOrder(theta, drift, 0.1, 0.3, factor, verdict, text, "4.4.2.2(2) to (4)")
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
         reduced = "reference value of q times 0.8 (4.2.3.1(7))"
