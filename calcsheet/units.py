@@ -70,6 +70,14 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
         Unit("kip·s²/in", KIP / INCH),
     ),
     "weight": _FORCE,
+    "bending stiffness": (
+        Unit("kN·m²", 1.0),
+        Unit("MN·m²", 1000.0),
+        Unit("GN·m²", 1e6),
+        Unit("kip·ft²", KIP * FOOT**2),
+        Unit("kip·in²", KIP * INCH**2),
+    ),
+    "shear stiffness": (*_FORCE, Unit("GN", 1e6)),
     "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
     "period": (Unit("s", 1.0),),
     "ordinate": (Unit("g", 1.0), Unit("m/s²", 1.0 / STANDARD_GRAVITY)),
@@ -114,6 +122,9 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "pressure": _pair(Display("kN/m²", 1.0, 3), Display("psf", POUND_FORCE / FOOT**2, 3)),
     "stiffness": _pair(Display("kN/m", 1.0, 4), Display("kip/in", KIP / INCH, 4)),
     "flexibility": _pair(Display("mm/kN", 0.001, 4), Display("in/kip", INCH / KIP, 4)),
+    "bending stiffness": _pair(Display("kN·m²", 1.0, 4), Display("kip·ft²", KIP * FOOT**2, 4)),
+    "shear stiffness": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
+    "rotational stiffness": _pair(Display("kN·m/rad", 1.0, 4), Display("kip·ft/rad", KIP * FOOT, 4)),
     "moment": _pair(Display("kN·m", 1.0, 4), Display("kip·ft", KIP * FOOT, 4)),
     "energy": _pair(Display("kN·m", 1.0, 3), Display("kip·ft", KIP * FOOT, 3)),
     "acceleration": _pair(Display("m/s²", 1.0, 4), Display("ft/s²", FOOT, 4)),
@@ -176,5 +187,5 @@ def allowed_units(quantity: str) -> str:
 def _spelling(text: str) -> str:
     """One spelling of a unit's many: superscripts, signs of multiplication and plurals levelled."""
     text = re.sub(r"\s*/\s*", "/", text.strip().replace("²", "2").replace("^", ""))
-    text = re.sub(r"[\s·⋅∙*×-]+", "·", text)
+    text = re.sub(r"[\s·⋅∙*×.-]+", "·", text)
     return "/".join("·".join(_SAME.get(name, name) for name in part.split("·")) for part in text.split("/"))

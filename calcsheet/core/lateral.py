@@ -10,3 +10,5 @@ Lateral = Chain | StiffnessMatrix | FlexibilityMatrix | Stick
 """One of them, on a fixed base."""
 LATERALS: tuple[type[Lateral], ...] = (Chain, StiffnessMatrix, FlexibilityMatrix, Stick)
 """All of them: each says by `columns` and `table` what it is made of."""
+KINDS: dict[str, type[Lateral]] = {lateral.kind: lateral for lateral in LATERALS}
+"""The same by name, as the job card names them."""

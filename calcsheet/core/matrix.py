@@ -9,8 +9,9 @@ B. N. Parlett, "The Symmetric Eigenvalue Problem" (1980), on inertia counts and 
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import ClassVar
+from typing import ClassVar, Self
 
 import numpy as np
 from scipy import linalg, sparse
@@ -33,6 +34,12 @@ class _Matrix(Planar, Frozen):
     kind: ClassVar[str]
     quantity: ClassVar[str]
     columns: ClassVar[tuple[Given, ...]] = ()
+
+    @classmethod
+    def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Self:
+        """A matrix from itself by field; the storey heights are not used."""
+        assert columns["matrix"] is not None
+        return cls(columns["matrix"])
 
     def __post_init__(self) -> None:
         super().__post_init__()

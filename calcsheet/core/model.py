@@ -12,8 +12,9 @@ from calcsheet.core.errors import ModelError
 from calcsheet.core.floors import DIRECTIONS, Floors
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import above
+from calcsheet.core.second_order import Critical
 from calcsheet.core.springs import BaseSprings
-from calcsheet.core.standing import Standing, standing
+from calcsheet.core.standing import Standing, critical_load, standing
 from calcsheet.core.storeys import StiffnessSet, Storeys
 
 
@@ -193,6 +194,24 @@ def springs_of(storeys: Storeys, direction: str) -> BaseSprings:
         "x" or "y".
     """
     return storeys.springs.get(direction, BaseSprings())
+
+
+def critical_of(storeys: Storeys, stiffness: str, direction: str) -> Critical | None:
+    """Elastic critical load factor of the gravity loads in a direction, None where none are given.
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+    stiffness : str
+        Name of the stiffness set.
+    direction : str
+        "x" or "y".
+    """
+    if storeys.gravity is None:
+        return None
+    lateral, springs = set_of(storeys, stiffness).lateral[direction], springs_of(storeys, direction)
+    return critical_load(lateral, storeys.storey_height, springs, above(storeys.gravity))
 
 
 def gravity_of(storeys: Storeys) -> Array:

@@ -78,7 +78,8 @@ def peaks(
 
     Notes
     -----
-    f_n = Γ_n M ψ_n Sa_n and u_n = Γ_n ψ_n Sa_n/ω_n², of which those along the direction are given; the residual's force is M(ι - Σ Γ_n ψ_n) Sa_r, applied statically.
+    f_n = Γ_n M ψ_n Sa_n and u_n = Γ_n ψ_n Sa_n/ω_n², of which those along the direction are given;
+    the residual's force is M(ι - Σ Γ_n ψ_n) Sa_r, applied statically.
     A. K. Chopra, Dynamics of Structures, sections 13.2 and 13.7 (from memory).
     """
     if ordinate.shape != modes.omega.shape:

@@ -10,7 +10,7 @@ from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeyfile, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
-from calcsheet.job.card import CHAIN, Card, parse_card
+from calcsheet.job.card import Card, parse_card
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable, parse_table
@@ -83,7 +83,7 @@ class JobFolder:
         storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
         matrices = {
             d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
-            for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
+            for d, name in (card.model.files.items() if card.model.lateral.table else ())
         }
         reading = read_storeys(storeys, card, matrices)
         basis, problem = self._basis(card, stamps)

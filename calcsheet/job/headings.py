@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator
+from collections.abc import Container, Iterator
 from dataclasses import dataclass, replace
+from itertools import product
 
-from calcsheet.job.card import CHAIN, DIRECTIONS, Card
+from calcsheet.core.given import Given
+from calcsheet.core.lateral import LATERALS
+from calcsheet.job.card import DIRECTIONS, Card
 from calcsheet.job.errors import InputError
 from calcsheet.job.table import TextTable
 from calcsheet.units import Unit, UnitError, allowed_units, display, parse_unit
@@ -87,11 +90,12 @@ def heading_unit(file: str, heading: str, unit: str | None, quantity: str) -> Un
 def read_headings(table: TextTable, card: Card) -> Headings:
     """Return the columns of a storey table, every problem with them, and notices of what isn't used."""
     columns: list[Column] = []
+    needed = needed_stiffness(card)
     problems: list[tuple[str | None, InputError]] = []
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = _known(name, heading, card)
+        column = _known(name, heading, card, needed)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -117,31 +121,34 @@ def read_headings(table: TextTable, card: Card) -> Headings:
     return Headings(tuple(columns), tuple(problems), tuple(notices))
 
 
-def needed_stiffness(card: Card) -> dict[str, tuple[str, str | None]]:
-    """Return the stiffness columns needed: key -> direction, set (None: what factors apply to)."""
-    if card.model.kind != CHAIN:
-        return {}
+def needed_stiffness(card: Card) -> dict[str, tuple[Given, str, str | None]]:
+    """Return the stiffness columns of the model: key -> what it gives, direction, set (None: what factors apply to)."""
     sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
-    return {stiffness_key(d, name): (d, name) for name in sets for d in card.directions.analysed}
+    return {
+        stiffness_key(given, d, name): (given, d, name)
+        for name in sets
+        for d in card.directions.analysed
+        for given in card.model.lateral.columns
+    }
 
 
-def stiffness_key(direction: str, set_name: str | None) -> str:
+def stiffness_key(given: Given, direction: str, set_name: str | None) -> str:
     """Return the key of a stiffness column."""
-    return f"stiffness {direction}" + (f" {set_name}" if set_name else "")
+    return f"{given.heading} {direction}" + (f" {set_name}" if set_name else "")
 
 
-def _known(name: str, heading: str, card: Card) -> Column | None:
+def _known(name: str, heading: str, card: Card, needed: Container[str]) -> Column | None:
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)
     if wanted in QUANTITIES:
         return Column(wanted, heading, QUANTITIES[wanted], used=True)
-    for d in DIRECTIONS:
-        for set_name in (None, *(name for name, basis in card.stiffness.items() if basis.own)):
-            key = stiffness_key(d, set_name)
-            if wanted == " ".join(key.split()).casefold():
-                used = key in needed_stiffness(card)
-                return Column(key, heading, "stiffness", None, d, set_name, used)
+    sets = (None, *(name for name, basis in card.stiffness.items() if basis.own))
+    givens = [given for lateral in LATERALS for given in lateral.columns]
+    for given, d, set_name in product(givens, DIRECTIONS, sets):
+        key = stiffness_key(given, d, set_name)
+        if wanted == " ".join(key.split()).casefold():
+            return Column(key, heading, given.heading, None, d, set_name, key in needed)
     return None
 
 
@@ -157,8 +164,8 @@ def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")
         elif keys.issuperset(pair):
             yield InputError(file, "", f"columns {' and '.join(both)}", "must have exactly one of them")
-    for key, (d, name) in needed_stiffness(card).items():
-        if key not in keys:
+    for key, (given, d, name) in needed_stiffness(card).items():
+        if key not in keys and not given.optional:
             own = f" and stiffness.{name} has own values" if name else ""
             why = f"must have it, since {d} is analysed{own} (job.toml)"
-            yield InputError(file, "", f"no column {written(key, 'stiffness')}", why)
+            yield InputError(file, "", f"no column {written(key, given.heading)}", why)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -9,15 +10,24 @@ from itertools import pairwise
 
 import numpy as np
 
-from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
+from calcsheet.core.lateral import Lateral
+from calcsheet.core.springs import BaseSprings
+from calcsheet.core.storeys import LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
-from calcsheet.job.card import CHAIN, Card
+from calcsheet.job.card import Card
 from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
 from calcsheet.job.errors import InputError
-from calcsheet.job.headings import AREA, GRAVITY, LEVEL, OPTIONAL, Column, read_headings, stiffness_key
+from calcsheet.job.headings import (
+    AREA,
+    GRAVITY,
+    LEVEL,
+    OPTIONAL,
+    Column,
+    needed_stiffness,
+    read_headings,
+    stiffness_key,
+)
 from calcsheet.job.matrixfile import read_matrix
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
@@ -120,6 +130,8 @@ class _Reader:
     def __init__(self, table: TextTable, card: Card, columns: tuple[Column, ...]) -> None:
         self.table = table
         self.card = card
+        optional = [key for key, (given, _, _) in needed_stiffness(card).items() if given.optional]
+        self.optional = (*OPTIONAL, *optional)
         self.columns = {column.key: (i, column) for i, column in enumerate(columns) if column.used}
         self.problems: list[CellProblem] = []
         self.notices: list[str] = []
@@ -201,13 +213,14 @@ class _Reader:
                         column.unit,
                         mark,
                         self.allowed(row, key),
-                        may_be_blank=key in OPTIONAL or (column.quantity == "stiffness" and not self.is_above(row)),
+                        may_be_blank=key in self.optional or (column.direction is not None and not self.is_above(row)),
                     )
                 except InputError as error:
                     self.refuse(row, key, error)
         self.check_elevations()
-        for key in OPTIONAL:
+        for key in self.optional:
             self.check_whole(key)
+        self.check_gravity()
 
     def allowed(self, row: int, key: str) -> str:
         """What a number of a column must be in a row."""
@@ -228,6 +241,21 @@ class _Reader:
         for row in blank:
             allowed = "must be given for each level above the effective base, or for none"
             self.refuse(row, key, InputError(self.table.file, self.where(row), f"{key} is blank", allowed))
+
+    def check_gravity(self) -> None:
+        """Gravity loads are given where they are to be in the stiffness."""
+        numbers = [self.values.get(GRAVITY, {}).get(row, math.nan) for row in self.rows if self.is_above(row)]
+        if self.second_order and all(map(math.isnan, numbers)):
+            allowed = f'must be false, or {self.table.file} must have a column "{GRAVITY}"'
+            error = InputError(
+                job_card.FILE, "basis.second_order_in_stiffness", "got true without gravity loads", allowed
+            )
+            self.refuse(None, None, error)
+
+    @property
+    def second_order(self) -> bool:
+        """Whether the gravity loads are to be in the stiffness."""
+        return (self.card.basis or {}).get("second_order_in_stiffness") is True
 
     def check_elevations(self) -> None:
         """Elevations fall from row to row, and stay above the foot of the lowest storey."""
@@ -279,7 +307,8 @@ class _Reader:
         weight = "weight" in self.values
         mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
         n = sum(not self.is_above(row) for row in self.rows)
-        stiffness = self.chains(n) if self.card.model.kind == CHAIN else self.matrices(levels[n:], matrices)
+        by_file = bool(self.card.model.lateral.table)
+        stiffness = self.by_file(levels[n:], matrices) if by_file else self.by_columns(n, height[n:])
         if stiffness is None:
             return None
         return Storeys(
@@ -296,26 +325,42 @@ class _Reader:
             given="mass" if "mass" in self.values else "weight",
             gravity=self.if_given(GRAVITY, n),
             area=self.if_given(AREA, n),
+            springs=self.springs(),
+            second_order=self.second_order,
         )
 
-    def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
+    def springs(self) -> dict[str, BaseSprings]:
+        """The springs at the base of each direction that has any."""
+        system = self.card.units.system
+        units = [display(quantity, system).factor for quantity in ("stiffness", "rotational stiffness", "ratio")]
+        found = {}
+        for d in self.card.directions.analysed:
+            given = [None if v is None else v * unit for v, unit in zip(self.card.base.of(d), units, strict=True)]
+            if any(v is not None for v in given):
+                found[d] = BaseSprings(*given)
+        return found
+
+    def by_columns(self, below: int, height: np.ndarray) -> tuple[StiffnessSet, ...] | None:
+        kind = self.card.model.lateral
         sets = []
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
             for d in self.card.directions.analysed:
-                key = stiffness_key(d, name if basis.own else None)
+                keys = {g.field: stiffness_key(g, d, name if basis.own else None) for g in kind.columns}
                 try:
-                    lateral[d] = Chain(storey=self.from_base(key)[below:] * (basis.factor_of(d) or 1.0))
+                    made = kind.of({field: self.if_given(key, below) for field, key in keys.items()}, height)
+                    lateral[d] = made.times(basis.factor_of(d) or 1.0)
                 except ModelError as error:
+                    key = next(iter(keys.values()))
                     self.problems.append(CellProblem(None, key, f"{self.table.file}, {error}"))
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
 
-    def matrices(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
-        flexible = self.card.model.kind == FlexibilityMatrix.kind
+    def by_file(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
+        kind = self.card.model.lateral
         given = {}
         for d in self.card.directions.analysed:
-            matrix, problems = read_matrix(tables[d], levels, "flexibility" if flexible else "stiffness")
+            matrix, problems = read_matrix(tables[d], levels, kind.table)
             self.problems += [CellProblem(None, None, str(error)) for error in problems]
             given[d] = matrix
         if self.problems:
@@ -324,12 +369,8 @@ class _Reader:
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
             for d, matrix in given.items():
-                factor = basis.factor_of(d) or 1.0
                 try:
-                    if flexible:
-                        lateral[d] = FlexibilityMatrix(matrix=matrix / factor)
-                    else:
-                        lateral[d] = StiffnessMatrix(matrix=matrix * factor)
+                    lateral[d] = kind.of({"matrix": matrix}, np.empty(0)).times(basis.factor_of(d) or 1.0)
                 except ModelError as error:
                     self.problems.append(CellProblem(None, None, f"{tables[d].file}, {error}"))
             sets.append(StiffnessSet(name, basis.ground, lateral))

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from html import escape
 from typing import Any
 
+from calcsheet.core.lateral import KINDS
 from calcsheet.render.numbers import number
 from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
@@ -57,19 +58,21 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     matrices = []
     for i, named in enumerate(given["stiffness"]):
         for direction, lateral in named["lateral"].items():
-            at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", f"stiffness {direction}"
+            at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", direction
             if len(given["stiffness"]) > 1:
                 title += f", {named['name']}"
-            if lateral["kind"] == "storey chain":
-                columns.append(
-                    values(
-                        title, lateral["storey"], "stiffness", system, f"{at}/storey", order=roof_first, as_given=True
-                    )
+            kind = KINDS[lateral["kind"]]
+            columns += [
+                values(
+                    f"{c.heading} {title}", lateral[c.field], c.heading, system, f"{at}/{c.field}", order=roof_first,
+                    as_given=True,
                 )
-            else:
-                matrices.append(
-                    _matrix(f"{lateral['kind']} {direction}, {named['name']}", given["level"], lateral, system, at)
-                )
+                for c in kind.columns
+                if lateral[c.field] is not None
+            ]  # fmt: skip
+            if kind.table:
+                caption = f"{lateral['kind']} {direction}, {named['name']}"
+                matrices.append(_matrix(caption, kind.table, given["level"], lateral, system, at))
     rows = [
         ("total mass above the base", number(sums["mass"], "mass", system, f"/{key}/result/mass")),
         ("total weight above the base", number(sums["weight"], "weight", system, f"/{key}/result/weight")),
@@ -86,6 +89,11 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         )
         for named in given["stiffness"]
     ]
+    rows += [
+        _springs(d, springs, system, f"/{key}/inputs/springs/{d}") for d, springs in given.get("springs", {}).items()
+    ]
+    if given.get("second_order"):
+        rows.append(("second-order effects", "in the stiffness, by the gravity loads"))
     below = _below(given["below"], system, key) if given["below"] else ""
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
 
@@ -106,6 +114,17 @@ def _serves(name: str, given: Mapping[str, Any]) -> str:
     return f"serves {' and '.join(served)}; " if served else ""
 
 
+def _springs(direction: str, springs: Mapping[str, Any], system: str, at: str) -> tuple[str, str]:
+    """Springs at the base of one direction."""
+    said = []
+    for name, quantity in (("translation", "stiffness"), ("rocking", "rotational stiffness")):
+        value = springs[name]
+        said.append(f"{name} {'fixed' if value is None else number(value, quantity, system, f'{at}/{name}')}")
+    if springs["damping"] is not None:
+        said.append(f"damping {number(springs['damping'], 'share', system, f'{at}/damping')}, not used")
+    return f"base springs {direction}", "; ".join(said)
+
+
 def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
     order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
     columns = [words("level", [below[i]["level"] for i in order])]
@@ -116,8 +135,7 @@ def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
     return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 
 
-def _matrix(title: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
-    quantity = "stiffness" if lateral["kind"] == "stiffness matrix" else "flexibility"
+def _matrix(title: str, quantity: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
     order = list(range(len(levels)))[::-1]
     columns = [words("level", [levels[i] for i in order])]
     for j in order:

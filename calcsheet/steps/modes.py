@@ -2,17 +2,21 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
 
+from calcsheet.core.arrays import agrees
 from calcsheet.core.bounds import Bounds, bounds
 from calcsheet.core.evidence import Evidence, evidence_of_modes
-from calcsheet.core.model import Model, models_of
+from calcsheet.core.model import Model, critical_of, models_of
 from calcsheet.core.modes import CLOSE, Modes, modes_of
+from calcsheet.core.second_order import Critical
 from calcsheet.core.storeys import Storeys
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step, plain
 
 RULE_OF_THUMB = 0.1
 """Period per storey of a frame building [s] (common practice)."""
+NEAR_BUCKLING = 10.0
+"""Elastic critical load factor from which second-order effects may be left out (EN 1993-1-1:2005, 5.2.1(3), from memory)."""
 FAR = 4.0
 """Factor off the rule of thumb, either way, from which masses, stiffnesses and their units want a second look."""
 
@@ -50,12 +54,34 @@ class ModelModes:
         Its modes.
     bounds : Bounds
         Bounds of its first frequency.
+    critical : Critical or None
+        Elastic critical load factor of the gravity loads; None where none are given.
+    fixed : FixedBase or None
+        The same model on a fixed base; None where it stands on one.
     """
 
     name: str
     size: int
     modes: Modes
     bounds: Bounds
+    critical: Critical | None = None
+    fixed: FixedBase | None = None
+
+
+@dataclass(frozen=True)
+class FixedBase:
+    """What springs at the base change.
+
+    Parameters
+    ----------
+    period : float
+        First period on a fixed base [s].
+    lengthening : float
+        First period on the springs over that.
+    """
+
+    period: float = field(metadata=agrees(rtol=1e-9))
+    lengthening: float = field(metadata=agrees(rtol=1e-9))
 
 
 @dataclass(frozen=True, eq=False)
@@ -78,15 +104,56 @@ def run(options: ModesOptions, storeys: Done) -> Outcome:
     building: Storeys = storeys.inputs
     stiffness = building.forces if options.stiffness is None else options.stiffness
     results, lines, cautions, evidence = [], [], [], []
-    for i, model in enumerate(models_of(building, stiffness)):
+    models = models_of(building, stiffness)
+    fixed = models_of(replace(building, springs={}), stiffness) if building.springs else models
+    for i, model in enumerate(models):
         name = " and ".join(model.direction)
         modes, bound = modes_of(model, None if options.keep is None else min(options.keep, model.size)), bounds(model)
         found = evidence_of_modes(model, modes, bound)
-        results.append(ModelModes(name, model.size, modes, bound))
+        on_rock = _fixed(fixed[i], modes) if model.direction[0] in building.springs else None
+        load = critical_of(building, stiffness, model.direction[0])
+        results.append(ModelModes(name, model.size, modes, bound, load, on_rock))
         lines += _lines(modes, bound, name, f"result/models/{i}")
+        if on_rock is not None:
+            lines.append(_lengthened(modes, on_rock, name, f"result/models/{i}"))
         cautions += _cautions(model, modes, name, f"result/models/{i}/modes")
+        if load is not None and not building.second_order:
+            cautions += _near_buckling(load, building.level, name, f"result/models/{i}/critical")
         evidence += [_named(e, name) for e in found]
     return Outcome(ModesResult(stiffness, tuple(results)), tuple(lines), tuple(cautions), tuple(evidence))
+
+
+def _fixed(model: Model, modes: Modes) -> FixedBase:
+    period = float(modes_of(model, 1).period[0])
+    return FixedBase(period, float(modes.period[0]) / period)
+
+
+def _lengthened(modes: Modes, fixed: FixedBase, name: str, at: str) -> Line:
+    period = Number(float(modes.period[0]), "period", f"{at}/modes/period/0")
+    on_rock = Number(fixed.period, "period", f"{at}/fixed/period")
+    return Line(
+        f"Period on base springs over that on a fixed base, {name}",
+        "T₁ / T_fixed",
+        "{0} / {1}",
+        (period, on_rock),
+        Number(fixed.lengthening, "ratio", f"{at}/fixed/lengthening"),
+        "ratio",
+    )
+
+
+def _near_buckling(load: Critical, levels: tuple[str, ...], name: str, at: str) -> list[Caution]:
+    if load.factor >= NEAR_BUCKLING:
+        return []
+    return [
+        Caution(
+            f"critical-load-{name}",
+            f"In {name} the gravity loads times {{0}} buckle the model elastically, most in the storey below level "
+            f'"{plain(levels[load.storey])}", while second-order effects are not in the stiffness; from {NEAR_BUCKLING:g} on '
+            "they may be left out (EN 1993-1-1:2005, 5.2.1(3), from memory).",
+            (Number(load.factor, "ratio", f"{at}/factor"),),
+            answer=load.factor <= 1.0,
+        )
+    ]
 
 
 def _lines(modes: Modes, bound: Bounds, name: str, at: str) -> list[Line]:
@@ -176,7 +243,15 @@ $$K\varphi = \omega^2 M\varphi , \qquad T = \frac{2\pi}{\omega} , \qquad f = \fr
 with the lateral stiffness $K$ and the diagonal mass matrix $M$. In a storey chain $K = B^{T} k B$, where $B$ takes
 displacements to storey drifts and $k$ holds the storey stiffnesses; the frequencies are the singular values of
 $\sqrt{k} B M^{-1/2}$, each found to full relative accuracy (Demmel and Kahan, 1990, from memory). A given matrix is
-solved as a dense symmetric problem (Parlett, The Symmetric Eigenvalue Problem, from memory).
+solved as a dense symmetric problem (Parlett, The Symmetric Eigenvalue Problem, from memory). In a cantilever stick a
+storey is an element that bends and shears, and the rotations of the levels, which carry no mass, are condensed out;
+through a square root $C$ of the stiffness, $K = C^{T} C$, the frequencies are the singular values of $C M^{-1/2}$
+(Golub and Van Loan, Matrix Computations, from memory).
+
+Springs at the base let the whole building move and turn without mass of the base itself. Gravity loads that are in the
+stiffness take $B^{T} (P/h) B$ from it, $P$ the load at and above a storey of height $h$; the elastic critical load factor
+is the smallest $\lambda$ with $K - \lambda B^{T} (P/h) B$ singular (Timoshenko and Gere, Theory of Elastic Stability, from
+memory).
 
 Shapes are mass-normalised and orthogonal through both matrices,
 

@@ -76,9 +76,7 @@ def up_to_static(static: float, modal: float) -> float:
     return max(1.0, static / modal)
 
 
-def stability(
-    gravity: Array, drift: Array, shear: Array, storey_height: Array, in_stiffness: bool = False
-) -> Array:
+def stability(gravity: Array, drift: Array, shear: Array, storey_height: Array, in_stiffness: bool = False) -> Array:
     """Stability coefficient θ = P Δ/(V h) of each storey.
 
     Parameters
