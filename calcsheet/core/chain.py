@@ -56,12 +56,12 @@ class Chain(Frozen):
 
     @classmethod
     def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Chain:
-        """A chain from its column by field; the storey heights are not used."""
+        """A chain from its `columns` by field; `storey_height` is not used."""
         assert columns["storey"] is not None
         return cls(columns["storey"])
 
     def times(self, factor: float) -> Chain:
-        """The same with every stiffness multiplied."""
+        """The same with every stiffness times `factor`."""
         return Chain(self.storey * factor)
 
     @property

@@ -277,6 +277,11 @@ class SparseFloors(Floors):
     """The same for many floors: K is kept sparse, and few modes are found by shift and inversion.
 
     Of lines that are storey chains K has no more than nine entries in a row.
+
+    Parameters
+    ----------
+    level, storey_height, centre, gyration, lines, gravity
+        As `Floors` takes them.
     """
 
     @cached_property

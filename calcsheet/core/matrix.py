@@ -37,7 +37,7 @@ class _Matrix(Planar, Frozen):
 
     @classmethod
     def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Self:
-        """A matrix from itself by field; the storey heights are not used."""
+        """A matrix from `columns` by field; `storey_height` is not used."""
         assert columns["matrix"] is not None
         return cls(columns["matrix"])
 
@@ -107,7 +107,7 @@ class StiffnessMatrix(_Matrix):
     table: ClassVar[str] = "stiffness"
 
     def times(self, factor: float) -> StiffnessMatrix:
-        """The same with every stiffness multiplied."""
+        """The same with every stiffness times `factor`."""
         return StiffnessMatrix(self.matrix * factor)
 
     @property
@@ -162,7 +162,7 @@ class FlexibilityMatrix(_Matrix):
     table: ClassVar[str] = "flexibility"
 
     def times(self, factor: float) -> FlexibilityMatrix:
-        """The same with every stiffness multiplied."""
+        """The same with every stiffness times `factor`."""
         return FlexibilityMatrix(self.matrix / factor)
 
     @property

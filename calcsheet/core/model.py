@@ -89,7 +89,7 @@ class Model(Frozen):
         return self.by_level(np.where(moving, self.mass, 0.0)) / np.maximum(self.by_level(moving.astype(float)), 1.0)
 
     def along(self, direction: str, values: Array) -> Array:
-        """Values of the degrees of freedom, (N, m), that belong to one `direction`, (L, m): its translations."""
+        """The part, (L, m), of `values` of the degrees of freedom, (N, m), that belongs to one `direction`."""
         return self.by_level(self.influence[self.direction.index(direction)][:, None] * values)
 
     def by_level(self, values: Array) -> Array:

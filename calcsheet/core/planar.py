@@ -10,12 +10,24 @@ from calcsheet.core.arrays import Array
 
 
 def drifts(u: Array) -> Array:
-    """Storey drifts u_i - u_(i-1), (n, m), of displacements u, (n, m), lowest level first; the base does not move."""
+    """Storey drifts u_i - u_(i-1), (n, m); the base does not move.
+
+    Parameters
+    ----------
+    u : (n, m) array
+        Displacements, lowest level first.
+    """
     return np.diff(u, axis=0, prepend=np.zeros((1, *u.shape[1:])))
 
 
 def above(f: Array) -> Array:
-    """Sums at and above each level, (n, …), of values of the levels, (n, …), lowest first: storey shears of forces."""
+    """Sums at and above each level, (n, …): storey shears, where the values are forces.
+
+    Parameters
+    ----------
+    f : (n, …) array
+        Values of the levels, lowest first.
+    """
     return np.cumsum(f[::-1], axis=0)[::-1]
 
 

@@ -78,7 +78,15 @@ def softened(root: Array, gravity_root: Array) -> Array:
 
 
 def over(gravity_root: Array, root: Array) -> Array:
-    """X = D C⁻¹, (r, N), of D, (r, N), and square C, (N, N)."""
+    """X = D C⁻¹, (r, N).
+
+    Parameters
+    ----------
+    gravity_root : (r, N) array
+        D.
+    root : (N, N) array
+        C, square.
+    """
     return linalg.solve(root.T, gravity_root.T, check_finite=False).T
 
 

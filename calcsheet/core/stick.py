@@ -69,12 +69,12 @@ class Stick(Rooted, Planar, Frozen):
 
     @classmethod
     def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Stick:
-        """A stick from its columns by field, and the storey heights."""
+        """A stick from its `columns` by field, and each `storey_height`."""
         assert columns["bending"] is not None
         return cls(columns["bending"], columns["shear"], storey_height)
 
     def times(self, factor: float) -> Stick:
-        """The same with every stiffness multiplied."""
+        """The same with every stiffness times `factor`."""
         return Stick(self.bending * factor, None if self.shear is None else self.shear * factor, self.storey_height)
 
     @property

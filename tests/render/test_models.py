@@ -33,7 +33,7 @@ def test_what_a_stick_is_given_stands_in_the_storey_table(demand_job, rendered):
     assert "/storeys/inputs/springs/x/translation" in pointers(html)
     assert "second-order effects in the stiffness, by the gravity loads" in said
     assert re.search(r"base springs x translation .*kN/m\s*; rocking fixed", said)
-    assert re.search(r"base springs y translation fixed; rocking .*kN·m/rad\s*; damping 5.0 %\s*, not used", said)
+    assert re.search(r"base springs y translation fixed; rocking .*kN·m/rad\s*; damping 5.00 %\s*, not used", said)
 
 
 def test_springs_and_critical_load_stand_under_the_periods(demand_job, rendered):
