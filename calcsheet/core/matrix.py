@@ -58,6 +58,13 @@ class _Matrix(Planar, Frozen):
                 f"{a[i, j]:g} and {a[j, i]:g}",
                 f"must be equal within {ASYMMETRY_LIMIT:g} of the largest entry",
             )
+        if (np.diag(a) <= 0.0).any():
+            i = int(np.argmax(np.diag(a) <= 0.0))
+            raise ModelError(
+                f"{self.quantity}, entry ({i + 1}, {i + 1}) from the base",
+                f"{a[i, i]:g}",
+                "must be above 0: a force moves its own level its own way",
+            )
         try:
             linalg.cholesky(self.symmetric)
         except linalg.LinAlgError:

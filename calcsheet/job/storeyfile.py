@@ -17,6 +17,7 @@ from calcsheet.core.storeys import LevelBelow, StiffnessSet, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import Card
 from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
+from calcsheet.job.deflectionfile import holds_deflections, read_deflections
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import (
     AREA,
@@ -360,7 +361,10 @@ class _Reader:
         kind = self.card.model.lateral
         given = {}
         for d in self.card.directions.analysed:
-            matrix, problems = read_matrix(tables[d], levels, kind.table)
+            if kind.table == "flexibility" and holds_deflections(tables[d]):
+                matrix, problems = read_deflections(tables[d], levels)
+            else:
+                matrix, problems = read_matrix(tables[d], levels, kind.table)
             self.problems += [CellProblem(None, None, str(error)) for error in problems]
             given[d] = matrix
         if self.problems:
