@@ -5,6 +5,7 @@ Core units are m, kN, t, s, rad. A unit's factor turns a value in it into core u
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -77,6 +78,7 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
         Unit("kip·ft²", KIP * FOOT**2),
         Unit("kip·in²", KIP * INCH**2),
     ),
+    "angle": (Unit("°", math.pi / 180.0), Unit("deg", math.pi / 180.0), Unit("rad", 1.0)),
     "shear stiffness": (*_FORCE, Unit("GN", 1e6)),
     "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
     "period": (Unit("s", 1.0),),
@@ -125,6 +127,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "bending stiffness": _pair(Display("kN·m²", 1.0, 4), Display("kip·ft²", KIP * FOOT**2, 4)),
     "shear stiffness": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "rotational stiffness": _pair(Display("kN·m/rad", 1.0, 4), Display("kip·ft/rad", KIP * FOOT, 4)),
+    "angle": _pair(Display("°", math.pi / 180.0, 4)),
     "moment": _pair(Display("kN·m", 1.0, 4), Display("kip·ft", KIP * FOOT, 4)),
     "energy": _pair(Display("kN·m", 1.0, 3), Display("kip·ft", KIP * FOOT, 3)),
     "acceleration": _pair(Display("m/s²", 1.0, 4), Display("ft/s²", FOOT, 4)),

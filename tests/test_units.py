@@ -23,6 +23,7 @@ CORE = {
     "bending stiffness": "kN*m**2",
     "shear stiffness": "kN",
     "rotational stiffness": "kN*m/rad",
+    "angle": "rad",
     "moment": "kN*m",
     "energy": "kJ",
     "acceleration": "m/s**2",
@@ -47,6 +48,7 @@ PINT = {
     "psf": "lbf/ft**2",
     "t·m²": "tonne*m**2",
     "%": "percent",
+    "°": "degree",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
     "s⁻²": "s**-2",
     "√t": "tonne**0.5",

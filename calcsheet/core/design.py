@@ -192,7 +192,7 @@ class Actions(Frozen):
     overturning : float
         Design overturning moment at the base over the weight [m].
     torsion : float or None
-        Multiplier for accidental torsion at the edge; None where it is not assessed.
+        Multiplier for accidental torsion at the edge of a planar model; None where it is not assessed, or floors rotate.
     """
 
     direction: str
@@ -257,5 +257,5 @@ def actions(
         static_force=force,
         static_clause=clause,
         overturning=float(moment[0]) / facts.total,
-        torsion=edition.torsion(facts.direction)[0],
+        torsion=edition.torsion(facts.direction)[0] if facts.plan is None else None,
     )

@@ -94,7 +94,7 @@ class Floors(Rooted, Frozen):
     Raises
     ------
     ModelError
-        Arrays that do not fit, a line of more levels than there are, a mechanism, or a building that buckles.
+        Arrays that do not fit, a line of more levels than there are, or a mechanism.
     """
 
     level: tuple[str, ...]
@@ -218,10 +218,8 @@ class Floors(Rooted, Frozen):
         return tuple(f'level "{level}", {move}' for level in self.level for move in moves)
 
     def _must_hold(self) -> None:
-        """Refuse a mechanism, and a building that its gravity load buckles."""
+        """Refuse a mechanism."""
         _ = self.fixed_root
-        if self.loaded:
-            refuse_buckled(self.critical(), self.level)
 
     def critical(self) -> Critical:
         """Elastic critical load factor of the gravity loads, which may not be all zero."""
@@ -256,6 +254,12 @@ class Floors(Rooted, Frozen):
         lower[:, 0] -= lower[:, 2] * arm[:, 1:]
         lower[:, 1] += lower[:, 2] * arm[:, :1]
         return (v - lower).reshape(u.shape)
+
+    def gravity_shear(self, u: Array) -> Array:
+        """What gravity loads in the stiffness push each storey with, (3L, m) [kN, kN, kN·m], at displacements u, (3L, m)."""
+        load = np.zeros(self.levels) if self.gravity is None else above(self.gravity)
+        push = np.sqrt(load / self.storey_height).repeat(3)
+        return push[:, None] * (self.gravity_root @ u)
 
     def storey_energy(self, u: Array) -> Array:
         """Shears and torque of each storey times its drifts, (L, m), of displacements u, (3L, m); the sum is uᵀKu."""
@@ -303,8 +307,6 @@ class SparseFloors(Floors):
             held = False
         if not held:
             _ = self.fixed_root  # the dense form says where
-        if self.loaded:
-            refuse_buckled(self.critical(), self.level)
 
     def critical(self) -> Critical:
         """Elastic critical load factor of the gravity loads, which may not be all zero."""
@@ -366,6 +368,14 @@ def floors_of(
     -------
     Floors
         `SparseFloors` above `DENSE_UP_TO` degrees of freedom.
+
+    Raises
+    ------
+    ModelError
+        As `Floors`, and where the gravity loads buckle the building.
     """
     kind = Floors if 3 * len(level) <= DENSE_UP_TO else SparseFloors
-    return kind(tuple(level), storey_height, centre, gyration, tuple(lines), gravity)
+    floors = kind(tuple(level), storey_height, centre, gyration, tuple(lines), gravity)
+    if floors.loaded:
+        refuse_buckled(floors.critical(), floors.level)
+    return floors

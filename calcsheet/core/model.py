@@ -2,20 +2,20 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, positive
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import DIRECTIONS, Floors
+from calcsheet.core.floors import DIRECTIONS, Floors, LineOfResistance, floors_of
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import above
 from calcsheet.core.second_order import Critical
 from calcsheet.core.springs import BaseSprings
 from calcsheet.core.standing import Standing, critical_load, standing
-from calcsheet.core.storeys import StiffnessSet, Storeys
+from calcsheet.core.storeys import Plan, StiffnessSet, Storeys
 
 
 @dataclass(frozen=True, eq=False)
@@ -39,8 +39,7 @@ class Model(Frozen):
     lateral : Chain, StiffnessMatrix, FlexibilityMatrix, Stick, Standing or Floors
         Lateral stiffness, of N degrees of freedom.
     tilt : (L,) array or None
-        Gravity load at and above each storey over its height [kN/m], where it is in the stiffness: a storey's frames hold
-        that times its drift beside the shear of the forces.
+        Gravity load at and above each storey over its height [kN/m], where it is in the stiffness.
 
     Raises
     ------
@@ -92,6 +91,17 @@ class Model(Frozen):
         """The part, (L, m), of `values` of the degrees of freedom, (N, m), that belongs to one `direction`."""
         return self.by_level(self.influence[self.direction.index(direction)][:, None] * values)
 
+    def gravity_shear(self, u: Array) -> Array | None:
+        """What gravity loads in the stiffness push each storey with, (N, m) [kN], at displacements u, (N, m).
+
+        Its frames hold that beside the shear of the forces. None where no loads are in the stiffness.
+        """
+        if self.tilt is None:
+            return None
+        if isinstance(self.lateral, Floors):
+            return self.lateral.gravity_shear(u)
+        return self.tilt[:, None] * self.lateral.drift(u)
+
     def by_level(self, values: Array) -> Array:
         """Sums over the degrees of freedom of each level, (L, …), of values (N, …)."""
         sums = np.zeros((self.levels, *values.shape[1:]))
@@ -124,7 +134,7 @@ def spatial_model(floors: Floors, mass: Array, tilt: Array | None = None) -> Mod
 
 
 def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
-    """The models of a building: a planar one for each direction that the stiffness set gives.
+    """The models of a building: a planar one for each direction that the stiffness set gives, or one of rigid floors.
 
     Parameters
     ----------
@@ -136,13 +146,15 @@ def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
     Returns
     -------
     tuple of Model
-        One translation a level each, x before y.
+        One translation a level each, x before y; or x, y and a rotation a level in one.
 
     Raises
     ------
     ModelError
         No such set, a stiffness of another size than the levels, or gravity loads that buckle the building.
     """
+    if storeys.plan is not None:
+        return (_spatial(storeys, storeys.plan, stiffness),)
     lateral = set_of(storeys, stiffness).lateral
     load = above(gravity_of(storeys)) if storeys.second_order else None
     n = len(storeys.level)
@@ -159,6 +171,31 @@ def models_of(storeys: Storeys, stiffness: str) -> tuple[Model, ...]:
         )
         for d in sorted(lateral)
     )
+
+
+def _spatial(storeys: Storeys, plan: Plan, stiffness: str) -> Model:
+    gravity = gravity_of(storeys) if storeys.second_order else None
+    tilt = None if gravity is None else above(gravity) / storeys.storey_height
+    return spatial_model(floors_of_plan(storeys, plan, stiffness, gravity), storeys.mass, tilt)
+
+
+def floors_of_plan(storeys: Storeys, plan: Plan, stiffness: str, gravity: Array | None = None) -> Floors:
+    """Rigid floors of a building.
+
+    Parameters
+    ----------
+    storeys : Storeys
+        The building.
+    plan : Plan
+        Its plan.
+    stiffness : str
+        Name of the stiffness set.
+    gravity : (L,) array or None
+        Gravity load of each level that acts on the drifts [kN].
+    """
+    lateral = set_of(storeys, stiffness).lateral
+    lines = [LineOfResistance(line.name, line.x, line.y, line.angle, lateral[line.name]) for line in plan.lines]
+    return floors_of(storeys.level, storeys.storey_height, plan.centre, plan.gyration, lines, gravity)
 
 
 def set_of(storeys: Storeys, stiffness: str) -> StiffnessSet:
@@ -197,7 +234,7 @@ def springs_of(storeys: Storeys, direction: str) -> BaseSprings:
 
 
 def critical_of(storeys: Storeys, stiffness: str, direction: str) -> Critical | None:
-    """Elastic critical load factor of the gravity loads in a direction, None where none are given.
+    """Elastic critical load factor of the gravity loads, None where none are given.
 
     Parameters
     ----------
@@ -206,10 +243,13 @@ def critical_of(storeys: Storeys, stiffness: str, direction: str) -> Critical | 
     stiffness : str
         Name of the stiffness set.
     direction : str
-        "x" or "y".
+        "x" or "y" of planar models; rigid floors buckle whichever way they do.
     """
     if storeys.gravity is None:
         return None
+    if storeys.plan is not None:
+        floors = floors_of_plan(storeys, storeys.plan, stiffness)
+        return replace(floors, gravity=storeys.gravity).critical() if storeys.gravity.any() else None
     lateral, springs = set_of(storeys, stiffness).lateral[direction], springs_of(storeys, direction)
     return critical_load(lateral, storeys.storey_height, springs, above(storeys.gravity))
 

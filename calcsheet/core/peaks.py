@@ -98,7 +98,8 @@ def peaks(
         ordinate = np.append(ordinate, residual_ordinate)
     force, drift = (model.along(part.direction, values) for values in (acting, model.lateral.drift(u)))
     shear = above(force)
-    held = None if model.tilt is None else shear + model.tilt[:, None] * drift
+    pushed = model.gravity_shear(u)
+    held = None if pushed is None else shear + model.along(part.direction, pushed)
     storey = np.diff(model.height, prepend=0.0)[:, None]
     return Peaks(
         ordinate=ordinate,

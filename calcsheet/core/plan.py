@@ -15,6 +15,7 @@ from scipy import linalg
 
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.chain import Chain
+from calcsheet.core.codes.edition import PlanFacts
 from calcsheet.core.errors import ModelError
 from calcsheet.core.floors import Floors
 from calcsheet.core.model import Model
@@ -97,6 +98,25 @@ def centres(floors: Floors) -> Centres | None:
         coupling=storey[:, 0, 1],
         torsion=torsion,
         radius=np.sqrt(torsion[:, None] / stiffness[:, ::-1]),
+    )
+
+
+def plan_facts(floors: Floors, direction: str) -> PlanFacts:
+    """What a code may ask about a plan in one direction.
+
+    Parameters
+    ----------
+    floors : Floors
+        L levels.
+    direction : {"x", "y"}
+        The direction: eccentricity is taken square to it, the torsional radius with the stiffness along it.
+    """
+    found = centres(floors)
+    across = 1 if direction == "x" else 0
+    return PlanFacts(
+        eccentricity=None if found is None else found.eccentricity[:, across],
+        radius=None if found is None else found.radius[:, across],
+        gyration=floors.gyration,
     )
 
 

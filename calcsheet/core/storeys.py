@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from calcsheet.core.arrays import Array
+from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.springs import BaseSprings
 
@@ -29,6 +29,48 @@ class LevelBelow:
     mass: float
 
 
+@dataclass(frozen=True)
+class PlanLine:
+    """Where a line of resistance runs in the plan.
+
+    Parameters
+    ----------
+    name : str
+        Its name.
+    x, y : float
+        A point on it [m].
+    angle : float
+        Its direction, from x towards y [rad].
+    """
+
+    name: str
+    x: float
+    y: float
+    angle: float
+
+
+@dataclass(frozen=True, eq=False)
+class Plan(Frozen):
+    """The plan of floors that are rigid in it.
+
+    Parameters
+    ----------
+    centre : (n, 2) array
+        Centre of mass of each level [m].
+    gyration : (n,) array
+        Radius of gyration of each level's mass about it [m].
+    lines : tuple of PlanLine
+        The lines of resistance.
+    extent : (n, 4) array or None
+        Each floor from and to in x, from and to in y [m]; None where it is not given.
+    """
+
+    centre: Array
+    gyration: Array
+    lines: tuple[PlanLine, ...]
+    extent: Array | None = None
+
+
 @dataclass(frozen=True, eq=False)
 class StiffnessSet:
     """A named set of lateral stiffnesses with the ground it stands on.
@@ -40,7 +82,7 @@ class StiffnessSet:
     ground : str
         Why these values: the engineer's words.
     lateral : mapping of str to Chain, StiffnessMatrix, FlexibilityMatrix or Stick
-        Lateral stiffness by direction, "x" and "y" (one or both).
+        Lateral stiffness by direction, "x" and "y" (one or both); of rigid floors by line of resistance.
     """
 
     name: str
@@ -82,6 +124,8 @@ class Storeys:
         Springs at the base by direction; a direction without any is fixed.
     second_order : bool
         Whether the gravity loads are in the stiffness.
+    plan : Plan or None
+        The plan of rigid floors; None where each direction is planar.
     """
 
     base: str
@@ -99,3 +143,4 @@ class Storeys:
     area: Array | None = None
     springs: Mapping[str, BaseSprings] = field(default_factory=dict)
     second_order: bool = False
+    plan: Plan | None = None

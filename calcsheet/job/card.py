@@ -115,8 +115,8 @@ class Directions(_Table):
 class ModelChoice(_Table):
     """Table [model]: how the lateral stiffness is given, and the file of each matrix."""
 
-    kind: Literal["storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix"] = Field(
-        description='"storey chain", "cantilever stick", "stiffness matrix" or "flexibility matrix"'
+    kind: Literal["storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix", "rigid floors"] = Field(
+        description='"storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix" or "rigid floors"'
     )
     x: FileName = None
     y: FileName = None
@@ -127,9 +127,14 @@ class ModelChoice(_Table):
         return {d: name for d in DIRECTIONS if (name := getattr(self, d)) is not None}
 
     @property
-    def lateral(self) -> type[Lateral]:
-        """The lateral model that the kind stands for."""
-        return KINDS[self.kind]
+    def lateral(self) -> type[Lateral] | None:
+        """The lateral model that the kind stands for in each direction; None where floors move in both at once."""
+        return KINDS.get(self.kind)
+
+    @property
+    def by_file(self) -> bool:
+        """Whether each direction's stiffness comes from a file of its own."""
+        return self.lateral is not None and bool(self.lateral.table)
 
 
 class Base(_Table):
@@ -355,7 +360,9 @@ def _contradictions(card: Card) -> Iterator[InputError]:
     analysed = card.directions.analysed
     if not analysed:
         yield InputError(FILE, "directions", "neither x nor y", "must have a sentence for x, y or both")
-    by_file = bool(card.model.lateral.table)
+    by_file = card.model.by_file
+    if card.model.lateral is None:
+        yield from _floors(card)
     for d in DIRECTIONS:
         if not by_file and d in card.model.files:
             found = f'got "{card.model.files[d]}"'
@@ -380,6 +387,20 @@ def _contradictions(card: Card) -> Iterator[InputError]:
     if checked.strip().casefold() == prepared.strip().casefold():
         found = f'got "{checked}", who prepared it'
         yield InputError(FILE, "people.checked.name", found, "must be another person")
+
+
+def _floors(card: Card) -> Iterator[InputError]:
+    """What floors that move in both directions at once ask for, and cannot have."""
+    kind = shown(card.model.kind)
+    for d in DIRECTIONS:
+        if d not in card.directions.analysed:
+            yield InputError(FILE, f"directions.{d}", "missing", f"must have a sentence with model.kind {kind}")
+        if any(value is not None for value in card.base.of(d)):
+            yield InputError(FILE, "base", f"springs in {d}", f"must be left out with model.kind {kind}")
+    for name, basis in card.stiffness.items():
+        if basis.factor_x is not None or basis.factor_y is not None:
+            allowed = f"must have one factor for all lines with model.kind {kind}"
+            yield InputError(FILE, dotted(["stiffness", name]), "has factor_x or factor_y", allowed)
 
 
 def _springs(base: Base, direction: str, analysed: tuple[str, ...]) -> Iterator[InputError]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from pathlib import Path
@@ -10,8 +11,9 @@ from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeyfile, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
-from calcsheet.job.card import Card, parse_card
+from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
 from calcsheet.job.errors import InputError
+from calcsheet.job.planfile import FLOORS, LINES, read_lines
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
@@ -32,7 +34,7 @@ class JobFiles:
     reading : StoreyReading
         The storey table, with its problems or the storeys.
     matrices : mapping of str to TextTable
-        By direction, the tables of given matrices.
+        The tables beside it: of given matrices by direction, of rigid floors by file.
     stamps : mapping of str to Stamp or None
         By file name, the state of each file on disk; None for one that a basis names and that isn't there.
     basis : Basis or None
@@ -81,10 +83,7 @@ class JobFolder:
         card = parse_card(card_file.text)
         stamps: dict[str, Stamp | None] = {job_card.FILE: card_file.stamp}
         storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
-        matrices = {
-            d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
-            for d, name in (card.model.files.items() if card.model.lateral.table else ())
-        }
+        matrices = self._beside(card, stamps)
         reading = read_storeys(storeys, card, matrices)
         basis, problem = self._basis(card, stamps)
         return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem)
@@ -145,6 +144,26 @@ class JobFolder:
             return read_basis(card, tables), ""
         except InputError as error:
             return None, str(error)
+
+    def _beside(self, card: Card, stamps: dict[str, Stamp | None]) -> dict[str, TextTable]:
+        """The tables that the storeys are read with: matrices by direction, or those of rigid floors by file."""
+        if card.model.by_file:
+            return {
+                d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
+                for d, name in card.model.files.items()
+            }
+        if card.model.lateral is not None:
+            return {}
+        why = f"must be there, since model.kind is {shown(card.model.kind)} ({job_card.FILE})"
+        tables = {name: self._table(name, why, stamps) for name in (LINES, FLOORS)}
+        for row in read_lines(tables[LINES])[0]:
+            if row.file:
+                if not re.fullmatch(FILE_NAME, row.file):
+                    allowed = 'must be the name of a file in the job folder, such as "core.csv"'
+                    raise InputError(LINES, f'line "{row.line.name}"', f'file "{row.file}"', allowed)
+                why = f"must be there, since {LINES} names it for line {shown(row.line.name)}"
+                tables[row.file] = self._table(row.file, why, stamps)
+        return tables
 
     def _write(
         self, name: str, content: bytes, stamps: Mapping[str, Stamp | None], overwrite: bool

@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Container, Iterator
+from collections.abc import Container, Iterator, Mapping
 from dataclasses import dataclass, replace
 from itertools import product
 
 from calcsheet.core.given import Given
-from calcsheet.core.lateral import LATERALS
+from calcsheet.core.lateral import LATERALS, Lateral
 from calcsheet.job.card import DIRECTIONS, Card
 from calcsheet.job.errors import InputError
 from calcsheet.job.table import TextTable
@@ -27,6 +27,9 @@ QUANTITIES = {
 }
 """The headings that stand for one quantity, and that quantity in the unit table."""
 
+Ways = Mapping[str, type[Lateral]]
+"""What resists along each direction, or along each line of resistance."""
+
 
 @dataclass(frozen=True)
 class Column:
@@ -43,7 +46,7 @@ class Column:
     unit : Unit or None
         Its unit; None also where the heading's unit is refused.
     direction : str or None
-        "x" or "y".
+        "x" or "y", or a line of resistance.
     set_name : str or None
         The stiffness set whose own values these are.
     used : bool
@@ -87,15 +90,15 @@ def heading_unit(file: str, heading: str, unit: str | None, quantity: str) -> Un
         raise InputError(file, where, error.found, error.allowed) from None
 
 
-def read_headings(table: TextTable, card: Card) -> Headings:
+def read_headings(table: TextTable, card: Card, ways: Ways) -> Headings:
     """Return the columns of a storey table, every problem with them, and notices of what isn't used."""
     columns: list[Column] = []
-    needed = needed_stiffness(card)
+    needed = needed_stiffness(card, ways)
     problems: list[tuple[str | None, InputError]] = []
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = _known(name, heading, card, needed)
+        column = _known(name, heading, card, needed, ways)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -117,18 +120,18 @@ def read_headings(table: TextTable, card: Card) -> Headings:
         if not column.used and twin is None:
             notices.append(f'{table.file}, column "{heading}" isn\'t used by this model, and is kept')
         columns.append(column)
-    problems += [(None, error) for error in _missing(table.file, {c.key for c in columns}, card)]
+    problems += [(None, error) for error in _missing(table.file, {c.key for c in columns}, card, ways)]
     return Headings(tuple(columns), tuple(problems), tuple(notices))
 
 
-def needed_stiffness(card: Card) -> dict[str, tuple[Given, str, str | None]]:
-    """Return the stiffness columns of the model: key -> what it gives, direction, set (None: what factors apply to)."""
+def needed_stiffness(card: Card, ways: Ways) -> dict[str, tuple[Given, str, str | None]]:
+    """Return the stiffness columns of the model: key -> what it gives, way, set (None: what factors apply to)."""
     sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
     return {
         stiffness_key(given, d, name): (given, d, name)
         for name in sets
-        for d in card.directions.analysed
-        for given in card.model.lateral.columns
+        for d, lateral in ways.items()
+        for given in lateral.columns
     }
 
 
@@ -137,7 +140,7 @@ def stiffness_key(given: Given, direction: str, set_name: str | None) -> str:
     return f"{given.heading} {direction}" + (f" {set_name}" if set_name else "")
 
 
-def _known(name: str, heading: str, card: Card, needed: Container[str]) -> Column | None:
+def _known(name: str, heading: str, card: Card, needed: Container[str], ways: Ways) -> Column | None:
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)
@@ -145,14 +148,14 @@ def _known(name: str, heading: str, card: Card, needed: Container[str]) -> Colum
         return Column(wanted, heading, QUANTITIES[wanted], used=True)
     sets = (None, *(name for name, basis in card.stiffness.items() if basis.own))
     givens = [given for lateral in LATERALS for given in lateral.columns]
-    for given, d, set_name in product(givens, DIRECTIONS, sets):
+    for given, d, set_name in product(givens, (*ways, *DIRECTIONS), sets):
         key = stiffness_key(given, d, set_name)
         if wanted == " ".join(key.split()).casefold():
             return Column(key, heading, given.heading, None, d, set_name, key in needed)
     return None
 
 
-def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
+def _missing(file: str, keys: set[str], card: Card, ways: Ways) -> Iterator[InputError]:
     def written(key: str, quantity: str) -> str:
         return f'"{key} [{display(quantity, card.units.system).symbol}]"'
 
@@ -164,8 +167,8 @@ def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")
         elif keys.issuperset(pair):
             yield InputError(file, "", f"columns {' and '.join(both)}", "must have exactly one of them")
-    for key, (given, d, name) in needed_stiffness(card).items():
+    for key, (given, d, name) in needed_stiffness(card, ways).items():
         if key not in keys and not given.optional:
             own = f" and stiffness.{name} has own values" if name else ""
-            why = f"must have it, since {d} is analysed{own} (job.toml)"
+            why = f"must have it, since {d} is {'analysed' if d in DIRECTIONS else 'a line of resistance'}{own} (job.toml)"
             yield InputError(file, "", f"no column {written(key, given.heading)}", why)

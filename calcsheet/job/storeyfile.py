@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import math
 from collections import Counter
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
 
+from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.springs import BaseSprings
@@ -25,12 +26,14 @@ from calcsheet.job.headings import (
     LEVEL,
     OPTIONAL,
     Column,
+    Ways,
     needed_stiffness,
     read_headings,
     stiffness_key,
 )
-from calcsheet.job.matrixfile import read_matrix
+from calcsheet.job.matrixfile import matrix_kind, read_matrix
 from calcsheet.job.numbers import decimal_mark
+from calcsheet.job.planfile import FLOORS, LINES, LineRow, laterals_of, read_lines, read_plan
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
 
@@ -99,22 +102,29 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
     card : Card
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
-        By direction, the tables of the matrices that the card names.
+        The tables beside it: of the matrices that the card names, by direction; of rigid floors by file.
 
     Returns
     -------
     StoreyReading
         With every problem; nothing is raised for one.
     """
-    headings = read_headings(table, card)
-    reader = _Reader(table, card, headings.columns)
+    beside = matrices or {}
+    lines, wrong = read_lines(beside[LINES]) if card.model.lateral is None else ((), [])
+    ways: dict[str, type[Lateral]] = dict.fromkeys(card.directions.analysed, card.model.lateral or Chain)
+    if card.model.lateral is None:
+        found, missing = laterals_of(table, lines)
+        ways, wrong = dict(found), [*wrong, *missing]
+    headings = read_headings(table, card, ways)
+    reader = _Reader(table, card, headings.columns, ways, lines)
+    reader.problems += [CellProblem(None, None, str(error)) for error in wrong]
     reader.problems += [CellProblem(None, key, str(error)) for key, error in headings.problems]
     reader.check_rows()
     reader.read_columns()
     storeys = None
     if not reader.problems:
         with np.errstate(over="ignore"):  # what overflows is refused as infinite
-            storeys = reader.build(matrices or {})
+            storeys = reader.build(beside)
     return StoreyReading(
         table,
         headings.columns,
@@ -128,10 +138,14 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
 class _Reader:
     """One pass over a table: gathers problems on the way to the storeys."""
 
-    def __init__(self, table: TextTable, card: Card, columns: tuple[Column, ...]) -> None:
+    def __init__(
+        self, table: TextTable, card: Card, columns: tuple[Column, ...], ways: Ways, lines: Sequence[LineRow]
+    ) -> None:
         self.table = table
         self.card = card
-        optional = [key for key, (given, _, _) in needed_stiffness(card).items() if given.optional]
+        self.ways = ways
+        self.lines = lines
+        optional = [key for key, (given, _, _) in needed_stiffness(card, ways).items() if given.optional]
         self.optional = (*OPTIONAL, *optional)
         self.columns = {column.key: (i, column) for i, column in enumerate(columns) if column.used}
         self.problems: list[CellProblem] = []
@@ -154,6 +168,10 @@ class _Reader:
     def number(self, row: int) -> str:
         """A row's number as a spreadsheet shows it."""
         return str(self.table.row_number(row))
+
+    def may_end(self, row: int) -> bool:
+        """Whether a row needs no stiffness: below the effective base, or where a line of resistance may end."""
+        return not self.is_above(row) or bool(self.lines)
 
     def is_above(self, row: int) -> bool:
         """Whether a row's level is above the effective base, so in the model."""
@@ -214,7 +232,7 @@ class _Reader:
                         column.unit,
                         mark,
                         self.allowed(row, key),
-                        may_be_blank=key in self.optional or (column.direction is not None and not self.is_above(row)),
+                        may_be_blank=key in self.optional or (column.direction is not None and self.may_end(row)),
                     )
                 except InputError as error:
                     self.refuse(row, key, error)
@@ -291,9 +309,9 @@ class _Reader:
         """A column's numbers from the lowest row up, NaN where blank."""
         return np.array([self.values[key][row] for row in self.rows[::-1]])
 
-    def if_given(self, key: str, below: int) -> np.ndarray | None:
-        """The numbers of a column that may be left out, for the levels of the model."""
-        numbers = self.from_base(key)[below:] if key in self.values else None
+    def if_given(self, key: str, below: int, ends: int | None = None) -> np.ndarray | None:
+        """The numbers of a column that may be left out, for the levels of the model, or those up to where it ends."""
+        numbers = self.from_base(key)[below:][:ends] if key in self.values else None
         return None if numbers is None or np.isnan(numbers).any() else numbers
 
     def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
@@ -308,9 +326,12 @@ class _Reader:
         weight = "weight" in self.values
         mass = self.from_base("weight") / STANDARD_GRAVITY if weight else self.from_base("mass")
         n = sum(not self.is_above(row) for row in self.rows)
-        by_file = bool(self.card.model.lateral.table)
-        stiffness = self.by_file(levels[n:], matrices) if by_file else self.by_columns(n, height[n:])
-        if stiffness is None:
+        plan = None
+        if self.lines:
+            plan, problems = read_plan(matrices[FLOORS], self.lines, levels[n:])
+            self.problems += [CellProblem(None, None, str(error)) for error in problems]
+        stiffness = self.sets(n, levels[n:], height[n:], matrices)
+        if self.problems:
             return None
         return Storeys(
             base=levels[n - 1] if n else "base",
@@ -328,6 +349,7 @@ class _Reader:
             area=self.if_given(AREA, n),
             springs=self.springs(),
             second_order=self.second_order,
+            plan=plan,
         )
 
     def springs(self) -> dict[str, BaseSprings]:
@@ -341,44 +363,66 @@ class _Reader:
                 found[d] = BaseSprings(*given)
         return found
 
-    def by_columns(self, below: int, height: np.ndarray) -> tuple[StiffnessSet, ...] | None:
-        kind = self.card.model.lateral
+    def sets(
+        self, below: int, levels: list[str], height: np.ndarray, tables: Mapping[str, TextTable]
+    ) -> tuple[StiffnessSet, ...]:
+        """The stiffness sets, each with what resists along each direction or line."""
+        files = {row.line.name: row.file for row in self.lines if row.file}
+        if self.card.model.by_file:
+            files = {d: d for d in self.ways}
+        given = {way: self.by_file(levels, tables[file]) for way, file in files.items()}
         sets = []
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
-            for d in self.card.directions.analysed:
-                keys = {g.field: stiffness_key(g, d, name if basis.own else None) for g in kind.columns}
+            for way in [row.line.name for row in self.lines] or self.ways:
+                keys = {} if way in files else self.keys(way, name)
                 try:
-                    made = kind.of({field: self.if_given(key, below) for field, key in keys.items()}, height)
-                    lateral[d] = made.times(basis.factor_of(d) or 1.0)
+                    made = self.by_columns(way, keys, below, height) if keys else given[way]
+                    if made is not None:
+                        lateral[way] = made.times(basis.factor_of(way) or 1.0)
                 except ModelError as error:
-                    key = next(iter(keys.values()))
-                    self.problems.append(CellProblem(None, key, f"{self.table.file}, {error}"))
+                    file = tables[files[way]].file if way in files else self.table.file
+                    self.problems.append(CellProblem(None, next(iter(keys.values()), None), f"{file}, {error}"))
             sets.append(StiffnessSet(name, basis.ground, lateral))
-        return None if self.problems else tuple(sets)
+        return tuple(sets)
 
-    def by_file(self, levels: list[str], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
-        kind = self.card.model.lateral
-        given = {}
-        for d in self.card.directions.analysed:
-            if kind.table == "flexibility" and holds_deflections(tables[d]):
-                matrix, problems = read_deflections(tables[d], levels)
-            else:
-                matrix, problems = read_matrix(tables[d], levels, kind.table)
-            self.problems += [CellProblem(None, None, str(error)) for error in problems]
-            given[d] = matrix
-        if self.problems:
+    def keys(self, way: str, set_name: str) -> dict[str, str]:
+        """The columns of one direction or line in a set, by field of its lateral model."""
+        own = set_name if self.card.stiffness[set_name].own else None
+        return {given.field: stiffness_key(given, way, own) for given in self.ways[way].columns}
+
+    def by_columns(self, way: str, keys: Mapping[str, str], below: int, height: np.ndarray) -> Lateral:
+        """What resists along one direction or line, from its columns."""
+        ends = self.end(next(iter(keys.values())), below) if self.lines else height.size
+        values = {field: self.if_given(key, below, ends) for field, key in keys.items()}
+        return self.ways[way].of(values, height[:ends])
+
+    def end(self, key: str, below: int) -> int:
+        """Number of storeys that a line has: its column is blank above the level where it ends."""
+        there = ~np.isnan(self.from_base(key)[below:])
+        ends = int(there.sum())
+        if not there[:ends].all() or ends == 0:
+            allowed = "must be given from the lowest storey up, and be blank only above the level where the line ends"
+            raise ModelError(f"column {key}", "blank in a storey below others" if ends else "blank", allowed)
+        return ends
+
+    def by_file(self, levels: list[str], table: TextTable) -> Lateral | None:
+        """What resists along one direction or line, from its matrix."""
+        kind = self.card.model.lateral or matrix_kind(table)
+        rows = sum(any(cell.strip() for cell in cells) for cells in table.rows)
+        levels = levels[:rows] if self.lines else levels
+        if kind.table == "flexibility" and holds_deflections(table):
+            matrix, problems = read_deflections(table, levels)
+        else:
+            matrix, problems = read_matrix(table, levels, kind.table)
+        self.problems += [CellProblem(None, None, str(error)) for error in problems]
+        if problems:
             return None
-        sets = []
-        for name, basis in self.card.stiffness.items():
-            lateral: dict[str, Lateral] = {}
-            for d, matrix in given.items():
-                try:
-                    lateral[d] = kind.of({"matrix": matrix}, np.empty(0)).times(basis.factor_of(d) or 1.0)
-                except ModelError as error:
-                    self.problems.append(CellProblem(None, None, f"{tables[d].file}, {error}"))
-            sets.append(StiffnessSet(name, basis.ground, lateral))
-        return None if self.problems else tuple(sets)
+        try:
+            return kind.of({"matrix": matrix}, np.empty(0))
+        except ModelError as error:
+            self.problems.append(CellProblem(None, None, f"{table.file}, {error}"))
+            return None
 
 
 def _listed(words: list[str]) -> str:

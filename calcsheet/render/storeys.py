@@ -64,7 +64,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             kind = KINDS[lateral["kind"]]
             columns += [
                 values(
-                    f"{c.heading} {title}", lateral[c.field], c.heading, system, f"{at}/{c.field}", order=roof_first,
+                    f"{c.heading} {title}", _filled(lateral[c.field], given["level"]), c.heading, system, f"{at}/{c.field}", order=roof_first,
                     as_given=True,
                 )
                 for c in kind.columns
@@ -95,7 +95,38 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     if given.get("second_order"):
         rows.append(("second-order effects", "in the stiffness, by the gravity loads"))
     below = _below(given["below"], system, key) if given["below"] else ""
+    if given.get("plan") is not None:
+        matrices = [*_plan(given["plan"], given["level"], system, f"/{key}/inputs/plan"), *matrices]
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
+
+
+def _plan(plan: Mapping[str, Any], levels: list[str], system: str, at: str) -> list[str]:
+    """The plan of rigid floors: its levels and its lines of resistance."""
+    order = list(range(len(levels)))[::-1]
+
+    def column(name: str, field: str, i: int) -> Column:
+        numbers = [row[i] for row in plan[field]]
+        return values(name, numbers, "length", system, f"{at}/{field}/{{}}/{i}", order=order, as_given=True)
+
+    floors = [words("level", [levels[i] for i in order])]
+    floors += [column(f"centre of mass {d}", "centre", i) for i, d in enumerate("xy")]
+    at_level = f"{at}/gyration"
+    floors.append(
+        values("radius of gyration", plan["gyration"], "length", system, at_level, order=order, as_given=True)
+    )
+    if plan["extent"] is not None:
+        sides = ("plan x from", "plan x to", "plan y from", "plan y to")
+        floors += [column(name, "extent", i) for i, name in enumerate(sides)]
+    lines = plan["lines"]
+    resisting = [words("line", [line["name"] for line in lines])]
+    for name, field, quantity in (("x", "x", "length"), ("y", "y", "length"), ("direction", "angle", "angle")):
+        numbers = [line[field] for line in lines]
+        given = quantity == "length"
+        resisting.append(values(name, numbers, quantity, system, f"{at}/lines/{{}}/{field}", as_given=given))
+    return [
+        table(floors, kind="values", caption="Floors in plan"),
+        table(resisting, kind="values", caption="Lines of resistance, directions from x towards y"),
+    ]
 
 
 def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]) -> list[Column]:
@@ -112,6 +143,11 @@ def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key:
 def _serves(name: str, given: Mapping[str, Any]) -> str:
     served = [purpose for purpose in ("forces", "drifts") if given[purpose] == name]
     return f"serves {' and '.join(served)}; " if served else ""
+
+
+def _filled(numbers: list[float], levels: list[str]) -> list[float | None]:
+    """A cell a level: a line of resistance may end below the top."""
+    return [*numbers, *[None] * (len(levels) - len(numbers))]
 
 
 def _springs(direction: str, springs: Mapping[str, Any], system: str, at: str) -> tuple[str, str]:
@@ -136,7 +172,7 @@ def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
 
 
 def _matrix(title: str, quantity: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
-    order = list(range(len(levels)))[::-1]
+    order = list(range(len(lateral["matrix"])))[::-1]
     columns = [words("level", [levels[i] for i in order])]
     for j in order:
         entries = [row[j] for row in lateral["matrix"]]

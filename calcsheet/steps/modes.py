@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
+
+import numpy as np
 
 from calcsheet.core.arrays import agrees
 from calcsheet.core.bounds import Bounds, bounds
@@ -58,6 +61,9 @@ class ModelModes:
         Elastic critical load factor of the gravity loads; None where none are given.
     fixed : FixedBase or None
         The same model on a fixed base; None where it stands on one.
+    rows : mapping of str to tuple of int
+        By direction, the rows of the shapes that are the levels' translations, lowest first, where one model moves in
+        several; empty for a planar model, whose rows are the levels.
     """
 
     name: str
@@ -66,6 +72,7 @@ class ModelModes:
     bounds: Bounds
     critical: Critical | None = None
     fixed: FixedBase | None = None
+    rows: Mapping[str, tuple[int, ...]] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -112,7 +119,7 @@ def run(options: ModesOptions, storeys: Done) -> Outcome:
         found = evidence_of_modes(model, modes, bound)
         on_rock = _fixed(fixed[i], modes) if model.direction[0] in building.springs else None
         load = critical_of(building, stiffness, model.direction[0])
-        results.append(ModelModes(name, model.size, modes, bound, load, on_rock))
+        results.append(ModelModes(name, model.size, modes, bound, load, on_rock, _rows(model)))
         lines += _lines(modes, bound, name, f"result/models/{i}")
         if on_rock is not None:
             lines.append(_lengthened(modes, on_rock, name, f"result/models/{i}"))
@@ -121,6 +128,13 @@ def run(options: ModesOptions, storeys: Done) -> Outcome:
             cautions += _near_buckling(load, building.level, name, f"result/models/{i}/critical")
         evidence += [_named(e, name) for e in found]
     return Outcome(ModesResult(stiffness, tuple(results)), tuple(lines), tuple(cautions), tuple(evidence))
+
+
+def _rows(model: Model) -> dict[str, tuple[int, ...]]:
+    if len(model.direction) == 1:
+        return {}
+    found = zip(model.direction, model.influence, strict=True)
+    return {direction: tuple(np.flatnonzero(iota).tolist()) for direction, iota in found}
 
 
 def _fixed(model: Model, modes: Modes) -> FixedBase:
@@ -146,7 +160,7 @@ def _near_buckling(load: Critical, levels: tuple[str, ...], name: str, at: str) 
         return []
     return [
         Caution(
-            f"critical-load-{name}",
+            f"critical-load-{_key(name)}",
             f"In {name} the gravity loads times {{0}} buckle the model elastically, most in the storey below level "
             f'"{plain(levels[load.storey])}", while second-order effects are not in the stiffness; from {NEAR_BUCKLING:g} on '
             "they may be left out (EN 1993-1-1:2005, 5.2.1(3), from memory).",
@@ -180,7 +194,7 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
     for group in modes.repeated:
         cautions.append(
             Caution(
-                f"repeated-modes-{name}-{group[0]}",
+                f"repeated-modes-{_key(name)}-{group[0]}",
                 f"Modes {_listed(group)} in {name} share one frequency: their shapes are one choice of many, and only "
                 "their sum has a meaning.",
             )
@@ -191,7 +205,7 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
             numbers = tuple(Number(float(modes.period[g - 1]), "period", f"{at}/period/{g - 1}") for g in ends)
             cautions.append(
                 Caution(
-                    f"close-modes-{name}-{group[0]}",
+                    f"close-modes-{_key(name)}-{group[0]}",
                     f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one "
                     "before): peak values are to be combined with their correlation, not by the root of the sum of squares.",
                     numbers,
@@ -200,7 +214,7 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
     for i, local in enumerate(modes.local):
         cautions.append(
             Caution(
-                f"local-mode-{name}-{local.mode}",
+                f"local-mode-{_key(name)}-{local.mode}",
                 f'Mode {local.mode} in {name} is local: {{0}} of its kinetic energy is in level "{plain(local.level)}", a light '
                 "one. Base shear says little of what that level itself meets.",
                 (Number(local.energy, "share", f"{at}/local/{i}/energy"),),
@@ -210,7 +224,7 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
     if not usual / FAR <= first <= usual * FAR:
         cautions.append(
             Caution(
-                f"unusual-period-{name}",
+                f"unusual-period-{_key(name)}",
                 f"The first period in {name}, {{0}}, is far from {RULE_OF_THUMB:g} s a storey (common practice for frames): "
                 "check masses, stiffnesses and their units.",
                 (Number(first, "period", f"{at}/period/0"),),
@@ -224,9 +238,14 @@ def _listed(group: tuple[int, ...]) -> str:
     return f"{group[0]} and {group[1]}" if len(group) == 2 else f"{group[0]} to {group[-1]}"
 
 
+def _key(name: str) -> str:
+    """A model's name in keys: "x and y" as "x-y"."""
+    return name.replace(" and ", "-")
+
+
 def _named(evidence: Evidence, name: str) -> Evidence:
     return Evidence(
-        f"{evidence.key}-{name}",
+        f"{evidence.key}-{_key(name)}",
         f"{evidence.what}, {name}",
         evidence.relation,
         evidence.value,

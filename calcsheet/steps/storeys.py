@@ -7,6 +7,7 @@ import re
 
 from calcsheet.core.storeys import StiffnessSet, Storeys
 from calcsheet.core.totals import Totals, totals
+from calcsheet.steps.planned import cautions_of_plan
 from calcsheet.steps.step import Caution, Number, Outcome, Step, plain
 
 JUMP = 20.0
@@ -25,7 +26,7 @@ def run(storeys: Storeys) -> Outcome:
     cautions = [*_order(storeys.level), *_heights(storeys), *cautions]
     for i, given in enumerate(storeys.stiffness):
         cautions += _of_set(given, storeys.level, f"inputs/stiffness/{i}")
-    cautions += [*_left_out(storeys), *_springs(storeys)]
+    cautions += [*_left_out(storeys), *_springs(storeys), *cautions_of_plan(storeys)]
     return Outcome(totals(storeys), cautions=tuple(cautions))
 
 

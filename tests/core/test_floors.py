@@ -7,6 +7,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from calcsheet.core import floors as floors_module
 from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
@@ -262,10 +263,11 @@ def test_no_lines_at_all():
         plan(lines=())
 
 
-@pytest.mark.parametrize("kind", [Floors, SparseFloors])
-def test_a_building_that_buckles_is_named(kind):
+@pytest.mark.parametrize("threshold", [DENSE_UP_TO, 3], ids=["dense", "sparse"])
+def test_a_building_that_buckles_is_named(monkeypatch, threshold):
+    monkeypatch.setattr(floors_module, "DENSE_UP_TO", threshold)
     with pytest.raises(ModelError) as error:
-        kind(LEVELS, HEIGHT, CENTRE, GYRATION, lines(), 200.0 * GRAVITY)
+        plan(gravity=200.0 * GRAVITY)
     assert 'storey below level "1": gravity load 2.64e+06 kN with an elastic critical load factor of' in str(
         error.value
     )
@@ -321,3 +323,15 @@ def test_many_floors_are_sparse_and_few_are_dense():
     names = tuple(map(str, range(n + 1)))
     assert type(floors_of(names, *given, tall)) is SparseFloors
     assert type(plan()) is Floors
+
+
+def test_frames_hold_the_forces_and_what_gravity_pushes_with():
+    # equilibrium of the lines' own shears with the forces and P/h times the drifts (statics)
+    floors, force = plan(gravity=GRAVITY), np.array([120.0, 40.0, 0.0, 250.0, -30.0, 100.0, 300.0, 10.0, -50.0])
+    u = floors.displacement(force[:, None])
+    pushed = floors.gravity_shear(u).reshape(3, 3)
+    shear = np.cumsum(force.reshape(3, 3)[::-1], axis=0)[::-1]
+    for axis, way in enumerate((np.cos, np.sin)):
+        held = sum(floors.line_shear(u, line)[:, 0] * way(line.angle) for line in floors.lines)
+        np.testing.assert_allclose(held, shear[:, axis] + pushed[:, axis], rtol=1e-8)
+    assert np.abs(pushed[:, :2]).max() > 0.1

@@ -107,7 +107,8 @@ FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
         (
             '"storey chain"',
             '"stick"',
-            'model.kind: got "stick"; must be "storey chain", "cantilever stick", "stiffness matrix" or "flexibility matrix"',
+            'model.kind: got "stick"; must be "storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix" or '
+            '"rigid floors"',
         ),
         (
             '"storey chain"',
@@ -226,7 +227,9 @@ def test_matrices_have_no_sets_of_own_values(card):
 
 
 def test_the_kinds_of_the_card_are_those_of_the_core():
-    assert set(KINDS) == set(get_args(ModelChoice.model_fields["kind"].annotation))
+    kinds = {*get_args(ModelChoice.model_fields["kind"].annotation)}
+    assert {kind for kind in kinds if ModelChoice(kind=kind).lateral} == set(KINDS)
+    assert kinds - {*KINDS} == {"rigid floors"}
 
 
 def test_springs_at_the_base(card):

@@ -372,17 +372,25 @@ class EN1998(Edition):
             Screen("strength along the height", "not assessed", "missing: storey strengths", reduced, "4.2.3.3(4)"),
             Screen("lateral systems to the top", "not assessed", "missing: their layout", reduced, "4.2.3.3(2)"),
             Screen("setbacks", "not assessed", "missing: plan dimensions of the levels", reduced, "4.2.3.3(5)"),
-            Screen(
-                "regularity in plan",
-                "not assessed",
-                "missing: eccentricities and torsional radii, as the model is planar",
-                "a spatial model (4.2.3.1(3))",
-                "4.2.3.2",
-            ),
+            _in_plan(facts),
         )
 
     def separation(self, displacement: float) -> tuple[float | None, str]:
         return displacement, "4.4.2.7(2)"
+
+
+def _in_plan(facts: Facts) -> Screen:
+    """Eccentricity within 0.30 of the torsional radius, and that at or above the radius of gyration."""
+    name, consequence = "regularity in plan", "a spatial model (4.2.3.1(3))"
+    plan = facts.plan
+    if plan is None or plan.eccentricity is None or plan.radius is None:
+        why = "as the model is planar" if plan is None else "as lines that bend have no centres of stiffness"
+        text = f"missing: eccentricities and torsional radii, {why}"
+        return Screen(name, "not assessed", text, consequence, "4.2.3.2")
+    share, stiff = float((np.abs(plan.eccentricity) / plan.radius).max()), float((plan.radius / plan.gyration).min())
+    exceeds = share > 0.3 or stiff < 1.0
+    text = f"e_0/r up to {share:.2f}, against 0.30; r/l_s from {stiff:.2f}, against 1"
+    return Screen(name, "exceeds" if exceeds else "passes", text, consequence if exceeds else "", "4.2.3.2(6)")
 
 
 def _along(what: str, ratio: str, found: Array, consequence: str) -> Screen:
