@@ -82,6 +82,48 @@ def peaks(
     the residual's force is M(ι - Σ Γ_n ψ_n) Sa_r, applied statically.
     A. K. Chopra, Dynamics of Structures, sections 13.2 and 13.7 (from memory).
     """
+    u, acting, ordinates = responses(model, modes, part, ordinate, residual_ordinate)
+    force, drift = (model.along(part.direction, values) for values in (acting, model.lateral.drift(u)))
+    shear = above(force)
+    pushed = model.gravity_shear(u)
+    held = None if pushed is None else shear + model.along(part.direction, pushed)
+    storey = np.diff(model.height, prepend=0.0)[:, None]
+    return Peaks(
+        ordinate=ordinates,
+        force=force,
+        shear=shear,
+        moment=above((shear if held is None else held) * storey),
+        displacement=model.along(part.direction, u),
+        drift=drift,
+        residual=residual_ordinate is not None,
+        held=held,
+    )
+
+
+def responses(
+    model: Model, modes: Modes, part: Participation, ordinate: Array, residual_ordinate: float | None = None
+) -> tuple[Array, Array, Array]:
+    """Displacements and forces of every degree of freedom, a column a mode, and one for the residual.
+
+    Parameters
+    ----------
+    model, modes, part, ordinate, residual_ordinate
+        As `peaks` takes them.
+
+    Returns
+    -------
+    u : (N, m) array
+        Displacements [m, rad].
+    acting : (N, m) array
+        Forces [kN, kN·m].
+    ordinates : (m,) array
+        Pseudo-acceleration of each column [m/s²].
+
+    Raises
+    ------
+    ModelError
+        As `peaks`.
+    """
     if ordinate.shape != modes.omega.shape:
         raise ModelError("ordinates", f"{ordinate.size} given", f"must be {modes.omega.size}, one a mode")
     for value in (*ordinate, 0.0 if residual_ordinate is None else residual_ordinate):
@@ -96,18 +138,4 @@ def peaks(
         acting = np.hstack([acting, left])
         u = np.hstack([u, model.lateral.displacement(left)])
         ordinate = np.append(ordinate, residual_ordinate)
-    force, drift = (model.along(part.direction, values) for values in (acting, model.lateral.drift(u)))
-    shear = above(force)
-    pushed = model.gravity_shear(u)
-    held = None if pushed is None else shear + model.along(part.direction, pushed)
-    storey = np.diff(model.height, prepend=0.0)[:, None]
-    return Peaks(
-        ordinate=ordinate,
-        force=force,
-        shear=shear,
-        moment=above((shear if held is None else held) * storey),
-        displacement=model.along(part.direction, u),
-        drift=drift,
-        residual=residual_ordinate is not None,
-        held=held,
-    )
+    return u, acting, ordinate

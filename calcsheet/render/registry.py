@@ -11,10 +11,14 @@ from calcsheet.render.drift import DRIFT
 from calcsheet.render.modes import MODES
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
+from calcsheet.render.plan import PLAN
 from calcsheet.render.plot import PLOT
 from calcsheet.render.storeys import STOREYS
+from calcsheet.render.torsion import TORSION
 from calcsheet.render.view import View
 
-VIEWS: Mapping[str, View] = {
-    view.name: view for view in (CARD, STOREYS, MODES, PLOT, PARTICIPATION, DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON)
-}
+SHOWN = (
+    *(CARD, STOREYS, MODES, PLOT, PLAN, PARTICIPATION),
+    *(DEMAND, PEAKS, DRIFT, ACTIONS, COMPARISON, TORSION),
+)
+VIEWS: Mapping[str, View] = {view.name: view for view in SHOWN}

@@ -62,14 +62,11 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             if len(given["stiffness"]) > 1:
                 title += f", {named['name']}"
             kind = KINDS[lateral["kind"]]
-            columns += [
-                values(
-                    f"{c.heading} {title}", _filled(lateral[c.field], given["level"]), c.heading, system, f"{at}/{c.field}", order=roof_first,
-                    as_given=True,
-                )
-                for c in kind.columns
-                if lateral[c.field] is not None
-            ]  # fmt: skip
+            for c in kind.columns:
+                numbers, name = lateral[c.field], f"{c.heading} {title}"
+                if numbers is not None:
+                    numbers, at_storey = _filled(numbers, given["level"]), f"{at}/{c.field}"
+                    columns.append(values(name, numbers, c.heading, system, at_storey, order=roof_first, as_given=True))
             if kind.table:
                 caption = f"{lateral['kind']} {direction}, {named['name']}"
                 matrices.append(_matrix(caption, kind.table, given["level"], lateral, system, at))

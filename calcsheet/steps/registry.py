@@ -12,9 +12,12 @@ from calcsheet.steps.drift import DRIFT
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
+from calcsheet.steps.plan import PLAN
 from calcsheet.steps.step import Step
 from calcsheet.steps.storeys import STOREYS
+from calcsheet.steps.torsion import TORSION
 
 STEPS: Mapping[str, Step] = {
-    step.kind: step for step in (CARD, STOREYS, MODES, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS)
+    step.kind: step
+    for step in (CARD, STOREYS, MODES, PLAN, PARTICIPATION, BASIS, DEMAND, PEAKS, DRIFT, ACTIONS, TORSION)
 }

@@ -5,7 +5,9 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
+from calcsheet.steps.plan import PlanOptions
 from calcsheet.steps.replay import replay
+from calcsheet.steps.torsion import TorsionOptions
 
 KIND = ('kind = "storey chain"', 'kind = "rigid floors"')
 SETS = (("factor_x = 0.6\nfactor_y = 0.5", "factor = 0.6"),)
@@ -146,3 +148,99 @@ def test_few_modes_leave_a_residual_that_is_added(floors_job):
         assert item["residual"] is True
         assert len(item["ordinate"]) == 5
     assert replay(job.payloads()) == []
+
+
+@pytest.fixture
+def with_plan(floors_job):
+    """The same with plan and edges attached."""
+
+    def build(basis, *changes, accidental=0.05, **how):
+        job = floors_job(basis, *changes, **how)
+        job.attach("plan", PlanOptions())
+        job.attach("torsion", TorsionOptions(accidental))
+        return job
+
+    return build
+
+
+ECCENTRIC = {"b": (20000, 18000, 15000), "x": 8.0}
+
+
+@pytest.mark.parametrize("basis", ["EN", "7-16", "IS", "points"])
+def test_plan_and_edges_replay(with_plan, basis):
+    job = with_plan(basis, **ECCENTRIC)
+    for kind in ("plan", "torsion"):
+        result(job, kind)
+    assert replay(job.payloads()) == []
+
+
+def test_the_plan_of_a_symmetric_building(with_plan):
+    found = result(with_plan("EN"), "plan")
+    np.testing.assert_allclose(found["centres"]["eccentricity"], 0.0, atol=1e-9)
+    stiffness = [[160000, 100000], [150000, 92000], [120000, 76000]]
+    np.testing.assert_allclose(found["centres"]["stiffness"], stiffness, rtol=1e-9)
+    np.testing.assert_allclose(np.max(found["shares"], axis=0), 1.0, rtol=1e-9)
+
+
+def test_without_eccentricity_edges_move_as_the_centre(with_plan):
+    job = with_plan("7-16", accidental=0.0)
+    for item, drift in zip(result(job, "torsion")["directions"], result(job, "drift")["directions"], strict=True):
+        for edge in range(2):
+            np.testing.assert_allclose(np.array(item["nominal"]["drift"])[:, edge], drift["elastic"], rtol=1e-6)
+            np.testing.assert_allclose(np.array(item["accidental"]["drift"])[:, edge], drift["elastic"], rtol=1e-6)
+            np.testing.assert_allclose(np.array(item["design"])[:, edge], drift["design"], rtol=1e-6)
+            # excitation square to a symmetric plan moves no edge along it
+            np.testing.assert_allclose(np.array(item["both"]["drift"])[:, edge], drift["elastic"], rtol=1e-6)
+        np.testing.assert_allclose(item["static"]["ratio"], 1.0, rtol=1e-9)
+        np.testing.assert_allclose(item["static"]["amplification"], 1.0, rtol=1e-12)
+    assert [c["key"] for c in job.payload("torsion")["cautions"] if c["key"].startswith("torsional")] == []
+
+
+def test_static_torsion_of_one_storey_by_hand(with_plan):
+    # F e_a = k_θ θ; edges at 9 m: ratio 1 + 9 θ k_y/F, A_x = (ratio/1.2)² from 1 (statics; ASCE/SEI 7-16, 12.8.4.3)
+    job = with_plan("7-16", accidental=0.2)
+    item = result(job, "torsion")["directions"][1]["static"]
+    force = np.array(item["force"])
+    np.testing.assert_allclose(item["eccentricity"], 3.6)
+    torque = np.cumsum((force * 3.6)[::-1])[::-1]
+    np.testing.assert_allclose(item["torque"], torque, rtol=1e-9)
+    shear = np.cumsum(force[::-1])[::-1]
+    for i, (k_y, k_x) in enumerate(((1e5, 1.6e5), (9.2e4, 1.5e5), (7.6e4, 1.2e5))):
+        k_theta = k_y * 81.0 + k_x * 36.0
+        ratio = 1.0 + 9.0 * (torque[i] / k_theta) / (shear[i] / k_y)
+        assert item["ratio"][i] == pytest.approx(ratio, rel=1e-8)
+    top = np.abs(item["edge"][2])
+    assert item["amplification"][2] == pytest.approx(max((top.max() / (0.6 * top.sum())) ** 2, 1.0), rel=1e-9)
+    keys = [c["key"] for c in job.payload("torsion")["cautions"]]
+    assert "torsional-irregularity-y" in keys
+
+
+def test_edges_of_an_eccentric_plan(with_plan):
+    job = with_plan("EN", **ECCENTRIC)
+    item = result(job, "torsion")["directions"][1]
+    nominal, accidental, both = (np.array(item[name]["drift"]) for name in ("nominal", "accidental", "both"))
+    assert (accidental >= nominal).all()
+    assert (both >= accidental - 1e-15).all()
+    # the edge far from the centre of stiffness moves more
+    assert (nominal[:, 1] > nominal[:, 0]).all()
+    lines = job.payload("torsion")["lines"]
+    design = [line for line in lines if line["quantity"].startswith("Design drift at the edge")]
+    for line in design:
+        assert line["result"]["value"] == pytest.approx(np.prod([n["value"] for n in line["numbers"]]), rel=1e-12)
+
+
+def test_a_planar_job_has_no_plan(demand_job):
+    job = demand_job("EN")
+    job.attach("plan", PlanOptions())
+    assert job.payload("plan")["state"] == "refused"
+    assert job.payload("plan")["why"] == (
+        'model: planar in each direction; must be of model.kind "rigid floors" in job.toml'
+    )
+
+
+def test_edges_ask_for_the_plans_extent(with_plan, monkeypatch):
+    bare = "\n".join(",".join(line.split(",")[:4]) for line in FLOORS.splitlines()) + "\n"
+    monkeypatch.setitem(globals(), "FLOORS", bare)
+    payload = with_plan("EN").payload("torsion")
+    assert payload["state"] == "refused"
+    assert payload["why"].startswith("floors.csv: no extent of the plan; must be given")
