@@ -12,6 +12,8 @@ if TYPE_CHECKING:
     from calcsheet.blocks import (
         DemandSpectrum,
         DriftCheck,
+        EdgeDrifts,
+        FloorLines,
         JobCard,
         ModalTable,
         ModePlot,
@@ -26,6 +28,8 @@ __version__ = "0.1.0"
 __all__ = [
     "DemandSpectrum",
     "DriftCheck",
+    "EdgeDrifts",
+    "FloorLines",
     "JobCard",
     "ModalTable",
     "ModePlot",

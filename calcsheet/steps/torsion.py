@@ -214,8 +214,8 @@ def _cautions(item: DirectionTorsion, levels: tuple[str, ...], at: str) -> list[
         k = int(np.argmax(item.static.ratio))
         number = Number(float(item.static.ratio[k]), "ratio", f"{at}/static/ratio/{k}")
         text = (
-            f"Under static forces in {d} beside the centres of mass the larger edge drift is {{0}} times the mean of both, in the "
-            f'storey below "{plain(levels[k])}": beyond {IRREGULAR:g} ASCE/SEI 7-16, Table 12.3-1, speaks of torsional '
+            f"Under static forces in {d} beside the centres of mass the larger edge drift is {{0}} times the mean of both, in "
+            f'the storey below "{plain(levels[k])}": beyond {IRREGULAR:g} ASCE/SEI 7-16, Table 12.3-1, speaks of torsional '
             "irregularity, beyond 1.4 of an extreme one (from memory)."
         )
         cautions.append(Caution(f"torsional-irregularity-{d}", text, (number,), answer=True))
