@@ -144,8 +144,6 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("Bu of rigid floors", "floors.Floors.drift", "definition"),
     Formula("storey shears and torque × storey drifts", "floors.Floors.storey_energy", "definition"),
     Formula("storey shears of a line", "floors.Floors.line_shear", "definition"),
-    Formula("λ of rigid floors", "floors.Floors.critical", _STABILITY),
-    Formula("λ of many floors", "floors.SparseFloors.critical", _STABILITY),
     Formula("ω, ψ of many floors", "floors.SparseFloors.modes", _BATHE),
     Formula("K⁻¹f of many floors", "floors.SparseFloors.displacement", "definition"),
     Formula("inertia of K − ω²M of many floors", "floors.SparseFloors.count_below", _PARLETT),

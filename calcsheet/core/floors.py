@@ -31,7 +31,7 @@ from calcsheet.core.errors import ModelError
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import above
 from calcsheet.core.rooted import Rooted
-from calcsheet.core.second_order import Critical, critical, refuse_buckled, softened
+from calcsheet.core.second_order import Critical, critical, over, refuse_buckled, softened
 
 DENSE_UP_TO = 400
 """Degrees of freedom up to which dense matrices serve."""
@@ -94,7 +94,8 @@ class Floors(Rooted, Frozen):
     Raises
     ------
     ModelError
-        Arrays that do not fit, a line of more levels than there are, or a mechanism.
+        Arrays that do not fit, or a line of more levels than there are; when first solved, a mechanism, or gravity loads
+        that buckle the building.
     """
 
     level: tuple[str, ...]
@@ -123,7 +124,6 @@ class Floors(Rooted, Frozen):
             if line.lateral.size > n:
                 allowed = f"must be at most {n}, that of the building"
                 raise ModelError(f'line "{line.name}"', f"{line.lateral.size} levels", allowed)
-        self._must_hold()
 
     @property
     def levels(self) -> int:
@@ -166,9 +166,15 @@ class Floors(Rooted, Frozen):
     # ---- stiffness -------------------------------------------------------------------------------------------------
 
     @cached_property
+    def _reaches(self) -> list[tuple[Lateral, sparse.csr_matrix, sparse.csr_matrix]]:
+        """Each line's stiffness, its T and Tᵀ."""
+        reaches = [(line.lateral, self.reach(line)) for line in self.lines]
+        return [(lateral, reach, reach.T.tocsr()) for lateral, reach in reaches]
+
+    @cached_property
     def line_root(self) -> sparse.csr_matrix:
         """C of all lines, (Σn, 3L), with K = CᵀC but for gravity."""
-        return sparse.vstack([sparse.csr_matrix(line.lateral.root) @ self.reach(line) for line in self.lines], "csr")
+        return sparse.vstack([sparse.csr_matrix(lateral.root) @ reach for lateral, reach, _ in self._reaches], "csr")
 
     @cached_property
     def gravity_root(self) -> sparse.csr_matrix:
@@ -178,19 +184,25 @@ class Floors(Rooted, Frozen):
         held = np.where(total > 0.0, total, 1.0)
         mean = above(load[:, None] * self.centre) / held[:, None]
         square = above(load * (self.gyration**2 + (self.centre**2).sum(axis=1))) / held - (mean**2).sum(axis=1)
-        push = np.sqrt(total / self.storey_height)
-        x, y = self.at(mean[:, 0], mean[:, 1])
-        turn = sparse.csr_matrix(np.kron(np.eye(self.levels), [0.0, 0.0, 1.0]))
-        down = sparse.eye(self.levels, k=-1)
-        # the point that moves with the storey's upper floor is taken on its lower floor too
-        lower_x, lower_y = self.at(np.append(mean[1:, 0], 0.0), np.append(mean[1:, 1], 0.0))
-        rows = [
-            sparse.diags(push) @ (x - down @ lower_x),
-            sparse.diags(push) @ (y - down @ lower_y),
-            sparse.diags(push * np.sqrt(np.maximum(square, 0.0))) @ (turn - down @ turn),
-        ]
-        order = np.arange(3 * self.levels).reshape(3, -1).T.ravel()
-        return sparse.vstack(rows, "csr")[order]
+        push, spread = np.sqrt(total / self.storey_height), np.sqrt(np.maximum(square, 0.0))
+
+        def blocks(centre: Array, mean: Array, spread: Array) -> Array:
+            """Movement of the loads' middle and turn of the loads, (s, 3, 3), by the floors with these centres."""
+            block = np.zeros((spread.size, 3, 3))
+            block[:, 0, 0] = block[:, 1, 1] = 1.0
+            block[:, 0, 2], block[:, 1, 2] = centre[:, 1] - mean[:, 1], mean[:, 0] - centre[:, 0]
+            block[:, 2, 2] = spread
+            return block
+
+        # the point that moves with a storey's upper floor is taken on its lower floor too
+        upper = push[:, None, None] * blocks(self.centre, mean, spread)
+        lower = -push[1:, None, None] * blocks(self.centre[:-1], mean[1:], spread[1:])
+        data = np.concatenate([upper[:1], np.stack([lower, upper[1:]], axis=1).reshape(-1, 3, 3)])
+        columns = np.concatenate(
+            [[0], np.column_stack([np.arange(self.levels - 1), np.arange(1, self.levels)]).ravel()]
+        )
+        starts = np.concatenate([[0], 1 + 2 * np.arange(self.levels)])
+        return sparse.bsr_matrix((data, columns, starts), shape=(self.size, self.size)).tocsr()
 
     @property
     def loaded(self) -> bool:
@@ -210,35 +222,36 @@ class Floors(Rooted, Frozen):
         """Upper triangular C with CᵀC = K, (3L, 3L)."""
         if not self.loaded:
             return self.fixed_root
-        return softened(self.fixed_root, self.gravity_root.toarray())
+        refuse_buckled(self.critical, self.level)
+        return softened(self.fixed_root, self._pushed)
+
+    @cached_property
+    def _pushed(self) -> Array:
+        return over(self.gravity_root.toarray(), self.fixed_root)
 
     @property
     def _names(self) -> tuple[str, ...]:
         moves = ("in x", "in y", "rotation about the vertical")
         return tuple(f'level "{level}", {move}' for level in self.level for move in moves)
 
-    def _must_hold(self) -> None:
-        """Refuse a mechanism."""
-        _ = self.fixed_root
-
+    @cached_property
     def critical(self) -> Critical:
         """Elastic critical load factor of the gravity loads, which may not be all zero."""
         assert self.gravity is not None
-        return critical(self.fixed_root, self.gravity_root.toarray(), above(self.gravity))
+        return critical(self._pushed, above(self.gravity))
 
     def force(self, u: Array) -> Array:
         """Forces and torques Ku, (3L, m) [kN, kN, kN·m], of displacements u, (3L, m) [m, m, rad]: line by line."""
         total = np.zeros(u.shape)
-        for line in self.lines:
-            reach = self.reach(line)
-            total += reach.T @ line.lateral.force(reach @ u)
+        for lateral, reach, back in self._reaches:
+            total += back @ lateral.force(reach @ u)
         return total - self.gravity_root.T @ (self.gravity_root @ u) if self.loaded else total
 
     def energy(self, u: Array) -> Array:
         """Products uᵀKu, (m, m), of displacements u, (3L, m): line by line."""
         total = np.zeros((u.shape[1], u.shape[1]))
-        for line in self.lines:
-            total += line.lateral.energy(self.reach(line) @ u)
+        for lateral, reach, _ in self._reaches:
+            total += lateral.energy(reach @ u)
         if self.loaded:
             pushed = self.gravity_root @ u
             total -= pushed.T @ pushed
@@ -291,14 +304,6 @@ class SparseFloors(Floors):
     @cached_property
     def stiffness(self) -> sparse.csc_matrix:
         """K, (3L, 3L)."""
-        k = self.line_root.T @ self.line_root
-        return sparse.csc_matrix(k - self.gravity_root.T @ self.gravity_root if self.loaded else k)
-
-    @cached_property
-    def _factors(self) -> SuperLU:
-        return _pivoted_nowhere(self.stiffness)
-
-    def _must_hold(self) -> None:
         fixed = sparse.csc_matrix(self.line_root.T @ self.line_root)
         scale = sparse.diags(1.0 / np.sqrt(np.where(fixed.diagonal() > 0.0, fixed.diagonal(), 1.0)))
         try:
@@ -307,7 +312,16 @@ class SparseFloors(Floors):
             held = False
         if not held:
             _ = self.fixed_root  # the dense form says where
+        if not self.loaded:
+            return fixed
+        refuse_buckled(self.critical, self.level)
+        return sparse.csc_matrix(fixed - self.gravity_root.T @ self.gravity_root)
 
+    @cached_property
+    def _factors(self) -> SuperLU:
+        return _pivoted_nowhere(self.stiffness)
+
+    @cached_property
     def critical(self) -> Critical:
         """Elastic critical load factor of the gravity loads, which may not be all zero."""
         assert self.gravity is not None
@@ -368,14 +382,6 @@ def floors_of(
     -------
     Floors
         `SparseFloors` above `DENSE_UP_TO` degrees of freedom.
-
-    Raises
-    ------
-    ModelError
-        As `Floors`, and where the gravity loads buckle the building.
     """
     kind = Floors if 3 * len(level) <= DENSE_UP_TO else SparseFloors
-    floors = kind(tuple(level), storey_height, centre, gyration, tuple(lines), gravity)
-    if floors.loaded:
-        refuse_buckled(floors.critical(), floors.level)
-    return floors
+    return kind(tuple(level), storey_height, centre, gyration, tuple(lines), gravity)

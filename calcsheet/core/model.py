@@ -233,8 +233,8 @@ def springs_of(storeys: Storeys, direction: str) -> BaseSprings:
     return storeys.springs.get(direction, BaseSprings())
 
 
-def critical_of(storeys: Storeys, stiffness: str, direction: str) -> Critical | None:
-    """Elastic critical load factor of the gravity loads, None where none are given.
+def critical_of(storeys: Storeys, stiffness: str, model: Model) -> Critical | None:
+    """Elastic critical load factor of a model's gravity loads, None where none are given.
 
     Parameters
     ----------
@@ -242,14 +242,15 @@ def critical_of(storeys: Storeys, stiffness: str, direction: str) -> Critical | 
         The building.
     stiffness : str
         Name of the stiffness set.
-    direction : str
-        "x" or "y" of planar models; rigid floors buckle whichever way they do.
+    model : Model
+        One of its models with that set.
     """
-    if storeys.gravity is None:
+    if storeys.gravity is None or not storeys.gravity.any():
         return None
-    if storeys.plan is not None:
-        floors = floors_of_plan(storeys, storeys.plan, stiffness)
-        return replace(floors, gravity=storeys.gravity).critical() if storeys.gravity.any() else None
+    if isinstance(model.lateral, Floors):
+        floors = model.lateral
+        return (floors if floors.loaded else replace(floors, gravity=storeys.gravity)).critical
+    (direction,) = model.direction
     lateral, springs = set_of(storeys, stiffness).lateral[direction], springs_of(storeys, direction)
     return critical_load(lateral, storeys.storey_height, springs, above(storeys.gravity))
 

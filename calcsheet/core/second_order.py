@@ -40,40 +40,38 @@ class Critical:
     load: float = field(metadata=agrees(rtol=1e-12))
 
 
-def critical(root: Array, gravity_root: Array, load: Array) -> Critical:
+def critical(x: Array, load: Array) -> Critical:
     """Elastic critical load factor.
 
     Parameters
     ----------
-    root : (N, N) array
-        C, square, with K = CᵀC.
-    gravity_root : (r, N) array
-        D with K_G = DᵀD, as many rows for each of the n storeys.
+    x : (r, N) array
+        X = D C⁻¹, as many rows for each of the n storeys.
     load : (n,) array
         Gravity load at and above each storey, not all zero [kN].
     """
-    _, values, rows = linalg.svd(over(gravity_root, root), full_matrices=False, check_finite=False)
-    work = ((gravity_root @ linalg.solve(root, rows[0])) ** 2).reshape(load.size, -1).sum(axis=1)
+    last = x.shape[1] - 1
+    square, shape = linalg.eigh(x.T @ x, subset_by_index=(last, last))  # the largest loses no digits when squared
+    work = ((x @ shape) ** 2).reshape(load.size, -1).sum(axis=1)
     storey = int(np.argmax(work))
-    return Critical(float(values[0] ** -2), storey, float(load[storey]))
+    return Critical(float(1.0 / square[0]), storey, float(load[storey]))
 
 
-def softened(root: Array, gravity_root: Array) -> Array:
+def softened(root: Array, x: Array) -> Array:
     """Square root of K - K_G, (N, N), upper triangular where that of K is.
 
     Parameters
     ----------
     root : (N, N) array
         C, square, with K = CᵀC.
-    gravity_root : (r, N) array
-        D with K_G = DᵀD.
+    x : (r, N) array
+        X = D C⁻¹ with K_G = DᵀD.
 
     Raises
     ------
     numpy.linalg.LinAlgError
         K - K_G is not positive definite: the model has buckled.
     """
-    x = over(gravity_root, root)
     return linalg.cholesky(np.eye(root.shape[0]) - x.T @ x) @ root
 
 

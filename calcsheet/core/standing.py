@@ -20,7 +20,7 @@ from calcsheet.core.condense import condensed
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import Planar, drifts
 from calcsheet.core.rooted import Rooted
-from calcsheet.core.second_order import Critical, critical, refuse_buckled, softened
+from calcsheet.core.second_order import Critical, critical, over, refuse_buckled, softened
 from calcsheet.core.springs import BaseSprings
 
 
@@ -78,12 +78,16 @@ class Standing(Rooted, Planar, Frozen):
     @cached_property
     def root(self) -> Array:
         """Upper triangular C with CᵀC = K, (n, n), the base condensed out."""
-        whole = softened(self.whole_root, self.gravity_root) if self.load.any() else self.whole_root
+        whole = softened(self.whole_root, self._pushed) if self.load.any() else self.whole_root
         return condensed(whole, range(self.size))
 
     def critical(self) -> Critical:
         """Elastic critical load factor of the load, which may not be all zero."""
-        return critical(self.whole_root, self.gravity_root, self.load)
+        return critical(self._pushed, self.load)
+
+    @cached_property
+    def _pushed(self) -> Array:
+        return over(self.gravity_root, self.whole_root)
 
     def displacement(self, f: Array) -> Array:
         """Displacements K⁻¹f, (n, m) [m], of forces f, (n, m) [kN]: from the flexibility, not from the root."""

@@ -118,7 +118,7 @@ def run(options: ModesOptions, storeys: Done) -> Outcome:
         modes, bound = modes_of(model, None if options.keep is None else min(options.keep, model.size)), bounds(model)
         found = evidence_of_modes(model, modes, bound)
         on_rock = _fixed(fixed[i], modes) if model.direction[0] in building.springs else None
-        load = critical_of(building, stiffness, model.direction[0])
+        load = critical_of(building, stiffness, model)
         results.append(ModelModes(name, model.size, modes, bound, load, on_rock, _rows(model)))
         lines += _lines(modes, bound, name, f"result/models/{i}")
         if on_rock is not None:

@@ -252,8 +252,9 @@ def test_a_mechanism_is_named(kind, taken, said):
         "concurrent": tuple(LineOfResistance(str(i), 2.0, 3.0, 0.7 * i, chain) for i in range(3)),
         "one missing": ring()[1:],
     }[taken]
+    floors = kind(("Roof",), np.array([4.0]), np.array([[3.0, 5.0]]), np.array([6.0]), found)
     with pytest.raises(ModelError) as error:
-        kind(("Roof",), np.array([4.0]), np.array([[3.0, 5.0]]), np.array([6.0]), found)
+        floors.displacement(np.zeros((3, 1)))
     assert said in str(error.value)
     assert "lines of resistance must be neither all parallel nor all through one point" in str(error.value)
 
@@ -267,7 +268,7 @@ def test_no_lines_at_all():
 def test_a_building_that_buckles_is_named(monkeypatch, threshold):
     monkeypatch.setattr(floors_module, "DENSE_UP_TO", threshold)
     with pytest.raises(ModelError) as error:
-        plan(gravity=200.0 * GRAVITY)
+        plan(gravity=200.0 * GRAVITY).displacement(np.zeros((9, 1)))
     assert 'storey below level "1": gravity load 2.64e+06 kN with an elastic critical load factor of' in str(
         error.value
     )
@@ -312,8 +313,8 @@ def test_sparse_floors_are_dense_ones(gravity):
     ends = np.concatenate([a[0] * (1.0 - 1e-8), a[0] * (1.0 + 1e-8)])
     np.testing.assert_array_equal(few.count_below(mass, ends), dense.count_below(mass, ends))
     if gravity:
-        assert few.critical().factor == pytest.approx(dense.critical().factor, rel=1e-8)
-        assert few.critical().storey == dense.critical().storey
+        assert few.critical.factor == pytest.approx(dense.critical.factor, rel=1e-8)
+        assert few.critical.storey == dense.critical.storey
 
 
 def test_many_floors_are_sparse_and_few_are_dense():
