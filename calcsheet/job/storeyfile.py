@@ -11,14 +11,12 @@ from itertools import pairwise
 import numpy as np
 
 from calcsheet.core.chain import Chain
-from calcsheet.core.errors import ModelError
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.springs import BaseSprings
-from calcsheet.core.storeys import LevelBelow, StiffnessSet, Storeys
+from calcsheet.core.storeys import LevelBelow, Storeys
 from calcsheet.job import card as job_card
 from calcsheet.job.card import Card
 from calcsheet.job.cells import ANY, NOT_NEGATIVE, POSITIVE, read_cell
-from calcsheet.job.deflectionfile import holds_deflections, read_deflections
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import (
     AREA,
@@ -29,11 +27,10 @@ from calcsheet.job.headings import (
     Ways,
     needed_stiffness,
     read_headings,
-    stiffness_key,
 )
-from calcsheet.job.matrixfile import matrix_kind, read_matrix
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.planfile import FLOORS, LINES, LineRow, laterals_of, read_lines, read_plan
+from calcsheet.job.resisting import Resisting
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
 
@@ -237,7 +234,7 @@ class _Reader:
                 except InputError as error:
                     self.refuse(row, key, error)
         self.check_elevations()
-        for key in self.optional:
+        for key in OPTIONAL if self.lines else self.optional:
             self.check_whole(key)
         self.check_gravity()
 
@@ -309,9 +306,9 @@ class _Reader:
         """A column's numbers from the lowest row up, NaN where blank."""
         return np.array([self.values[key][row] for row in self.rows[::-1]])
 
-    def if_given(self, key: str, below: int, ends: int | None = None) -> np.ndarray | None:
-        """The numbers of a column that may be left out, for the levels of the model, or those up to where it ends."""
-        numbers = self.from_base(key)[below:][:ends] if key in self.values else None
+    def if_given(self, key: str, below: int) -> np.ndarray | None:
+        """The numbers of a column that may be left out, for the levels of the model."""
+        numbers = self.from_base(key)[below:] if key in self.values else None
         return None if numbers is None or np.isnan(numbers).any() else numbers
 
     def build(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
@@ -330,7 +327,15 @@ class _Reader:
         if self.lines:
             plan, problems = read_plan(matrices[FLOORS], self.lines, levels[n:])
             self.problems += [CellProblem(None, None, str(error)) for error in problems]
-        stiffness = self.sets(n, levels[n:], height[n:], matrices)
+
+        def column(key: str) -> np.ndarray | None:
+            return self.from_base(key)[n:] if key in self.values else None
+
+        resisting = Resisting(
+            self.card, self.ways, self.lines, levels[n:], height[n:], column, self.table.file, matrices
+        )
+        stiffness, wrong = resisting.sets()
+        self.problems += [CellProblem(None, key, text) for key, text in wrong]
         if self.problems:
             return None
         return Storeys(
@@ -362,67 +367,6 @@ class _Reader:
             if any(v is not None for v in given):
                 found[d] = BaseSprings(*given)
         return found
-
-    def sets(
-        self, below: int, levels: list[str], height: np.ndarray, tables: Mapping[str, TextTable]
-    ) -> tuple[StiffnessSet, ...]:
-        """The stiffness sets, each with what resists along each direction or line."""
-        files = {row.line.name: row.file for row in self.lines if row.file}
-        if self.card.model.by_file:
-            files = {d: d for d in self.ways}
-        given = {way: self.by_file(levels, tables[file]) for way, file in files.items()}
-        sets = []
-        for name, basis in self.card.stiffness.items():
-            lateral: dict[str, Lateral] = {}
-            for way in [row.line.name for row in self.lines] or self.ways:
-                keys = {} if way in files else self.keys(way, name)
-                try:
-                    made = self.by_columns(way, keys, below, height) if keys else given[way]
-                    if made is not None:
-                        lateral[way] = made.times(basis.factor_of(way) or 1.0)
-                except ModelError as error:
-                    file = tables[files[way]].file if way in files else self.table.file
-                    self.problems.append(CellProblem(None, next(iter(keys.values()), None), f"{file}, {error}"))
-            sets.append(StiffnessSet(name, basis.ground, lateral))
-        return tuple(sets)
-
-    def keys(self, way: str, set_name: str) -> dict[str, str]:
-        """The columns of one direction or line in a set, by field of its lateral model."""
-        own = set_name if self.card.stiffness[set_name].own else None
-        return {given.field: stiffness_key(given, way, own) for given in self.ways[way].columns}
-
-    def by_columns(self, way: str, keys: Mapping[str, str], below: int, height: np.ndarray) -> Lateral:
-        """What resists along one direction or line, from its columns."""
-        ends = self.end(next(iter(keys.values())), below) if self.lines else height.size
-        values = {field: self.if_given(key, below, ends) for field, key in keys.items()}
-        return self.ways[way].of(values, height[:ends])
-
-    def end(self, key: str, below: int) -> int:
-        """Number of storeys that a line has: its column is blank above the level where it ends."""
-        there = ~np.isnan(self.from_base(key)[below:])
-        ends = int(there.sum())
-        if not there[:ends].all() or ends == 0:
-            allowed = "must be given from the lowest storey up, and be blank only above the level where the line ends"
-            raise ModelError(f"column {key}", "blank in a storey below others" if ends else "blank", allowed)
-        return ends
-
-    def by_file(self, levels: list[str], table: TextTable) -> Lateral | None:
-        """What resists along one direction or line, from its matrix."""
-        kind = self.card.model.lateral or matrix_kind(table)
-        rows = sum(any(cell.strip() for cell in cells) for cells in table.rows)
-        levels = levels[:rows] if self.lines else levels
-        if kind.table == "flexibility" and holds_deflections(table):
-            matrix, problems = read_deflections(table, levels)
-        else:
-            matrix, problems = read_matrix(table, levels, kind.table)
-        self.problems += [CellProblem(None, None, str(error)) for error in problems]
-        if problems:
-            return None
-        try:
-            return kind.of({"matrix": matrix}, np.empty(0))
-        except ModelError as error:
-            self.problems.append(CellProblem(None, None, f"{table.file}, {error}"))
-            return None
 
 
 def _listed(words: list[str]) -> str:

@@ -155,10 +155,25 @@ def test_refusals(of_plan, file, old, new, message):
     assert reading.problems[0].message.startswith(message)
 
 
+@pytest.mark.parametrize(
+    ("old", "new"),
+    [("4.2e7,1.5e6", ",1.5e6"), ("4.2e7,1.5e6", "4.2e7,"), ("5.5e7,1.9e6,\n1", "5.5e7,,\n1")],
+)
+def test_a_wall_whose_two_columns_end_apart_is_refused(of_plan, old, new):
+    reading = of_plan(("storeys.csv", old, new))
+    assert reading.storeys is None
+    assert all("storeys in no such order; must be given from the lowest" in p.message for p in reading.problems)
+
+
+def test_a_wall_that_ends_below_the_top(of_plan):
+    wall = of_plan(("storeys.csv", "4.2e7,1.5e6", ",")).storeys.stiffness[0].lateral["1"]
+    assert (wall.size, wall.shear.size, wall.storey_height.tolist()) == (2, 2, [4.6, 3.4])
+
+
 def test_a_line_blank_in_a_lower_storey_is_refused_once_a_set(of_plan):
     reading = of_plan(("storeys.csv", "70000,78", "70000,"))
     assert {p.message for p in reading.problems} == {
-        "storeys.csv, column stiffness B: blank in a storey below others; must be given from the lowest storey up, and be "
+        "storeys.csv, column stiffness B: 1 of 3 storeys in no such order; must be given from the lowest storey up, and be "
         "blank only above the level where the line ends"
     }
 
