@@ -17,7 +17,7 @@ import pytest
 
 from calcsheet.render.view import system_of
 from calcsheet.render.words import worked
-from calcsheet.resources import DEMO, folder
+from calcsheet.resources import DEMO, folder, templates
 from calcsheet.steps.graph import Job
 from calcsheet.steps.plan import PlanOptions
 from calcsheet.steps.torsion import TorsionOptions
@@ -364,17 +364,10 @@ def test_every_worked_line_follows_from_what_is_printed(demand_job, name):
         check(row)
 
 
-@pytest.mark.parametrize(
-    "where",
-    [
-        "templates/planar",
-        "templates/seismic",
-        "templates/walls",
-        "templates/floors",
-        DEMO,
-        "example_notebooks/larch-street",
-    ],
-)
+SHIPPED = [f"templates/{name}" for name in templates()]
+
+
+@pytest.mark.parametrize("where", [*SHIPPED, DEMO, "example_notebooks/larch-street"])
 def test_templates_and_examples(chain, where):
     for row in printed(chain(Job(folder(where)))):
         check(row)
