@@ -78,10 +78,8 @@ def test_new_refuses_what_is_there(run, tmp_path):
 
 
 def test_new_refuses_a_template_that_is_not_there(run, tmp_path):
-    assert (
-        refused(run("new", "tower", "--template", "curved"))
-        == 'no template "curved"; must be floors or planar or seismic or walls'
-    )
+    said = refused(run("new", "tower", "--template", "curved"))
+    assert said == 'no template "curved"; must be floors or planar or seismic or walls'
     assert not (tmp_path / "tower").exists()
 
 
