@@ -117,7 +117,6 @@ FORMULAS: tuple[Formula, ...] = (
     Formula("K × factor", "matrix.StiffnessMatrix.times", "definition"),
     Formula("F / factor", "matrix.FlexibilityMatrix.times", "definition"),
     Formula("R₂₂ᵀR₂₂ = K₂₂ − K₂₁K₁₁⁻¹K₁₂", "condense.condensed", _GUYAN),
-    Formula("u₁ = −R₁₁⁻¹R₁₂u₂", "condense.spread", _GUYAN),
     Formula("ω, ψ of K = CᵀC: singular values of C·M^(-1/2)", "rooted.Rooted.modes", _GOLUB),
     Formula("Cᵀ(Cu)", "rooted.Rooted.force", "definition"),
     Formula("C⁻¹C⁻ᵀf", "rooted.Rooted.displacement", "definition"),

@@ -62,30 +62,3 @@ def condensed(root: Array, keep: Sequence[int], names: Sequence[str] | None = No
         name = names[dof] if names is not None else f"degree of freedom {dof + 1}"
         raise ModelError(f"lateral stiffness, {name}", "a mechanism", "every displacement must meet resistance")
     return triangle[len(left) :, len(left) :]
-
-
-def spread(root: Array, keep: Sequence[int], u: Array) -> Array:
-    """Displacements of all degrees of freedom from those kept, the others being free of force.
-
-    Parameters
-    ----------
-    root : (r, N) array
-        C with K = CᵀC.
-    keep : sequence of int
-        The k degrees of freedom kept, from 0.
-    u : (k, m) array
-        Their displacements.
-
-    Returns
-    -------
-    (N, m) array
-    """
-    kept = list(keep)
-    left = [i for i in range(root.shape[1]) if i not in set(kept)]
-    whole = np.zeros((root.shape[1], u.shape[1]))
-    whole[kept] = u
-    if left:
-        (triangle,) = linalg.qr(root[:, left + kept], mode="r", check_finite=False)
-        first = len(left)
-        whole[left] = -linalg.solve_triangular(triangle[:first, :first], triangle[:first, first:] @ u)
-    return whole

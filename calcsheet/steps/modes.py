@@ -255,7 +255,8 @@ def _named(evidence: Evidence, name: str) -> Evidence:
 
 
 METHOD = r"""
-The building is reduced to one translation a level, the masses lumped at the levels. Modes are the solutions of
+The building is reduced to one translation a level, or with floors rigid in their plane to two and a rotation, the
+masses lumped at the levels. Modes are the solutions of
 
 $$K\varphi = \omega^2 M\varphi , \qquad T = \frac{2\pi}{\omega} , \qquad f = \frac{\omega}{2\pi}$$
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from calcsheet.core.condense import condensed, spread
+from calcsheet.core.condense import condensed
 from calcsheet.core.errors import ModelError
 
 
@@ -24,15 +24,6 @@ def test_it_is_the_schur_complement(root, keep):
     found = condensed(root, keep)
     np.testing.assert_allclose(found.T @ found, wanted, rtol=1e-12, atol=1e-12)
     assert (np.tril(found, -1) == 0.0).all()
-
-
-def test_what_is_left_out_follows_without_force(root):
-    u = np.array([[1.0], [-2.0], [0.5]])
-    whole = spread(root, (0, 2, 3), u)
-    force = root.T @ (root @ whole)
-    np.testing.assert_allclose(whole[[0, 2, 3]], u, rtol=1e-15)
-    np.testing.assert_allclose(force[[1, 4, 5]], 0.0, atol=1e-12)
-    np.testing.assert_allclose(spread(root, range(6), np.eye(6)), np.eye(6))
 
 
 def test_springs_in_series():

@@ -188,6 +188,20 @@ def test_two_equal_lines_are_one_of_twice_the_stiffness():
     np.testing.assert_allclose(twice.root.T @ twice.root, once.force(np.eye(9)), rtol=1e-10, atol=1e-3)
 
 
+def test_walls_in_parallel_are_the_sum_of_their_condensed_stiffnesses():
+    # three walls and a frame along x, mirrored: with rotation held, K in x is Σ K of each (statics)
+    frame, small = Chain(STOREY), WALL.times(0.3)
+    along = [LineOfResistance(str(y), 5.0, y, 0.0, lateral) for y, lateral in ((0.0, WALL), (7.0, frame), (14.0, WALL))]
+    along.append(LineOfResistance("7 small", 5.0, 7.0, 0.0, small))
+    across = [LineOfResistance(name, x, 7.0, UP, frame) for name, x in (("west", 0.0), ("east", 10.0))]
+    floors = plan(centre=np.tile([5.0, 7.0], (3, 1)), lines=(*along, *across))
+    wanted = 2.0 * WALL.force(np.eye(3)) + frame.force(np.eye(3)) + small.force(np.eye(3))
+    np.testing.assert_allclose(floors.force(np.eye(9))[0::3, 0::3], wanted, rtol=1e-12)
+    root = floors.root.T @ floors.root
+    np.testing.assert_allclose(root[0::3, 0::3], wanted, rtol=1e-9, atol=1e-9 * wanted.max())
+    np.testing.assert_allclose(root[0::3, 1::3], 0.0, atol=1e-9 * wanted.max())
+
+
 def test_a_line_reversed_is_the_same_line():
     first, *others = lines()
     back = plan(lines=(replace(first, angle=first.angle + np.pi, y=first.y + 8.0), *others))
