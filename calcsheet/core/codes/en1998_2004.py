@@ -173,10 +173,11 @@ class EN1998(Edition):
         t_c = self._corners[2]
         limit = min(4.0 * t_c, 2.0)
         alone = "would" if facts.period <= limit else "would not"
+        planar = " Two planar models ask for regularity in plan, or for what 4.3.3.1(8) says in its place."
         return Answer(
             f"Modal response spectrum analysis applies to every building. The lateral force method {alone} meet its limit "
-            f"on the period, T₁ = {facts.period:.3g} s against min(4 T_C, 2.0 s) = {limit:.3g} s. Two planar models ask for "
-            "regularity in plan, or for what 4.3.3.1(8) says in its place.",
+            f"on the period, T₁ = {facts.period:.3g} s against min(4 T_C, 2.0 s) = {limit:.3g} s."
+            f"{planar if facts.plan is None else ''}",
             "4.3.3.1(3), (7), 4.3.3.2.1(2)",
         )
 

@@ -299,7 +299,12 @@ class IS1893(Edition):
         missing = (
             ("vertical geometry", "plan dimensions of the lateral system at each level"),
             ("strength (weak storey)", "storey strengths"),
-            ("torsion and plan irregularities", "a model with rotation and the plan"),
+            ("torsion and plan irregularities", "a model with rotation and the plan")
+            if facts.plan is None
+            else (
+                "plan irregularities beside torsion",
+                "the layout of floors and lines; torsion stands with the edges",
+            ),
         )
         return (
             *screens,
