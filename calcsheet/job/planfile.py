@@ -172,7 +172,9 @@ def read_plan(
     return Plan(centre, np.array(gyration)[order], tuple(row.line for row in lines), edges), []
 
 
-def laterals_of(table: TextTable, lines: Sequence[LineRow]) -> tuple[Mapping[str, type[Lateral]], list[InputError]]:
+def laterals_of(
+    table: TextTable, lines: Sequence[LineRow], own: Sequence[str]
+) -> tuple[Mapping[str, type[Lateral]], list[InputError]]:
     """The lateral model of each line that has no file: which one its columns in the storey table make.
 
     Parameters
@@ -181,6 +183,8 @@ def laterals_of(table: TextTable, lines: Sequence[LineRow]) -> tuple[Mapping[str
         The storey table.
     lines : sequence of LineRow
         The lines.
+    own : sequence of str
+        Names of the stiffness sets that have columns of their own.
     """
     names = {split_heading(heading)[0].casefold() for heading in table.headings}
     by_columns = [lateral for lateral in LATERALS if lateral.columns]
@@ -194,7 +198,7 @@ def laterals_of(table: TextTable, lines: Sequence[LineRow]) -> tuple[Mapping[str
         there = [
             lateral
             for lateral, heading in headings.items()
-            if any(n == heading.casefold() or n.startswith(f"{heading.casefold()} ") for n in names)
+            if names & {" ".join(f"{heading} {of}".split()).casefold() for of in ("", *own)}
         ]
         if len(there) != 1:
             wanted = " or ".join(f'"{heading}"' for heading in headings.values())

@@ -110,7 +110,7 @@ def read_storeys(table: TextTable, card: Card, matrices: Mapping[str, TextTable]
     lines, wrong = read_lines(beside[LINES]) if card.model.lateral is None else ((), [])
     ways: dict[str, type[Lateral]] = dict.fromkeys(card.directions.analysed, card.model.lateral or Chain)
     if card.model.lateral is None:
-        found, missing = laterals_of(table, lines)
+        found, missing = laterals_of(table, lines, [name for name, basis in card.stiffness.items() if basis.own])
         ways, wrong = dict(found), [*wrong, *missing]
     headings = read_headings(table, card, ways)
     reader = _Reader(table, card, headings.columns, ways, lines)

@@ -269,9 +269,10 @@ through a square root $C$ of the stiffness, $K = C^{T} C$, the frequencies are t
 (Golub and Van Loan, Matrix Computations, from memory).
 
 Springs at the base let the whole building move and turn without mass of the base itself. Gravity loads that are in the
-stiffness take $B^{T} (P/h) B$ from it, $P$ the load at and above a storey of height $h$; the elastic critical load factor
-is the smallest $\lambda$ with $K - \lambda B^{T} (P/h) B$ singular (Timoshenko and Gere, Theory of Elastic Stability, from
-memory).
+stiffness take $B^{T} (P/h) B$ from it, $P$ the load at and above a storey of height $h$: they act on storey drifts, a
+wall counting as straight between its levels; those of rigid floors turn with the floor, spread as its mass is. The
+elastic critical load factor is the smallest $\lambda$ with $K - \lambda B^{T} (P/h) B$ singular (Timoshenko and Gere,
+Theory of Elastic Stability, from memory).
 
 Shapes are mass-normalised and orthogonal through both matrices,
 

@@ -199,3 +199,24 @@ def test_what_a_card_of_rigid_floors_cannot_have(card, change, message):
     with pytest.raises(InputError) as error:
         card(*FLOORS_KIND, change)
     assert str(error.value) == f"job.toml, {message}"
+
+
+def test_one_lines_name_may_begin_with_anothers(of_plan):
+    lines = LINES.replace("A,0,0,90,", "1 west,0,0,90,")
+    got = of_plan(("lines.csv", LINES, lines), ("storeys.csv", "stiffness A", "stiffness 1 west"))
+    assert got.problems == ()
+    laterals = got.storeys.stiffness[0].lateral
+    assert (type(laterals["1 west"]), type(laterals["1"])) == (Chain, Stick)
+
+
+def test_lines_of_a_set_of_own_values(of_plan):
+    text = STOREYS
+    for heading in ("stiffness A", "stiffness B", "bending stiffness 1", "shear stiffness 1"):
+        text = text.replace(f"{heading} [", f"{heading} cracked [", 1)
+    gross = '[stiffness.uncracked]\nfactor = 1.0\nground = "gross sections"\n'
+    on = ((gross, ""), ("factor = 0.5", "own = true"), ('forces = "uncracked"', 'forces = "cracked"'))
+    got = of_plan(("storeys.csv", STOREYS, text), on=on)
+    assert got.problems == ()
+    (cracked,) = got.storeys.stiffness
+    np.testing.assert_allclose(cracked.lateral["A"].storey, [70000.0, 74000.0, 61000.0])
+    assert isinstance(cracked.lateral["1"], Stick)
