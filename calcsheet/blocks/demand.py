@@ -142,7 +142,7 @@ class EdgeDrifts(Block):
         if not isinstance(accidental, Real) or not 0.0 <= accidental < 0.5:
             raise ValueError(f"accidental: got {accidental!r}; must be a number from 0 and below 0.5")
         job, peaks = drift.job, drift.payload["needs"]["peaks"]
-        needs = dict(job.payload(peaks)["needs"]) | {"drift": drift.key}
+        needs = dict(job.payload(peaks)["needs"]) | {"peaks": peaks, "drift": drift.key}
         options = TorsionOptions(float(accidental))
         super().__init__(job, job.attach("torsion", options, needs, _key("torsion", needs["participation"])), options)
 

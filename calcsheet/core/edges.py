@@ -67,19 +67,37 @@ def edges(floors: Floors, u: Array, related: Array, rule: Rule, direction: str, 
     return Edges(np.column_stack([s[0] for s in sides]), np.column_stack([s[1] for s in sides]))
 
 
+def line_shears(floors: Floors, u: Array, related: Array, rule: Rule) -> tuple[Array, ...]:
+    """Peaks of the storey shears of each line, (n,) each [kN], combined from their own modal values.
+
+    Parameters
+    ----------
+    floors, u, related, rule
+        As `edges` takes them.
+    """
+    return tuple(combined(floors.line_shear(u, line), related, rule) for line in floors.lines)
+
+
+def with_the_other(along: Array, across: Array) -> Array:
+    """Peaks under excitations in both directions, (…): the larger of 100 % and 30 %, either way.
+
+    Parameters
+    ----------
+    along, across : (…) array
+        Peaks of one quantity under excitation in each direction.
+    """
+    return np.maximum(along + SECOND * across, SECOND * along + across)
+
+
 def both_directions(along: Edges, across: Edges) -> Edges:
-    """Peaks at the edges under excitations in both directions: the larger of 100 % and 30 %, either way.
+    """Peaks at the edges under excitations in both directions.
 
     Parameters
     ----------
     along, across : Edges
         Peaks along one direction, under excitation in it and in the other.
     """
-
-    def larger(a: Array, b: Array) -> Array:
-        return np.maximum(a + SECOND * b, SECOND * a + b)
-
-    return Edges(larger(along.displacement, across.displacement), larger(along.drift, across.drift))
+    return Edges(with_the_other(along.displacement, across.displacement), with_the_other(along.drift, across.drift))
 
 
 def larger_of(first: Edges, *others: Edges) -> Edges:

@@ -10,6 +10,9 @@ from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
 from calcsheet.steps.step import Payload
 
+EXCITED = {"x": "x", "y": "y", "both": "both directions"}
+"""Shears of the lines, by what excites them."""
+
 
 def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]) -> Rendered:
     system, payload = system_of(payloads), payloads[key]
@@ -24,7 +27,21 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         parts.append(_edges(item, levels, system, at))
         if item["static"] is not None:
             parts.append(_static(item, levels, system, f"{at}/static"))
+    result, at = payload["result"], f"/{key}/result/lines"
+    parts += [_lines(result, field, said, levels, system, at) for field, said in EXCITED.items()]
     return Rendered("".join(parts))
+
+
+def _lines(result: Mapping[str, Any], field: str, said: str, levels: list[str], system: str, at: str) -> str:
+    order = list(range(len(levels)))[::-1]
+    columns = [words("storey below level", [levels[i] for i in order])]
+    for i, line in enumerate(result["lines"]):
+        shears = [*line[field], *[None] * (len(levels) - len(line[field]))]  # a line may end below the top
+        columns.append(values(f"line {line['name']}", shears, "force", system, f"{at}/{i}/{field}", order=order))
+    caption = (
+        f"Design storey shears of the lines under excitation in {said}, stiffness set {result['stiffness_forces']}"
+    )
+    return table(columns, kind="values", caption=caption)
 
 
 def _sides(direction: str) -> tuple[str, str]:

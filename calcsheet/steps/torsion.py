@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from functools import partial
 
@@ -10,7 +11,17 @@ import numpy as np
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.basis import Basis
 from calcsheet.core.design import Drifts
-from calcsheet.core.edges import Edges, StaticTorsion, both_directions, edges, larger_of, shift, static_torsion
+from calcsheet.core.edges import (
+    Edges,
+    StaticTorsion,
+    both_directions,
+    edges,
+    larger_of,
+    line_shears,
+    shift,
+    static_torsion,
+    with_the_other,
+)
 from calcsheet.core.errors import ModelError
 from calcsheet.core.floors import DIRECTIONS, Floors
 from calcsheet.core.model import Model, models_of
@@ -20,6 +31,8 @@ from calcsheet.core.peaks import responses
 from calcsheet.core.plan import shifted
 from calcsheet.core.response import left_over, related
 from calcsheet.core.storeys import Storeys
+from calcsheet.steps.drift import DriftResult
+from calcsheet.steps.peaks import PeaksResult
 from calcsheet.steps.plan import floors_of_model
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step, plain
 
@@ -84,44 +97,72 @@ class DirectionTorsion(Frozen):
 
 
 @dataclass(frozen=True, eq=False)
-class TorsionResult:
-    """Edges in each direction.
+class LineShears(Frozen):
+    """Design storey shears of one line of resistance, lowest first, with the stiffness set that serves forces.
+
+    Scaled by the edition and with its second-order factor; the largest of masses where they are and shifted either way.
 
     Parameters
     ----------
-    stiffness : str
-        Name of the stiffness set that serves drifts.
-    directions : tuple of DirectionTorsion
-        x before y.
+    name : str
+        The line.
+    x, y : (n,) array
+        Under excitation in x and in y [kN].
+    both : (n,) array
+        Under both [kN].
     """
 
+    name: str
+    x: Array = field(metadata=agrees(rtol=1e-6, atol=1e-6))
+    y: Array = field(metadata=agrees(rtol=1e-6, atol=1e-6))
+    both: Array = field(metadata=agrees(rtol=1e-6, atol=1e-6))
+
+
+@dataclass(frozen=True, eq=False)
+class TorsionResult:
+    """Edges in each direction, and the lines.
+
+    Parameters
+    ----------
+    stiffness_forces, stiffness : str
+        Names of the stiffness sets that serve forces and drifts.
+    directions : tuple of DirectionTorsion
+        x before y.
+    lines : tuple of LineShears
+        In the order of the plan.
+    """
+
+    stiffness_forces: str
     stiffness: str
     directions: tuple[DirectionTorsion, ...]
+    lines: tuple[LineShears, ...]
 
 
-def run(options: TorsionOptions, storeys: Done, modes: Done, basis: Done, demand: Done, drift: Done) -> Outcome:
+def run(
+    options: TorsionOptions, storeys: Done, modes: Done, basis: Done, demand: Done, peaks: Done, drift: Done
+) -> Outcome:
     building: Storeys = storeys.inputs
     (model, *_) = models_of(building, building.drifts)
     floors, extent = floors_of_model(model.lateral), building.plan.extent if building.plan else None
     if extent is None:
-        raise ModelError(
-            "floors.csv", "no extent of the plan", "must be given: plan x from, plan x to, plan y from, plan y to"
-        )
-    given: Basis = basis.inputs
-    solved = modes.result.models[0].modes
+        allowed = "must be given: plan x from, plan x to, plan y from, plan y to"
+        raise ModelError("floors.csv", "no extent of the plan", allowed)
+    served, solved, given = modes.result.stiffness, modes.result.models[0].modes, basis.inputs
     keep = solved.omega.size
-    if modes.result.stiffness != building.drifts:
+    forcing = None
+    if served != building.drifts:
+        (stronger, *_) = models_of(building, served)
+        forcing = {d: _excited(given, stronger, solved, d, extent, options.accidental) for d in DIRECTIONS}
         solved = modes_of(model, keep)
+    drifting = {d: _excited(given, model, solved, d, extent, options.accidental) for d in DIRECTIONS}
     found: list[DirectionTorsion] = []
     lines: list[Line] = []
     cautions: list[Caution] = []
     for item, of in zip(drift.result.directions, demand.result.directions, strict=True):
         d, other = item.direction, DIRECTIONS[1 - DIRECTIONS.index(item.direction)]
-        nominal = _peaks(given, model, solved, d, d, extent)
-        away = shift(extent, d, options.accidental)
-        moved = [_shifted(given, model, floors, sign * away, keep, d, extent) for sign in (1.0, -1.0)]
+        nominal, *moved = (edges(*case, given.combination, d, extent) for case in drifting[d])
         largest = larger_of(nominal, *moved)
-        both = both_directions(largest, _peaks(given, model, solved, d, other, extent))
+        both = both_directions(largest, edges(*drifting[other][0], given.combination, d, extent))
         static = None
         if of.static is not None:
             force, _ = given.edition.distribution(of.facts, of.static)
@@ -131,33 +172,65 @@ def run(options: TorsionOptions, storeys: Done, modes: Done, basis: Done, demand
         found.append(result)
         lines += _lines(result, building.level, at)
         cautions += _cautions(result, building.level, at)
-    return Outcome(TorsionResult(building.drifts, tuple(found)), tuple(lines), tuple(cautions))
+    shears = _shears(given, forcing or drifting, peaks.result, drift.result)
+    return Outcome(TorsionResult(served, building.drifts, tuple(found), shears), tuple(lines), tuple(cautions))
 
 
-def _peaks(basis: Basis, model: Model, modes: Modes, along: str, excited: str, extent: Array) -> Edges:
-    """Edges along one direction under excitation in one."""
+Case = tuple[Floors, Array, Array]
+"""Floors, their modal displacements, the correlation of these."""
+
+
+def _excited(
+    basis: Basis, model: Model, modes: Modes, direction: str, extent: Array, share: float
+) -> tuple[Case, Case, Case]:
+    """Modal displacements under excitation in a direction: masses where they are, then shifted either way."""
+    floors, away = floors_of_model(model.lateral), shift(extent, direction, share)
+    keep = modes.omega.size
+    moved = [replace(model, lateral=shifted(floors, sign * away)) for sign in (1.0, -1.0)]
+    return (
+        _case(basis, model, modes, direction),
+        _case(basis, moved[0], modes_of(moved[0], keep), direction),
+        _case(basis, moved[1], modes_of(moved[1], keep), direction),
+    )
+
+
+def _case(basis: Basis, model: Model, modes: Modes, direction: str) -> Case:
     edition, period = basis.edition, modes.period
-    spectrum = partial(edition.ordinates, excited)
+    spectrum = partial(edition.ordinates, direction)
     rest = left_over(spectrum, basis.residual, float(period[-1]), period.size, model.size)
-    part = participation(model, modes, excited)
-    u, _, _ = responses(model, modes, part, spectrum(period), rest)
+    u, _, _ = responses(model, modes, participation(model, modes, direction), spectrum(period), rest)
     correlated = related(modes, basis.combination, edition.damping().value, rest is not None)
-    return edges(floors_of_model(model.lateral), u, correlated, basis.combination, along, extent)
+    return floors_of_model(model.lateral), u, correlated
 
 
-def _shifted(
-    basis: Basis, model: Model, floors: Floors, away: Array, keep: int, direction: str, extent: Array
-) -> Edges:
-    """Edges with the masses moved; what is asked stays where it was."""
-    moved = replace(model, lateral=shifted(floors, away))
-    return _peaks(basis, moved, modes_of(moved, keep), direction, direction, extent)
+def _shears(
+    basis: Basis, excited: Mapping[str, Sequence[Case]], peaks: PeaksResult, drift: DriftResult
+) -> tuple[LineShears, ...]:
+    """Design shears of every line."""
+    largest = {}
+    for item, peak in zip(drift.directions, peaks.directions, strict=True):
+        each = [line_shears(*case, basis.combination) for case in excited[item.direction]]
+        factor = peak.scaling.forces * _second_order(item)
+        largest[item.direction] = [
+            np.max(shears, axis=0) * factor[: shears[0].size] for shears in zip(*each, strict=True)
+        ]
+    names = [line.name for line in excited["x"][0][0].lines]
+    return tuple(
+        LineShears(name, x, y, with_the_other(x, y))
+        for name, x, y in zip(names, largest["x"], largest["y"], strict=True)
+    )
+
+
+def _second_order(item: Drifts) -> Array:
+    """Second-order factor of each storey, 1 where there is none."""
+    return np.ones(item.limit.size) if item.second_order is None else item.second_order.factor
 
 
 def _designed(
     item: Drifts, nominal: Edges, accidental: Edges, both: Edges, static: StaticTorsion | None
 ) -> DirectionTorsion:
     factor = item.factor.value * item.scale
-    amplified = np.ones(item.limit.size) if item.second_order is None else item.second_order.factor
+    amplified = _second_order(item)
     design = accidental.drift * factor * amplified[:, None]
     share = design / item.limit[:, None]
     worst = np.unravel_index(int(np.argmax(share)), share.shape)
@@ -223,10 +296,11 @@ def _cautions(item: DirectionTorsion, levels: tuple[str, ...], at: str) -> list[
 
 
 METHOD = r"""
-Displacements and drifts at the edges are combined from their own modal values. Accidental eccentricities move the masses
-of all levels to one side and to the other, square to the excitation, and the modes are found anew; the largest of the
-three counts. Excitation in the other direction adds 30 % of its own edge values, or the other way round (EN 1998-1:2004,
-4.3.3.5.1(3), from memory). Beside it stand static forces at the same eccentricities: the ratio of edge drifts and
+Displacements and drifts at the edges, and storey shears of the lines, are combined from their own modal values.
+Accidental eccentricities move the masses of all levels to one side and to the other, square to the excitation, and the
+modes are found anew; the largest of the three counts. Shears are scaled as the storey shears are. Excitation in the other
+direction adds 30 % of its own values, or the other way round (EN 1998-1:2004, 4.3.3.5.1(3), from memory). Beside it stand
+static forces at the same eccentricities: the ratio of edge drifts and
 
 $$A_x = \left(\frac{\delta_{max}}{1.2\,\delta_{avg}}\right)^{2}$$
 
@@ -239,7 +313,7 @@ TORSION = Step(
     "Edges and accidental torsion",
     TorsionOptions,
     TorsionResult,
-    ("storeys", "modes", "basis", "demand", "drift"),
+    ("storeys", "modes", "basis", "demand", "peaks", "drift"),
     run,
     METHOD,
 )

@@ -82,6 +82,8 @@ def test_edges(job, rendered):
     found = holds(rendered(built, "torsion"), built.payloads())
     at = "/torsion/result/directions/1"
     assert {f"{at}/design/0/1", f"{at}/both/drift/1/0", f"{at}/static/amplification/1", f"{at}/share/0/0"} <= found
+    assert {"/torsion/result/lines/0/x/1", "/torsion/result/lines/1/y/0", "/torsion/result/lines/3/both/0"} <= found
+    assert "/torsion/result/lines/1/y/1" not in found  # line B ends below the roof
 
 
 @pytest.mark.parametrize("normalise", ["largest", "roof", "mass"])

@@ -244,3 +244,30 @@ def test_edges_ask_for_the_plans_extent(with_plan, monkeypatch):
     payload = with_plan("EN").payload("torsion")
     assert payload["state"] == "refused"
     assert payload["why"].startswith("floors.csv: no extent of the plan; must be given")
+
+
+def test_lines_share_the_storey_shear_of_a_symmetric_plan(with_plan):
+    # along x two equal lines take half each; along y they take it by their stiffness; nothing square to it (statics)
+    job = with_plan("7-16", accidental=0.0)
+    shears = {line["name"]: line for line in result(job, "torsion")["lines"]}
+    x, y = (item["shear"] for item in result(job, "actions")["directions"])
+    for name in ("1", "2"):
+        np.testing.assert_allclose(shears[name]["x"], np.array(x) / 2.0, rtol=1e-6)
+        np.testing.assert_allclose(shears[name]["y"], 0.0, atol=1e-6)
+    for name in ("A", "B"):
+        np.testing.assert_allclose(shears[name]["y"], np.array(y) / 2.0, rtol=1e-6)
+        np.testing.assert_allclose(shears[name]["both"], shears[name]["y"], rtol=1e-6)
+
+
+def test_masses_shifted_load_every_line_more(with_plan):
+    centred, shifted = ({line["name"]: np.array(line["both"]) for line in result(with_plan(
+        "EN", accidental=e, name=f"floors {e:g}", **ECCENTRIC), "torsion")["lines"]} for e in (0.0, 0.05))  # fmt: skip
+    for name, shear in centred.items():
+        assert (shifted[name] >= shear * (1.0 - 1e-9)).all()
+    assert (shifted["B"] > 1.02 * centred["B"]).all()
+
+
+def test_lines_hold_what_the_storeys_hold_with_gravity_in_the_stiffness(with_plan):
+    job = with_plan("7-16", IN_STIFFNESS, accidental=0.0)
+    shears = {line["name"]: np.array(line["x"]) for line in result(job, "torsion")["lines"]}
+    np.testing.assert_allclose(shears["1"] + shears["2"], result(job, "actions")["directions"][0]["shear"], rtol=1e-6)
