@@ -79,7 +79,7 @@ def test_new_refuses_what_is_there(run, tmp_path):
 
 def test_new_refuses_a_template_that_is_not_there(run, tmp_path):
     said = refused(run("new", "tower", "--template", "curved"))
-    assert said == 'no template "curved"; must be floors or planar or seismic or walls'
+    assert said == 'no template "curved"; must be eccentric-plan or planar or seismic or walls'
     assert not (tmp_path / "tower").exists()
 
 

@@ -13,9 +13,9 @@ import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.combine import Rule, combined
-from calcsheet.core.floors import DIRECTIONS, Floors
 from calcsheet.core.plan import amplification, displaced, point_drifts, static
 from calcsheet.core.planar import above
+from calcsheet.core.rigidfloors import DIRECTIONS, Floors
 
 EDGE = agrees(rtol=1e-6, atol=1e-9)
 SECOND = 0.3

@@ -9,9 +9,9 @@ import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, positive
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import DIRECTIONS, Floors, LineOfResistance, floors_of
 from calcsheet.core.lateral import Lateral
 from calcsheet.core.planar import above
+from calcsheet.core.rigidfloors import DIRECTIONS, Floors, LineOfResistance, floors_of
 from calcsheet.core.second_order import Critical
 from calcsheet.core.springs import BaseSprings
 from calcsheet.core.standing import Standing, critical_load, standing

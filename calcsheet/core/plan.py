@@ -17,9 +17,9 @@ from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.chain import Chain
 from calcsheet.core.codes.edition import PlanFacts
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import Floors
 from calcsheet.core.model import Model
 from calcsheet.core.modes import Modes
+from calcsheet.core.rigidfloors import Floors
 
 
 @dataclass(frozen=True, eq=False)

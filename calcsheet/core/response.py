@@ -10,11 +10,11 @@ import numpy as np
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.codes.edition import Facts
 from calcsheet.core.combine import Rule, combined, correlation
-from calcsheet.core.floors import Floors
 from calcsheet.core.model import Model
 from calcsheet.core.modes import Modes
 from calcsheet.core.peaks import Peaks
 from calcsheet.core.plan import plan_facts
+from calcsheet.core.rigidfloors import Floors
 from calcsheet.core.totals import GRAVITY
 
 PEAK = agrees(rtol=1e-6, atol=1e-9)

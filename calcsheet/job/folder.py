@@ -13,7 +13,7 @@ from calcsheet.job import storeyfile, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
 from calcsheet.job.errors import InputError
-from calcsheet.job.planfile import FLOORS, LINES, read_lines
+from calcsheet.job.planfile import LINES, PLAN, read_lines
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
@@ -155,7 +155,7 @@ class JobFolder:
         if card.model.lateral is not None:
             return {}
         why = f"must be there, since model.kind is {shown(card.model.kind)} ({job_card.FILE})"
-        tables = {name: self._table(name, why, stamps) for name in (LINES, FLOORS)}
+        tables = {name: self._table(name, why, stamps) for name in (LINES, PLAN)}
         for row in read_lines(tables[LINES])[0]:
             if row.file:
                 if not re.fullmatch(FILE_NAME, row.file):

@@ -1,4 +1,4 @@
-"""The plan of rigid floors: floors.csv, a row a level, and lines.csv, a row a line of resistance."""
+"""The plan of rigid floors: plan.csv, a row a level, and lines.csv, a row a line of resistance."""
 
 from __future__ import annotations
 
@@ -17,7 +17,7 @@ from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
 from calcsheet.units import Unit
 
-FLOORS, LINES = "floors.csv", "lines.csv"
+PLAN, LINES = "plan.csv", "lines.csv"
 CENTRE = ("centre of mass x", "centre of mass y")
 GYRATION = "radius of gyration"
 EXTENT = ("plan x from", "plan x to", "plan y from", "plan y to")

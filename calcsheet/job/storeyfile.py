@@ -29,7 +29,7 @@ from calcsheet.job.headings import (
     read_headings,
 )
 from calcsheet.job.numbers import decimal_mark
-from calcsheet.job.planfile import FLOORS, LINES, LineRow, laterals_of, read_lines, read_plan
+from calcsheet.job.planfile import LINES, PLAN, LineRow, laterals_of, read_lines, read_plan
 from calcsheet.job.resisting import Resisting
 from calcsheet.job.table import TextTable
 from calcsheet.units import STANDARD_GRAVITY, display
@@ -325,7 +325,7 @@ class _Reader:
         n = sum(not self.is_above(row) for row in self.rows)
         plan = None
         if self.lines:
-            plan, problems = read_plan(matrices[FLOORS], self.lines, levels[n:])
+            plan, problems = read_plan(matrices[PLAN], self.lines, levels[n:])
             self.problems += [CellProblem(None, None, str(error)) for error in problems]
 
         def column(key: str) -> np.ndarray | None:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 from calcsheet.job.basis import spectrum_files
 from calcsheet.job.card import Card
-from calcsheet.job.planfile import FLOORS, LINES
+from calcsheet.job.planfile import LINES, PLAN
 from calcsheet.steps.step import Caution, Outcome, Step, plain
 
 GENERAL = (
@@ -83,7 +83,7 @@ def _general(card: Card) -> list[Caution]:
 
 def _tables(card: Card) -> tuple[str, ...]:
     """The files whose origin is to be stated."""
-    plan = (LINES, FLOORS) if card.model.lateral is None else ()
+    plan = (LINES, PLAN) if card.model.lateral is None else ()
     return ("storeys.csv", *plan, *card.model.files.values(), *spectrum_files(card).values())
 
 

@@ -8,9 +8,9 @@ import numpy as np
 
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import Floors
 from calcsheet.core.model import models_of
 from calcsheet.core.plan import Centres, Uncoupled, centres, direction_shares, uncoupled
+from calcsheet.core.rigidfloors import Floors
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step, plain
 
 COUPLED = 0.1

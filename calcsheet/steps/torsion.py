@@ -23,13 +23,13 @@ from calcsheet.core.edges import (
     with_the_other,
 )
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import DIRECTIONS, Floors
 from calcsheet.core.model import Model, models_of
 from calcsheet.core.modes import Modes, modes_of
 from calcsheet.core.participation import participation
 from calcsheet.core.peaks import responses
 from calcsheet.core.plan import shifted
 from calcsheet.core.response import left_over, related
+from calcsheet.core.rigidfloors import DIRECTIONS, Floors
 from calcsheet.core.storeys import Storeys
 from calcsheet.steps.drift import DriftResult
 from calcsheet.steps.peaks import PeaksResult
@@ -146,7 +146,7 @@ def run(
     floors, extent = floors_of_model(model.lateral), building.plan.extent if building.plan else None
     if extent is None:
         allowed = "must be given: plan x from, plan x to, plan y from, plan y to"
-        raise ModelError("floors.csv", "no extent of the plan", allowed)
+        raise ModelError("plan.csv", "no extent of the plan", allowed)
     served, solved, given = modes.result.stiffness, modes.result.models[0].modes, basis.inputs
     keep = solved.omega.size
     forcing = None

@@ -9,7 +9,6 @@ import pytest
 
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
-from calcsheet.core.floors import Floors, LineOfResistance
 from calcsheet.core.model import spatial_model
 from calcsheet.core.modes import modes_of
 from calcsheet.core.plan import (
@@ -22,6 +21,7 @@ from calcsheet.core.plan import (
     static,
     uncoupled,
 )
+from calcsheet.core.rigidfloors import Floors, LineOfResistance
 from calcsheet.core.stick import Stick
 
 UP = np.pi / 2.0

@@ -41,7 +41,7 @@ def of_plan(read):
     """The storey table of rigid floors, pieces of its four tables replaced."""
 
     def build(*changes: tuple[str, str, str], on: tuple[tuple[str, str], ...] = ()):
-        files = {"storeys.csv": STOREYS, "floors.csv": FLOORS, "lines.csv": LINES, "core.csv": CORE}
+        files = {"storeys.csv": STOREYS, "plan.csv": FLOORS, "lines.csv": LINES, "core.csv": CORE}
         for file, old, new in changes:
             assert old in files[file]
             files[file] = files[file].replace(old, new, 1)
@@ -113,19 +113,19 @@ def test_a_files_unit_says_what_it_holds(of_plan, unit, kind):
             "A,0,,90,",
             'lines.csv, line "A": y is blank; must be a number in m, a finite number',
         ),
-        ("floors.csv", "2,9.0", "3,9.0", 'floors.csv, level "2": no row; must have a row for each level of the model'),
-        ("floors.csv", "6.0,6.2", "6.0,0", 'floors.csv, level "2": radius of gyration 0 m; must be above 0'),
+        ("plan.csv", "2,9.0", "3,9.0", 'plan.csv, level "2": no row; must have a row for each level of the model'),
+        ("plan.csv", "6.0,6.2", "6.0,0", 'plan.csv, level "2": radius of gyration 0 m; must be above 0'),
         (
-            "floors.csv",
+            "plan.csv",
             "plan y to [m]",
             "depth [m]",
-            'floors.csv: no column "plan y to"; must have all four columns of the plan\'s extent, or none',
+            'plan.csv: no column "plan y to"; must have all four columns of the plan\'s extent, or none',
         ),
         (
-            "floors.csv",
+            "plan.csv",
             "6.2,0,18,0,12\n1",
             "6.2,18,0,0,12\n1",
-            'floors.csv, level "2": plan from 18 to 0 m in x and from 0 to 12 m in y; must run upwards in x and in y',
+            'plan.csv, level "2": plan from 18 to 0 m in x and from 0 to 12 m in y; must run upwards in x and in y',
         ),
         (
             "storeys.csv",

@@ -11,10 +11,10 @@ from hypothesis import strategies as st
 from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.evidence import evidence_of_modes, evidence_of_participation
-from calcsheet.core.floors import Floors, LineOfResistance
 from calcsheet.core.model import Model, spatial_model
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
+from calcsheet.core.rigidfloors import Floors, LineOfResistance
 from calcsheet.core.springs import BaseSprings
 from calcsheet.core.standing import critical_load, standing
 from calcsheet.core.stick import Stick

@@ -11,11 +11,11 @@ import pytest
 from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.evidence import evidence_of_modes
-from calcsheet.core.floors import Floors, LineOfResistance
 from calcsheet.core.model import spatial_model
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
 from calcsheet.core.plan import centres, direction_shares, uncoupled
+from calcsheet.core.rigidfloors import Floors, LineOfResistance
 
 
 @pytest.fixture

@@ -75,7 +75,7 @@ def test_general_cautions_fit_the_model(card_with):
     assert "without torsion" in texts(planar)["rigid-floors"]
     assert "analysed together" in texts(floors)["rigid-floors"]
     assert "torsion of the plan" not in texts(floors)["left-out"]
-    assert {"no-origin-lines.csv", "no-origin-floors.csv"} <= texts(floors).keys()
+    assert {"no-origin-lines.csv", "no-origin-plan.csv"} <= texts(floors).keys()
     assert list(texts(floors))[: len(GENERAL)] == [c.key for c in GENERAL]
 
 

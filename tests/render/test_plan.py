@@ -17,7 +17,7 @@ Roof,3.1,180,1900,38000,,60000
 1,4.2,255,2700,50000,24000,80000
 """
 FILES = {
-    "floors.csv": "level,centre of mass x [m],centre of mass y [m],radius of gyration [m],plan x from [m],plan x to [m],"
+    "plan.csv": "level,centre of mass x [m],centre of mass y [m],radius of gyration [m],plan x from [m],plan x to [m],"
     "plan y from [m],plan y to [m]\nRoof,8,6,6.1,0,18,0,12\n1,8.5,6,6.1,0,18,0,12\n",
     "lines.csv": "line,x [m],y [m],direction [°],file\nA,0,0,90,\nB,18,0,90,\n1,0,0,0,\nC,3,12,-15,c.csv\n",
     "c.csv": "[kN/m],Roof,1\nRoof,50000,-50000\n1,-50000,120000\n",

@@ -41,7 +41,7 @@ def floors_job(job_folder, demand_job, monkeypatch):
     """Opens a job of rigid floors, or of the planar model that a symmetric plan is."""
 
     def build(basis, *changes, a=A, b=B, x=9.0, lines=LINES, name="floors", keep=None):
-        files = {"floors.csv": FLOORS.format(x=x), "lines.csv": lines}
+        files = {"plan.csv": FLOORS.format(x=x), "lines.csv": lines}
         return demand_job(
             basis, *changes, card=CARD, storeys=STOREYS.format(a=a, b=b), name=name, more=files, keep=keep
         )
@@ -243,7 +243,7 @@ def test_edges_ask_for_the_plans_extent(with_plan, monkeypatch):
     monkeypatch.setitem(globals(), "FLOORS", bare)
     payload = with_plan("EN").payload("torsion")
     assert payload["state"] == "refused"
-    assert payload["why"].startswith("floors.csv: no extent of the plan; must be given")
+    assert payload["why"].startswith("plan.csv: no extent of the plan; must be given")
 
 
 def test_lines_share_the_storey_shear_of_a_symmetric_plan(with_plan):

@@ -12,10 +12,10 @@ from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.codes.asce7_16 import ASCE716
 from calcsheet.core.evidence import evidence_of_modes, evidence_of_participation
-from calcsheet.core.floors import LineOfResistance, SparseFloors, floors_of
 from calcsheet.core.model import Model, spatial_model
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
+from calcsheet.core.rigidfloors import LineOfResistance, SparseFloors, floors_of
 from calcsheet.core.storeys import Plan, PlanLine, StiffnessSet, Storeys
 from calcsheet.steps.actions import ActionsOptions
 from calcsheet.steps.demand import DemandOptions

@@ -7,16 +7,16 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from calcsheet.core import floors as floors_module
+from calcsheet.core import rigidfloors
 from calcsheet.core.bounds import bounds
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.evidence import evidence_of_modes, evidence_of_participation
-from calcsheet.core.floors import DENSE_UP_TO, Floors, LineOfResistance, SparseFloors, floors_of
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.core.model import spatial_model
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
+from calcsheet.core.rigidfloors import DENSE_UP_TO, Floors, LineOfResistance, SparseFloors, floors_of
 from calcsheet.core.springs import BaseSprings
 from calcsheet.core.standing import standing
 from calcsheet.core.stick import Stick
@@ -280,7 +280,7 @@ def test_no_lines_at_all():
 
 @pytest.mark.parametrize("threshold", [DENSE_UP_TO, 3], ids=["dense", "sparse"])
 def test_a_building_that_buckles_is_named(monkeypatch, threshold):
-    monkeypatch.setattr(floors_module, "DENSE_UP_TO", threshold)
+    monkeypatch.setattr(rigidfloors, "DENSE_UP_TO", threshold)
     with pytest.raises(ModelError) as error:
         plan(gravity=200.0 * GRAVITY).displacement(np.zeros((9, 1)))
     assert 'storey below level "1": gravity load 2.64e+06 kN with an elastic critical load factor of' in str(
