@@ -10,34 +10,42 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from calcsheet.blocks import (
+        Cautions,
         DemandSpectrum,
         DriftCheck,
         EdgeDrifts,
         FloorLines,
         JobCard,
+        MassTakeoff,
         ModalTable,
         ModePlot,
         ModeSolver,
         ParticipationSummary,
         StaticComparison,
+        StiffnessTakeoff,
         StoreyActions,
         StoreyTable,
+        WhatChanged,
     )
 
 __version__ = "0.1.0"
 __all__ = [
+    "Cautions",
     "DemandSpectrum",
     "DriftCheck",
     "EdgeDrifts",
     "FloorLines",
     "JobCard",
+    "MassTakeoff",
     "ModalTable",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
     "StaticComparison",
+    "StiffnessTakeoff",
     "StoreyActions",
     "StoreyTable",
+    "WhatChanged",
     "__version__",
 ]
 

@@ -81,6 +81,42 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
     "angle": (Unit("°", math.pi / 180.0), Unit("deg", math.pi / 180.0), Unit("rad", 1.0)),
     "shear stiffness": (*_FORCE, Unit("GN", 1e6)),
     "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
+    "pressure": (
+        Unit("kN/m²", 1.0),
+        Unit("kPa", 1.0),
+        Unit("N/m²", 0.001),
+        Unit("psf", POUND_FORCE / FOOT**2),
+        Unit("lbf/ft²", POUND_FORCE / FOOT**2),
+        Unit("kip/ft²", KIP / FOOT**2),
+    ),
+    "unit weight": (
+        Unit("kN/m³", 1.0),
+        Unit("pcf", POUND_FORCE / FOOT**3),
+        Unit("lbf/ft³", POUND_FORCE / FOOT**3),
+    ),
+    "section area": (
+        Unit("m²", 1.0),
+        Unit("cm²", 1e-4),
+        Unit("mm²", 1e-6),
+        Unit("in²", INCH**2),
+        Unit("ft²", FOOT**2),
+    ),
+    "second moment": (
+        Unit("m⁴", 1.0),
+        Unit("cm⁴", 1e-8),
+        Unit("mm⁴", 1e-12),
+        Unit("10⁶ mm⁴", 1e-6),
+        Unit("in⁴", INCH**4),
+        Unit("ft⁴", FOOT**4),
+    ),
+    "modulus": (
+        Unit("GPa", 1e6),
+        Unit("MPa", 1e3),
+        Unit("kN/m²", 1.0),
+        Unit("N/mm²", 1e3),
+        Unit("ksi", KIP / INCH**2),
+        Unit("psi", POUND_FORCE / INCH**2),
+    ),
     "period": (Unit("s", 1.0),),
     "ordinate": (Unit("g", 1.0), Unit("m/s²", 1.0 / STANDARD_GRAVITY)),
     "stiffness": (
@@ -117,11 +153,19 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "square metres": _pair(Display("m²", 1.0, 4)),
     "feet": _pair(Display("ft", FOOT, 4)),
     "area": _pair(Display("m²", 1.0, 4), Display("ft²", FOOT**2, 4)),
+    "member length": _pair(Display("m", 1.0, 4), Display("in", INCH, 4)),
+    "section size": _pair(Display("mm", 0.001, 4), Display("in", INCH, 4)),
+    "section area": _pair(Display("mm²", 1e-6, 4), Display("in²", INCH**2, 4)),
+    "second moment": _pair(Display("·10⁶ mm⁴", 1e-6, 4), Display("in⁴", INCH**4, 4)),
+    "modulus": _pair(Display("GPa", 1e6, 4), Display("ksi", KIP / INCH**2, 4)),
+    "joint stiffness": _pair(Display("kN·m", 1.0, 4), Display("kip·in", KIP * INCH, 4)),
     "displacement": _pair(Display("mm", 0.001, 3), Display("in", INCH, 3)),
     "mass": _pair(Display("t", 1.0, 4), Display("kip·s²/ft", KIP / FOOT, 4)),
     "weight": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "force": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
     "pressure": _pair(Display("kN/m²", 1.0, 3), Display("psf", POUND_FORCE / FOOT**2, 3)),
+    "area load": _pair(Display("kN/m²", 1.0, 4), Display("psf", POUND_FORCE / FOOT**2, 4)),
+    "unit weight": _pair(Display("kN/m³", 1.0, 4), Display("pcf", POUND_FORCE / FOOT**3, 4)),
     "stiffness": _pair(Display("kN/m", 1.0, 4), Display("kip/in", KIP / INCH, 4)),
     "flexibility": _pair(Display("mm/kN", 0.001, 4), Display("in/kip", INCH / KIP, 4)),
     "bending stiffness": _pair(Display("kN·m²", 1.0, 4), Display("kip·ft²", KIP * FOOT**2, 4)),
@@ -136,6 +180,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "circular frequency": _pair(Display("rad/s", 1.0, 4)),
     "share": _pair(Display("%", 0.01, 3)),
     "ratio": _pair(Display("", 1.0, 4)),
+    "count": _pair(Display("", 1.0, 4)),
     "correlation": _pair(Display("", 1.0, 4)),
     "coefficient": _pair(Display("", 1.0, 4)),
     "modal energy": _pair(Display("s⁻²", 1.0, 4)),
@@ -145,6 +190,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
 }
 """How each quantity is shown, by system.
 
+The units of members are such that E I/h³ and E A/h come out in those of a stiffness: GPa · 10⁶ mm⁴ / m³ = kN/m.
 "metres", "square metres" and "feet" are sizes that a code's empirical formula asks for in that unit; the last two are
 Γ and ψ of mass-normalised modes.
 """
@@ -187,8 +233,11 @@ def allowed_units(quantity: str) -> str:
     return f"{', '.join(most)} or {last}" if most else last
 
 
+_POWERS = str.maketrans("²³⁴⁶", "2346", "^")
+
+
 def _spelling(text: str) -> str:
     """One spelling of a unit's many: superscripts, signs of multiplication and plurals levelled."""
-    text = re.sub(r"\s*/\s*", "/", text.strip().replace("²", "2").replace("^", ""))
+    text = re.sub(r"\s*/\s*", "/", text.strip().translate(_POWERS))
     text = re.sub(r"[\s·⋅∙*×.-]+", "·", text)
     return "/".join("·".join(_SAME.get(name, name) for name in part.split("·")) for part in text.split("/"))

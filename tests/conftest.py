@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import io
+import json
 import os
 from collections.abc import Callable, Iterator, Sequence
 from html.parser import HTMLParser
@@ -61,7 +62,7 @@ y = "Along grids A to C."
 kind = "storey chain"
 [stiffness.gross]
 factor = 1.0
-ground = "gross sections"
+ground = "steel, gross sections"
 [stiffness.cracked]
 factor_x = 0.6
 factor_y = 0.5
@@ -98,6 +99,59 @@ Roof,62.5,310.5,505,560
 2,16.5,561,980,905
 Plaza,0,870,,
 """
+MEMBERS = {
+    "SI": """\
+member,storeys,kind,section,direction,count,acts as,height [m],run [m],stiffness factor,shear,shear factor,beam,beam below,\
+spans [m],beam factor,ground
+Inner,1 to 3,column,C55,x,6,beams,,,0.7,,,B60,,6.2 + 7.4,0.35,cracked
+Inner upper,4 to Roof,column,C40,x,6,beams,,,0.7,,,B60,B70,6.2 + 7.4,0.35,cracked
+Outer,all,column,C40,x,4,beams on pinned base,,,0.7,yes,0.7,B60,,6.2,0.35,cracked
+Across,all,column,C40,y,10,fixed-fixed,2.7,,0.7,,,,,,,cracked
+Posts,all,column,Post,y,2,fixed-pinned,,,,,,,,,,
+Core,all,wall,W3,y,2,cantilever,,,0.5,,0.4,,,,,cracked
+Pier,1,wall,W2,x,1,fixed-fixed,,,0.5,,0.5,,,,,cracked
+Rods,2 to Roof,brace,Rod,x,2,pair in tension only,,5.4,,,,,,,,
+Ties,1,brace,Rod,35,1,pair,,5.4,,,,,,,,
+Infill,2,infill strut,Panel,x,3,,,5.1,,,,,,,,
+""",
+    "US": """\
+member,storeys,kind,section,direction,count,acts as,run [ft],stiffness factor,beam,spans [ft],beam factor,ground
+Inner,all,column,C22,x,6,beams,,0.7,B24,20.5 + 24.25,0.35,cracked
+Across,all,column,C22,y,6,fixed-fixed,,0.7,,,,cracked
+Core,all,wall,W10,y,1,cantilever,,0.5,,,,cracked
+Rods,all,brace,Rod,x,1,pair,18,,,,,
+""",
+}
+SECTIONS = {
+    "SI": """\
+section,material,shape,depth [mm],width [mm],thickness [mm],area [cm²],second moment major [cm⁴],shear area [cm²]
+C55,Concrete,rectangle,550,450,,,,
+C40,Concrete,rectangle,400,400,,,,
+B60,Concrete,rectangle,600,300,,,,
+B70,Concrete,rectangle,700,300,,,,
+W3,Concrete,rectangle,3200,220,,,,
+W2,Concrete,own,,,,4500,1.55e7,3600
+Post,Steel,pipe,219.1,,8,,,
+Rod,Steel,circle,32,,,,,
+Panel,Brick,rectangle,850,115,,,,
+""",
+    "US": """\
+section,material,shape,depth [in],width [in],area [in²]
+C22,Concrete,rectangle,22,22,
+B24,Concrete,rectangle,24,12,
+W10,Concrete,rectangle,120,10,
+Rod,Steel,own,,,1.75
+""",
+}
+MATERIALS = {
+    "SI": """\
+material,kind,modulus [GPa],Poisson ratio
+Concrete,concrete,31.5,0.2
+Steel,steel,210,0.3
+Brick,masonry,4.2,
+""",
+    "US": "material,kind,modulus [ksi],shear modulus [ksi]\nConcrete,concrete,3800,1580\nSteel,steel,29000,\n",
+}
 WORDS = "# Purpose\n\nModes of the frames, $T_1 = 2\\pi/\\omega_1$.\n\n## Limits\n\nNo torsion."
 TWO_STOREYS = """\
 level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m],gravity load [kN]
@@ -187,6 +241,30 @@ def job_folder(tmp_path: Path) -> Callable[..., Path]:
         for file, text in (files or {}).items():
             (folder / file).write_text(text, encoding="utf-8")
         return folder
+
+    return write
+
+
+@pytest.fixture
+def members_folder(job_folder: Callable[..., Path]) -> Callable[..., Path]:
+    """Writes a job folder with a stiffness take-off, pieces of members.csv replaced; the storey table takes it, if it `feeds`."""
+
+    def write(
+        members: Sequence[tuple[str, str]] = (),
+        *,
+        card: Sequence[tuple[str, str]] = (),
+        us: bool = False,
+        feeds: bool = True,
+        **how: Any,
+    ) -> Path:
+        system = "US" if us else "SI"
+        files = {
+            "members.csv": changed(MEMBERS[system], members),
+            "sections.csv": SECTIONS[system],
+            "materials.csv": MATERIALS[system],
+        }
+        named = (('kind = "storey chain"', 'kind = "storey chain"\nmembers = "members.csv"'),) if feeds else ()
+        return job_folder((*named, *card), us=us, files=files, **how)
 
     return write
 
@@ -510,5 +588,21 @@ def planar() -> Callable[..., Model]:
             influence=np.ones((1, n)),
             lateral=lateral if hasattr(lateral, "kind") else Chain(np.asarray(lateral, dtype=float)),
         )
+
+    return build
+
+
+@pytest.fixture(scope="session")
+def plain_record() -> Callable[..., dict[str, Any]]:
+    """What an issued record holds of a job: its payloads as JSON has them, status and signatures as asked for."""
+
+    def build(job: Job, status: str = "FOR CHECKING", **parts: Any) -> dict[str, Any]:
+        held = {
+            "format": 2,
+            "status": status,
+            "fingerprints": {"inputs": "ab" * 32, "results": "cd" * 32},
+            "signatures": [],
+        }
+        return json.loads(json.dumps({**held, "payloads": job.payloads(), **parts}))
 
     return build

@@ -2,15 +2,20 @@
 
 from __future__ import annotations
 
+import csv
+import datetime as dt
 import json
+import shutil
 import tomllib
+from pathlib import Path
 
 import nbformat
+import openpyxl
 import pytest
 from click.testing import CliRunner
 
 from calcsheet.cli import main
-from calcsheet.record import issue as issuing
+from calcsheet.record import place
 from calcsheet.record.pdf import CHOICE
 
 
@@ -44,7 +49,7 @@ def refused(result) -> str:
 
 
 def test_help_has_examples(run):
-    for command in ([], ["new"], ["issue"], ["demo"]):
+    for command in ([], ["new"], ["import"], ["export"], ["issue"], ["demo"]):
         result = run(*command, "--help")
         assert result.exit_code == 0
         assert "Examples:\n" in result.stdout
@@ -170,7 +175,7 @@ def test_a_folder_that_cannot_be_written(run, folder, monkeypatch):
     def denied(*_, **__):
         raise PermissionError(13, "Permission denied", str(folder / "issued"))
 
-    monkeypatch.setattr(issuing.tempfile, "mkdtemp", denied)  # a superuser may write anywhere
+    monkeypatch.setattr(place.tempfile, "mkdtemp", denied)  # a superuser may write anywhere
     assert refused(run("issue", folder, "--to", "html")) == f"Permission denied: {folder / 'issued'}"
 
 
@@ -208,3 +213,119 @@ def test_the_demo_is_copied_issued_and_shown_where(run, quick_kernel, tmp_path, 
         "job.toml",
         "storeys.csv",
     }
+
+
+@pytest.fixture
+def masses(tmp_path):
+    """A workbook of masses under headings of another office."""
+    book = openpyxl.Workbook()
+    for row in (
+        ["Floor", "Seismic mass"],
+        ["Roof", 150.5],
+        [4, 240],
+        [3, 251],
+        [2, 252],
+        [1, 270],
+        [],
+        ["Sum", 1163.5],
+    ):
+        book.active.append(row)
+    book.save(tmp_path / "masses.xlsx")
+    return tmp_path / "masses.xlsx"
+
+
+def test_masses_are_imported(run, job_folder, masses):
+    folder = job_folder()
+    result = run("import", folder, masses, "--map", "Floor=level", "--map", "Seismic mass=mass [t]")
+    assert result.exit_code == 0, result.output
+    assert result.stdout == ('storeys.csv: mass [t] of 5 levels from masses.xlsx, sheet "Sheet"; 5 cells changed.\n')
+    assert result.stderr == 'Note: masses.xlsx, sheet "Sheet", rows 8 to 8: below a blank row, left out.\n'
+    assert "Roof,2.95,150.5,88000" in (folder / "storeys.csv").read_text(encoding="utf-8")
+    again = run("import", folder, masses)  # the headings are known by now
+    assert again.stdout.endswith("; 0 cells changed.\n")
+
+
+def test_tables_are_exported(run, job_folder, tmp_path):
+    folder = job_folder()
+    result = run("export", folder, "out.xlsx")
+    assert (result.exit_code, result.stdout) == (0, "out.xlsx: sheets storeys.\n")
+    assert openpyxl.load_workbook(tmp_path / "out.xlsx")["storeys"]["C2"].value == 141.5
+    assert refused(run("export", folder, "out.xlsx")) == "out.xlsx: is there already; name a new file"
+
+
+@pytest.mark.parametrize(
+    ("more", "sentence"),
+    [
+        (["--map", "Floor"], '--map: got "Floor"; must be like "Seismic mass=mass [t]"'),
+        (["--map", "Floor="], '--map: got "Floor="; must be like "Seismic mass=mass [t]"'),
+        (["--sheet", "B"], 'masses.xlsx: no sheet "B"; must be one of "Sheet"'),
+        ([], 'masses.xlsx, sheet "Sheet": no row with the heading "level" and another that is known in the first 50 rows; '
+             "name the file's headings with --map"),
+    ],
+)  # fmt: skip
+def test_an_import_refused_changes_nothing(run, job_folder, masses, more, sentence):
+    folder = job_folder()
+    before = {path.name: path.read_bytes() for path in folder.iterdir()}
+    assert refused(run("import", folder, masses, *more)) == sentence
+    assert {path.name: path.read_bytes() for path in folder.iterdir()} == before
+
+
+def test_a_folder_without_a_job_is_refused(run, masses, tmp_path):
+    assert refused(run("import", tmp_path, masses)).startswith("no job.toml in ")
+    assert refused(run("export", tmp_path, "out.xlsx")).startswith("no job.toml in ")
+
+
+# ---- comments, register, tables --------------------------------------------------------------------------------------
+
+QUAY = Path(__file__).parents[1] / "example_notebooks" / "alder-quay"
+
+
+@pytest.fixture
+def quay(tmp_path):
+    """A job of the examples with its issued records."""
+    return Path(shutil.copytree(QUAY, tmp_path / "quay"))
+
+
+def test_comments_are_raised_answered_closed_and_listed(run, quay):
+    author = tomllib.loads((quay / "job.toml").read_text(encoding="utf-8"))["people"]["prepared"]["name"]
+    assert run("comment", quay).stdout.startswith("No comments on revision ")
+    asked = run("comment", quay, "Which edition?", "--by", "T. Adeyemi", "--where", "Demand", "--date", "2026-04-02")
+    assert asked.exit_code == 0
+    assert "Demand, T. Adeyemi, 2026-04-02: Which edition?\n    open\n" in asked.stdout
+    assert run("comment", quay, "--reply", 1, "That of 2016", "--by", author, "--date", "2026-04-03").exit_code == 0
+    assert f"{author}, who prepared the calculation, may not close" in refused(
+        run("comment", quay, "--close", 1, "--by", author)
+    )
+    assert run("comment", quay, "--close", 1, "--by", "T. Adeyemi", "--date", "2026-04-05").exit_code == 0
+    listed = run("comment", quay).stdout.splitlines()
+    assert listed[1:] == [f"    reply, {author}, 2026-04-03: That of 2016", "    closed by T. Adeyemi, 2026-04-05"]
+    assert refused(run("comment", quay / "none", "x")) == f"no {quay / 'none'}; name a job folder or a record's file"
+
+
+def test_a_comment_today(run, quay):
+    run("comment", quay, "Why?", "--by", "T. Adeyemi")
+    with (quay / "comments.csv").open(encoding="utf-8-sig", newline="") as file:
+        (row,) = csv.DictReader(file)
+    assert abs((dt.date.fromisoformat(row["date"]) - dt.date.today()).days) <= 1  # it may be midnight
+
+
+def test_the_register_is_rebuilt_and_printed(run, quay):
+    (quay / "issued" / "register.csv").unlink(missing_ok=True)
+    result = run("register", quay)
+    assert result.exit_code == 0
+    *rows, written = result.stdout.splitlines()
+    assert written == f"Written: {quay / 'issued' / 'register.csv'}"
+    with (quay / "issued" / "register.csv").open(encoding="utf-8-sig", newline="") as file:
+        assert [line.split(" · ")[0] for line in rows] == [row["revision"] for row in csv.DictReader(file)]
+    assert refused(run("register", quay.parent)).startswith("nothing is issued in ")
+
+
+def test_tables_of_an_issued_record(run, quay):
+    folder = quay.parent / "tables"
+    result = run("tables", min((quay / "issued").glob("*/*.html")), folder)
+    assert result.exit_code == 0, result.stderr
+    count = len(list(folder.glob("*.csv"))) - 1
+    assert result.stdout == f"{count} tables, listed in {folder / 'index.csv'}.\n"
+    assert count > 20
+    path = min((quay / "issued").glob("*/*.json"))
+    assert refused(run("tables", path, folder)) == f"{folder} is there already and not empty; name a new folder"

@@ -13,7 +13,15 @@ CORE = {
     "square metres": "m**2",
     "feet": "m",
     "area": "m**2",
+    "member length": "m",
+    "section size": "m",
+    "section area": "m**2",
+    "second moment": "m**4",
+    "modulus": "kN/m**2",
+    "joint stiffness": "kN*m",
     "pressure": "kN/m**2",
+    "area load": "kN/m**2",
+    "unit weight": "kN/m**3",
     "ordinate": "standard_gravity",
     "mass": "tonne",
     "weight": "kN",
@@ -32,6 +40,7 @@ CORE = {
     "circular frequency": "rad/s",
     "share": "",
     "ratio": "",
+    "count": "",
     "coefficient": "",
     "correlation": "",
     "modal energy": "1/s**2",
@@ -46,7 +55,10 @@ PINT = {
     "t": "tonne",
     "g": "standard_gravity",
     "psf": "lbf/ft**2",
+    "pcf": "lbf/ft**3",
     "t·m²": "tonne*m**2",
+    "10⁶ mm⁴": "km*mm**3",  # pint takes no number in a unit
+    "·10⁶ mm⁴": "km*mm**3",
     "%": "percent",
     "°": "degree",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
@@ -61,7 +73,8 @@ PINT = {
 
 def in_core(symbol: str, quantity: str) -> float:
     """The factor of a unit by pint, which knows nothing of the table."""
-    spelled = PINT.get(symbol, symbol.replace("·", "*").replace("²", "**2"))
+    powers = {"²": "**2", "³": "**3", "⁴": "**4", "·": "*"}
+    spelled = PINT.get(symbol, symbol.translate(str.maketrans(powers)))
     return REGISTRY.Quantity(1.0, spelled).to(CORE[quantity] or "dimensionless").magnitude
 
 
@@ -89,7 +102,18 @@ def test_spellings_of_a_mass(spelled):
     assert parse_unit(spelled, "mass") == parse_unit("kip·s²/in", "mass")
 
 
+@pytest.mark.parametrize("spelled", ["kN/m³", "kN/m3", "kN / m^3"])
+def test_spellings_of_a_unit_weight(spelled):
+    assert parse_unit(spelled, "unit weight") == parse_unit("kN/m³", "unit weight")
+
+
+@pytest.mark.parametrize("spelled", ["10⁶ mm⁴", "10^6 mm^4", "10⁶·mm⁴"])
+def test_spellings_of_a_second_moment(spelled):
+    assert parse_unit(spelled, "second moment") == parse_unit("10⁶ mm⁴", "second moment")
+
+
 def test_pounds_of_force():
+    assert parse_unit("lb/ft^2", "pressure").factor == parse_unit("psf", "pressure").factor
     assert parse_unit("lb", "weight") == parse_unit("lbf", "weight")
     assert parse_unit("lb/in", "stiffness").symbol == "lbf/in"
 

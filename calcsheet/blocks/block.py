@@ -173,7 +173,7 @@ class Shown:
         else:
             html = held_up(payload)
         carried = self.carried(payloads)
-        carried |= {"source": self.source, "asked": block.asked}
+        carried |= {"source": self.source, "asked": block.asked, "covered": block.view.covers(payloads, block.key)}
         self.keep(bundle(block.view, block.key, payload, block.options, html, revision=revision, **carried))
 
     def carried(self, payloads: Mapping[str, Payload]) -> dict[str, Any]:

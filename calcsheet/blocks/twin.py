@@ -25,6 +25,7 @@ def bundle(
     options: Mapping[str, Any],
     html: str,
     *,
+    covered: Any,
     source: str,
     revision: int,
     asked: str = "",
@@ -45,6 +46,8 @@ def bundle(
         The view's options.
     html : str
         The twin's HTML: it must read without style sheet, script or SVG, as an untrusted notebook shows it.
+    covered : plain JSON
+        What the view shows.
     source : str
         Fingerprint of the cell's source, so that a cell changed and not run again is noticed.
     revision : int
@@ -60,7 +63,7 @@ def bundle(
         "format": FORMAT,
         "view": view.name,
         "step": key,
-        "fingerprint": fingerprint(payload),
+        "fingerprint": fingerprint(covered),
         "options": dict(options),
         "source": source,
     }

@@ -35,6 +35,10 @@ _DEMMEL = "Demmel and Kahan, SIAM J. Sci. Stat. Comput. 11 (1990) (from memory)"
 _CQC = "Der Kiureghian (1981), Wilson, Der Kiureghian and Bayo (1981), Earthq. Eng. Struct. Dyn. 9 (from memory)"
 _ASCE = "ASCE/SEI 7-16, {} (from memory)"
 _EN = "EN 1998-1:2004, {} (from memory)"
+_MUTO = "Muto, Aseismic Design Analysis of Buildings (1974), D-values (from memory)"
+_BEAMS = "Timoshenko and Gere, Mechanics of Materials, deflections of beams with shear (from memory)"
+_BLUME = "Blume, J. Struct. Div. ASCE 94 (1968); Chopra, Dynamics of Structures, section 18.1 (from memory)"
+_ROARK = "Roark's Formulas for Stress and Strain, properties of sections (from memory)"
 _BATHE = "Bathe, Finite Element Procedures, chapter 11 (from memory)"
 
 _GOLUB = "Golub and Van Loan, Matrix Computations (from memory)"
@@ -75,6 +79,24 @@ _ITEMS = {
 
 FORMULAS: tuple[Formula, ...] = (
     Formula("Σm, Σm·g, H", "totals.totals", "definition"),
+    Formula("Σ share·q·A, ½Σ h·share·q·L, m = W/g of a level", "masstakeoff.take_off", "common practice"),
+    Formula("half a storey to each level", "masstakeoff.by_row", "common practice"),
+    Formula("r² = (a² + b²)/12", "masstakeoff.spread_radius", "handbook formula of a rectangle (from memory)"),
+    Formula("r² = (a + b)²/12", "masstakeoff.edge_radius", "parallel axis theorem"),
+    Formula("parts of a level: m, x, y, r", "masstakeoff.parts_of", "common practice"),
+    Formula("Σmx/Σm, I = Σ(I_k + m_k d_k²)", "masstakeoff.gathered", "parallel axis theorem"),
+    Formula(
+        "I₀ − m(x² + y²), ΣW of levels against ΣW of loads", "masstakeoff.evidence_of_take_off", "parallel axis theorem"
+    ),
+    Formula("A, I, A_s of a section", "sections.properties_of", _ROARK),
+    Formula("I, A_s about an axis", "sections.Properties.about", "definition"),
+    Formula("βEI/h³", "memberstiffness.bending", _BEAMS),
+    Formula("1/(1/k + h/(GA_s))", "memberstiffness.with_shear", _BEAMS),
+    Formula("k̄ of beams and column", "memberstiffness.beam_ratio", _MUTO),
+    Formula("a of D = a·12EI/h³", "memberstiffness.beam_restraint", _MUTO),
+    Formula("ρ = Σ(EI_b/L)/Σ(EI_c/h)", "memberstiffness.joint_rotation_index", _BLUME),
+    Formula("EA cos²α/L", "memberstiffness.diagonal", "definition"),
+    Formula("storey stiffness from members", "stiffnesstakeoff.take_off", "definition"),
     Formula("K, M, ι of a building", "model.models_of", "definition"),
     Formula("K, M, ι of rigid floors", "model.spatial_model", "definition"),
     Formula("stiffness set of a name", "model.set_of", "definition"),

@@ -114,8 +114,8 @@ class Storeys:
         The named sets.
     forces, drifts : str
         Names of the sets that serve forces and drifts.
-    given : {"mass", "weight"}
-        What the table gave; the other follows from it.
+    given : {"mass", "weight", "take-off"}
+        What the table gave, the other follows from it; or that the masses come from the mass take-off.
     gravity : (n,) array or None
         Gravity load of each level for second-order effects [kN]; None where the table has none.
     area : (n,) array or None

@@ -14,10 +14,11 @@ from calcsheet.core.basis import RESIDUALS, Basis, MassShare, SecondModel
 from calcsheet.core.codes.edition import Edition
 from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.core.errors import ModelError
-from calcsheet.job.card import FILE, FILE_NAME, Card, dotted, number_of, shown
+from calcsheet.job.card import FILE, FILE_NAME, Card, number_of
 from calcsheet.job.errors import InputError
 from calcsheet.job.spectrumfile import read_points
 from calcsheet.job.table import TextTable
+from calcsheet.job.wording import dotted, shown
 from calcsheet.units import display
 
 SETTINGS = ("edition", "combination", "residual", "second_order_in_stiffness")

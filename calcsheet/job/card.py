@@ -9,13 +9,15 @@ import datetime as dt
 import math
 import re
 import tomllib
-from collections.abc import Iterator, Mapping, Sequence
-from typing import Annotated, Any, Literal, get_args
+from collections.abc import Iterator, Mapping
+from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
 
+from calcsheet.core.chain import Chain
 from calcsheet.core.lateral import KINDS, Lateral
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted, refusal, shown
 
 FILE = "job.toml"
 
@@ -38,6 +40,9 @@ Damping = Annotated[Annotated[float, Field(gt=0, lt=1)] | None, Field(descriptio
 Sentence = Annotated[
     Annotated[str, Field(pattern=_NOT_BLANK)] | None,
     Field(description="a sentence that ties this direction to the drawings' grid"),
+]
+Finding = Annotated[
+    str, Field(pattern="^([0-9a-f]{8})?$", description="the 8 characters that stand beside the finding in the record")
 ]
 FileName = Annotated[
     Annotated[str, Field(pattern=FILE_NAME)] | None,
@@ -80,11 +85,12 @@ class Author(Person):
 
 
 class People(_Table):
-    """Who prepared, checks and approves: table [people]."""
+    """Who prepared, checks and approves: table [people]; whoever prepared may check only where the job allows it."""
 
     prepared: Author = Field(description="a table [people.prepared] with a name")
     checked: Person = Field(Person(), description="a table [people.checked]")
     approved: Person = Field(Person(), description="a table [people.approved]")
+    same_person_may_check: bool = Field(False, description="true or false")
 
 
 class System(_Table):
@@ -113,13 +119,17 @@ class Directions(_Table):
 
 
 class ModelChoice(_Table):
-    """Table [model]: how the lateral stiffness is given, and the file of each matrix."""
+    """Table [model]: how the lateral stiffness is given, the file of each matrix, and that of the members taken off."""
 
     kind: Literal["storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix", "rigid floors"] = Field(
         description='"storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix" or "rigid floors"'
     )
     x: FileName = None
     y: FileName = None
+    members: Annotated[
+        Annotated[str, Field(pattern=FILE_NAME)] | None,
+        Field(description='the name of a file in the job folder, such as "members.csv"'),
+    ] = None
 
     @property
     def files(self) -> Mapping[str, str]:
@@ -185,6 +195,12 @@ class LoadShare(_Table):
     clause: Text = ""
 
 
+class MassSource(_Table):
+    """Table [masses]: where the masses come from, other than from storeys.csv itself."""
+
+    source: Literal["floors.csv"] = Field(description='"floors.csv"')
+
+
 class OtherModel(_Table):
     """One of [[second_model]]: a result of another model or a hand calculation, and where it comes from."""
 
@@ -209,6 +225,35 @@ class Origin(_Table):
     revision: Text = ""
     date: MaybeDate = None
     note: Text = ""
+
+
+class Import(_Table):
+    """How a spreadsheet file is read into a table: the sheet, and the file's headings in this program's words."""
+
+    sheet: Text = ""
+    columns: Mapping[str, str] = Field({}, description="a table of headings")
+
+
+class Imports(_Table):
+    """Spreadsheet files by name, tables [imports.storeys."masses.xlsx"] and [imports.floors."areas.xlsx"]."""
+
+    storeys: Mapping[str, Import] = Field({}, description="a table for each file")
+    floors: Mapping[str, Import] = Field({}, description="a table for each file")
+
+
+class CautionAnswer(_Table):
+    """An answer to a caution, table [answers.KEY]: text, by whom, when, and the finding that it was given to."""
+
+    text: Text = ""
+    by: Text = ""
+    date: MaybeDate = None
+    finding: Finding = ""
+
+
+ANSWER = (
+    'a table with text, by, date and finding, such as { text = "…", by = "…", date = 2026-01-31, '
+    'finding = "0a1b2c3d" }; `calcsheet answer` writes it'
+)
 
 
 def _as_tuple(value: object) -> object:
@@ -267,6 +312,7 @@ class Card(_Table):
     mass_basis: Annotated[tuple[LoadShare, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[mass_basis]]"
     )
+    masses: MassSource | None = Field(None, description="a table [masses]")
     second_model: Annotated[tuple[OtherModel, ...], BeforeValidator(_as_tuple)] = Field(
         (), description="tables [[second_model]]"
     )
@@ -274,7 +320,8 @@ class Card(_Table):
         (), description="tables [[assumptions]]"
     )
     origins: Mapping[str, Origin] = Field({}, description="a table for each file")
-    answers: Mapping[str, str] = Field({}, description="a text for each caution")
+    imports: Imports = Field(Imports(), description="a table [imports.storeys] or [imports.floors]")
+    answers: Mapping[str, Annotated[CautionAnswer, Field(description=ANSWER)]] = Field({}, description="a table")
 
 
 def parse_card(text: str) -> Card:
@@ -293,7 +340,7 @@ def card_of(values: Mapping[str, Any]) -> Card:
     try:
         card = Card.model_validate(values)
     except ValidationError as error:
-        raise _plain(error.errors()[0]) from None
+        raise refusal(FILE, Card, error.errors()[0]) from None
     for wrong in _contradictions(card):
         raise wrong
     return card
@@ -309,50 +356,6 @@ def parse_toml(text: str) -> dict[str, Any]:
         if place == "end of document":
             place = f"line {len(text.splitlines())}"
         raise InputError(FILE, place, what[:1].lower() + what[1:], "must be TOML") from None
-
-
-def dotted(keys: Sequence[str | int]) -> str:
-    """Return keys joined by points, quoted where they need it: `stiffness."half cracked".factor`."""
-    return ".".join(str(key) if re.fullmatch(r"[\w-]+", str(key), re.ASCII) else f'"{key}"' for key in keys)
-
-
-def _plain(error: Any) -> InputError:
-    """One sentence for one of pydantic's errors."""
-    place: list[str | int] = []
-    kind: Any = Card
-    allowed = "a table"
-    for key in error["loc"]:
-        fields = kind.model_fields if isinstance(kind, type) and issubclass(kind, BaseModel) else None
-        if fields is not None and key not in fields:  # an unknown key
-            return InputError(FILE, dotted([*place, key]), "unknown key", f"must be one of {', '.join(fields)}")
-        place.append(key)
-        if fields is not None:
-            kind, allowed = fields[key].annotation, fields[key].description or allowed
-        else:
-            kind = get_args(kind)[-1 if isinstance(key, str) else 0]  # of a mapping, of a list
-            allowed = "a text" if kind is str else "a table"
-    found = "missing" if error["type"] == "missing" else f"got {shown(error['input'])}"
-    return InputError(FILE, dotted(place), found, f"must be {allowed}")
-
-
-def shorten(text: str) -> str:
-    """Return a text short enough for a message."""
-    return text if len(text) <= 60 else f"{text[:59]}…"
-
-
-def shown(value: object) -> str:
-    """Return a value of TOML as a message quotes it."""
-    match value:
-        case bool():
-            return "true" if value else "false"
-        case str():
-            return f'"{shorten(value)}"'
-        case int() | float() | dt.date() | dt.time():
-            return shorten(str(value))
-        case dict():
-            return "a table"
-        case _:
-            return "a list"
 
 
 def _contradictions(card: Card) -> Iterator[InputError]:
@@ -371,7 +374,14 @@ def _contradictions(card: Card) -> Iterator[InputError]:
             allowed = f"must be {ModelChoice.model_fields[d].description}"
             yield InputError(FILE, f"model.{d}", "missing", allowed)
         yield from _springs(card.base, d, analysed)
+    members = card.model.members is not None
+    if members and card.model.lateral is not Chain:
+        found = f'got "{card.model.members}"'
+        yield InputError(FILE, "model.members", found, f'must be left out unless model.kind is "{Chain.kind}"')
     for name, basis in card.stiffness.items():
+        if basis.own and members:
+            allowed = "must be left out with model.members, which gives the stiffnesses of every set"
+            yield InputError(FILE, dotted(["stiffness", name, "own"]), "got true", allowed)
         yield from _set_basis(name, basis, analysed, by_file)
     for i, other in enumerate(card.second_model):
         wanted = ("",) if other.quantity == "weight" else analysed
@@ -384,9 +394,11 @@ def _contradictions(card: Card) -> Iterator[InputError]:
             allowed = f"must name a set under [stiffness]: {names}"
             yield InputError(FILE, f"serves.{purpose}", f'got "{name}"', allowed)
     prepared, checked = card.people.prepared.name, card.people.checked.name
-    if checked.strip().casefold() == prepared.strip().casefold():
+    same = checked.strip().casefold() == prepared.strip().casefold()
+    if same and not card.people.same_person_may_check:
         found = f'got "{checked}", who prepared it'
-        yield InputError(FILE, "people.checked.name", found, "must be another person")
+        allowed = "must be another person, or people.same_person_may_check = true"
+        yield InputError(FILE, "people.checked.name", found, allowed)
 
 
 def _floors(card: Card) -> Iterator[InputError]:

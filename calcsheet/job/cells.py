@@ -5,9 +5,9 @@ from __future__ import annotations
 import math
 import re
 
-from calcsheet.job.card import shorten
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import format_number, is_ambiguous, parse_number, readings
+from calcsheet.job.wording import shorten
 from calcsheet.units import Unit
 
 ANY, POSITIVE, NOT_NEGATIVE = "a finite number", "above 0", "0 or above"
@@ -52,10 +52,10 @@ def read_cell(
     if not text:
         if may_be_blank:
             return math.nan
-        raise InputError(file, where, f"{name} is blank", f"must be a number in {unit.symbol}, {allowed}")
+        raise InputError(file, where, f"{name} is blank", f"{_wanted(unit)}, {allowed}")
     if mark is None and is_ambiguous(text):
         dot, comma = (format_number(readings(text)[m], "," if "," in text else ".") for m in ".,")
-        found = f"{name} {text} {unit.symbol} can be read as {dot} or {comma}"
+        found = f"{_with_unit(name, text, unit)} can be read as {dot} or {comma}"
         raise InputError(file, where, found, "must be written so that it can be read in one way")
     try:
         value = parse_number(text, mark or ".")
@@ -65,15 +65,23 @@ def read_cell(
     if not math.isfinite(core):
         allowed = ANY
     if not {ANY: math.isfinite(core), POSITIVE: core > 0, NOT_NEGATIVE: core >= 0}[allowed]:
-        raise InputError(file, where, f"{name} {shorten(text)} {unit.symbol}", f"must be {allowed}")
+        raise InputError(file, where, _with_unit(name, shorten(text), unit), f"must be {allowed}")
     return core
 
 
 def _number_wanted(text: str, unit: Unit, mark: str | None) -> str:
-    wanted = f"must be a number in {unit.symbol}"
+    wanted = _wanted(unit)
     if mark is not None and readings(text):
         return f'{wanted} with the decimal mark "{mark}", as in the other cells'
     amount = re.fullmatch(r"(.*[0-9])(?:\s*[^\W\d_]\D*|\s+[^\W\d_].*)", text)
-    if amount and readings(amount[1]):
+    if amount and unit.symbol and readings(amount[1]):
         return f"{wanted}, the heading's unit, without a unit of its own"
     return wanted
+
+
+def _wanted(unit: Unit) -> str:
+    return f"must be a number in {unit.symbol}" if unit.symbol else "must be a number"
+
+
+def _with_unit(name: str, text: str, unit: Unit) -> str:
+    return f"{name} {text} {unit.symbol}".rstrip()

@@ -7,12 +7,17 @@ from __future__ import annotations
 
 import csv
 import math
+from collections.abc import Mapping
+from dataclasses import replace
 
 from calcsheet.job import table as text_table
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import decimal_mark, format_number
 from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
+
+DIGITS = 6
+"""Significant digits of numbers that the program writes into a table of the engineer's."""
 
 
 def set_text(reading: StoreyReading, row: int | str, column: str, text: str) -> TextTable:
@@ -42,6 +47,31 @@ def set_number(reading: StoreyReading, row: int | str, column: str, value: float
     marks = (decimal_mark(cells, reading.table.delimiter) for cells in (columns[place : place + 1] + columns))
     mark = next((mark for mark in marks if mark), ".")
     return set_text(reading, row, column, format_number(value, mark))
+
+
+def set_columns(reading: StoreyReading, numbers: Mapping[str, Mapping[str, float]]) -> TextTable:
+    """Return the table with numbers written into whole columns, in one edit.
+
+    Parameters
+    ----------
+    reading : StoreyReading
+        The table as read.
+    numbers : mapping of str to mapping of str to float
+        By column key and level, numbers in core units; they are written to `DIGITS` significant digits in the heading's unit.
+
+    Raises
+    ------
+    InputError
+        There is no such column, or its heading gives no unit.
+    """
+    for key, by_level in numbers.items():
+        column = reading.columns[column_index(reading, key)]
+        if column.unit is None:
+            raise InputError(reading.table.file, f'heading "{column.heading}"', "no unit", "must give one")
+        for level, number in by_level.items():
+            written = float(f"{number / column.unit.factor:.{DIGITS}g}")
+            reading = replace(reading, table=set_number(reading, level, key, written))
+    return reading.table
 
 
 def insert_row(reading: StoreyReading, below: int | str | None) -> TextTable:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 
 class InputError(Exception):
     """A file of the job can't be used as it stands.
@@ -36,3 +38,22 @@ class NotSavedError(InputError):
 
 class ConflictError(NotSavedError):
     """A file was changed on disk since it was read; what was on disk is untouched."""
+
+
+@dataclass(frozen=True)
+class CellProblem:
+    """One thing that is wrong.
+
+    Parameters
+    ----------
+    row : int or None
+        Index of the table's row, roof first; None for a heading, a whole column or another file.
+    column : str or None
+        Key of the column; None for a row or a file as a whole.
+    message : str
+        The sentence.
+    """
+
+    row: int | None
+    column: str | None
+    message: str

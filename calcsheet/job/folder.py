@@ -4,16 +4,20 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
 from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
-from calcsheet.job import storeyfile, textfile
+from calcsheet.job import storeycells, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
 from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
 from calcsheet.job.errors import InputError
+from calcsheet.job.floorfile import FILES as FLOOR_FILES
+from calcsheet.job.floorfile import FloorReading, read_floors
+from calcsheet.job.memberfile import MemberReading, member_files, read_members
 from calcsheet.job.planfile import LINES, PLAN, read_lines
+from calcsheet.job.storeycells import read_frame
 from calcsheet.job.storeyfile import StoreyReading, read_storeys
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
@@ -41,6 +45,12 @@ class JobFiles:
         The basis of the demand; None where the card has none, or a wrong one.
     basis_problem : str
         Why there is none, or empty: all else can be calculated without one.
+    takeoff_tables : mapping of str to TextTable or InputError
+        By file, the tables of the two take-offs that there are; or why one is no table.
+    floors : FloorReading or None
+        The mass take-off, with its problems or the floors; None where the folder has none of its files.
+    members : MemberReading or None
+        The stiffness take-off, with its problems or the members; None where the folder has no table of members.
     """
 
     card: Card
@@ -51,6 +61,21 @@ class JobFiles:
     stamps: Mapping[str, Stamp | None]
     basis: Basis | None = None
     basis_problem: str = ""
+    takeoff_tables: Mapping[str, TextTable | InputError] = field(default_factory=dict)
+    floors: FloorReading | None = None
+    members: MemberReading | None = None
+
+    def with_storeys(self, table: TextTable, card: Card | None = None) -> JobFiles:
+        """The files with another storey table, or another card, and all that is read anew with it."""
+        card, tables = card or self.card, self.takeoff_tables
+        floors, members = _takeoffs(tables, card, table)
+        reading = read_storeys(table, card, self.matrices, floors, members)
+        return replace(self, card=card, reading=reading, floors=floors, members=members)
+
+    def with_takeoff(self, table: TextTable) -> JobFiles:
+        """The files with another table of a take-off, and all that is read anew with it."""
+        changed = replace(self, takeoff_tables={**self.takeoff_tables, table.file: table})
+        return changed.with_storeys(self.reading.table)
 
     @property
     def problems(self) -> tuple[str, ...]:
@@ -82,11 +107,25 @@ class JobFolder:
         card_file = self._read(job_card.FILE, f"`calcsheet new {self.path}` makes one")
         card = parse_card(card_file.text)
         stamps: dict[str, Stamp | None] = {job_card.FILE: card_file.stamp}
-        storeys = self._table(storeyfile.FILE, "must have a row for each level", stamps)
+        storeys = self._table(storeycells.FILE, "must have a row for each level", stamps)
         matrices = self._beside(card, stamps)
-        reading = read_storeys(storeys, card, matrices)
+        tables = self._takeoff_tables(card, stamps)
+        floors, members = _takeoffs(tables, card, storeys)
+        reading = read_storeys(storeys, card, matrices, floors, members)
         basis, problem = self._basis(card, stamps)
-        return JobFiles(card, card_file.text, card_file.encoding, reading, matrices, stamps, basis, problem)
+        return JobFiles(
+            card=card,
+            card_text=card_file.text,
+            card_encoding=card_file.encoding,
+            reading=reading,
+            matrices=matrices,
+            stamps=stamps,
+            basis=basis,
+            basis_problem=problem,
+            takeoff_tables=tables,
+            floors=floors,
+            members=members,
+        )
 
     def save_storeys(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
         """Write the storey table, whatever is wrong in its cells, and read it anew.
@@ -107,8 +146,13 @@ class JobFolder:
         NotSavedError
             It can't be written.
         """
-        stamps = self._write(storeyfile.FILE, table.content(), files.stamps, overwrite)
-        return replace(files, reading=read_storeys(table, files.card, files.matrices), stamps=stamps)
+        stamps = self._write(storeycells.FILE, table.content(), files.stamps, overwrite)
+        return replace(files.with_storeys(table), stamps=stamps)
+
+    def save_takeoff(self, files: JobFiles, table: TextTable, overwrite: bool = False) -> JobFiles:
+        """Write a table of a take-off and read anew what builds on it; arguments and errors of `save_storeys`."""
+        stamps = self._write(table.file, table.content(), files.stamps, overwrite)
+        return replace(files.with_takeoff(table), stamps=stamps)
 
     def save_card(self, files: JobFiles, text: str, overwrite: bool = False) -> JobFiles:
         """Write the job card and read everything anew under it.
@@ -124,10 +168,8 @@ class JobFolder:
         before = spectrum_files(files.card).values()
         kept = {name: stamp for name, stamp in stamps.items() if name not in before}
         basis, problem = self._basis(card, kept)
-        reading = read_storeys(files.reading.table, card, files.matrices)
-        return replace(
-            files, card=card, card_text=text, reading=reading, stamps=kept, basis=basis, basis_problem=problem
-        )
+        files = files.with_storeys(files.reading.table, card)
+        return replace(files, card_text=text, stamps=kept, basis=basis, basis_problem=problem)
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""
@@ -165,6 +207,18 @@ class JobFolder:
                 tables[row.file] = self._table(row.file, why, stamps)
         return tables
 
+    def _takeoff_tables(self, card: Card, stamps: dict[str, Stamp | None]) -> dict[str, TextTable | InputError]:
+        """The tables of the take-offs that there are; one that comes later is noticed by its state."""
+        tables: dict[str, TextTable | InputError] = {}
+        for name in (*FLOOR_FILES, *member_files(card)):
+            stamps[name] = textfile.stamp(self.path / name)
+            if stamps[name] is not None:
+                try:
+                    tables[name] = self._table(name, "", stamps)
+                except InputError as error:
+                    tables[name] = error
+        return tables
+
     def _write(
         self, name: str, content: bytes, stamps: Mapping[str, Stamp | None], overwrite: bool
     ) -> Mapping[str, Stamp | None]:
@@ -182,3 +236,16 @@ class JobFolder:
         source = self._read(name, remedy)
         stamps[name] = source.stamp
         return parse_table(source, name)
+
+
+def _takeoffs(
+    tables: Mapping[str, TextTable | InputError], card: Card, storeys: TextTable
+) -> tuple[FloorReading | None, MemberReading | None]:
+    """The take-offs of masses and of stiffnesses, each where the folder has it or the card asks for it."""
+    frame = read_frame(storeys, card)
+    has_floors = card.masses is not None or not tables.keys().isdisjoint(FLOOR_FILES)
+    has_members = card.model.members is not None or member_files(card)[0] in tables
+    return (
+        read_floors(tables, card, frame) if has_floors else None,
+        read_members(tables, card, frame) if has_members else None,
+    )

@@ -98,7 +98,7 @@ def read_headings(table: TextTable, card: Card, ways: Ways) -> Headings:
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = _known(name, heading, card, needed, ways)
+        column = known(name, heading, card, ways, needed)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -126,6 +126,8 @@ def read_headings(table: TextTable, card: Card, ways: Ways) -> Headings:
 
 def needed_stiffness(card: Card, ways: Ways) -> dict[str, tuple[Given, str, str | None]]:
     """Return the stiffness columns of the model: key -> what it gives, way, set (None: what factors apply to)."""
+    if card.model.members is not None:
+        return {}
     sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
     return {
         stiffness_key(given, d, name): (given, d, name)
@@ -135,12 +137,18 @@ def needed_stiffness(card: Card, ways: Ways) -> dict[str, tuple[Given, str, str 
     }
 
 
+def optional_stiffness(card: Card, ways: Ways) -> tuple[str, ...]:
+    """Keys of the stiffness columns that the model can do without."""
+    return tuple(key for key, (given, _, _) in needed_stiffness(card, ways).items() if given.optional)
+
+
 def stiffness_key(given: Given, direction: str, set_name: str | None) -> str:
     """Return the key of a stiffness column."""
     return f"{given.heading} {direction}" + (f" {set_name}" if set_name else "")
 
 
-def _known(name: str, heading: str, card: Card, needed: Container[str], ways: Ways) -> Column | None:
+def known(name: str, heading: str, card: Card, ways: Ways, needed: Container[str] = ()) -> Column | None:
+    """Return the column that a heading's name stands for in a storey table, without its unit; None where it's not known."""
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)
@@ -161,7 +169,12 @@ def _missing(file: str, keys: set[str], card: Card, ways: Ways) -> Iterator[Inpu
 
     if LEVEL not in keys:
         yield InputError(file, "", f'no column "{LEVEL}"', "must have one")
-    for pair in (("storey height", "elevation"), ("mass", "weight")):
+    pairs = [("storey height", "elevation"), ("mass", "weight")]
+    if card.masses is not None:
+        for key in keys & set(pairs.pop()):
+            allowed = f"must be left out, since the masses come from {card.masses.source} (job.toml, masses.source)"
+            yield InputError(file, "", f'column "{key}"', allowed)
+    for pair in pairs:
         both = [written(key, QUANTITIES[key]) for key in pair]
         if keys.isdisjoint(pair):
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")

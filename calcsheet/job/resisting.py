@@ -90,11 +90,11 @@ class Resisting:
         ends = 0
         for field, key in keys.items():
             numbers = self.column(key)
-            there = 0 if numbers is None else int((~np.isnan(numbers)).sum())
-            if numbers is None or (there == 0 and values):  # the first column is needed, others may be left out
-                values[field] = None
+            if numbers is None or (values and np.isnan(numbers).all()):
+                values[field] = None  # the first column is needed, others may be left out
                 continue
-            if np.isnan(numbers[:there]).any() or there == 0 or (values and there != ends):
+            there = int((~np.isnan(numbers)).sum()) if self.lines else numbers.size  # only lines end below the top
+            if self.lines and (np.isnan(numbers[:there]).any() or there == 0 or (values and there != ends)):
                 allowed = (
                     "must be given from the lowest storey up, and be blank only above the level where the line ends"
                 )

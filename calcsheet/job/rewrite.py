@@ -5,16 +5,18 @@ from __future__ import annotations
 import datetime as dt
 import re
 import tomllib
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from difflib import SequenceMatcher
 from typing import Any
 
 import tomlkit
 
-from calcsheet.job.card import FILE, dotted, parse_toml
+from calcsheet.job.card import FILE, parse_toml
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted
 
-Value = str | bool | int | float | dt.date
+Scalar = str | bool | int | float | dt.date
+Value = Scalar | Mapping[str, Scalar]
 
 
 def with_value(text: str, key: str | Sequence[str | int], value: Value | None) -> str:
@@ -27,8 +29,8 @@ def with_value(text: str, key: str | Sequence[str | int], value: Value | None) -
     key : str or sequence
         The dotted key, such as ``'job.revision'`` or ``'answers."light roof"'``, or its parts. Tables that
         aren't there yet are made; a member of a list is named by its number from 0.
-    value : str, bool, int, float, date or None
-        The value; None removes the key.
+    value : str, bool, int, float, date, mapping of these, or None
+        The value, a mapping as a table; None removes the key.
 
     Raises
     ------
@@ -48,7 +50,7 @@ def with_value(text: str, key: str | Sequence[str | int], value: Value | None) -
     if value is None:
         table.pop(last, None)
     else:
-        table[last] = value
+        table[last] = dict(value) if isinstance(value, Mapping) else value
     return _line_endings(_keep_lines(text, before, tomlkit.dumps(document)), text)
 
 

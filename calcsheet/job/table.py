@@ -8,7 +8,7 @@ from __future__ import annotations
 import csv
 import io
 import re
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -125,6 +125,18 @@ def insert_row(table: TextTable, row: int, cells: Iterable[str] = ()) -> TextTab
     return replace(table, lines=(*table.lines[:place], line, *table.lines[place:]))
 
 
+def add_column(table: TextTable, heading: str, cells: Sequence[str]) -> TextTable:
+    """Return the table with a column more on the right: its heading, and a cell for each row."""
+    places, width = dict(zip(table._places, cells, strict=True)), len(table.headings)
+    lines = list(table.lines)
+    for place, text in {table.heading: heading, **places}.items():
+        old = lines[place]
+        kept = (*old.cells, *("",) * (width - len(old.cells)))
+        new = (*kept[:width], text, *kept[width:])
+        lines[place] = replace(old, cells=new, text=_write(new, table.delimiter, old))
+    return replace(table, lines=tuple(lines))
+
+
 def delete_row(table: TextTable, row: int) -> TextTable:
     """Return the table without a row."""
     place = table._places[row]
@@ -156,15 +168,16 @@ def _with_cells(table: TextTable, row: int, cells: tuple[str, ...]) -> TextTable
 
 def _write(cells: tuple[str, ...], delimiter: str, like: Line) -> str:
     """One record as text, every cell quoted where those of the line `like` are."""
-    quoted = bool(like.cells) and _record(like.cells, delimiter, quoted=True) == like.text
-    return _record(cells, delimiter, quoted)
+    quoted = bool(like.cells) and record(like.cells, delimiter, quoted=True) == like.text
+    return record(cells, delimiter, quoted)
 
 
 class _Quoted(csv.excel):
     quoting = csv.QUOTE_ALL
 
 
-def _record(cells: tuple[str, ...], delimiter: str, quoted: bool) -> str:
+def record(cells: tuple[str, ...], delimiter: str, quoted: bool = False) -> str:
+    """Return cells as one record of text, without a line ending; `quoted` puts each in quotation marks."""
     out = io.StringIO()
     dialect = _Quoted if quoted else csv.excel
     csv.writer(out, dialect, delimiter=delimiter).writerow(cells)

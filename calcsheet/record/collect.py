@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import json
-from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
+from collections.abc import Collection, Iterator, Mapping
+from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
@@ -13,36 +13,13 @@ from nbformat import NotebookNode
 
 from calcsheet.blocks.twin import FORMAT, MIME
 from calcsheet.record.errors import RecordError
+from calcsheet.record.own import printable
+from calcsheet.record.parts import Own, Part, Shown, Words
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import Job
+from calcsheet.steps.graph import MASSES, STIFFNESSES, Job
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload
-
-
-@dataclass(frozen=True)
-class Words:
-    """A markdown cell: its source and attachments."""
-
-    source: str
-    attachments: Mapping[str, Mapping[str, str]] = field(default_factory=dict)
-
-
-@dataclass(frozen=True)
-class Shown:
-    """A block: name of its view, key of its step, options."""
-
-    view: str
-    step: str
-    options: Mapping[str, Any]
-
-
-@dataclass(frozen=True)
-class Own:
-    """A cell of the engineer's own: its source and its outputs, as nbformat has them. It is not replayed."""
-
-    source: str
-    outputs: tuple[NotebookNode, ...]
 
 
 @dataclass(frozen=True)
@@ -57,7 +34,7 @@ class Content:
         The job's steps, by key, upstream first; all "ok".
     """
 
-    parts: tuple[Words | Shown | Own, ...]
+    parts: tuple[Part, ...]
     payloads: Mapping[str, Payload]
 
     @property
@@ -80,7 +57,7 @@ def collect(notebook: NotebookNode) -> Content:
     for key, payload in payloads.items():
         if payload["state"] != "ok":
             raise RecordError(f'{STEPS[payload["kind"]].title}, step "{key}", is {payload["state"]}: {payload["why"]}')
-    parts: list[Words | Shown | Own] = []
+    parts: list[Part] = []
     for number, cell in enumerate(notebook.cells, 1):
         if cell.cell_type == "markdown" and cell.source.strip():
             parts.append(Words(cell.source, cell.get("attachments", {})))
@@ -89,8 +66,17 @@ def collect(notebook: NotebookNode) -> Content:
     return Content(tuple(parts), payloads)
 
 
-def refuse_stale(content: Content, folder: Path) -> None:
+def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> None:
     """Refuse content whose inputs are not those of the job folder.
+
+    Parameters
+    ----------
+    content : Content
+        What the notebook holds.
+    folder : Path
+        The job folder.
+    but : collection of str
+        Tables of the job card that may differ.
 
     Raises
     ------
@@ -98,6 +84,9 @@ def refuse_stale(content: Content, folder: Path) -> None:
         Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
     """
     job = Job(folder.resolve())
+    for key in (MASSES, STIFFNESSES):
+        if key in content.payloads:
+            job.attach(key, None)
     now = job.payloads()
     if "basis" in content.payloads:
         here = None if job.files is None else job.files.basis
@@ -105,13 +94,19 @@ def refuse_stale(content: Content, folder: Path) -> None:
             raise RecordError(
                 "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
             )
-    for key in ("card", "storeys"):
+    files = {
+        "card": "job.toml",
+        MASSES: "storeys.csv or a table of the mass take-off",
+        STIFFNESSES: "storeys.csv or a table of the stiffness take-off",
+        "storeys": "storeys.csv or job.toml",
+    }
+    for key in (key for key in files if key in content.payloads):
         if now[key]["state"] != "ok":
             raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
-        if fingerprint(now[key]["inputs"]) != fingerprint(content.payloads[key]["inputs"]):
-            file = "job.toml" if key == "card" else "storeys.csv or job.toml"
+        compared = ({k: v for k, v in p["inputs"].items() if k not in but} for p in (now[key], content.payloads[key]))
+        if len({fingerprint(inputs) for inputs in compared}) > 1:
             raise RecordError(
-                f"the notebook is stale: {file} in this folder isn't what it shows; run all its cells and save it"
+                f"the notebook is stale: {files[key]} in this folder isn't what it shows; run all its cells and save it"
             )
 
 
@@ -166,7 +161,7 @@ def _of_code(number: int, cell: NotebookNode, payloads: Mapping[str, Payload]) -
         return list(shown)
     if not others and _is_set_up(cell.source):
         return []
-    return [Own(cell.source, tuple(others)), *shown]
+    return [Own(cell.source, tuple(printable(output) for output in others)), *shown]
 
 
 def _is_set_up(source: str) -> bool:
@@ -179,7 +174,7 @@ def _shown(number: int, cell: NotebookNode, data: Mapping[str, Any], payloads: M
         raise RecordError(f'cell {number} shows "{data["view"]}" of step "{data["step"]}", which this record has not')
     if data["source"] != fingerprint(cell.source.rstrip("\n")):
         raise RecordError(f"the notebook is stale: cell {number} was changed and not run again")
-    if data["fingerprint"] != fingerprint(payloads[data["step"]]):
+    if data["fingerprint"] != fingerprint(VIEWS[data["view"]].covers(payloads, data["step"])):
         raise RecordError(
             f"the notebook is stale: cell {number} shows older results than the job card holds; run all cells"
         )

@@ -9,9 +9,10 @@ from nbconvert.exporters import Exporter
 from nbformat import NotebookNode
 from traitlets import Enum, default
 
-from calcsheet.record.collect import Content, collect, refuse_stale
-from calcsheet.record.document import page_of
-from calcsheet.record.page import PAPERS, render_page
+from calcsheet.record.collect import collect, refuse_stale
+from calcsheet.record.document import record_of
+from calcsheet.record.files import html_of
+from calcsheet.record.page import PAPERS
 
 
 class RecordExporter(Exporter):
@@ -42,9 +43,4 @@ class RecordExporter(Exporter):
         nb, resources = super().from_notebook_node(nb, resources, **kwargs)
         content = collect(nb)
         refuse_stale(content, Path(resources.get("metadata", {}).get("path") or "."))
-        return record_html(content, self.paper), resources
-
-
-def record_html(content: Content, paper: str) -> str:
-    """The self-contained HTML of a record."""
-    return render_page(page_of(content, "html"), "html", paper)  # type: ignore[arg-type]
+        return html_of(record_of(content, self.paper)), resources

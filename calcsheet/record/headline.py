@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from html import escape
 from typing import Any
 
 import numpy as np
 
-from calcsheet.record.status import held_back
+from calcsheet.record.status import reasons
 from calcsheet.render.numbers import number, text
 from calcsheet.render.symbols import symbols
 from calcsheet.render.table import facts
@@ -32,8 +32,9 @@ def brief(payloads: Payloads) -> list[Row]:
     return [row for key, payload in payloads.items() for row in _of(key, payload, payloads, BRIEF)]
 
 
-def in_full(payloads: Payloads, words: Iterable[str] = ()) -> str:
-    """HTML of the results, and of what stands between this record and its use; `words` are the notebook's markdown cells."""
+def in_full(record: Mapping[str, Any]) -> str:
+    """HTML of a record's results, and of what stands between it and its use."""
+    payloads = record["payloads"]
     figures = [e for p in payloads.values() for e in p["evidence"]]
     kept = sum(e["within"] for e in figures)
     verdict = outcome("passes" if kept == len(figures) else "exceeds")
@@ -50,9 +51,8 @@ def in_full(payloads: Payloads, words: Iterable[str] = ()) -> str:
     missing = [words for kind, words in LEFT_OUT.items() if kind not in kinds]
     if missing:
         rows.append((", ".join(missing).capitalize(), f"{outcome('not assessed')} in this record"))
-    reasons = held_back(payloads, words)
-    if reasons:
-        rows.append(("Draft because of", "; ".join(escape(r) for r in reasons)))
+    if because := reasons(record):
+        rows.append(("Draft because of", "; ".join(escape(reason) for reason in because)))
     return facts(rows)
 
 

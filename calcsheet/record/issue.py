@@ -3,30 +3,34 @@
 from __future__ import annotations
 
 import json
-import os
 import re
-import shutil
-import tempfile
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 import nbformat
 
+from calcsheet.job.comments import comments_of
 from calcsheet.record.collect import Content, collect, refuse_stale
-from calcsheet.record.document import page_of, record_of
+from calcsheet.record.document import record_of
 from calcsheet.record.errors import RecordError
 from calcsheet.record.execute import Progress, execute
-from calcsheet.record.exporter import record_html
+from calcsheet.record.files import files_of, html_of
 from calcsheet.record.fonts import missing_characters
-from calcsheet.record.page import Paper, render_page
-from calcsheet.record.pdf import NoEngine, choose_engine, write_pdf
-from calcsheet.record.status import held_back
+from calcsheet.record.page import Paper
+from calcsheet.record.pdf import FULL, NoEngine, choose_engine
+from calcsheet.record.place import placed, refuse_issued
+from calcsheet.record.register import note_of
+from calcsheet.record.status import reasons
+from calcsheet.record.tables import FOLDER as TABLES
+from calcsheet.record.tables import INDEX, csv_files
+from calcsheet.steps.compare import EARLIER
+from calcsheet.steps.earlier import earlier_payload
 from calcsheet.steps.graph import Job
+from calcsheet.steps.serial import to_json
 
 NOTEBOOK = "calc.ipynb"
 ISSUED = "issued"
-FULL = "WeasyPrint"
 READING_COPY = (
     "the PDF is a reading copy made with {}; where Pango is installed, WeasyPrint adds bookmarks, tags and page numbers "
     "in the contents"
@@ -42,7 +46,7 @@ class Issued:
     folder : Path
         The record's folder.
     files : tuple of Path
-        Its files: HTML, PDF, JSON, as asked for.
+        Its files: HTML, PDF, JSON, as asked for, and the list of its tables.
     status : str
         Status word.
     reasons : tuple of str
@@ -67,8 +71,9 @@ def issue(
     ----------
     folder : Path
         The job folder.
-    to : sequence of {"html", "pdf"}, optional
-        Kinds wanted, with the JSON always; HTML and, where an engine loads, PDF where omitted.
+    to : sequence of {"html", "pdf", "csv"}, optional
+        Kinds wanted, with the JSON always; HTML and, where an engine loads, PDF where neither is named. "csv" adds every
+        table as CSV, in a folder of its own.
     paper : {"a4", "letter"}
         Paper size.
     progress : callable, optional
@@ -90,8 +95,9 @@ def issue(
             raise RecordError(payload["why"])
     revision = job.payload("card")["inputs"]["job"]["revision"]
     target = folder / ISSUED / revision
-    _refuse_issued(target, revision)
-    engine, note = "", ""
+    refuse_issued(target)
+    engine, note, with_tables = "", "", "csv" in (to or ())
+    to = [kind for kind in to or () if kind != "csv"] or None
     if to is None or "pdf" in to:
         try:
             chosen = choose_engine()
@@ -104,61 +110,51 @@ def issue(
     kinds = [k for k in ("html", "pdf") if (to is None or k in to) and not (k == "pdf" and not engine)]
     content = collect(_executed(folder, progress))
     refuse_stale(content, folder)
-    return _built(content, target, kinds, paper, engine, note)
+    content = with_earlier(content, folder)
+    record = record_of(content, paper, engine, [to_json(comment) for comment in comments_of(folder)])
+    stem = f"{_file_name(record['payloads']['card']['inputs']['job']['number'])}-rev-{_file_name(revision)}"
+    files = files_of(record, stem, kinds)
+    if with_tables:
+        files |= {f"{TABLES}/{name}": table for name, table in csv_files(html_of(record), record).items()}
+    made = tuple(path for path in placed(target, files) if path.parent == target or path.name == INDEX)
+    note = "; ".join(filter(None, (note, note_of(folder))))
+    strange = missing_characters(json.dumps(record, ensure_ascii=False))
+    if strange:
+        lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"
+        note = "; ".join(filter(None, (note, lacking)))
+    return Issued(target, made, record["status"], reasons(record), note)
+
+
+def with_earlier(content: Content, folder: Path) -> Content:
+    """The content, with what the last revision issued before this one said, where the notebook doesn't hold it."""
+    if EARLIER in content.payloads:
+        return content
+    earlier = earlier_payload(folder, content.payloads["card"]["inputs"]["job"]["revision"])
+    return content if earlier is None else replace(content, payloads={**content.payloads, EARLIER: earlier})
 
 
 def _executed(folder: Path, progress: Progress) -> nbformat.NotebookNode:
-    path = folder / NOTEBOOK
-    if not path.is_file():
-        raise RecordError(f"no {NOTEBOOK} in {folder}; `calcsheet new` makes a job folder that has one")
-    try:
-        notebook = nbformat.read(path, as_version=4)
-    except Exception as error:  # the library raises whatever its reader meets in a file that is no notebook
-        first, *_ = str(error).splitlines() or [type(error).__name__]
-        raise RecordError(f"{NOTEBOOK} is no notebook that can be read: {first}") from None
+    notebook = notebook_of(folder)
     execute(notebook, folder, progress)
     return notebook
 
 
-def _built(content: Content, target: Path, kinds: Sequence[str], paper: Paper, engine: str, note: str) -> Issued:
-    """Build the files in a folder beside the target and move it into place."""
-    record = record_of(content)
-    job = content.payloads["card"]["inputs"]["job"]
-    stem = f"{_file_name(job['number'])}-rev-{_file_name(job['revision'])}"
-    text = json.dumps(record, ensure_ascii=False, indent=1)
-    data = text.encode()
-    target.parent.mkdir(exist_ok=True)
-    building = Path(tempfile.mkdtemp(prefix=".building-", dir=target.parent))
+def notebook_of(folder: Path) -> nbformat.NotebookNode:
+    """The notebook of a job folder, as it was saved.
+
+    Raises
+    ------
+    RecordError
+        There is none, or none that can be read.
+    """
+    path = folder / NOTEBOOK
+    if not path.is_file():
+        raise RecordError(f"no {NOTEBOOK} in {folder}; `calcsheet new` makes a job folder that has one")
     try:
-        (building / f"{stem}.json").write_bytes(data)
-        if "html" in kinds:
-            (building / f"{stem}.html").write_text(record_html(content, paper), encoding="utf-8")
-        if "pdf" in kinds:
-            html = render_page(page_of(content, "pdf", engine), "pdf", paper)
-            write_pdf(html, building / f"{stem}.pdf", attachments=[(f"{stem}.json", data)])
-        building.chmod(0o755)
-        _refuse_issued(target, job["revision"])
-        try:
-            os.rename(building, target)
-        except OSError:
-            _refuse_issued(target, job["revision"])  # somebody else was first
-            raise
-    except BaseException:
-        shutil.rmtree(building, ignore_errors=True)
-        raise
-    files = tuple(sorted(target.iterdir(), key=lambda path: (".html", ".pdf", ".json").index(path.suffix)))
-    strange = missing_characters(text)
-    if strange:
-        lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"
-        note = "; ".join(filter(None, (note, lacking)))
-    return Issued(target, files, record["status"], held_back(content.payloads, content.words), note)
-
-
-def _refuse_issued(target: Path, revision: str) -> None:
-    if target.exists():
-        raise RecordError(
-            f'revision "{revision}" is issued already, in {target}; raise job.revision in job.toml to issue the next'
-        )
+        return nbformat.read(path, as_version=4)
+    except Exception as error:  # the library raises whatever its reader meets in a file that is no notebook
+        first, *_ = str(error).splitlines() or [type(error).__name__]
+        raise RecordError(f"{NOTEBOOK} is no notebook that can be read: {first}") from None
 
 
 def _file_name(text: str) -> str:

@@ -11,6 +11,8 @@ from bleach.sanitizer import Cleaner
 from mistune import HTMLRenderer, Markdown, import_plugin
 from nbconvert.filters.markdown_mistune import MathBlockParser, MathInlineParser
 
+from calcsheet.record.tokens import without_scripts
+
 Attachments = Mapping[str, Mapping[str, str]]
 
 TAGS = [
@@ -23,7 +25,6 @@ EQUATION = "calcsheet-equation"
 PLACED = re.compile(rf'<{EQUATION} n="(\d+)"></{EQUATION}>')
 HEADING = re.compile(r"<(/?)h([1-6])>")
 DATA_IMAGE = re.compile(r"data:image/(png|jpeg|gif|svg\+xml|webp)[;,]")
-NOT_WORDS = re.compile(r"<(script|style)\b.*?</\1\s*>", re.DOTALL | re.IGNORECASE)
 ALIGNED = re.compile(r' style="text-align:(left|right|center)"')
 
 
@@ -67,7 +68,7 @@ def to_html(
 
     html = _parser(place)(text)
     assert isinstance(html, str)
-    html = ALIGNED.sub(r' align="\1"', NOT_WORDS.sub("", html))
+    html = ALIGNED.sub(r' align="\1"', without_scripts(html))
     html = _cleaner(attachments or {}).clean(html)
     html = _number_headings(html, top, prefix)
     # The tag itself can't be typed into an attribute or text: those are escaped by now.

@@ -89,7 +89,9 @@ class Cover:
     pdf_engine : str
         Name and version of the program that made the pages; empty on screen.
     fingerprint : str
-        Fingerprint of inputs and results.
+        Fingerprints in short, on the cover.
+    footer : str
+        Fingerprints in short, at the foot of every page.
     """
 
     project: str
@@ -105,6 +107,7 @@ class Cover:
     programme: str
     pdf_engine: str
     fingerprint: str
+    footer: str = ""
 
 
 @dataclass(frozen=True)
@@ -271,12 +274,12 @@ def _sheets(page: Page, paper: Paper) -> str:
     """What print.css can't know: paper, running head and foot, watermark."""
     cover = page.cover
     running = {
-        "top-left": shortened(cover.project, HEAD),
-        "top-right": f"{cover.number} · revision {cover.revision} · {spoken(cover.date)}",
-        "bottom-left": " · ".join(_signed(person) for person in cover.people[:2]),
-        "bottom-center": shortened(cover.title, FOOT),
+        "top-left": css_string(shortened(cover.project, HEAD)),
+        "top-right": css_string(f"{cover.number} · revision {cover.revision} · {spoken(cover.date)}"),
+        "bottom-left": css_string(" · ".join(_signed(person) for person in cover.people[:2])),
+        "bottom-center": rf"{css_string(shortened(cover.title, FOOT))} '\A' {css_string(cover.footer)}",
     }
-    boxes = "".join(f"  @{place} {{ content: {css_string(text)}; }}\n" for place, text in running.items())
+    boxes = "".join(f"  @{place} {{ content: {content}; }}\n" for place, content in running.items())
     sheets = f"@page {{ size: {paper};\n{boxes}}}\n@page wide {{ size: {paper} landscape; }}\n"
     if page.draft:
         image = base64.b64encode(_text("draft.svg").encode()).decode("ascii")

@@ -13,12 +13,13 @@ import os
 import re
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from pathlib import Path
 
 from pypdf import PdfReader, PdfWriter
 from pypdf.generic import NameObject
 
-ENGINES = ("WeasyPrint", "PlutoPrint")
+FULL = "WeasyPrint"
+ENGINES = (FULL, "PlutoPrint")
+"""Engines, the preferred one first: it alone gives bookmarks, tags, contents with page numbers, and the same bytes again."""
 CHOICE = "CALCSHEET_PDF_ENGINE"
 # Relative references lead here: links within the document work, anything else is refused.
 BASE = "file:///record"
@@ -82,8 +83,8 @@ def choose_engine(name: str | None = None) -> EngineInfo:
     return available[0]
 
 
-def write_pdf(html: str, path: Path, *, attachments: Attachments = (), engine: str | None = None) -> EngineInfo:
-    """Write a page of `page.render_page` as PDF.
+def pdf_of(html: str, *, attachments: Attachments = (), engine: str | None = None) -> bytes:
+    """A page of `page.render_page` as PDF.
 
     WeasyPrint gives PDF/A-3 with tags, bookmarks, contents with page numbers, and the same bytes for the same
     input. PlutoPrint gives a reading copy without these.
@@ -92,8 +93,6 @@ def write_pdf(html: str, path: Path, *, attachments: Attachments = (), engine: s
     ----------
     html : str
         The document; only data URIs are followed.
-    path : Path
-        File to write.
     attachments : sequence of (str, bytes)
         Files to attach: name and content.
     engine : str, optional
@@ -110,9 +109,7 @@ def write_pdf(html: str, path: Path, *, attachments: Attachments = (), engine: s
     found = CREATED.search(html)
     day = datetime.date.fromisoformat(found[1]) if found else datetime.date(2000, 1, 1)
     moment = datetime.datetime.combine(day, datetime.time(), datetime.UTC)
-    data = WRITERS[chosen.name](html, attachments, moment)
-    path.write_bytes(data)
-    return chosen
+    return WRITERS[chosen.name](html, attachments, moment)
 
 
 def _loads(name: str) -> bool:

@@ -6,10 +6,14 @@ import re
 from collections.abc import Iterable, Iterator, Mapping
 from typing import Any
 
-from calcsheet.job.card import dotted, shorten
+from calcsheet.job.wording import dotted, shorten
+from calcsheet.record.fingerprints import Record, covered, fingerprints_of
+from calcsheet.render.answers import raised
 from calcsheet.steps.step import Payload
 
-DRAFT, FOR_CHECKING = "DRAFT", "FOR CHECKING"
+DRAFT, FOR_CHECKING, CHECKED, APPROVED = "DRAFT", "FOR CHECKING", "CHECKED", "APPROVED"
+ROLES = PREPARED, CHECKED_ROLE, APPROVED_ROLE = "prepared", "checked", "approved"
+NOT_SIGNED = "not signed by who prepared it: people.prepared has no date"
 TEMPLATE_TEXT = re.compile(r"Project name|Name of the engineer|0000-S-001|Say (what|where|which|why)\b.*", re.DOTALL)
 """A text of a new job's card that waits for the engineer's own."""
 
@@ -28,25 +32,47 @@ def held_back(payloads: Mapping[str, Payload], words: Iterable[str] = ()) -> tup
     beyond = [e["what"] for p in payloads.values() for e in p["evidence"] if not e["within"]]
     if beyond:
         reasons.append(f"evidence beyond its limit: {'; '.join(beyond)}")
-    unanswered = [
-        c["key"]
-        for p in payloads.values()
-        for c in p["cautions"]
-        if c["answer"] and not card["answers"].get(c["key"], "").strip()
-    ]
+    unanswered = [f"{one.key} ({one.said})" for one in raised(payloads) if one.waits]
     if unanswered:
         reasons.append(f"cautions that need an answer: {', '.join(unanswered)}")
-    if not card["people"]["prepared"]["date"]:
-        reasons.append("not signed by who prepared it: people.prepared has no date")
     left = [*_left_in_card(card), *_left_in_words(words)]
     if left:
         reasons.append(f"texts of the template: {', '.join(left)}")
     return tuple(reasons)
 
 
-def status_of(payloads: Mapping[str, Payload], words: Iterable[str] = ()) -> str:
-    """DRAFT or FOR CHECKING: further words are for those who check and approve the issued record."""
-    return DRAFT if held_back(payloads, words) else FOR_CHECKING
+def reasons(record: Record) -> tuple[str, ...]:
+    """What keeps a record a DRAFT, its originator's missing signature too."""
+    return held(record) if PREPARED in valid(record) else (*held(record), NOT_SIGNED)
+
+
+def held(record: Record) -> tuple[str, ...]:
+    """What keeps a record a DRAFT whoever signs."""
+    return held_back(record["payloads"], [part["words"] for part in record["notebook"] if "words" in part])
+
+
+def status_of(record: Record) -> str:
+    """DRAFT, FOR CHECKING, CHECKED or APPROVED.
+
+    What holds a record back keeps it a DRAFT whoever signed; an open comment keeps it from APPROVED.
+    """
+    signed = valid(record)
+    if reasons(record):
+        return DRAFT
+    if APPROVED_ROLE in signed and CHECKED_ROLE in signed and not open_comments(record):
+        return APPROVED
+    return CHECKED if CHECKED_ROLE in signed else FOR_CHECKING
+
+
+def valid(record: Record) -> dict[str, Mapping[str, Any]]:
+    """By role, the signatures that cover this record's inputs, notebook and results as they are."""
+    now = covered(fingerprints_of(record))
+    return {s["role"]: s for s in record["signatures"] if s["covers"] == now}
+
+
+def open_comments(record: Record) -> list[Mapping[str, Any]]:
+    """Comments that nobody has closed."""
+    return [comment for comment in record["comments"] if not comment["closed_by"]]
 
 
 def _left_in_card(value: Any, *keys: str | int) -> Iterator[str]:

@@ -37,7 +37,7 @@ def text(value: float, decimals: int) -> str:
 
 
 def number(value: float, quantity: str, system: str, at: str, *, decimals: int | None = None, unit: bool = True) -> str:
-    """HTML of one number: ``<data value="place in the payload">text</data>`` and its unit.
+    """HTML of one number: ``<data value="place in the payload" data-unit="m">text</data>`` and its unit.
 
     Parameters
     ----------
@@ -57,8 +57,10 @@ def number(value: float, quantity: str, system: str, at: str, *, decimals: int |
     how = display(quantity, system)
     shown = how.of(value)
     places = decimals_for([shown], how.digits) if decimals is None else decimals
-    suffix = f"\u00a0{escape(how.symbol)}" if unit and how.symbol else ""
-    return f'<data value="{escape(at)}">{text(shown, places)}</data>{suffix}'
+    symbol = escape(how.symbol)
+    unit_of = f' data-unit="{symbol}"' if symbol else ""
+    suffix = f"\u00a0{symbol}" if unit and symbol else ""
+    return f'<data value="{escape(at)}"{unit_of}>{text(shown, places)}</data>{suffix}'
 
 
 def exponent(value: float, at: str) -> str:
@@ -72,5 +74,5 @@ def exponent(value: float, at: str) -> str:
 
 def heading(name: str, quantity: str, system: str) -> str:
     """A column's heading with its unit: "mass [t]"."""
-    symbol = display(quantity, system).symbol
+    symbol = display(quantity, system).symbol.lstrip("·")  # a dot parts a power of ten from the number before it
     return f"{name} [{symbol}]" if symbol else name

@@ -56,6 +56,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         at = f"/{key}/result/weight_per_area"
         columns.append(values("weight per area", sums["weight_per_area"], "pressure", system, at, order=roof_first))
     matrices = []
+    members = payloads["card"]["inputs"]["model"].get("members")
     for i, named in enumerate(given["stiffness"]):
         for direction, lateral in named["lateral"].items():
             at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", direction
@@ -66,7 +67,9 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
                 numbers, name = lateral[c.field], f"{c.heading} {title}"
                 if numbers is not None:
                     numbers, at_storey = _filled(numbers, given["level"]), f"{at}/{c.field}"
-                    columns.append(values(name, numbers, c.heading, system, at_storey, order=roof_first, as_given=True))
+                    columns.append(
+                        values(name, numbers, c.heading, system, at_storey, order=roof_first, as_given=not members)
+                    )
             if kind.table:
                 caption = f"{lateral['kind']} {direction}, {named['name']}"
                 matrices.append(_matrix(caption, kind.table, given["level"], lateral, system, at))
@@ -79,6 +82,10 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
             "elevation " + number(given["base_elevation"], "elevation", system, f"/{key}/inputs/base_elevation"),
         ),
     ]
+    if members is not None:
+        rows.append(
+            ("storey stiffnesses", f"taken off from {escape(members)}, before the factors of the stiffness sets")
+        )
     rows += [
         (
             f'stiffness set "{named["name"]}"',
@@ -91,7 +98,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     ]
     if given.get("second_order"):
         rows.append(("second-order effects", "in the stiffness, by the gravity loads"))
-    below = _below(given["below"], system, key) if given["below"] else ""
+    below = _below(given, system, key) if given["below"] else ""
     if given.get("plan") is not None:
         matrices = [*_plan(given["plan"], given["level"], system, f"/{key}/inputs/plan"), *matrices]
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
@@ -127,9 +134,11 @@ def _plan(plan: Mapping[str, Any], levels: list[str], system: str, at: str) -> l
 
 
 def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]) -> list[Column]:
-    """Mass as given; or weight as given, with the mass that follows from it."""
-    if given["given"] == "mass":
-        return [values("mass", given["mass"], "mass", system, f"/{key}/inputs/mass", order=order, as_given=True)]
+    """Mass as given or taken off; or weight as given, with the mass that follows from it."""
+    if given["given"] in ("mass", "take-off"):
+        name, at, typed = "mass", f"/{key}/inputs/mass", given["given"] == "mass"
+        name = name if typed else "mass by take-off"
+        return [values(name, given["mass"], "mass", system, at, order=order, as_given=typed)]
     at = f"/{key}/result/weight_of_level"
     return [
         values("weight", sums["weight_of_level"], "weight", system, at, order=order, as_given=True),
@@ -158,12 +167,14 @@ def _springs(direction: str, springs: Mapping[str, Any], system: str, at: str) -
     return f"base springs {direction}", "; ".join(said)
 
 
-def _below(below: list[dict[str, Any]], system: str, key: str) -> str:
+def _below(given: Mapping[str, Any], system: str, key: str) -> str:
+    below = given["below"]
     order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
     columns = [words("level", [below[i]["level"] for i in order])]
     for name, field in (("elevation", "elevation"), ("mass", "mass")):
+        typed = field == "elevation" or given["given"] != "take-off"
         columns.append(
-            values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=True)
+            values(name, [b[field] for b in below], field, system, f"{at}/{{}}/{field}", order=order, as_given=typed)
         )
     return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 

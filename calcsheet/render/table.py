@@ -45,7 +45,7 @@ def values(
     numbers: Sequence[float | None],
     quantity: str,
     system: str,
-    at: str,
+    at: str | Sequence[str],
     *,
     order: Sequence[int] | None = None,
     digits: int | None = None,
@@ -61,8 +61,9 @@ def values(
         In core units; None leaves a cell blank.
     quantity, system : str
         As in `calcsheet.render.numbers.number`.
-    at : str
-        JSON pointer of the entries, with ``{}`` in the place of the index; of the array, where there is none.
+    at : str or sequence of str
+        JSON pointer of the entries, with ``{}`` in the place of the index; of the array, where there is none; or the
+        pointer of each entry.
     order : sequence of int, optional
         Indices in the order of the rows.
     digits : int, optional
@@ -70,7 +71,9 @@ def values(
     as_given : bool
         Show every digit that was given, as inputs must be.
     """
-    how, at = display(quantity, system), at if "{}" in at else f"{at}/{{}}"
+    how = display(quantity, system)
+    if isinstance(at, str):
+        at = [(at if "{}" in at else f"{at}/{{}}").format(i) for i in range(len(numbers))]
     shown = [how.of(v) for v in numbers if v is not None]
     places = decimals_given(shown) if as_given else decimals_for(shown, digits or how.digits)
     if quantity == "share":
@@ -78,7 +81,7 @@ def values(
     cells = []
     for i in range(len(numbers)) if order is None else order:
         value = numbers[i]
-        cell = "" if value is None else number(value, quantity, system, at.format(i), decimals=places, unit=False)
+        cell = "" if value is None else number(value, quantity, system, at[i], decimals=places, unit=False)
         cells.append(cell)
     return Column(heading(name, quantity, system), tuple(cells))
 

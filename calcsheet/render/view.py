@@ -45,6 +45,10 @@ class Choice:
     options: Mapping[str, str]
 
 
+def _own_step(payloads: Mapping[str, Payload], key: str) -> Any:
+    return payloads[key]
+
+
 @dataclass(frozen=True)
 class View:
     """A way to show a step.
@@ -61,6 +65,9 @@ class View:
         ``render(payloads, key, options) -> Rendered``; called on a step whose state is "ok" only.
     choices : tuple of Choice
         What may be set.
+    covers : callable
+        ``covers(payloads, key)`` gives the plain JSON that the view shows, by whose fingerprint a twin in a saved notebook is
+        known to be current: the step's payload where omitted.
     """
 
     name: str
@@ -68,6 +75,7 @@ class View:
     step: str
     render: Callable[[Mapping[str, Payload], str, Mapping[str, Any]], Rendered]
     choices: tuple[Choice, ...] = field(default=())
+    covers: Callable[[Mapping[str, Payload], str], Any] = _own_step
 
     def chosen(self, options: Mapping[str, Any]) -> dict[str, Any]:
         """The options with defaults filled in.

@@ -1,4 +1,4 @@
-"""Worked lines, cautions and evidence as tables: the parts that every step's payload has."""
+"""Worked lines and evidence as tables, and texts with numbers in them: the parts that every step's payload has."""
 
 from __future__ import annotations
 
@@ -66,17 +66,3 @@ def evidence(found: Iterable[Located]) -> str:
 def outcome(word: str) -> str:
     """HTML of one of the four outcomes: passes, exceeds, judgement, not assessed."""
     return f'<span class="{word.replace(" ", "-")}">{word}</span>'
-
-
-def cautions(raised: Iterable[Located], answers: Mapping[str, str], system: str) -> str:
-    """List of cautions with the job's answers."""
-    items = []
-    for at, caution in raised:
-        answer = answers.get(caution["key"], "").strip()
-        open_ = caution["answer"] and not answer
-        said = f'<p class="answer"><b>Answer:</b> {escape(answer)}</p>' if answer else ""
-        if open_:
-            said = f'<p class="answer"><b>Needs an answer</b> under <code>{escape(caution["key"])}</code></p>'
-        kind = "caution needs-answer" if open_ else "caution"
-        items.append(f'<li class="{kind}">{filled(caution["text"], caution["numbers"], system, at)}{said}</li>')
-    return f'<ul class="cautions">{"".join(items)}</ul>' if items else "<p>None.</p>"

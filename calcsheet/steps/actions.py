@@ -39,6 +39,7 @@ def run(options: ActionsOptions, basis: Done, demand: Done, peaks: Done, drift: 
         at = f"result/directions/{len(found)}"
         found.append(result)
         lines += _lines(result, at)
+        cautions += _cautions(result, at)
     return Outcome(ActionsResult(tuple(found)), tuple(lines), tuple(cautions))
 
 
@@ -75,6 +76,21 @@ def _lines(item: Actions, at: str) -> list[Line]:
     arm = Number(item.overturning, "length", f"{at}/overturning")
     lines.append(Line(f"Overturning over weight, {d}", "M / W", "{0} / {1}", (moment, weight), arm, "statics"))
     return lines
+
+
+def _cautions(item: Actions, at: str) -> list[Caution]:
+    static, scaling = item.static, item.scaling
+    if static is None or scaling.forces > 1.0 or item.modal_base_shear >= static.shear:
+        return []
+    numbers = (
+        Number(item.modal_base_shear, "force", f"{at}/modal_base_shear"),
+        Number(static.shear, "force", f"{at}/static/shear"),
+    )
+    text = (
+        f"In {item.direction} the modal base shear of {{0}} is below the static one of {{1}} and is not scaled up to it "
+        f"({scaling.clause})."
+    )
+    return [Caution("unscaled-base-shear", text, numbers, subject=item.direction)]
 
 
 METHOD = r"""

@@ -61,7 +61,9 @@ def run(basis: Basis) -> Outcome:
         )
     for i, share in enumerate(basis.mass_basis, 1):
         if not share.clause.strip():
-            cautions.append(Caution(f"mass-basis-{i}", f"Mass basis, {plain(share.load)}: stated without its clause."))
+            cautions.append(
+                Caution("mass-basis", f"Mass basis, {plain(share.load)}: stated without its clause.", subject=str(i))
+            )
     result = BasisResult(
         edition.name,
         edition.level,

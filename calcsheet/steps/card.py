@@ -2,10 +2,13 @@
 
 from __future__ import annotations
 
+import re
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from calcsheet.job.basis import spectrum_files
-from calcsheet.job.card import Card
+from calcsheet.job.card import Card, SetBasis
+from calcsheet.job.floorfile import LOADS
 from calcsheet.job.planfile import LINES, PLAN
 from calcsheet.steps.step import Caution, Outcome, Step, plain
 
@@ -40,6 +43,13 @@ GENERAL = (
         "components, design of diaphragms, foundation uplift, wind.",
     ),
 )
+
+UNCRACKED = re.compile(r"\b(gross|(un|non-?|not )cracked)\b", re.IGNORECASE)
+CRACKED = re.compile(r"(?<!not )(?<!non-)\bcrack(ed|ing|s)?\b", re.IGNORECASE)
+"""Words that say whether sections are taken as cracked."""
+CRACKS = re.compile(r"\b(concrete|masonry|brick)", re.IGNORECASE)
+NEVER_CRACKS = re.compile(r"\b(steel|timber|wood|aluminium)\b", re.IGNORECASE)
+"""Materials by which a ground says whether cracking is a question."""
 
 
 @dataclass(frozen=True)
@@ -83,8 +93,9 @@ def _general(card: Card) -> list[Caution]:
 
 def _tables(card: Card) -> tuple[str, ...]:
     """The files whose origin is to be stated."""
+    taken_off = () if card.masses is None else (card.masses.source, LOADS)
     plan = (LINES, PLAN) if card.model.lateral is None else ()
-    return ("storeys.csv", *plan, *card.model.files.values(), *spectrum_files(card).values())
+    return ("storeys.csv", *taken_off, *plan, *card.model.files.values(), *spectrum_files(card).values())
 
 
 def run(card: Card) -> Outcome:
@@ -95,23 +106,49 @@ def run(card: Card) -> Outcome:
     for i in waiting:
         assumption = card.assumptions[i - 1]
         cautions.append(
-            Caution(f"to-confirm-{i}", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.")
+            Caution("to-confirm", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.", subject=str(i))
         )
     for name in _tables(card):
         if not (name in card.origins and card.origins[name].source.strip()):
             cautions.append(
-                Caution(f"no-origin-{name}", f"{plain(name)}: the origin of its values is not stated.", answer=True)
+                Caution(
+                    "no-origin", f"{plain(name)}: the origin of its values is not stated.", answer=True, subject=name
+                )
             )
     for name, basis in card.stiffness.items():
         if not basis.ground.strip():
             cautions.append(
                 Caution(
-                    f"no-ground-{name}",
+                    "no-ground",
                     f'Stiffness set "{plain(name)}": the ground of its values is not stated.',
                     answer=True,
+                    subject=name,
                 )
             )
+    cautions += _cracking(card)
     return Outcome(CardResult(waiting), cautions=tuple(cautions))
+
+
+def _cracking(card: Card) -> Iterator[Caution]:
+    """Sets in use that are uncracked by their own words, or that leave it open."""
+    for name in dict.fromkeys((card.serves.forces, card.serves.drifts)):
+        basis = card.stiffness[name]
+        said, reduced = f"{name} {basis.ground}", _reduced(basis, card.directions.analysed)
+        if reduced or CRACKED.search(said) or (NEVER_CRACKS.search(said) and not CRACKS.search(said)):
+            continue
+        purposes = " and ".join(p for p in ("forces", "drifts") if getattr(card.serves, p) == name)
+        if UNCRACKED.search(said):
+            text = f'Stiffness set "{plain(name)}" serves {purposes} and is uncracked by its own words; check that this is meant.'
+            yield Caution("uncracked", text, answer=True, subject=name)
+        elif not basis.own and basis.ground.strip():
+            text = f'Stiffness set "{plain(name)}" serves {purposes} unreduced, and its ground does not speak of cracking; check.'
+            yield Caution("cracking-unstated", text, subject=name)
+
+
+def _reduced(basis: SetBasis, directions: tuple[str, ...]) -> bool:
+    """Whether a set takes less than the stiffnesses given, in every direction."""
+    factors = [basis.factor_of(d) for d in directions]
+    return all(factor is not None and factor < 1.0 for factor in factors)
 
 
 CARD = Step("card", 1, "Job card", Card, CardResult, (), run)

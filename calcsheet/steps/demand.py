@@ -9,6 +9,7 @@ import numpy as np
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.basis import Basis
 from calcsheet.core.codes.edition import Answer, Edition, Facts, Relation, Static
+from calcsheet.core.codes.en1998_2004 import EN1998
 from calcsheet.core.model import models_of
 from calcsheet.core.participation import Participation
 from calcsheet.core.response import facts_of
@@ -108,7 +109,7 @@ def run(options: DemandOptions, storeys: Done, modes: Done, parts: Done, basis: 
             at = f"result/directions/{len(found)}"
             found.append(demand)
             lines += _lines(demand, at)
-            cautions += _cautions(demand, at)
+            cautions += _cautions(demand, given.edition, at)
     return Outcome(DemandResult(tuple(found)), tuple(lines), tuple(cautions))
 
 
@@ -163,23 +164,34 @@ def _lines(demand: Demand, at: str) -> list[Line]:
     return lines
 
 
-def _cautions(demand: Demand, at: str) -> list[Caution]:
-    cautions = [Caution(f"torsion-{demand.direction}", f"Torsion, {demand.direction}: {demand.torsion.text}")]
+def _cautions(demand: Demand, edition: Edition, at: str) -> list[Caution]:
+    d = demand.direction
+    cautions = [Caution("torsion", f"Torsion, {d}: {demand.torsion.text}", subject=d)]
     if demand.facts.period > BEYOND:
         cautions.append(
             Caution(
-                f"long-period-{demand.direction}",
-                f"The first period in {demand.direction}, {{0}}, is beyond {BEYOND:g} s: displacements need a second look.",
+                "long-period",
+                f"The first period in {d}, {{0}}, is beyond {BEYOND:g} s{_ends(edition)}: ordinates and displacements need a "
+                "second look.",
                 (Number(demand.facts.period, "period", f"{at}/facts/period"),),
+                answer=isinstance(edition, EN1998),
+                subject=d,
             )
         )
     if demand.permitted.verdict != "passes":
         cautions.append(
             Caution(
-                f"permitted-{demand.direction}", f"{demand.permitted.text} ({demand.permitted.clause})", answer=True
+                "permitted",
+                f"Modal analysis in {d}: {demand.permitted.text} ({demand.permitted.clause})",
+                answer=True,
+                subject=d,
             )
         )
     return cautions
+
+
+def _ends(edition: Edition) -> str:
+    return f", up to which {edition.name} gives its spectrum (3.2.2.2(3))" if isinstance(edition, EN1998) else ""
 
 
 METHOD = r"""

@@ -115,14 +115,15 @@ def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
     if item.share[item.worst] > 1.0:
         number = Number(float(item.share[item.worst]), "share", f"{at}/share/{item.worst}")
         text = f'The drift in {d} exceeds its limit: {{0}} of it, in the storey below "{plain(levels[item.worst])}".'
-        cautions.append(Caution(f"drift-exceeds-{d}", text, (number,), answer=True))
+        cautions.append(Caution("drift-exceeds", text, (number,), answer=True, subject=d))
     if item.second_order is None:
         if item.second_order_note != "not in this edition":
             cautions.append(
                 Caution(
-                    f"no-second-order-{d}",
+                    "no-second-order",
                     f"Second-order effects in {d} are not assessed: {item.second_order_note}.",
                     answer=True,
+                    subject=d,
                 )
             )
     else:
@@ -131,12 +132,27 @@ def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
         if theta > item.second_order.ignore_up_to:
             number = Number(theta, "ratio", f"{at}/second_order/theta/{worst}")
             text = f"Second order in {d}: θ reaches {{0}}; {item.second_order.text} ({item.second_order.clause})."
-            cautions.append(Caution(f"second-order-{d}", text, (number,), answer=item.second_order.verdict != "passes"))
+            asked = item.second_order.verdict != "passes"
+            cautions.append(Caution("second-order", text, (number,), answer=asked, subject=d))
     for i, screen in enumerate(item.screens):
         if screen.verdict == "exceeds":
             text = f"Irregularity in {d}, {screen.name}: {screen.text}. {screen.consequence} ({screen.clause})."
-            cautions.append(Caution(f"screen-{d}-{i + 1}", plain(text), answer=True))
-    return cautions
+            cautions.append(Caution("screen", plain(text), answer=True, subject=f"{d}-{i + 1}"))
+    return cautions + _open_screens(item)
+
+
+def _open_screens(item: Drifts) -> list[Caution]:
+    """Irregularities that the numbers do not decide, in one caution a direction."""
+    groups = (("judgement", "Left to judgement"), ("not assessed", "Not assessed"))
+    told = []
+    for verdict, words in groups:
+        named = [f"{s.name} ({s.text})" for s in item.screens if s.verdict == verdict]
+        if named:
+            told.append(f"{words}: {', '.join(named)}.")
+    if not told:
+        return []
+    text = f"Irregularities in {item.direction} that the numbers do not decide. {' '.join(told)}"
+    return [Caution("screens-open", plain(text), subject=item.direction)]
 
 
 METHOD = r"""

@@ -6,10 +6,9 @@ date, and listeners hear of it afterwards: all numbers first, then all figures, 
 
 from __future__ import annotations
 
-import datetime as dt
 import re
 import threading
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Any, ClassVar, Protocol
@@ -18,8 +17,9 @@ import numpy as np
 
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
-from calcsheet.job.rewrite import with_value
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.memberfile import FILE as MEMBERS
+from calcsheet.job.rewrite import Value, with_value
+from calcsheet.job.storeyfile import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
@@ -31,7 +31,9 @@ LISTED = 3
 """Problems quoted where a step says why it can't be done; the others are counted."""
 
 
-FROM_FILES = ("card", "storeys", "basis")
+MASSES, STIFFNESSES = "masses", "stiffness take-off"
+"""The take-offs, which may feed the storeys."""
+FROM_FILES = ("card", MASSES, STIFFNESSES, "storeys", "basis")
 """Steps whose inputs are the job's files."""
 
 
@@ -218,15 +220,15 @@ class Job:
             self._save(change(self._read().reading), overwrite=False)
         self._tell()
 
-    def set_value(self, key: str, value: str | bool | int | float | dt.date | None) -> None:
+    def set_value(self, key: str | Sequence[str | int], value: Value | None) -> None:
         """Set a key of the job card and write it through, comments kept; None takes the key out.
 
         Parameters
         ----------
-        key : str
-            Dotted key, such as "job.revision" or 'answers."no-origin-storeys.csv"'.
-        value : str, bool, int, float, date or None
-            Its value.
+        key : str or sequence
+            Dotted key, such as "job.revision" or 'stiffness."half cracked".factor', or its parts.
+        value : str, bool, int, float, date, mapping of these, or None
+            Its value, a mapping as a table.
 
         Raises
         ------
@@ -272,8 +274,7 @@ class Job:
             self.files = self.folder.save_storeys(files, table, overwrite)
             self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
         except NotSavedError as error:
-            reading = read_storeys(table, files.card, files.matrices)
-            self.files, self._unsaved = replace(files, reading=reading), True
+            self.files, self._unsaved = files.with_storeys(table), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
         self._update()
 
@@ -282,6 +283,11 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
+        card = None if self.files is None else self.files.card
+        if card is not None:  # what the storeys are made from is to be traced
+            for key, feeds in ((MASSES, card.masses), (STIFFNESSES, card.model.members)):
+                if feeds is not None:
+                    self._nodes.setdefault(key, _Node(STEPS[key], {}, None))
         for key, node in self._nodes.items():
             upstream = tuple(self._nodes[k].payload for k in node.needs.values())
             if key in FROM_FILES:
@@ -301,7 +307,8 @@ class Job:
     def _current(self, node: _Node, upstream: tuple[Payload, ...]) -> bool:
         """Whether a step's payload was calculated from these very inputs."""
         same = len(upstream) == len(node.upstream) and all(a is b for a, b in zip(upstream, node.upstream, strict=True))
-        return same and node.payload["needs"] == node.needs and node.payload["inputs"] == to_json(node.inputs)
+        before = node.payload
+        return same and bool(before) and before["needs"] == node.needs and before["inputs"] == to_json(node.inputs)
 
     def _from_files(self, key: str, node: _Node) -> Payload:
         """The payload of a step whose inputs are the job's files."""
@@ -326,10 +333,17 @@ class Job:
             return self.files.basis
         if self.status.kind != "saved":
             raise _RefusedError(self.status.text)
-        problems = self.files.problems
-        if problems:
-            more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-            raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        if key == MASSES:
+            if self.files.floors is None:
+                raise _RefusedError("no floors.csv and loads.csv in the job folder; the mass take-off needs both")
+            _refuse_any(self.files.floors.messages)
+            return self.files.floors.floors
+        if key == STIFFNESSES:
+            if self.files.members is None:
+                raise _RefusedError(f"no {MEMBERS} in the job folder; the stiffness take-off needs it")
+            _refuse_any(self.files.members.messages)
+            return self.files.members.takeoff
+        _refuse_any(self.files.problems)
         return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
@@ -360,6 +374,13 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
+
+
+def _refuse_any(problems: Sequence[str]) -> None:
+    """Refuse what has problems, the first of them quoted."""
+    if problems:
+        more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
+        raise _RefusedError("; ".join(problems[:LISTED]) + more)
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

@@ -160,12 +160,13 @@ def _near_buckling(load: Critical, levels: tuple[str, ...], name: str, at: str) 
         return []
     return [
         Caution(
-            f"critical-load-{_key(name)}",
+            "critical-load",
             f"In {name} the gravity loads times {{0}} buckle the model elastically, most in the storey below level "
             f'"{plain(levels[load.storey])}", while second-order effects are not in the stiffness; from {NEAR_BUCKLING:g} on '
             "they may be left out (EN 1993-1-1:2005, 5.2.1(3), from memory).",
             (Number(load.factor, "ratio", f"{at}/factor"),),
             answer=load.factor <= 1.0,
+            subject=_key(name),
         )
     ]
 
@@ -194,9 +195,10 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
     for group in modes.repeated:
         cautions.append(
             Caution(
-                f"repeated-modes-{_key(name)}-{group[0]}",
+                "repeated-modes",
                 f"Modes {_listed(group)} in {name} share one frequency: their shapes are one choice of many, and only "
                 "their sum has a meaning.",
+                subject=f"{_key(name)}-{group[0]}",
             )
         )
     for group in modes.close:
@@ -205,30 +207,33 @@ def _cautions(model: Model, modes: Modes, name: str, at: str) -> list[Caution]:
             numbers = tuple(Number(float(modes.period[g - 1]), "period", f"{at}/period/{g - 1}") for g in ends)
             cautions.append(
                 Caution(
-                    f"close-modes-{_key(name)}-{group[0]}",
+                    "close-modes",
                     f"Modes {_listed(group)} in {name} are close (T from {{0}} to {{1}}, each above {CLOSE:g} of the one "
                     "before): peak values are to be combined with their correlation, not by the root of the sum of squares.",
                     numbers,
+                    subject=f"{_key(name)}-{group[0]}",
                 )
             )
     for i, local in enumerate(modes.local):
         cautions.append(
             Caution(
-                f"local-mode-{_key(name)}-{local.mode}",
+                "local-mode",
                 f'Mode {local.mode} in {name} is local: {{0}} of its kinetic energy is in level "{plain(local.level)}", a light '
                 "one. Base shear says little of what that level itself meets.",
                 (Number(local.energy, "share", f"{at}/local/{i}/energy"),),
+                subject=f"{_key(name)}-{local.mode}",
             )
         )
     usual, first = RULE_OF_THUMB * model.levels, float(modes.period[0])
     if not usual / FAR <= first <= usual * FAR:
         cautions.append(
             Caution(
-                f"unusual-period-{_key(name)}",
+                "unusual-period",
                 f"The first period in {name}, {{0}}, is far from {RULE_OF_THUMB:g} s a storey (common practice for frames): "
                 "check masses, stiffnesses and their units.",
                 (Number(first, "period", f"{at}/period/0"),),
                 answer=True,
+                subject=_key(name),
             )
         )
     return cautions

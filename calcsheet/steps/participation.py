@@ -86,33 +86,36 @@ def _lines(part: Participation, at: str) -> list[Line]:
 def _cautions(part: Participation, size: int, at: str) -> list[Caution]:
     cautions, kept = [], part.omega.size
     if part.needed is None:
+        reached = "one mode kept reaches" if kept == 1 else f"{kept} modes kept reach"
         cautions.append(
             Caution(
-                f"target-not-reached-{part.direction}",
-                f"In {part.direction} the {kept} modes kept reach {{0}} of the mass, short of the target of {{1}}: "
-                "keep more modes.",
+                "target-not-reached",
+                f"In {part.direction} the {reached} {{0}} of the mass, short of the target of {{1}}: keep more modes.",
                 (
                     Number(float(part.cumulative[-1]), "share", f"{at}/cumulative/{kept - 1}"),
                     Number(part.target, "share", f"{at}/target"),
                 ),
                 answer=True,
+                subject=part.direction,
             )
         )
     later = [m for m in part.significant if part.needed is not None and m > part.needed]
     if later:
         cautions.append(
             Caution(
-                f"significant-beyond-target-{part.direction}",
+                "significant-beyond-target",
                 f"In {part.direction} mode{'s' if len(later) > 1 else ''} {', '.join(map(str, later))} beyond the target "
                 f"still move{'' if len(later) > 1 else 's'} more than {SINGLE * 100:g} % of the mass "
                 "(EN 1998-1:2004, 4.3.3.3.1(3), asks for it).",
+                subject=part.direction,
             )
         )
     if kept < size:
         cautions.append(
             Caution(
-                f"modes-left-out-{part.direction}",
+                "modes-left-out",
                 f"In {part.direction} {kept} of {size} modes are kept; the shares and heights listed are theirs alone.",
+                subject=part.direction,
             )
         )
     return cautions

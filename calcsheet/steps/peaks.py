@@ -106,6 +106,8 @@ def run(options: PeaksOptions, storeys: Done, modes: Done, parts: Done, basis: D
             found.append(item)
             lines += _lines(item, at)
             cautions += _cautions(given, forces, direction)
+            if drifts is not forces:
+                cautions += _close(given, drifts.modes, direction, f"{direction}-drifts")
     return Outcome(PeaksResult(served, drifting, tuple(found)), tuple(lines), tuple(cautions))
 
 
@@ -175,28 +177,37 @@ def _lines(item: DirectionPeaks, at: str) -> list[Line]:
 
 
 def _cautions(basis: Basis, column: _Column, direction: str) -> list[Caution]:
-    cautions = []
-    independent = basis.edition.independent(column.modes.period)
-    if basis.combination == "SRSS" and independent.verdict != "passes":
-        cautions.append(
-            Caution(
-                f"srss-with-close-modes-{direction}",
-                f"In {direction} SRSS takes the modes as unrelated: {independent.text} ({independent.clause}).",
-                answer=True,
-            )
-        )
+    cautions = _close(basis, column.modes, direction, direction)
     if column.modes.omega.size < column.model.size and basis.residual == "none":
         cautions.append(
-            Caution(f"no-residual-{direction}", f"In {direction} modes are left out and no residual stands for them.")
+            Caution(
+                "no-residual",
+                f"In {direction} modes are left out and no residual stands for them.",
+                subject=direction,
+            )
         )
     if column.modes.omega.size < column.model.size and basis.residual == "zero period":
         cautions.append(
             Caution(
-                f"residual-reduced-{direction}",
+                "residual-reduced",
                 f"In {direction} the residual takes the design ordinate at period 0, which is reduced already.",
+                subject=direction,
             )
         )
     return cautions
+
+
+def _close(basis: Basis, modes: Modes, direction: str, subject: str) -> list[Caution]:
+    """Modes that are not plainly apart, combined by a rule that takes them as unrelated."""
+    independent = basis.edition.independent(modes.period)
+    if basis.combination != "SRSS" or independent.verdict == "passes":
+        return []
+    of = "" if subject == direction else ", for drifts,"
+    text = (
+        f"In {direction}{of} modes are combined by {basis.combination}, which takes them as unrelated: {independent.text} "
+        f"({independent.clause})."
+    )
+    return [Caution("srss-with-close-modes", text, answer=True, subject=subject)]
 
 
 METHOD = r"""

@@ -32,7 +32,7 @@ def _twice(plan: Plan) -> list[Caution]:
         for other in plan.lines[:i]:
             if _one(line, other):
                 text = f'Lines "{plain(other.name)}" and "{plain(line.name)}" run along one another: is one of them given twice?'
-                found.append(Caution(f"lines-along-one-another-{other.name}-{line.name}", text, answer=True))
+                found.append(Caution("lines-along-one-another", text, answer=True, subject=f"{other.name}-{line.name}"))
     return found
 
 
@@ -50,7 +50,7 @@ def _outside(plan: Plan, levels: tuple[str, ...]) -> list[Caution]:
         if not (x_from <= x <= x_to and y_from <= y <= y_to):
             numbers = tuple(Number(float(v), "length", f"inputs/plan/centre/{i}/{j}") for j, v in enumerate((x, y)))
             text = f'The centre of mass of level "{plain(levels[i])}", x = {{0}}, y = {{1}}, lies outside its floor.'
-            found.append(Caution(f"centre-of-mass-outside-{levels[i]}", text, numbers, answer=True))
+            found.append(Caution("centre-of-mass-outside", text, numbers, answer=True, subject=levels[i]))
     return found
 
 
@@ -65,5 +65,5 @@ def _slender(plan: Plan, levels: tuple[str, ...]) -> list[Caution]:
                 f'The floor of level "{plain(level)}" is {long / short:.1f} times as long as wide, beyond {SLENDER:g}: whether '
                 "it is rigid in its plane wants a reason (EN 1998-1:2004, 4.2.3.2(5), from memory)."
             )
-            found.append(Caution(f"slender-floor-{level}", text, answer=True))
+            found.append(Caution("slender-floor", text, answer=True, subject=level))
     return found

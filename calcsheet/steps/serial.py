@@ -51,7 +51,13 @@ def to_json(value: Any) -> Any:
 
 
 def from_json(hint: Any, data: Any) -> Any:
-    """The value of type `hint` that `to_json` made `data` from."""
+    """The value of type `hint` that `to_json` made `data` from; entries that are missing take their declared defaults.
+
+    Raises
+    ------
+    KeyError
+        A missing entry that has no default.
+    """
     origin, args = get_origin(hint), get_args(hint)
     if origin in (Union, types.UnionType):
         return None if data is None else from_json(_chosen(args, data), data)
@@ -64,10 +70,16 @@ def from_json(hint: Any, data: Any) -> Any:
     if isinstance(hint, type) and issubclass(hint, BaseModel):
         return hint.model_validate_json(json.dumps(data))
     if dataclasses.is_dataclass(hint) and isinstance(hint, type):
+        if not isinstance(data, Mapping):
+            raise TypeError(f"{hint.__name__}: got {type(data).__name__}; must be an object")
         hints = get_type_hints(hint)
-        given = {f.name: from_json(hints[f.name], data[f.name]) for f in dataclasses.fields(hint) if f.name in data}
-        return hint(**given)  # what is missing has its default
+        given = [f for f in dataclasses.fields(hint) if f.name in data or not _optional(f)]
+        return hint(**{f.name: from_json(hints[f.name], data[f.name]) for f in given})
     return float(data) if hint is float else data
+
+
+def _optional(field: dataclasses.Field[Any]) -> bool:
+    return field.default is not dataclasses.MISSING or field.default_factory is not dataclasses.MISSING
 
 
 def _chosen(args: tuple[Any, ...], data: Any) -> Any:
@@ -75,7 +87,8 @@ def _chosen(args: tuple[Any, ...], data: Any) -> Any:
     members = [a for a in args if a is not type(None)]
     if len(members) == 1:
         return members[0]
-    return next(a for a in members if getattr(a, "kind", None) == data["kind"])
+    kinds = {getattr(a, "kind", None): a for a in members}
+    return kinds[data["kind"]]
 
 
 def fingerprint(data: Any) -> str:

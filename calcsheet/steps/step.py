@@ -11,6 +11,7 @@ from numpy.linalg import LinAlgError
 from calcsheet.core.arrays import agrees
 from calcsheet.core.errors import ModelError
 from calcsheet.core.evidence import Evidence
+from calcsheet.steps.cautions import CAUTIONS
 from calcsheet.steps.serial import NotFiniteError, from_json, to_json
 
 Payload = dict[str, Any]
@@ -75,20 +76,42 @@ class Caution:
 
     Parameters
     ----------
-    key : str
-        Stable name under which the job can answer it.
+    kind : str
+        What it is about: a key of `CAUTIONS`.
     text : str
-        The caution, with places ``{0}`` … for `numbers`.
+        What was found, with places ``{0}`` … for `numbers`.
     numbers : tuple of Number
         The numbers that raise it.
     answer : bool
         Whether an answer of the engineer's is asked for.
+    subject : str
+        What raises it, where there can be several of a kind: a direction, a file, a level.
+
+    Raises
+    ------
+    ValueError
+        A kind of which nothing is said.
     """
 
-    key: str
+    kind: str
     text: str
     numbers: tuple[Number, ...] = ()
     answer: bool = False
+    subject: str = ""
+
+    def __post_init__(self) -> None:
+        if self.kind not in CAUTIONS:
+            raise ValueError(f'kind of caution: got "{self.kind}"; must be one of {", ".join(CAUTIONS)}')
+
+    @property
+    def key(self) -> str:
+        """Its stable name."""
+        return key_of(self.kind, self.subject)
+
+
+def key_of(kind: str, subject: str) -> str:
+    """Stable name of a caution."""
+    return f"{kind}-{subject}" if subject else kind
 
 
 @dataclass(frozen=True)

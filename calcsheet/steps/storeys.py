@@ -14,6 +14,12 @@ JUMP = 20.0
 """Ratio of neighbouring storeys' stiffnesses or levels' masses from which a slip of unit is suspected."""
 HEIGHTS = (2.0, 12.0)
 """Storey heights [m] outside of which a slip is suspected."""
+WEIGHTS = (3.0, 15.0)
+"""Usual weight of a level over its floor area [kN/m²], from steel and timber with light decks up (common practice)."""
+FAR = 2.0
+"""Factor beyond these from which a slip of unit is suspected."""
+NAMED = 4
+"""Levels that a caution names before it counts the rest."""
 NUMBERED = re.compile(r"(?:.*\D)?(\d+)\s*")
 """Name of a level that ends in a number."""
 BELOW_GROUND = re.compile(r"\s*(b|cellar|lower|p|-|\u2212)", re.IGNORECASE)
@@ -23,11 +29,12 @@ ROOF = re.compile(r"\s*(roof|top)( level| floor| slab)?\s*", re.IGNORECASE)
 
 def run(storeys: Storeys) -> Outcome:
     cautions = [*_jumps("mass", storeys.mass.tolist(), storeys.level, "inputs/mass", "mass")]
-    cautions = [*_order(storeys.level), *_heights(storeys), *cautions]
+    sums = totals(storeys)
+    cautions = [*_order(storeys.level), *_heights(storeys), *_weights(sums, storeys), *cautions]
     for i, given in enumerate(storeys.stiffness):
         cautions += _of_set(given, storeys.level, f"inputs/stiffness/{i}")
     cautions += [*_left_out(storeys), *_springs(storeys), *cautions_of_plan(storeys)]
-    return Outcome(totals(storeys), cautions=tuple(cautions))
+    return Outcome(sums, cautions=tuple(cautions))
 
 
 def _order(levels: tuple[str, ...]) -> list[Caution]:
@@ -64,6 +71,42 @@ def _heights(storeys: Storeys) -> list[Caution]:
     return [Caution("storey-heights", text, numbers, answer=True)]
 
 
+def _weights(sums: Totals, storeys: Storeys) -> list[Caution]:
+    """Levels of unusual weight; the take-off names them itself where the masses come from it."""
+    if sums.weight_per_area is None or storeys.given == "take-off":
+        return []
+    return unusual_weights(sums.weight_per_area.tolist(), storeys.level)
+
+
+def unusual_weights(found: list[float], levels: tuple[str, ...], below: int = 0, subject: str = "") -> list[Caution]:
+    """Levels of unusual weight over floor area; an answer is asked for where most levels are far from the usual.
+
+    Parameters
+    ----------
+    found : list of float
+        Weight over floor area of each level, in `result/weight_per_area` [kN/m²].
+    levels : tuple of str
+        The levels.
+    below : int
+        How many of them, from the first, are left out.
+    subject : str
+        Subject of the caution.
+    """
+    low, high = WEIGHTS
+    strange = [i for i, weight in enumerate(found) if i >= below and not low <= weight <= high]
+    if not strange:
+        return []
+    named = ", ".join(f'{{{n}}} at level "{plain(levels[i])}"' for n, i in enumerate(strange[:NAMED]))
+    more = f" and {len(strange) - NAMED} more" if len(strange) > NAMED else ""
+    numbers = tuple(Number(found[i], "pressure", f"result/weight_per_area/{i}") for i in strange[:NAMED])
+    text = (
+        f"Weight over floor area outside {low:g} to {high:g} kN/m², about 60 to 300 psf (common practice): {named}{more}; "
+        "check masses and areas."
+    )
+    far = sum(not low / FAR <= weight <= high * FAR for weight in found[below:])
+    return [Caution("weight-per-area", text, numbers, answer=2 * far > len(found) - below, subject=subject)]
+
+
 def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Caution]:
     cautions: list[Caution] = []
     for direction, lateral in given.lateral.items():
@@ -75,9 +118,10 @@ def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Cauti
         if lateral.asymmetry > 0.0:
             cautions.append(
                 Caution(
-                    f"unsymmetric-{given.name}-{direction}",
+                    "unsymmetric",
                     f"The {lateral.kind} in {direction} ({plain(given.name)}) is unsymmetric by {lateral.asymmetry:.1e} of its "
                     "largest entry; its symmetric part is used.",
+                    subject=f"{given.name}-{direction}",
                 )
             )
     return cautions
@@ -94,8 +138,9 @@ def _left_out(storeys: Storeys) -> list[Caution]:
     }
     return [
         Caution(
-            f"no-{heading.replace(' ', '-')}-{direction}",
+            "deformation-neglected",
             f"No {heading} is given in {direction}: that deformation is neglected, and the model is stiffer than the building.",
+            subject=f"{heading.replace(' ', '-')}-{direction}",
         )
         for heading, direction in sorted(missing)
     ]
@@ -109,7 +154,7 @@ def _springs(storeys: Storeys) -> list[Caution]:
             numbers.append(Number(springs.damping, "share", f"{at}/damping"))
         said = " Its damping, {0}, is used nowhere: ordinates keep the edition's." if numbers else ""
         text = f"The base in {direction} stands on springs, without mass of its own.{said}"
-        cautions.append(Caution(f"base-springs-{direction}", text, tuple(numbers)))
+        cautions.append(Caution("base-springs", text, tuple(numbers), subject=direction))
     return cautions
 
 
@@ -121,10 +166,11 @@ def _jumps(what: str, values: list[float], levels: tuple[str, ...], at: str, qua
             here, there = plain(levels[i]), plain(levels[i - 1])
             cautions.append(
                 Caution(
-                    f"jump-{what.replace(' ', '-')}-{levels[i]}",
+                    "jump",
                     f'{plain(what[0].upper() + what[1:])}: {{0}} at level "{here}" beside {{1}} at level "{there}"; '
                     "check value and unit.",
                     (Number(values[i], quantity, f"{at}/{i}"), Number(values[i - 1], quantity, f"{at}/{i - 1}")),
+                    subject=f"{what.replace(' ', '-')}-{levels[i]}",
                 )
             )
     return cautions

@@ -282,7 +282,7 @@ def _cautions(item: DirectionTorsion, levels: tuple[str, ...], at: str) -> list[
     if item.share[i, edge] > 1.0:
         number = Number(float(item.share[i, edge]), "share", f"{at}/share/{i}/{edge}")
         text = f'The drift in {d} exceeds its limit at an edge: {{0}} of it, in the storey below "{plain(levels[i])}".'
-        cautions.append(Caution(f"edge-drift-exceeds-{d}", text, (number,), answer=True))
+        cautions.append(Caution("edge-drift-exceeds", text, (number,), answer=True, subject=d))
     if item.static is not None and float(item.static.ratio.max()) > IRREGULAR:
         k = int(np.argmax(item.static.ratio))
         number = Number(float(item.static.ratio[k]), "ratio", f"{at}/static/ratio/{k}")
@@ -291,7 +291,7 @@ def _cautions(item: DirectionTorsion, levels: tuple[str, ...], at: str) -> list[
             f'the storey below "{plain(levels[k])}": beyond {IRREGULAR:g} ASCE/SEI 7-16, Table 12.3-1, speaks of torsional '
             "irregularity, beyond 1.4 of an extreme one (from memory)."
         )
-        cautions.append(Caution(f"torsional-irregularity-{d}", text, (number,), answer=True))
+        cautions.append(Caution("torsional-irregularity", text, (number,), answer=True, subject=d))
     return cautions
 
 

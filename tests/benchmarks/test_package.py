@@ -19,10 +19,11 @@ PAGE = """
 import sys, time
 import nbformat
 from calcsheet.record.collect import collect
-from calcsheet.record.exporter import record_html
+from calcsheet.record.document import record_of
+from calcsheet.record.files import html_of
 content = collect(nbformat.read(sys.argv[1], 4))
 start = time.process_time()
-html = record_html(content, "a4")
+html = html_of(record_of(content))
 print(time.process_time() - start, len(html))
 """
 

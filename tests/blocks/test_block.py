@@ -32,9 +32,9 @@ def words(html):
 
 def period(sheet):
     """First period as the twin of the modes shows it."""
-    return re.search(r'<data value="/modes/result/models/0/modes/period/0">([^<]*)', sheet.twin("modes")["text/html"])[
-        1
-    ]
+    return re.search(
+        r'<data value="/modes/result/models/0/modes/period/0"[^>]*>([^<]*)', sheet.twin("modes")["text/html"]
+    )[1]
 
 
 def test_every_block_shows_a_live_view_and_a_twin(sheet, cells):

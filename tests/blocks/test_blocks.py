@@ -7,22 +7,27 @@ import re
 import pytest
 
 from calcsheet.blocks import (
+    Cautions,
     DemandSpectrum,
     DriftCheck,
     EdgeDrifts,
     FloorLines,
     JobCard,
+    MassTakeoff,
     ModalTable,
     ModePlot,
     ModeSolver,
     ParticipationSummary,
     StaticComparison,
+    StiffnessTakeoff,
     StoreyActions,
     StoreyTable,
 )
 
 WANTED = {
     StoreyTable: JobCard,
+    MassTakeoff: JobCard,
+    StiffnessTakeoff: JobCard,
     ModeSolver: StoreyTable,
     ModePlot: ModeSolver,
     ParticipationSummary: ModeSolver,
@@ -33,6 +38,7 @@ WANTED = {
     FloorLines: ModeSolver,
     EdgeDrifts: DriftCheck,
     StaticComparison: StoreyActions,
+    Cautions: JobCard,
 }
 
 

@@ -9,8 +9,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from calcsheet.core.lateral import KINDS
-from calcsheet.job.card import Card, ModelChoice, card_of, dotted, parse_card, parse_toml
+from calcsheet.job.card import Card, ModelChoice, card_of, parse_card, parse_toml
 from calcsheet.job.errors import InputError
+from calcsheet.job.wording import dotted
 from calcsheet.steps.serial import fingerprint, from_json, to_json
 
 MATRIX = ('"storey chain"', '"stiffness matrix"\nx = "kx.csv"\ny = "ky.csv"')
@@ -82,7 +83,8 @@ FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
         (
             'name = ""',
             'name = "a. writer"',
-            'people.checked.name: got "a. writer", who prepared it; must be another person',
+            'people.checked.name: got "a. writer", who prepared it; must be another person, or '
+            "people.same_person_may_check = true",
         ),
         (
             "base_elevation = 0",
@@ -144,7 +146,22 @@ FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
         ),
         ("[[assumptions]]", "[assumptions]", "assumptions: got a table; must be tables [[assumptions]]"),
         ('source = "mass take-off"', "source = 3", 'origins."storeys.csv".source: got 3; must be a text'),
-        ("[answers]", '[answers]\n"light roof" = 3', 'answers."light roof": got 3; must be a text'),
+        (
+            "[answers]",
+            '[answers]\n"light roof" = "kept"',
+            'answers."light roof": got "kept"; must be a table with text, by, date and finding, such as { text = "…", by = "…", '
+            'date = 2026-01-31, finding = "0a1b2c3d" }; `calcsheet answer` writes it',
+        ),
+        (
+            "[answers]",
+            '[answers."light roof"]\nfinding = "0A1B"',
+            'answers."light roof".finding: got "0A1B"; must be the 8 characters that stand beside the finding in the record',
+        ),
+        (
+            "[answers]",
+            '[answers."light roof"]\ndate = "2026-01-31"',
+            'answers."light roof".date: got "2026-01-31"; must be a date without quotation marks, such as 2026-01-31',
+        ),
         ("[answers]", "[answers", "line 52: expected ']' at the end of a table declaration; must be TOML"),
         ("[serves]", "[serves", "line 41: expected ']' at the end of a table declaration; must be TOML"),
         ("2026-01-31", "2026-02-30", "line 9: invalid date or datetime; must be TOML"),

@@ -70,3 +70,16 @@ def test_refusals(read):
     assert refusal(edits.paste, got, 0, "stiffness y", "1\t2\t3") == (
         "storeys.csv: 3 columns pasted from stiffness y; must be at most 2, the columns from there on"
     )
+
+
+def test_whole_columns_in_core_units_to_six_digits(read):
+    text = "level,storey height [m],mass [t],stiffness x [MN/m],stiffness y [kN/m]\nRoof,3.4,200,,5\n1,3,300,5,5\n"
+    numbers = {"stiffness x": {"Roof": 123456.789, "1": 2e6 / 3.0}, "stiffness y": {"1": 250000.0}}
+    assert rows(edits.set_columns(read(text=text), numbers)) == ["Roof,3.4,200,123.4570,5", "1,3,300,666.6670,250000"]
+    told = (
+        'storeys.csv: no column "mass x"; must be one of "level", "storey height", "mass", "stiffness x", "stiffness y"'
+    )
+    assert refusal(edits.set_columns, read(text=text), {"mass x": {"Roof": 1.0}}) == told
+    text = text.replace("x [MN/m]", "x")
+    told = 'storeys.csv, heading "stiffness x": no unit; must give one'
+    assert refusal(edits.set_columns, read(text=text), numbers) == told

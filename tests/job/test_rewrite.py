@@ -37,8 +37,13 @@ def changes(before: str, after: str) -> list[str]:
         ("job.purpose", "tender", ['+purpose = "tender"\n']),
         ("job.reason", None, ['-reason = "first issue"\n']),
         ("job.purpose", None, []),
-        ('answers."light roof"', "kept", ['+"light roof" = "kept"\n']),
-        (("answers", "light roof"), "kept", ['+"light roof" = "kept"\n']),
+        ('stiffness."half cracked".factor', 0.7, ['+[stiffness."half cracked"]\n', "+factor = 0.7\n"]),
+        (("stiffness", "half cracked", "factor"), 0.7, ['+[stiffness."half cracked"]\n', "+factor = 0.7\n"]),
+        (
+            ("answers", "light roof"),
+            {"text": "kept", "date": dt.date(2026, 3, 1)},
+            ['+[answers."light roof"]\n', '+text = "kept"\n', "+date = 2026-03-01\n"],
+        ),
         ("assumptions.0.ground", "test pits", ['-ground = "ground report"\n', '+ground = "test pits"\n']),
         ("people.approved.name", "B. Signer", ["+[people.approved]\n", '+name = "B. Signer"\n']),
     ],
@@ -83,5 +88,5 @@ def test_refusals(text, key, message):
 
 @given(st.text(st.characters(exclude_categories=["Cs"])), st.text(st.characters(exclude_categories=["Cs"])))
 def test_any_text_is_read_back(card_text, key, value):
-    after = with_value(card_text, ("answers", key), value)
-    assert parse_toml(after) == parse_toml(card_text) | {"answers": {key: value}}
+    after = with_value(card_text, ("answers", key), {"text": value})
+    assert parse_toml(after) == parse_toml(card_text) | {"answers": {key: {"text": value}}}

@@ -5,7 +5,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from calcsheet.job.errors import InputError
-from calcsheet.job.table import delete_row, insert_row, move_row, set_cell
+from calcsheet.job.table import add_column, delete_row, insert_row, move_row, set_cell
 
 TEXT = 'level;mass [t]\r\n"Dach; oben";212,50\r\n\r\n2;240\r\n1;"260"\r\n\r\n\r\n'
 
@@ -92,6 +92,13 @@ def test_short_and_long_rows(table):
     got = table("a,b,c\n1\n1,2,3,4\n")
     assert got.rows == (("1", "", ""), ("1", "2", "3", "4"))
     assert set_cell(got, 0, 2, "x").content() == b"a,b,c\n1,,x\n1,2,3,4\n"
+
+
+def test_a_column_is_added_on_the_right(table):
+    got = add_column(table('level;"a;b"\r\n\r\n3;1\r\n"2";"x"\r\n1\r\n'), "mass [t]", ["7", "8;5", "9"])
+    assert got.content().decode() == 'level;"a;b";mass [t]\r\n\r\n3;1;7\r\n"2";"x";"8;5"\r\n1;;9\r\n'
+    assert got.headings == ("level", "a;b", "mass [t]")
+    assert [row[2] for row in got.rows] == ["7", "8;5", "9"]
 
 
 @pytest.mark.parametrize(

@@ -49,13 +49,13 @@ def test_own_cells_are_kept_with_what_they_show(static, in_folder, cells):
     content = collect(static.executed([*cells, "area = 3 * 7", "print(area)\narea", "modes", "# Words\n"]))
     own = [part for part in content.parts if isinstance(part, Own)]
     assert [part.source for part in own] == ["area = 3 * 7", "print(area)\narea"]
-    assert [o.output_type for o in own[1].outputs] == ["execute_result", "stream"]
+    assert sorted(o["text/plain"] for o in own[1].outputs) == ["21", "21\n"]
 
 
 def test_a_cell_that_shows_a_block_and_prints_gives_both(static, in_folder, cells):
     content = collect(static.executed([*cells, 'print("see below")\nModePlot(modes, normalise="roof")']))
     own, shown = content.parts[-2:]
-    assert own.outputs[0]["text"] == "see below\n"
+    assert own.outputs[0]["text/plain"] == "see below\n"
     assert shown.options["normalise"] == "roof"
 
 

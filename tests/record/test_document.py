@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import json
 import re
+from hashlib import sha256
 
 import pytest
 
 from calcsheet.record.collect import collect
 from calcsheet.record.document import page_of, record_of
 from calcsheet.record.errors import RecordError
-from calcsheet.record.exporter import record_html
+from calcsheet.record.files import html_of
 from calcsheet.record.page import render_page
 from calcsheet.steps.graph import Job
 from calcsheet.steps.modes import ModesOptions
@@ -91,7 +92,7 @@ def record(static, job_folder, monkeypatch, calculation):
         folder = job_folder(card, storeys, us=us, files=files)
         monkeypatch.chdir(folder)
         content = collect(static.executed(sources))
-        return content, record_html(content, paper)
+        return content, html_of(record_of(content, paper))
 
     return make
 
@@ -157,8 +158,11 @@ def test_sections_stand_in_order(record, document):
     ]
     places = [seen.headings.index(heading) for heading in expected]
     assert places == sorted(places)
-    assert seen.headings.count("Method") == 2  # of the modes, of the participation: once each
-    assert seen.headings.count("Worked lines") == 2
+    assert [h for h in seen.headings if h.startswith("Method")] == ["Method: natural modes", "Method: participation"]
+    assert [h for h in seen.headings if h.startswith("Worked lines")] == [
+        "Worked lines: natural modes",
+        "Worked lines: participation",
+    ]
 
 
 def test_the_cover_names_who_and_what(record, document):
@@ -220,18 +224,24 @@ def test_who_checks_and_approves_signs_the_issued_record(record, document):
 
 
 def test_cautions_with_their_answers_are_shown(record, document):
+    no_ground = 'Stiffness set "cracked": the ground of its values is not stated.'
     content, html = record(
         ('ground = "cracked beams"', 'ground = ""'),
-        ("[answers]", '[answers]\n"no-ground-cracked" = "From the <tests> of 2025."'),
+        (
+            "[answers]",
+            '[answers."no-ground-cracked"]\ntext = "From the <tests> of 2025."\nby = "O. Quist"\ndate = 2026-03-09\n'
+            f'finding = "{sha256(no_ground.encode()).hexdigest()[:8]}"',
+        ),
         sources=("# W", *calculation_cells(keep=1)),
     )
     seen = document(html).words
     for payload in content.payloads.values():
         for caution in payload["cautions"]:
             start = caution["text"].split("{")[0].replace("{{", "{")
-            assert " ".join(start.split()) in " ".join(seen.split()), caution["key"]
-    assert "From the <tests> of 2025." in seen
-    assert "Needs an answer under target-not-reached-x" in seen
+            assert " ".join(start.split()) in " ".join(seen.split()), caution["kind"]
+    assert "Answer: From the <tests> of 2025. (O. Quist, 2026-03-09)" in seen
+    assert seen.count("Needs an answer. In ") == seen.count("Checker: \u2013") - 1 == 2
+    assert "To be answered under answers.target-not-reached-x, finding " in seen
     assert "qualified engineer" in seen
 
 
@@ -297,7 +307,7 @@ def test_an_equation_that_cannot_be_set_names_its_cell(record):
 
 def test_paper_and_screen_hold_the_same_numbers(record, document):
     content, html = record()
-    paper = render_page(page_of(content, "pdf", "Engine 1"), "pdf", "a4")
+    paper = render_page(page_of(record_of(content, engine="Engine 1"), "pdf"), "pdf", "a4")
     assert document(paper).numbers == document(html).numbers
     assert document(paper).script == ""
     assert "<math" in html

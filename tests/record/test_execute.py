@@ -37,7 +37,7 @@ def test_the_template_runs_as_it_is(tmp_path, job_folder):
     told = []
     execute(notebook, target, lambda cell, cells: told.append((cell, cells)))
     content = collect(notebook)
-    assert [payload["state"] for payload in content.payloads.values()] == ["ok"] * 4
+    assert [payload["state"] for payload in content.payloads.values()] == ["ok"] * 5
     assert replay(content.payloads) == []
     assert {part.view for part in content.parts if hasattr(part, "view")} == {
         "card",

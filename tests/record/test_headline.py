@@ -8,13 +8,20 @@ import shutil
 
 import pytest
 
-from calcsheet.record.headline import brief, in_full
+from calcsheet.record.collect import Content
+from calcsheet.record.document import record_of
+from calcsheet.record.headline import brief
+from calcsheet.record.headline import in_full as of_record
 from calcsheet.record.issue import issue
 from calcsheet.resources import folder
 from calcsheet.steps.demand import DemandOptions
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
 from calcsheet.steps.replay import replay
+
+
+def in_full(payloads):
+    return of_record(record_of(Content((), payloads)))
 
 
 def text(html: str) -> str:
@@ -175,7 +182,8 @@ def test_a_record_issued_end_to_end(quick_kernel, tmp_path, document, where, sys
     assert headline.count("T₁/Ta = ") == 2
     for title in ("Design demand", "Modal peaks", "Drift, second order, irregularities", "Storey actions"):
         assert title in front
-    assert seen.headings.count("Worked lines") >= 5
+    assert sum(heading.startswith("Worked lines: ") for heading in seen.headings) >= 5
     if system == "US":
         for word in (" kN", "[m]", "[kN", " mm"):
-            assert word not in seen.words, word
+            # the usual weight over area is said in both systems
+            assert word not in seen.words.replace("3 to 15 kN/m²", ""), word

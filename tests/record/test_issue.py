@@ -11,10 +11,12 @@ import pytest
 
 from calcsheet.job.errors import InputError
 from calcsheet.record import issue as issuing
-from calcsheet.record.collect import collect
+from calcsheet.record import place
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue
 from calcsheet.record.pdf import CHOICE, NoEngine
+from calcsheet.record.register import rows_of
+from calcsheet.record.tables import csv_files
 
 CUT_OFF = 9
 
@@ -44,7 +46,7 @@ def test_a_record_is_html_and_json_in_its_revisions_folder(folder, document):
     assert [path.name for path in done.files] == ["HR-S-21-rev-A.html", "HR-S-21-rev-A.json"]
     assert done.status == "FOR CHECKING"
     assert done.note == ""
-    assert left(folder) == ["A"]
+    assert left(folder) == ["A", "register.csv"]
     assert told
     html, data = (path.read_text(encoding="utf-8") for path in done.files)
     assert json.loads(document(html).script) == json.loads(data)
@@ -68,17 +70,17 @@ def test_a_revision_is_issued_once(folder):
     card = folder / "job.toml"
     card.write_text(card.read_text().replace('revision = "A"', 'revision = "B"'))
     assert issue(folder, to=["html"]).folder.name == "B"
-    assert left(folder) == ["A", "B"]
+    assert left(folder) == ["A", "B", "register.csv"]
 
 
 def test_somebody_who_is_first_wins(folder, monkeypatch):
-    build = issuing.record_html
+    build = issuing.files_of
 
     def meanwhile(*args):
-        (folder / "issued" / "A").mkdir()
+        (folder / "issued" / "A").mkdir(parents=True)
         return build(*args)
 
-    monkeypatch.setattr(issuing, "record_html", meanwhile)
+    monkeypatch.setattr(issuing, "files_of", meanwhile)
     assert "is issued already" in refusal(folder, to=["html"])
     assert left(folder) == ["A"]
     assert list((folder / "issued" / "A").iterdir()) == []
@@ -88,7 +90,7 @@ def test_a_build_that_fails_leaves_nothing(folder, monkeypatch):
     def fails(*_):
         raise MemoryError("no room")
 
-    monkeypatch.setattr(issuing, "record_html", fails)
+    monkeypatch.setattr(issuing, "files_of", fails)
     with pytest.raises(MemoryError):
         issue(folder, to=["html"])
     assert left(folder) == []
@@ -98,29 +100,62 @@ def test_an_interrupt_leaves_nothing(folder, monkeypatch):
     def interrupted(*_):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(issuing.os, "rename", interrupted)
+    monkeypatch.setattr(place.os, "rename", interrupted)
     with pytest.raises(KeyboardInterrupt):
         issue(folder, to=["html"])
     assert left(folder) == []
 
 
 @pytest.mark.skipif(os.name != "posix", reason="needs fork")
-def test_a_process_killed_before_the_move_leaves_no_half_record(folder, monkeypatch, quick_kernel, calculation):
-    monkeypatch.chdir(folder)
-    content = collect(quick_kernel.executed(calculation))
-    target = folder / "issued" / "A"
-
+def test_a_process_killed_before_the_move_leaves_no_half_record(folder):
     def build():
-        issuing.os.rename = lambda *_: os._exit(CUT_OFF)
-        issuing._built(content, target, ["html"], "a4", "", "")
+        place.os.rename = lambda *_: os._exit(CUT_OFF)
+        issue(folder, to=["html"])
 
     process = multiprocessing.get_context("fork").Process(target=build)
     process.start()
     process.join(60)
     assert process.exitcode == CUT_OFF
-    assert not target.exists()
-    assert all(name.startswith(".building-") for name in left(folder))
-    assert issue(folder, to=["html"]).folder == target  # and stands in nobody's way
+    assert [name.rstrip("_abcdefghijklmnopqrstuvwxyz0123456789") for name in left(folder)] == [place.BUILDING]
+    assert issue(folder, to=["html"]).folder == folder / "issued" / "A"  # and stands in nobody's way
+
+
+def test_every_table_as_csv_beside_what_is_made_otherwise(folder):
+    done = issue(folder, to=["html", "csv"])
+    assert [path.relative_to(done.folder).as_posix() for path in done.files] == [
+        "HR-S-21-rev-A.html",
+        "HR-S-21-rev-A.json",
+        "tables/index.csv",
+    ]
+    record = json.loads(done.files[1].read_text(encoding="utf-8"))
+    made = {path.name: path.read_bytes() for path in (done.folder / "tables").iterdir()}
+    assert made == csv_files(done.files[0].read_text(encoding="utf-8"), record)
+    assert len(made) > 10
+
+
+def test_csv_alone_adds_to_what_is_made_without_it(folder, monkeypatch):
+    def none(name=None):
+        raise NoEngine("no PDF engine loads here; install one")
+
+    monkeypatch.setattr(issuing, "choose_engine", none)
+    done = issue(folder, to=["csv"])
+    assert [path.suffix for path in done.files] == [".html", ".json", ".csv"]
+    assert done.note == "no PDF was made: no PDF engine loads here; install one"
+
+
+def test_a_register_that_can_not_be_written_is_a_note(folder):
+    (folder / "issued" / "register.csv").mkdir(parents=True)
+    done = issue(folder, to=["html"])
+    assert done.folder.is_dir()
+    assert done.note.startswith("register.csv: not saved")
+    assert done.note.endswith(f"then `calcsheet register {folder}` writes it")
+
+
+def test_the_register_is_written_with_the_record(folder):
+    issue(folder, to=["html"])
+    (row,) = rows_of(folder)
+    assert (row.revision, row.status, row.prepared_by) == ("A", "FOR CHECKING", "Odile Quist")
+    assert "HR-S-21-rev-A.json" in (folder / "issued" / "register.csv").read_text(encoding="utf-8-sig")
 
 
 def test_a_wrong_row_is_quoted_before_anything_runs(folder):

@@ -5,12 +5,12 @@ from __future__ import annotations
 import nbformat
 import pytest
 
-from calcsheet.record.collect import Own
-from calcsheet.record.own import own_cell
+from calcsheet.record.own import own_cell, printable
+from calcsheet.record.parts import Own
 
 
 def shown(*outputs, source="x = 1"):
-    return own_cell(Own(source, outputs))
+    return own_cell(Own(source, tuple(printable(output) for output in outputs)))
 
 
 def data(**kinds):
@@ -85,3 +85,9 @@ def test_printed_text_is_text_without_colour_codes(document):
 
 def test_what_has_no_words_is_named():
     assert "[an output that can’t be printed]" in shown(data(application_pdf="JVBERi0="))
+
+
+def test_a_picture_from_elsewhere_can_hold_nothing_but_its_data():
+    html = own_cell(Own("x", ({"image/png": 'aGk="><script>gone()</script>', "text/plain": '"><b>'},)))
+    assert "<script" not in html
+    assert "<b>" not in html

@@ -40,7 +40,7 @@ def make(sample: Callable[..., Page]) -> Make:
         need(engine in available, engine)
         html = render_page(sample("pdf", draft=draft, engine=str(available[engine])), "pdf", paper)
         path = folder / f"{engine}-{paper}.pdf"
-        pdf.write_pdf(html, path, attachments=[("record.json", DATA)], engine=engine)
+        path.write_bytes(pdf.pdf_of(html, attachments=[("record.json", DATA)], engine=engine))
         return path
 
     return write
@@ -184,7 +184,7 @@ def test_a_reference_outside_the_document_is_refused(engine: str, reference: str
     need(engine in {info.name for info in pdf.engines()}, engine)
     path = tmp_path / "a.pdf"
     with pytest.raises(pdf.OutsideReferenceError, match="a record may hold embedded data only"):
-        pdf.write_pdf(f"<!DOCTYPE html><html lang=en><title>t</title><p>x</p>{reference}</html>", path, engine=engine)
+        pdf.pdf_of(f"<!DOCTYPE html><html lang=en><title>t</title><p>x</p>{reference}</html>", engine=engine)
     assert not path.exists()
 
 
@@ -200,8 +200,8 @@ def test_a_machine_without_fonts_gives_the_records_fonts(
     source, target = tmp_path / "a.html", tmp_path / "a.pdf"
     source.write_text(render_page(sample("pdf"), "pdf", "a4"), encoding="utf-8")
     code = (
-        "import sys; from pathlib import Path; from calcsheet.record.pdf import write_pdf; "
-        "write_pdf(Path(sys.argv[1]).read_text('utf-8'), Path(sys.argv[2]), engine=sys.argv[3])"
+        "import sys; from pathlib import Path; from calcsheet.record.pdf import pdf_of; "
+        "Path(sys.argv[2]).write_bytes(pdf_of(Path(sys.argv[1]).read_text('utf-8'), engine=sys.argv[3]))"
     )
     environment = os.environ | {
         "FONTCONFIG_FILE": str(tmp_path / "fonts.conf"),
@@ -232,7 +232,7 @@ def test_without_an_engine_the_remedy_is_said(monkeypatch: pytest.MonkeyPatch, t
     monkeypatch.setattr(pdf.importlib, "import_module", broken)
     assert pdf.engines() == ()
     with pytest.raises(pdf.NoEngine, match="install Pango"):
-        pdf.write_pdf("<p>x</p>", tmp_path / "a.pdf")
+        pdf.pdf_of("<p>x</p>")
     with pytest.raises(pdf.NoEngine, match="PDF engine PlutoPrint doesn't load here; no PDF engine"):
         pdf.choose_engine("PlutoPrint")
 

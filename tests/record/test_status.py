@@ -2,14 +2,24 @@
 
 from __future__ import annotations
 
+import datetime as dt
+
 import nbformat
 import pytest
 
 from calcsheet import resources
-from calcsheet.record.status import held_back, status_of
+from calcsheet.record.collect import Content
+from calcsheet.record.document import record_of
+from calcsheet.record.parts import Words
+from calcsheet.record.status import held_back, reasons
+from calcsheet.render.answers import answer_to
 from calcsheet.steps.graph import Job
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
+
+
+def status_of(payloads, words=()):
+    return record_of(Content(tuple(Words(text) for text in words), payloads))["status"]
 
 
 @pytest.fixture
@@ -31,31 +41,69 @@ def test_for_checking_where_nothing_holds_it_back(payloads):
 
 def test_a_draft_until_it_is_signed(payloads):
     found = payloads(('initials = "OQ"\ndate = 2026-03-09', 'initials = "OQ"'))
-    assert held_back(found) == ("not signed by who prepared it: people.prepared has no date",)
-    assert status_of(found) == "DRAFT"
+    record = record_of(Content((), found))
+    assert held_back(found) == ()
+    assert reasons(record) == ("not signed by who prepared it: people.prepared has no date",)
+    assert record["status"] == "DRAFT"
 
 
 def test_a_draft_until_its_cautions_are_answered(payloads):
     unanswered = payloads(keep=1)
     (reason,) = held_back(unanswered)
-    assert reason == "cautions that need an answer: target-not-reached-x, target-not-reached-y"
+    assert reason == "cautions that need an answer: target-not-reached-x (open), target-not-reached-y (open)"
     assert status_of(unanswered) == "DRAFT"
 
 
-def test_an_answer_lifts_a_caution_and_a_blank_one_does_not(payloads):
-    answers = '[answers]\ntarget-not-reached-x = "a first look"\ntarget-not-reached-y = "{}"'
-    blank = payloads(("[answers]", answers.format(" ")), keep=1)
-    assert held_back(blank) == ("cautions that need an answer: target-not-reached-y",)
+def answered(payloads, key, **other):
+    """Payloads whose card answers a caution, parts of the answer replaced by `other`."""
+    day = dt.date(2026, 3, 9)
+    table = answer_to(payloads, key, "a first look", "Odile Quist", day) | {"date": day.isoformat()} | other
+    payloads["card"]["inputs"]["answers"] |= {key: table}
+    return payloads
+
+
+@pytest.mark.parametrize(
+    ("other", "said"),
+    [
+        ({"text": " "}, "incomplete: no text"),
+        ({"by": "", "date": None}, "incomplete: no by, no date"),
+        ({"finding": ""}, "incomplete: no finding"),
+        ({"finding": "00000000"}, "lapsed"),
+        ({"text": "", "by": "", "date": None, "finding": ""}, "open"),
+    ],
+)
+def test_an_answer_lifts_a_caution_where_it_is_complete_and_given_to_what_is_found(payloads, other, said):
+    found = answered(answered(payloads(keep=1), "target-not-reached-x"), "target-not-reached-y", **other)
+    assert held_back(found) == (f"cautions that need an answer: target-not-reached-y ({said})",)
+    assert status_of(found) == "DRAFT"
 
 
 def test_answers_to_all_make_it_for_checking(payloads):
-    answers = '[answers]\ntarget-not-reached-x = "a first look"\ntarget-not-reached-y = "likewise"'
-    assert status_of(payloads(("[answers]", answers), keep=1)) == "FOR CHECKING"
+    found = answered(answered(payloads(keep=1), "target-not-reached-x"), "target-not-reached-y")
+    assert held_back(found) == ()
+    assert status_of(found) == "FOR CHECKING"
+
+
+def test_an_answer_lapses_with_the_finding(payloads):
+    found = answered(payloads(keep=1), "target-not-reached-x")
+    share = found["participation"]["cautions"][0]["numbers"][0]
+    share["value"] += 1e-6  # not in the digits that are printed
+    assert held_back(found) == ("cautions that need an answer: target-not-reached-y (open)",)
+    share["value"] += 0.01
+    assert held_back(found) == (
+        "cautions that need an answer: target-not-reached-x (lapsed), target-not-reached-y (open)",
+    )
+
+
+def test_an_answer_that_no_caution_asks_for_holds_nothing_back(payloads):
+    found = payloads()
+    found["card"]["inputs"]["answers"] = {"hunch": {"text": "x", "by": "", "date": None, "finding": ""}}
+    assert status_of(found) == "FOR CHECKING"
 
 
 def test_tables_without_origin_and_sets_without_ground_ask_for_an_answer(payloads):
     found = payloads(('source = "take-off"', 'source = " "'), ('ground = "cracked beams"', 'ground = ""'))
-    assert held_back(found) == ("cautions that need an answer: no-origin-storeys.csv, no-ground-cracked",)
+    assert held_back(found) == ("cautions that need an answer: no-origin-storeys.csv (open), no-ground-cracked (open)",)
 
 
 def test_evidence_beyond_its_limit_makes_a_draft(payloads):

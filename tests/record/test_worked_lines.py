@@ -25,8 +25,27 @@ from calcsheet.steps.torsion import TorsionOptions
 Formula = Callable[[Sequence[float], Sequence[float]], float]
 
 
-def product(v, c):
+def product(v, c=()):
     return math.prod(v)
+
+
+def bent(v):
+    """c E I/h³."""
+    return v[0] * v[1] * v[2] / v[3] ** 3
+
+
+def added(v, c):
+    """Σ n k, a cosine or sine (the only numbers below 1) after the stiffness that its square multiplies."""
+    count, total = iter(c), 0.0
+    for i, x in enumerate(v):
+        if abs(x) > 1.0:
+            total += next(count) * x * (v[i + 1] ** 2 if i + 1 < len(v) and abs(v[i + 1]) < 1.0 else 1.0)
+    return total
+
+
+def sheared(stiffness, v):
+    """In series with shear over h, of c_s, G and A_s that come last."""
+    return 1 / (1 / stiffness + v[3] / product(v[-3:]))
 
 
 def combined(v, c):
@@ -122,6 +141,27 @@ FORMULAS: dict[str, Formula] = {
     "factor on drifts × elastic drift × scale": product,
     "design drift / limit": lambda v, c: v[0] / v[1],
     "θ = P Δ / (V h)": lambda v, c: v[0] * v[1] / (v[2] * v[3]),
+    # stiffness take-off
+    "B_a = c_b E I_b (1/L_1 + 1/L_2)": lambda v, c: v[0] * v[1] * v[2] * (1 / v[3] + 1 / v[4]),
+    "B_b = c_b E I_b (1/L_1 + 1/L_2)": lambda v, c: v[0] * v[1] * v[2] * (1 / v[3] + 1 / v[4]),
+    "B_a = c_b E I_b /L_1": lambda v, c: v[0] * v[1] * v[2] / v[3],
+    "k̄ = B_a/(c E I/h)": lambda v, c: v[0] / (v[1] * v[2] * v[3] / v[4]),
+    "k̄ = (B_a + B_b)/(2 c E I/h)": lambda v, c: (v[0] + v[1]) / (2 * v[2] * v[3] * v[4] / v[5]),
+    "k = 12 c E I/h³": lambda v, c: 12 * bent(v),
+    "k = 3 c E I/h³": lambda v, c: 3 * bent(v),
+    "k = 12 c E I/h³ × (0.5 + k̄)/(2 + k̄)": lambda v, c: 12 * bent(v) * (0.5 + v[4]) / (2 + v[4]),
+    "k = 12 c E I/h³ × k̄/(2 + k̄)": lambda v, c: 12 * bent(v) * v[4] / (2 + v[4]),
+    "k = 1/(1/(12 c E I/h³ × k̄/(2 + k̄)) + h/(c_s G A_s))": lambda v, c: sheared(12 * bent(v) * v[4] / (2 + v[4]), v),
+    "k = 1/(1/(12 c E I/h³ × 0.5 k̄/(1 + 2 k̄)) + h/(c_s G A_s))": (
+        lambda v, c: sheared(12 * bent(v) * 0.5 * v[4] / (1 + 2 * v[4]), v)
+    ),
+    "k = 1/(1/(3 c E I/h³) + h/(c_s G A_s))": lambda v, c: sheared(3 * bent(v), v),
+    "k = 1/(1/(12 c E I/h³) + h/(c_s G A_s))": lambda v, c: sheared(12 * bent(v), v),
+    "L = √(b² + h²)": lambda v, c: math.hypot(*v),
+    "k = c E A b²/L³": lambda v, c: product(v[:3]) * v[3] ** 2 / v[4] ** 3,
+    "k = 2 c E A b²/L³": lambda v, c: 2 * product(v[:3]) * v[3] ** 2 / v[4] ** 3,
+    "Σ n k cos²γ": lambda v, c: added(v, c),
+    "Σ n k sin²γ": lambda v, c: added(v, c),
     # actions
     "static / modal": lambda v, c: v[0] / v[1],
     "modal × scale × second order": product,
@@ -155,7 +195,7 @@ class Row:
     reference: str
 
 
-NUMBER = re.compile(r'<data value="([^"]*)">([^<]*)</data>(?:\u00a0([^\s<)]+))?')
+NUMBER = re.compile(r'<data value="([^"]*)"[^>]*>([^<]*)</data>(?:\u00a0([^\s<)]+))?')
 
 
 def number(match: re.Match[str]) -> Printed:
@@ -373,8 +413,15 @@ def test_templates_and_examples(chain, where):
         check(row)
 
 
-def test_every_formula_here_is_one_that_is_printed(demand_job):
+@pytest.mark.parametrize("us", [False, True])
+def test_the_stiffness_take_off(members_folder, us):
+    for row in printed(Job(members_folder(us=us))):
+        check(row)
+
+
+def test_every_formula_here_is_one_that_is_printed(demand_job, members_folder):
     met = {of_mode_one(row.relation) for name in JOBS for row in printed(built(demand_job, name))}
+    met |= {of_mode_one(row.relation) for row in printed(Job(members_folder()))}
     assert met == set(FORMULAS)
 
 

@@ -66,17 +66,20 @@ def test_text(value, decimals, shown):
 
 
 def test_a_number_carries_its_place_and_its_unit():
-    assert number(0.47123, "period", "SI", "/modes/result/0") == '<data value="/modes/result/0">0.4712</data>\u00a0s'
-    assert number(0.0254, "displacement", "US", "/a") == '<data value="/a">1.00</data>\u00a0in'
-    assert number(0.934, "share", "SI", "/a", unit=False) == '<data value="/a">93.4</data>'
+    assert (
+        number(0.47123, "period", "SI", "/modes/result/0")
+        == '<data value="/modes/result/0" data-unit="s">0.4712</data>\u00a0s'
+    )
+    assert number(0.0254, "displacement", "US", "/a") == '<data value="/a" data-unit="in">1.00</data>\u00a0in'
+    assert number(0.934, "share", "SI", "/a", unit=False) == '<data value="/a" data-unit="%">93.4</data>'
     assert number(1.25, "ratio", "SI", "/a") == '<data value="/a">1.250</data>'
-    assert number(2.0, "length", "SI", "/a", decimals=1) == '<data value="/a">2.0</data>\u00a0m'
+    assert number(2.0, "length", "SI", "/a", decimals=1) == '<data value="/a" data-unit="m">2.0</data>\u00a0m'
 
 
 def test_a_place_cannot_close_its_quotes():
     shown = number(1.0, "mass", "SI", '/"><b>')
     assert "<b>" not in shown
-    assert re.match(r'<data value="/&quot;&gt;&lt;b&gt;">', shown)
+    assert re.match(r'<data value="/&quot;&gt;&lt;b&gt;"', shown)
 
 
 def test_exponents():

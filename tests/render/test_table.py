@@ -23,13 +23,19 @@ def test_a_column_has_one_number_of_decimals():
 
 def test_rows_in_another_order_keep_their_places():
     column = values("T", [0.5, 0.25], "period", "SI", "/m/period", order=[1, 0])
-    assert column.cells == ('<data value="/m/period/1">0.2500</data>', '<data value="/m/period/0">0.5000</data>')
+    assert column.cells == (
+        '<data value="/m/period/1" data-unit="s">0.2500</data>',
+        '<data value="/m/period/0" data-unit="s">0.5000</data>',
+    )
     nested = values("k", [1.0], "share", "SI", "/m/kinetic/{}/2")
-    assert nested.cells == ('<data value="/m/kinetic/0/2">100.0</data>',)
+    assert nested.cells == ('<data value="/m/kinetic/0/2" data-unit="%">100.0</data>',)
 
 
 def test_a_blank_cell_is_blank():
-    assert values("T", [None, 0.5], "period", "SI", "/m").cells == ("", '<data value="/m/1">0.5000</data>')
+    assert values("T", [None, 0.5], "period", "SI", "/m").cells == (
+        "",
+        '<data value="/m/1" data-unit="s">0.5000</data>',
+    )
 
 
 def test_text_is_escaped_wherever_it_stands(document):

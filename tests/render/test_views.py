@@ -49,7 +49,7 @@ def test_storeys_stand_roof_first(payloads, document):
     assert order == [4, 3, 2, 1, 0]
     assert "stiffness x, cracked [kN/m]" in seen.words
     assert "serves forces; cracked beams" in seen.words
-    assert "serves drifts; gross sections" in seen.words
+    assert "serves drifts; steel, gross sections" in seen.words
 
 
 def test_what_lies_below_the_effective_base_is_listed_apart(payloads, document):

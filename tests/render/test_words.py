@@ -1,15 +1,17 @@
-"""Worked lines, evidence and cautions."""
+"""Worked lines and evidence."""
 
 from __future__ import annotations
 
-from calcsheet.render.words import cautions, evidence, filled, worked
+from calcsheet.render.words import evidence, filled, worked
 
 NUMBER = {"value": 0.5, "quantity": "period", "at": "result/t"}
 
 
 def test_places_are_filled_and_all_else_is_text():
     html = filled("T = {0} at level <b> {{0}} & more", [NUMBER], "SI", "/modes")
-    assert html == 'T = <data value="/modes/result/t">0.5000</data>\u00a0s at level &lt;b&gt; {0} &amp; more'
+    assert (
+        html == 'T = <data value="/modes/result/t" data-unit="s">0.5000</data>\u00a0s at level &lt;b&gt; {0} &amp; more'
+    )
 
 
 def test_a_worked_line_is_a_row(document):
@@ -37,17 +39,3 @@ def test_evidence_says_passes_or_exceeds(document):
     assert seen.words.count("passes") == seen.words.count("exceeds") == 1
     assert [a.get("class") for tag, a in seen.tags if tag == "tr"][1:] == [None, "marked"]
     assert seen.numbers[0] == ("/m/evidence/0/value", "1.0·10^\u221215")
-
-
-def test_cautions_with_and_without_answers(document):
-    raised = [
-        ("/m", {"key": "open", "text": "One {0}", "numbers": [NUMBER], "answer": True}),
-        ("/m", {"key": "closed", "text": "Two", "numbers": [], "answer": True}),
-        ("/m", {"key": "plain", "text": "Three", "numbers": [], "answer": False}),
-    ]
-    html = cautions(raised, {"closed": "<b>Seen</b>", "open": "  "}, "SI")
-    seen = document(html)
-    assert [a.get("class") for tag, a in seen.tags if tag == "li"] == ["caution needs-answer", "caution", "caution"]
-    assert "<b>Seen</b>" in seen.words
-    assert html.count("Needs an answer") == 1
-    assert document(cautions([], {}, "SI")).words == "None."

@@ -43,7 +43,7 @@ kind = "storey chain"
 
 [stiffness.gross]
 factor = 1.0
-ground = "sections as drawn"
+ground = "steel sections as drawn"
 
 [serves]
 forces = "gross"

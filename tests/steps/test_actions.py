@@ -105,3 +105,30 @@ def test_worked_lines_say_what_is_multiplied(demand_job):
     assert "Scale of forces, x" not in {
         line["quantity"] for line in demand_job("EN", name="unscaled").payload("actions")["lines"]
     }
+
+
+# ---- cautions ----------------------------------------------------------------------------------------------------------
+
+
+def test_a_modal_base_shear_that_stays_below_the_static_one_is_a_caution(demand_job):
+    x, y = demand_job("EN", SRSS).payload("actions")["cautions"]
+    assert (x["kind"], x["subject"], y["subject"], x["answer"]) == ("unscaled-base-shear", "x", "y", False)
+    # 268.74 t of the two modes and 300 t of the static shear, on one plateau
+    assert [n["value"] for n in x["numbers"]] == pytest.approx([SHEAR[0] * EN_A, 300 * EN_A], rel=1e-9)
+    at = "result/directions/0"
+    assert [n["at"] for n in x["numbers"]] == [f"{at}/modal_base_shear", f"{at}/static/shear"]
+
+
+@pytest.mark.parametrize("basis", ["7-16", "IS", "points"])
+def test_a_base_shear_that_is_scaled_or_has_no_static_one_beside_it_raises_nothing(demand_job, basis):
+    assert demand_job(basis, SRSS).payload("actions")["cautions"] == []
+
+
+def test_a_modal_base_shear_above_the_static_one_raises_nothing(demand_job):
+    # three equal storeys: mode 1 at 0.499 s, on the plateau, moves 91.4 % of the mass; beyond two storeys λ = 0.85
+    table = "level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m]\n"
+    job = demand_job("EN", SRSS, storeys=table + "".join(f"{i},3,100,80000,80000\n" for i in (3, 2, 1)))
+    found = actions(job)
+    assert found["static"]["shear"] == pytest.approx(0.85 * 300 * EN_A, rel=1e-9)
+    assert found["modal_base_shear"] > 0.914 * 300 * EN_A
+    assert job.payload("actions")["cautions"] == []

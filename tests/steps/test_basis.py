@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import pytest
 
+from calcsheet.steps.step import key_of
+
 MASSES = """\
 [[mass_basis]]
 load = "Floors {0}"
@@ -17,7 +19,7 @@ clause = ""
 
 
 def cautions(job):
-    return {c["key"]: c for c in job.payload("basis")["cautions"]}
+    return {key_of(c["kind"], c["subject"]): c for c in job.payload("basis")["cautions"]}
 
 
 @pytest.mark.parametrize(

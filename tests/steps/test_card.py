@@ -50,15 +50,15 @@ def test_a_matrix_of_unstated_origin(card_with):
 
 
 def test_a_stiffness_set_without_a_ground_asks_for_an_answer(card_with):
-    card = card_with(('ground = "sections as drawn"', 'ground = " "'))
-    assert raised(card) == ["no-ground-gross"]
-    assert run(card).cautions[-1].answer
+    card = card_with(('ground = "steel sections as drawn"', 'ground = " "'))
+    assert raised(card) == ["no-ground-gross", "uncracked-gross"]  # all that is known of it is its name
+    assert all(c.answer for c in run(card).cautions[-2:])
 
 
 def test_braces_in_a_set_name_are_words(card_with):
     card = card_with(
         ("[stiffness.gross]", '[stiffness."{0}"]'),
-        ('ground = "sections as drawn"', 'ground = ""'),
+        ('ground = "steel sections as drawn"', 'ground = ""'),
         ('forces = "gross"', 'forces = "{0}"'),
         ('drifts = "gross"', 'drifts = "{0}"'),
     )
@@ -86,3 +86,40 @@ def test_a_base_on_springs_is_not_called_fixed(card_with):
     )
     both = card_with(("[model]", "[base]\nrocking_x = 1e6\ntranslation_y = 1e5\n[model]"))
     assert texts(both)["fixed-base"].startswith("Springs at the base are linear")
+
+
+@pytest.mark.parametrize(
+    ("name", "given", "key"),
+    [
+        ("gross", 'factor = 1.0\nground = "concrete, as drawn"', "uncracked-gross"),
+        ("frames", 'factor = 1.0\nground = "Uncracked sections"', "uncracked-frames"),
+        ("frames", 'factor = 1.0\nground = "walls not cracked under service wind"', "uncracked-frames"),
+        ("frames", 'own = true\nground = "gross concrete sections"', "uncracked-frames"),
+        ("frames", 'factor_x = 0.5\nfactor_y = 1.0\nground = "gross concrete sections"', "uncracked-frames"),
+        ("frames", 'factor = 1.0\nground = "concrete, as drawn"', "cracking-unstated-frames"),
+        ("frames", 'factor = 1.0\nground = "reinforcing steel and concrete, transformed"', "cracking-unstated-frames"),
+        ("frames", 'factor = 1.0\nground = "concrete, cracked by two cycles to yield"', None),
+        ("frames", 'factor = 0.5\nground = "half of the gross stiffness"', None),
+        ("frames", 'own = true\nground = "analysis of the frames"', None),
+        ("gross", 'factor = 1.0\nground = "bare steel"', None),
+    ],
+)
+def test_what_a_set_says_of_cracking(card_with, name, given, key):
+    card = card_with(
+        ('[stiffness.gross]\nfactor = 1.0\nground = "steel sections as drawn"', f"[stiffness.{name}]\n{given}"),
+        ('forces = "gross"', f'forces = "{name}"'),
+        ('drifts = "gross"', f'drifts = "{name}"'),
+    )
+    assert raised(card) == ([] if key is None else [key])
+    if key:
+        caution = run(card).cautions[-1]
+        assert caution.answer is key.startswith("uncracked")  # where nothing is said it may well be cracked
+        assert f'set "{name}" serves forces and drifts' in caution.text
+
+
+def test_a_set_that_serves_nothing_may_be_uncracked(card_with):
+    unused = '[stiffness.wind]\nfactor = 1.0\nground = "uncracked concrete"\n'
+    assert raised(card_with(("[serves]", f"{unused}[serves]"))) == []
+    assert raised(card_with(("[serves]", f"{unused}[serves]"), ('drifts = "gross"', 'drifts = "wind"'))) == [
+        "uncracked-wind"
+    ]

@@ -6,6 +6,8 @@ import math
 
 import pytest
 
+from calcsheet.steps.step import key_of
+
 G = 9.80665
 T_1, T_2 = 2.0 * math.pi / math.sqrt(250.0), 2.0 * math.pi / math.sqrt(1000.0)  # 0.3974 s and 0.1987 s in x
 W = 300.0 * G
@@ -93,27 +95,33 @@ def test_the_curve_passes_through_the_modes_and_stays_within_the_points(demand_j
 def test_what_each_edition_says_of_torsion_is_a_caution(demand_job):
     for basis in ("EN", "7-16", "7-22", "IS", "points"):
         job = demand_job(basis, name=basis)
-        torsion = {c["key"]: c["text"] for c in job.payload("demand")["cautions"] if c["key"].startswith("torsion")}
-        assert set(torsion) == {"torsion-x", "torsion-y"}
-        assert demand(job)["torsion"]["text"] in torsion["torsion-x"]
+        torsion = {c["subject"]: c["text"] for c in job.payload("demand")["cautions"] if c["kind"] == "torsion"}
+        assert set(torsion) == {"x", "y"}
+        assert demand(job)["torsion"]["text"] in torsion["x"]
 
 
 def test_a_period_beyond_four_seconds_is_a_caution(demand_job):
-    def keys(factor, name):
+    def keys(factor, name, basis="EN"):
         card = [("[stiffness.gross]\nfactor = 1.0", f"[stiffness.gross]\nfactor = {factor}")]
-        payload = demand_job("EN", card=card, name=name).payload("demand")
-        return {c["key"]: c for c in payload["cautions"]}
+        payload = demand_job(basis, card=card, name=name).payload("demand")
+        return {key_of(c["kind"], c["subject"]): c for c in payload["cautions"]}
 
     assert "long-period-x" not in keys(0.0101, "short")  # 3.954 s
     found = keys(0.0098, "long")  # 4.014 s
     assert found["long-period-x"]["numbers"][0]["value"] == pytest.approx(T_1 / math.sqrt(0.0098), rel=1e-9)
     assert "long-period-y" not in found  # 3.17 s
+    # the spectrum of one edition ends there, those of others go on
+    assert found["long-period-x"]["answer"]
+    assert "up to which EN 1998-1:2004 gives its spectrum" in found["long-period-x"]["text"]
+    going_on = keys(0.0098, "going on", "7-16")["long-period-x"]
+    assert not going_on["answer"]
+    assert "up to which" not in going_on["text"]
 
 
 def test_an_analysis_that_is_not_plainly_permitted_asks_for_an_answer(demand_job):
     def asked(*changes, name):
         cautions = demand_job("7-16", *changes, name=name).payload("demand")["cautions"]
-        return {c["key"] for c in cautions if c["answer"]}
+        return {key_of(c["kind"], c["subject"]) for c in cautions if c["answer"]}
 
     assert asked(name="C") == set()
     assert asked(('site_class = "C"', 'site_class = "D"'), name="D") == {"permitted-x", "permitted-y"}

@@ -9,6 +9,8 @@ import math
 
 import pytest
 
+from calcsheet.steps.step import key_of
+
 G = 9.80665
 SHEAR = (math.sqrt(800**2 + 100**2) / 3, math.sqrt(400**2 + 100**2) / 3)  # 268.74 and 137.44, times A
 DRIFT = (SHEAR[0] / 1e5, SHEAR[1] / 5e4)
@@ -36,7 +38,7 @@ def drift(job, direction=0):
 
 
 def cautions(job):
-    return {c["key"]: c for c in job.payload("drift")["cautions"]}
+    return {key_of(c["kind"], c["subject"]): c for c in job.payload("drift")["cautions"]}
 
 
 @pytest.mark.parametrize(
@@ -220,6 +222,20 @@ def test_a_soft_storey_asks_for_an_answer(demand_job):
     assert "softer than the storey above: storey 1 from the base" in raised["screen-x-1"]["text"]
     assert "screen-y-1" not in raised
     assert "screen-x-1" not in cautions(demand_job("IS", storeys=storeys(950, 1950, k=51000), name="stiffer"))
+
+
+def test_what_the_screens_leave_open_is_one_caution_a_direction(demand_job):
+    # 1e5 over 5e4 below the top, weights of 1 over 2; the same in y
+    found = cautions(demand_job("EN", SRSS))
+    assert {key for key in found if key.startswith("screens-open")} == {"screens-open-x", "screens-open-y"}
+    caution = found["screens-open-x"]
+    assert not caution["answer"]
+    judged, missing = caution["text"].split(" Not assessed: ")
+    assert judged.startswith("Irregularities in x that the numbers do not decide. Left to judgement: ")
+    assert "stiffness along the height (storey stiffness over that above: 2.00 to 2.00" in judged
+    assert "mass along the height (level weight over that below: 0.50 to 0.50" in judged
+    assert "strength along the height (missing: storey strengths)" in missing
+    assert "setbacks (missing: plan dimensions of the levels)" in missing
 
 
 def test_periods_of_both_directions_are_those_of_the_set_that_serves_forces(demand_job):

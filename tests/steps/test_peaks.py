@@ -9,6 +9,8 @@ import math
 
 import pytest
 
+from calcsheet.steps.step import key_of
+
 G = 9.80665
 SHEAR = ((800 / 3, 100 / 3), (400 / 3, -100 / 3))  # lower storey first; by mode
 MOMENT = ((400 + 4 * 800 / 3, -100 + 4 * 100 / 3), (400.0, -100.0))
@@ -90,7 +92,7 @@ def test_residuals(demand_job, basis, choice, ordinate, residual):
             assert found["forces"]["shear"][i] == pytest.approx(expected, rel=1e-9)
             expected = math.hypot(DRIFT[i][0] * ordinate, DRIFT[i][1] * residual)
             assert found["drifts"]["drift"][i] == pytest.approx(expected, rel=1e-9)
-    keys = {c["key"] for c in job.payload("peaks")["cautions"]}
+    keys = {key_of(c["kind"], c["subject"]) for c in job.payload("peaks")["cautions"]}
     raised = {"none": {"no-residual-x", "no-residual-y"}, "zero period": {"residual-reduced-x", "residual-reduced-y"}}
     assert keys == raised.get(choice, set())
 
@@ -186,10 +188,22 @@ Mast,3,0.1,100,160,1
 
 def test_srss_with_close_modes_asks_for_an_answer(demand_job):
     def cautions(*changes, **how):
-        return {c["key"]: c for c in demand_job("EN", *changes, **how).payload("peaks")["cautions"]}
+        return {
+            key_of(c["kind"], c["subject"]): c for c in demand_job("EN", *changes, **how).payload("peaks")["cautions"]
+        }
 
     assert cautions(SRSS, name="apart") == {}
     found = cautions(SRSS, storeys=TUNED, name="close")  # ω² ≈ 1000 (1 ± 0.03)
     assert set(found) == {"srss-with-close-modes-x", "srss-with-close-modes-y"}
     assert found["srss-with-close-modes-x"]["answer"]
+    assert "modes are combined by SRSS, which takes them as unrelated" in found["srss-with-close-modes-x"]["text"]
+    # x² − 2.001 x + 1 = 0 for x = ω²/1000: 0.96887 and 1.03213, so T₂/T₁ = 0.9689
+    assert "in a ratio of up to 0.969 against T_j ≤ 0.9 T_i" in found["srss-with-close-modes-x"]["text"]
     assert cautions(storeys=TUNED, name="CQC") == {}
+
+
+def test_srss_with_close_modes_of_the_set_that_serves_drifts_is_its_own_caution(demand_job):
+    job = demand_job("EN", SRSS, storeys=TUNED, card=[('forces = "gross"', 'forces = "cracked"')])
+    found = {c["subject"]: c["text"] for c in job.payload("peaks")["cautions"]}
+    assert set(found) == {"x", "y", "x-drifts", "y-drifts"}
+    assert found["x-drifts"].startswith("In x, for drifts, modes are combined by SRSS")

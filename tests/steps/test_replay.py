@@ -9,6 +9,7 @@ import pytest
 
 from calcsheet.core.matrix import StiffnessMatrix
 from calcsheet.steps.replay import replay
+from calcsheet.steps.step import key_of
 
 
 @pytest.fixture(scope="module")
@@ -118,7 +119,7 @@ def test_a_repeated_frequency_replays_in_another_basis(building, steps_of):
     )
     payloads = steps_of(given)
     assert replay(payloads) == []
-    assert "repeated-modes-x-1" in {c["key"] for c in payloads["modes"]["cautions"]}
+    assert "repeated-modes-x-1" in {key_of(c["kind"], c["subject"]) for c in payloads["modes"]["cautions"]}
     turn = np.array([[np.cos(0.4), -np.sin(0.4)], [np.sin(0.4), np.cos(0.4)]])
     modes = payloads["modes"]["result"]["models"][0]["modes"]
     psi = np.array(modes["psi"])
@@ -144,3 +145,61 @@ def test_evidence_beyond_its_limit_is_no_difference_by_itself(building, steps_of
     payloads = steps_of(building(lateral={"x": StiffnessMatrix(k)}))
     assert not all(e["within"] for e in payloads["modes"]["evidence"])
     assert replay(payloads) == []
+
+
+@pytest.mark.parametrize(
+    ("key", "path", "value"),
+    [
+        ("modes", ("result",), None),
+        ("modes", ("result",), {}),
+        ("modes", ("result", "models"), [{}]),
+        ("modes", ("result", "models", 0, "modes", "omega"), "fast"),
+        ("modes", ("result", "models", 0, "modes", "psi"), [[1.0], [2.0, 3.0]]),
+        ("modes", ("result", "models", 0, "modes", "omega"), [1.0]),
+        ("modes", ("lines",), 3),
+        ("modes", ("lines", 0, "numbers"), [None]),
+        ("modes", ("cautions",), [{"kind": "of-no-kind", "text": ""}]),
+        ("modes", ("inputs",), []),
+        ("modes", ("inputs", "keep"), "all"),
+        ("storeys", ("inputs", "stiffness"), [{"name": "gross"}]),
+        ("storeys", ("inputs", "stiffness", 0, "lateral", "x", "kind"), "spring"),
+        ("storeys", ("inputs", "mass"), []),
+        ("card", ("inputs", "job"), None),
+    ],
+)
+@pytest.mark.parametrize("words", [True, False])
+def test_payloads_that_no_step_has_made_are_named_and_break_nothing(payloads, key, path, value, words):
+    *way, last = path
+    place = payloads[key]
+    for step in way:
+        place = place[step]
+    place[last] = value
+    found = replay(payloads, words=words)
+    assert key in {d.step for d in found}
+    assert all("\n" not in str(d) for d in found)
+
+
+def test_a_step_that_leans_on_one_of_another_kind_is_named(payloads):
+    payloads["modes"]["needs"] = {"storeys": "card"}
+    assert ("modes", "needs") in {(d.step, d.field) for d in replay(payloads)}
+
+
+def test_without_words_numbers_and_outcomes_count(payloads):
+    modes = payloads["modes"]
+    modes["lines"][0]["reference"] = "put otherwise"
+    modes["evidence"][0]["what"] = "put otherwise"
+    assert replay(payloads) != []
+    assert replay(payloads, words=False) == []
+    modes["evidence"][0]["within"] = False
+    assert [d.field for d in replay(payloads, words=False)] == ["evidence/0/within"]
+    modes["evidence"][0]["within"] = True
+    modes["lines"][1]["numbers"][0]["value"] *= 1.001
+    (found,) = replay(payloads, words=False)
+    assert found.field == "lines/1"
+    assert "must be what stands at its place" in str(found)
+    modes["lines"][1]["numbers"][0]["at"] = "result/nowhere"
+    assert steps_without_words(payloads) == {"modes"}
+
+
+def steps_without_words(payloads) -> set[str]:
+    return {difference.step for difference in replay(payloads, words=False)}

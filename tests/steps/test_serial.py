@@ -64,9 +64,22 @@ class Pair:
     count: int
 
 
+@dataclasses.dataclass(frozen=True)
+class Kept:
+    number: float
+    note: str = ""
+    more: tuple[str, ...] = dataclasses.field(default_factory=tuple)
+
+
 @pytest.mark.parametrize("pair", [Pair(1.5, None, 2), Pair(2.0, 0.1, 0)])
 def test_optional_fields(pair):
     assert from_json(Pair, to_json(pair)) == pair
+
+
+def test_entries_that_an_earlier_version_did_not_store_take_their_defaults():
+    assert from_json(Kept, {"number": 1.5}) == Kept(1.5)
+    with pytest.raises(KeyError, match="number"):
+        from_json(Kept, {"note": "x"})
 
 
 def test_a_whole_number_comes_back_as_the_field_declares_it():

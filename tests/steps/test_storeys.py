@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.steps.storeys import run
+
+LEVEL = ("1", "2", "3", "4", "Roof")
 
 
 def keys(storeys) -> list[str]:
@@ -126,3 +130,30 @@ def test_strange_storey_heights_are_named_in_one_caution(building):
     )
     assert [n.at for n in caution.numbers] == ["inputs/storey_height/0", "inputs/storey_height/4"]
     assert [n.value for n in caution.numbers] == [46.0, 0.31]
+
+
+# masses of 410, 385, 385, 372, 240 t weigh 4020.7, 3775.6, 3775.6, 3648.1, 2353.6 kN
+@pytest.mark.parametrize(
+    ("area", "named", "answer"),
+    [
+        ([400.0, 400.0, 400.0, 400.0, 400.0], [], False),  # 10.1 to 5.9 kN/m²
+        ([400.0, 400.0, 400.0, 400.0, 800.0], ["Roof"], False),  # 2.94 on the roof
+        ([200.0, 400.0, 400.0, 400.0, 400.0], ["1"], False),  # 20.1 on level 1
+        ([1400.0, 1400.0, 1400.0, 1400.0, 1400.0], ["1", "2", "3", "4"], False),  # 2.9 to 1.7: low, not far off
+        ([4000.0, 4000.0, 4000.0, 400.0, 400.0], ["1", "2", "3"], True),  # three of five at about 1
+    ],
+)
+def test_weight_over_area(building, area, named, answer):
+    found = run(replace(building(), area=np.array(area))).cautions
+    assert [c.key for c in found] == (["weight-per-area"] if named else [])
+    for caution in found:
+        assert caution.answer is answer
+        where = [LEVEL.index(name) for name in named]
+        assert [n.at for n in caution.numbers] == [f"result/weight_per_area/{i}" for i in where]
+        weights = [4020.7, 3775.6, 3775.6, 3648.1, 2353.6]
+        assert [n.value for n in caution.numbers] == pytest.approx([weights[i] / area[i] for i in where], rel=1e-4)
+        assert ("and 1 more;" in caution.text) is (area[0] == 1400.0)
+
+
+def test_without_areas_nothing_is_said_of_them(building):
+    assert keys(building()) == []

@@ -1,0 +1,1 @@
+"""A record held against itself: fingerprints, print, replay, second route, signatures."""
