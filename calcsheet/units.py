@@ -5,6 +5,7 @@ Core units are m, kN, t, s, rad. A unit's factor turns a value in it into core u
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -70,6 +71,15 @@ UNITS: Mapping[str, tuple[Unit, ...]] = {
         Unit("kip·s²/in", KIP / INCH),
     ),
     "weight": _FORCE,
+    "bending stiffness": (
+        Unit("kN·m²", 1.0),
+        Unit("MN·m²", 1000.0),
+        Unit("GN·m²", 1e6),
+        Unit("kip·ft²", KIP * FOOT**2),
+        Unit("kip·in²", KIP * INCH**2),
+    ),
+    "angle": (Unit("°", math.pi / 180.0), Unit("deg", math.pi / 180.0), Unit("rad", 1.0)),
+    "shear stiffness": (*_FORCE, Unit("GN", 1e6)),
     "area": (Unit("m²", 1.0), Unit("ft²", FOOT**2)),
     "pressure": (
         Unit("kN/m²", 1.0),
@@ -148,7 +158,7 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "section area": _pair(Display("mm²", 1e-6, 4), Display("in²", INCH**2, 4)),
     "second moment": _pair(Display("·10⁶ mm⁴", 1e-6, 4), Display("in⁴", INCH**4, 4)),
     "modulus": _pair(Display("GPa", 1e6, 4), Display("ksi", KIP / INCH**2, 4)),
-    "rotational stiffness": _pair(Display("kN·m", 1.0, 4), Display("kip·in", KIP * INCH, 4)),
+    "joint stiffness": _pair(Display("kN·m", 1.0, 4), Display("kip·in", KIP * INCH, 4)),
     "displacement": _pair(Display("mm", 0.001, 3), Display("in", INCH, 3)),
     "mass": _pair(Display("t", 1.0, 4), Display("kip·s²/ft", KIP / FOOT, 4)),
     "weight": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
@@ -158,6 +168,10 @@ DISPLAY: Mapping[str, Mapping[str, Display]] = {
     "unit weight": _pair(Display("kN/m³", 1.0, 4), Display("pcf", POUND_FORCE / FOOT**3, 4)),
     "stiffness": _pair(Display("kN/m", 1.0, 4), Display("kip/in", KIP / INCH, 4)),
     "flexibility": _pair(Display("mm/kN", 0.001, 4), Display("in/kip", INCH / KIP, 4)),
+    "bending stiffness": _pair(Display("kN·m²", 1.0, 4), Display("kip·ft²", KIP * FOOT**2, 4)),
+    "shear stiffness": _pair(Display("kN", 1.0, 4), Display("kip", KIP, 4)),
+    "rotational stiffness": _pair(Display("kN·m/rad", 1.0, 4), Display("kip·ft/rad", KIP * FOOT, 4)),
+    "angle": _pair(Display("°", math.pi / 180.0, 4)),
     "moment": _pair(Display("kN·m", 1.0, 4), Display("kip·ft", KIP * FOOT, 4)),
     "energy": _pair(Display("kN·m", 1.0, 3), Display("kip·ft", KIP * FOOT, 3)),
     "acceleration": _pair(Display("m/s²", 1.0, 4), Display("ft/s²", FOOT, 4)),
@@ -230,5 +244,5 @@ _POWERS = str.maketrans("²³⁴⁶", "2346", "^")
 def _spelling(text: str) -> str:
     """One spelling of a unit's many: superscripts, signs of multiplication and plurals levelled."""
     text = re.sub(r"\s*/\s*", "/", text.strip().translate(_POWERS))
-    text = re.sub(r"[\s·⋅∙*×-]+", "·", text)
+    text = re.sub(r"[\s·⋅∙*×.-]+", "·", text)
     return "/".join("·".join(_SAME.get(name, name) for name in part.split("·")) for part in text.split("/"))

@@ -21,8 +21,8 @@ from traitlets.config import Config
 
 from calcsheet.blocks import block as blocks
 from calcsheet.core.chain import Chain
+from calcsheet.core.lateral import Lateral
 from calcsheet.core.model import Model
-from calcsheet.core.storeys import Lateral
 from calcsheet.record import issue
 from calcsheet.record.execute import execute
 from calcsheet.steps.actions import ActionsOptions
@@ -280,12 +280,13 @@ def demand_job(job_folder: Callable[..., Path]) -> Callable[..., Job]:
         storeys: str = TWO_STOREYS,
         points: str = POINTS,
         keep: int | None = None,
+        more: dict[str, str] | None = None,
         **how: Any,
     ) -> Job:
         """Pieces of the basis replaced by `changes`, of the card by `card`."""
         serves = () if how.get("us") else (('forces = "cracked"', 'forces = "gross"'),)
         table = ("[answers]", f"[basis]\n{changed(BASES[basis], changes)}\n[answers]")
-        files = {"storeys.csv": storeys, "points.csv": points}
+        files = {"storeys.csv": storeys, "points.csv": points, **(more or {})}
         return chained(Job(job_folder((*serves, *card, table), files=files, **how)), keep)
 
     return build

@@ -83,7 +83,8 @@ def test_new_refuses_what_is_there(run, tmp_path):
 
 
 def test_new_refuses_a_template_that_is_not_there(run, tmp_path):
-    assert refused(run("new", "tower", "--template", "curved")) == 'no template "curved"; must be planar or seismic'
+    said = refused(run("new", "tower", "--template", "curved"))
+    assert said == 'no template "curved"; must be eccentric-plan or planar or seismic or walls'
     assert not (tmp_path / "tower").exists()
 
 

@@ -18,7 +18,7 @@ CORE = {
     "section area": "m**2",
     "second moment": "m**4",
     "modulus": "kN/m**2",
-    "rotational stiffness": "kN*m",
+    "joint stiffness": "kN*m",
     "pressure": "kN/m**2",
     "area load": "kN/m**2",
     "unit weight": "kN/m**3",
@@ -28,6 +28,10 @@ CORE = {
     "force": "kN",
     "stiffness": "kN/m",
     "flexibility": "m/kN",
+    "bending stiffness": "kN*m**2",
+    "shear stiffness": "kN",
+    "rotational stiffness": "kN*m/rad",
+    "angle": "rad",
     "moment": "kN*m",
     "energy": "kJ",
     "acceleration": "m/s**2",
@@ -56,6 +60,7 @@ PINT = {
     "10⁶ mm⁴": "km*mm**3",  # pint takes no number in a unit
     "·10⁶ mm⁴": "km*mm**3",
     "%": "percent",
+    "°": "degree",
     "Hz": "1/s",  # pint's hertz counts turns, in radians
     "s⁻²": "s**-2",
     "√t": "tonne**0.5",

@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from calcsheet.blocks.blocks import ModePlot, ModeSolver, ParticipationSummary
+from calcsheet.blocks.blocks import FloorLines, ModePlot, ModeSolver, ParticipationSummary
 from calcsheet.blocks.cautions import Cautions
-from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, ModalTable, StaticComparison, StoreyActions
+from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, EdgeDrifts, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.masstakeoff import MassTakeoff
 from calcsheet.blocks.motion import ModeMotion
@@ -17,6 +17,8 @@ __all__ = [
     "Cautions",
     "DemandSpectrum",
     "DriftCheck",
+    "EdgeDrifts",
+    "FloorLines",
     "JobCard",
     "MassTakeoff",
     "ModalTable",

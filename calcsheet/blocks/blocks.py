@@ -8,6 +8,7 @@ from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.storeytable import StoreyTable
 from calcsheet.steps.modes import ModesOptions
 from calcsheet.steps.participation import ParticipationOptions
+from calcsheet.steps.plan import PlanOptions
 
 
 class ModeSolver(Block):
@@ -73,6 +74,28 @@ class ModePlot(Block):
     def __init__(self, modes: ModeSolver, *, normalise: str = "largest", values: str = "shown") -> None:
         must_be(self, modes, ModeSolver)
         super().__init__(modes.job, modes.key, normalise=normalise, values=values)
+
+
+class FloorLines(Block):
+    """The plan of rigid floors: centres of stiffness, eccentricities, torsional radii, and how each mode moves.
+
+    Parameters
+    ----------
+    modes : ModeSolver
+        The modes.
+
+    Examples
+    --------
+    >>> FloorLines(modes)  # doctest: +SKIP
+    """
+
+    view_name = "plan"
+
+    def __init__(self, modes: ModeSolver) -> None:
+        must_be(self, modes, ModeSolver)
+        needs = {"storeys": modes.payload["needs"]["storeys"], "modes": modes.key}
+        key = "plan" if modes.key == "modes" else f"plan of {modes.key}"
+        super().__init__(modes.job, modes.job.attach("plan", PlanOptions(), needs, key))
 
 
 class ParticipationSummary(Block):

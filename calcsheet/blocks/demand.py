@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from numbers import Real
+
 from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.blocks import ParticipationSummary
 from calcsheet.steps.actions import ActionsOptions
 from calcsheet.steps.demand import DemandOptions
 from calcsheet.steps.drift import DriftOptions
 from calcsheet.steps.peaks import PeaksOptions
+from calcsheet.steps.torsion import TorsionOptions
 
 
 class DemandSpectrum(Block):
@@ -115,6 +118,33 @@ class StaticComparison(Block):
     def __init__(self, actions: StoreyActions) -> None:
         must_be(self, actions, StoreyActions)
         super().__init__(actions.job, actions.key)
+
+
+class EdgeDrifts(Block):
+    """Drifts at the edges of rigid floors, accidental eccentricities included, and the static ratios of torsion.
+
+    Parameters
+    ----------
+    drift : DriftCheck
+        The drifts at the centres of mass.
+    accidental : float
+        Accidental eccentricity over the floor's side.
+
+    Examples
+    --------
+    >>> EdgeDrifts(drift)  # doctest: +SKIP
+    """
+
+    view_name = "torsion"
+
+    def __init__(self, drift: DriftCheck, *, accidental: float = 0.05) -> None:
+        must_be(self, drift, DriftCheck)
+        if not isinstance(accidental, Real) or not 0.0 <= accidental < 0.5:
+            raise ValueError(f"accidental: got {accidental!r}; must be a number from 0 and below 0.5")
+        job, peaks = drift.job, drift.payload["needs"]["peaks"]
+        needs = dict(job.payload(peaks)["needs"]) | {"peaks": peaks, "drift": drift.key}
+        options = TorsionOptions(float(accidental))
+        super().__init__(job, job.attach("torsion", options, needs, _key("torsion", needs["participation"])), options)
 
 
 def _key(kind: str, participation: str) -> str:

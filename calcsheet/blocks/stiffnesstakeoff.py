@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.jobcard import JobCard
+from calcsheet.core.chain import Chain
 from calcsheet.core.stiffnesstakeoff import StoreyStiffness
 from calcsheet.job import edits
 from calcsheet.job.card import FILE
@@ -61,7 +62,7 @@ class StiffnessTakeoff(Block):
         result: StoreyStiffness = from_json(StoreyStiffness, payload["result"])
         levels = payload["inputs"]["level"]
         numbers = {
-            stiffness_key(item.direction, None): dict(zip(levels, item.storey.tolist(), strict=True))
+            stiffness_key(Chain.columns[0], item.direction, None): dict(zip(levels, item.storey.tolist(), strict=True))
             for item in result.directions
         }
         self.job.edit(lambda reading: edits.set_columns(reading, numbers), "stiffnesses taken off")

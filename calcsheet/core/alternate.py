@@ -9,7 +9,7 @@ from scipy.sparse.linalg import LinearOperator, eigsh
 from calcsheet.core.arrays import Array
 from calcsheet.core.model import Model
 
-DENSE_UP_TO = 100
+DENSE_UP_TO = 200
 """Degrees of freedom up to which the whole flexibility matrix is formed."""
 SPREAD = 1e-6
 """Share of the largest ω⁻² below which a value of this route has too few digits to confirm another."""

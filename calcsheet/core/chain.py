@@ -13,6 +13,7 @@ J. W. Demmel, W. Kahan, "Accurate singular values of bidiagonal matrices", SIAM 
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import ClassVar
 
@@ -20,6 +21,8 @@ import numpy as np
 from scipy import linalg
 
 from calcsheet.core.arrays import Array, Frozen, positive
+from calcsheet.core.given import Given
+from calcsheet.core.planar import drifts
 
 FEW = 4
 """Bisection serves where fewer than one mode in FEW is kept …"""
@@ -45,14 +48,31 @@ class Chain(Frozen):
     storey: Array
     kind: ClassVar[str] = "storey chain"
     asymmetry: ClassVar[float] = 0.0
+    columns: ClassVar[tuple[Given, ...]] = (Given("storey", "stiffness"),)
+    table: ClassVar[str] = ""
 
     def __post_init__(self) -> None:
         object.__setattr__(self, "storey", positive(self.storey, "storey stiffness [kN/m]"))
+
+    @classmethod
+    def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Chain:
+        """A chain from its `columns` by field; `storey_height` is not used."""
+        assert columns["storey"] is not None
+        return cls(columns["storey"])
+
+    def times(self, factor: float) -> Chain:
+        """The same with every stiffness times `factor`."""
+        return Chain(self.storey * factor)
 
     @property
     def size(self) -> int:
         """Number of degrees of freedom, n."""
         return int(self.storey.size)
+
+    @property
+    def root(self) -> Array:
+        """C = √k·B with CᵀC = K, (n, n)."""
+        return np.sqrt(self.storey)[:, None] * drifts(np.eye(self.size))
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
         """Frequencies and mass-normalised shapes of the first modes.
@@ -110,9 +130,7 @@ class Chain(Frozen):
 
     def drift(self, u: Array) -> Array:
         """Storey drifts (Bu), (n, …), of displacements u, (n, …)."""
-        drift = u.copy()
-        drift[1:] -= u[:-1]
-        return drift
+        return drifts(u)
 
     def force(self, u: Array) -> Array:
         """Restoring forces Ku, (n, m) [kN], of displacements u, (n, m) [m]."""

@@ -60,7 +60,7 @@ class Drifts(Frozen):
     scale : float
         What the edition multiplies drifts by.
     stiffness : (n,) array
-        Storey shear over storey drift, combined [kN/m].
+        Shear held by each storey over its drift, combined [kN/m].
     screens : tuple of Screen
         Irregularities looked at.
     """
@@ -118,7 +118,7 @@ def drifts(
     if cap is not None:
         first, top = np.minimum(uncapped, cap.drift), np.minimum(top, cap.displacement)
     load = np.zeros(first.size) if gravity is None else gravity
-    second, note = edition.second_order(facts, load, found.shear, first), ""
+    second, note = edition.second_order(facts, load, found.shear, first, found.held is not None), ""
     if second is None:
         note = "not in this edition"
     elif gravity is None:
@@ -131,7 +131,7 @@ def drifts(
     worst = int(np.argmax(share))
     separation, clause = edition.separation(float(displacement[-1]))
     with np.errstate(divide="ignore", invalid="ignore"):
-        stiffness = found.shear / found.drift
+        stiffness = (found.shear if found.held is None else found.held) / found.drift
     if not np.isfinite(stiffness).all():
         raise ModelError("storey drift", "0 in a storey", "must be above 0: the spectrum gives no response")
     return Drifts(
@@ -170,11 +170,13 @@ class Actions(Frozen):
     scaling : Scaling
         What modal results are multiplied by.
     amplified : (n,) array
-        Second-order factor of each storey, 1 where there is none.
+        Second-order factor of each storey, 1 where there is none; with second-order effects in the stiffness no factor of
+        the edition's, but the shear that the storey holds over that of the forces.
     shear : (n,) array
         Design shear of each storey: combined × scaling × second order [kN].
     moment : (n,) array
-        Design overturning moment at each storey's foot; the second-order factor is the largest at and above it [kN·m].
+        Design overturning moment at each storey's foot; the edition's second-order factor is the largest at and above it
+        [kN·m].
     equivalent : (n,) array
         Differences of the design shears, one a level [kN].
     modal_base_shear, design_base_shear : float
@@ -190,7 +192,7 @@ class Actions(Frozen):
     overturning : float
         Design overturning moment at the base over the weight [m].
     torsion : float or None
-        Multiplier for accidental torsion at the edge; None where it is not assessed.
+        Multiplier for accidental torsion at the edge of a planar model; None where it is not assessed, or floors rotate.
     """
 
     direction: str
@@ -237,6 +239,8 @@ def actions(
     modal = float(found.shear[0])
     amplified = np.ones(found.shear.size) if second is None else second.factor
     above = np.maximum.accumulate(amplified[::-1])[::-1]
+    if found.held is not None:  # the moment is that of the shears held
+        amplified, above = found.held / found.shear, np.ones(found.shear.size)
     shear = found.shear * scaling.forces * amplified
     moment = found.moment * scaling.forces * above
     return Actions(
@@ -253,5 +257,5 @@ def actions(
         static_force=force,
         static_clause=clause,
         overturning=float(moment[0]) / facts.total,
-        torsion=edition.torsion(facts.direction)[0],
+        torsion=edition.torsion(facts.direction)[0] if facts.plan is None else None,
     )

@@ -9,8 +9,9 @@ B. N. Parlett, "The Symmetric Eigenvalue Problem" (1980), on inertia counts and 
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import ClassVar
+from typing import ClassVar, Self
 
 import numpy as np
 from scipy import linalg, sparse
@@ -18,6 +19,8 @@ from scipy.sparse.linalg import eigsh
 
 from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.errors import ModelError
+from calcsheet.core.given import Given
+from calcsheet.core.planar import Planar
 
 ASYMMETRY_LIMIT = 1e-3
 """Largest |A - Aᵀ| over the largest |A| that is still taken as rounding of a symmetric matrix."""
@@ -26,10 +29,17 @@ DENSE_UP_TO = 400
 
 
 @dataclass(frozen=True, eq=False)
-class _Matrix(Frozen):
+class _Matrix(Planar, Frozen):
     matrix: Array
     kind: ClassVar[str]
     quantity: ClassVar[str]
+    columns: ClassVar[tuple[Given, ...]] = ()
+
+    @classmethod
+    def of(cls, columns: Mapping[str, Array | None], storey_height: Array) -> Self:
+        """A matrix from `columns` by field; `storey_height` is not used."""
+        assert columns["matrix"] is not None
+        return cls(columns["matrix"])
 
     def __post_init__(self) -> None:
         super().__post_init__()
@@ -47,6 +57,13 @@ class _Matrix(Frozen):
                 f"{self.quantity}, entries ({i + 1}, {j + 1}) and ({j + 1}, {i + 1}) from the base",
                 f"{a[i, j]:g} and {a[j, i]:g}",
                 f"must be equal within {ASYMMETRY_LIMIT:g} of the largest entry",
+            )
+        if (np.diag(a) <= 0.0).any():
+            i = int(np.argmax(np.diag(a) <= 0.0))
+            raise ModelError(
+                f"{self.quantity}, entry ({i + 1}, {i + 1}) from the base",
+                f"{a[i, i]:g}",
+                "must be above 0: a force moves its own level its own way",
             )
         try:
             linalg.cholesky(self.symmetric)
@@ -72,20 +89,9 @@ class _Matrix(Frozen):
         """The symmetric part, ½(A + Aᵀ), (n, n)."""
         return 0.5 * (self.matrix + self.matrix.T)
 
-    def force(self, u: Array) -> Array:
-        raise NotImplementedError
-
     def energy(self, u: Array) -> Array:
         """Products uᵀKu, (m, m), of displacements u, (n, m)."""
         return u.T @ self.force(u)
-
-    def storey_energy(self, u: Array) -> Array:
-        """Storey shear times storey drift, (n, m), of displacements u, (n, m); the sum is uᵀKu.
-
-        In a model with bending one storey's product can be negative.
-        """
-        shear = np.cumsum(self.force(u)[::-1], axis=0)[::-1]
-        return shear * np.diff(u, axis=0, prepend=np.zeros((1, u.shape[1])))
 
 
 @dataclass(frozen=True, eq=False)
@@ -105,6 +111,16 @@ class StiffnessMatrix(_Matrix):
 
     kind: ClassVar[str] = "stiffness matrix"
     quantity: ClassVar[str] = "lateral stiffness matrix [kN/m]"
+    table: ClassVar[str] = "stiffness"
+
+    def times(self, factor: float) -> StiffnessMatrix:
+        """The same with every stiffness times `factor`."""
+        return StiffnessMatrix(self.matrix * factor)
+
+    @property
+    def root(self) -> Array:
+        """Upper triangular C with CᵀC = K, (n, n)."""
+        return linalg.cholesky(self.symmetric)
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
         """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""
@@ -150,6 +166,16 @@ class FlexibilityMatrix(_Matrix):
 
     kind: ClassVar[str] = "flexibility matrix"
     quantity: ClassVar[str] = "lateral flexibility matrix [m/kN]"
+    table: ClassVar[str] = "flexibility"
+
+    def times(self, factor: float) -> FlexibilityMatrix:
+        """The same with every stiffness times `factor`."""
+        return FlexibilityMatrix(self.matrix / factor)
+
+    @property
+    def root(self) -> Array:
+        """Lower triangular C with CᵀC = F⁻¹, (n, n)."""
+        return linalg.solve_triangular(linalg.cholesky(self.symmetric, lower=True), np.eye(self.size), lower=True)
 
     def modes(self, mass: Array, keep: int) -> tuple[Array, Array]:
         """First `keep` frequencies, (keep,) [rad/s], and mass-normalised shapes, (n, keep), for `mass`, (n,) [t]."""

@@ -47,8 +47,11 @@ class Participation(Frozen):
     significant : tuple of int
         Modes, from 1, with a share above `SINGLE`; repeated ones share theirs.
     first_excitation, first_mass : float
-        φᵀMι and φᵀMφ of the first shape scaled to 1 at the top level [t]; both 0 where the top does not move, or
-        the first shape is one choice of many.
+        φᵀMι and φᵀMφ of the main mode's shape scaled to 1 at the top level [t]; both 0 where the top does not move, or
+        the shape is one choice of many.
+    main : int
+        Main mode of the direction, from 0: the first of a planar model, that of the largest effective mass where one model
+        moves in several directions.
     """
 
     direction: str
@@ -66,6 +69,7 @@ class Participation(Frozen):
     significant: tuple[int, ...]
     first_excitation: float = field(metadata=agrees(rtol=1e-7))
     first_mass: float = field(metadata=agrees(rtol=1e-7))
+    main: int = 0
 
 
 def participation(model: Model, modes: Modes, direction: str, target: float = 0.9) -> Participation:
@@ -114,9 +118,10 @@ def participation(model: Model, modes: Modes, direction: str, target: float = 0.
         last[members] = group[-1]
     reached = last[cumulative >= target * (1.0 - 1e-12)]
     top = int(np.flatnonzero(iota)[-1])
-    at_top = modes.psi[top, 0]
-    alone = not any(1 in group for group in modes.repeated)
-    moves = alone and abs(at_top) > TIE * np.abs(modes.psi[:, 0]).max()
+    main = int(np.argmax(together)) if len(model.direction) > 1 else 0
+    at_top = modes.psi[top, main]
+    alone = not any(main + 1 in group for group in modes.repeated)
+    moves = alone and abs(at_top) > TIE * np.abs(modes.psi[:, main]).max()
     return Participation(
         direction=direction,
         omega=modes.omega,
@@ -131,6 +136,7 @@ def participation(model: Model, modes: Modes, direction: str, target: float = 0.
         target=target,
         needed=int(reached[0]) if reached.size else None,
         significant=tuple(int(i) + 1 for i in np.flatnonzero(together > SINGLE)),
-        first_excitation=float(gamma[0] / at_top) if moves else 0.0,
+        first_excitation=float(gamma[main] / at_top) if moves else 0.0,
         first_mass=float(1.0 / at_top**2) if moves else 0.0,
+        main=main,
     )

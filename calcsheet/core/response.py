@@ -13,6 +13,8 @@ from calcsheet.core.combine import Rule, combined, correlation
 from calcsheet.core.model import Model
 from calcsheet.core.modes import Modes
 from calcsheet.core.peaks import Peaks
+from calcsheet.core.plan import plan_facts
+from calcsheet.core.rigidfloors import Floors
 from calcsheet.core.totals import GRAVITY
 
 PEAK = agrees(rtol=1e-6, atol=1e-9)
@@ -26,6 +28,8 @@ class Combined(Frozen):
     ----------
     force, shear, moment, displacement, drift : (n,) array
         As in `Peaks`, lowest level or storey first [kN, kN, kN·m, m, m].
+    held : (n,) array or None
+        As in `Peaks` [kN].
     """
 
     force: Array = field(metadata=PEAK)
@@ -33,6 +37,7 @@ class Combined(Frozen):
     moment: Array = field(metadata=PEAK)
     displacement: Array = field(metadata=PEAK)
     drift: Array = field(metadata=PEAK)
+    held: Array | None = field(default=None, metadata=PEAK)
 
 
 def related(modes: Modes, rule: Rule, damping: float, residual: bool) -> Array:
@@ -68,8 +73,15 @@ def combine(found: Peaks, correlated: Array, rule: Rule) -> Combined:
     rule : {"SRSS", "CQC", "absolute", "grouped"}
         Rule of combination.
     """
-    quantities = (found.force, found.shear, found.moment, found.displacement, found.drift)
-    return Combined(*(combined(q, correlated, rule) for q in quantities))
+    held = None if found.held is None else combined(found.held, correlated, rule)
+    return Combined(
+        force=combined(found.force, correlated, rule),
+        shear=combined(found.shear, correlated, rule),
+        moment=combined(found.moment, correlated, rule),
+        displacement=combined(found.displacement, correlated, rule),
+        drift=combined(found.drift, correlated, rule),
+        held=held,
+    )
 
 
 def facts_of(
@@ -85,7 +97,7 @@ def facts_of(
     Parameters
     ----------
     model : Model
-        One translation a level.
+        The model.
     period : float
         First period [s].
     direction : str
@@ -100,9 +112,10 @@ def facts_of(
         period=period,
         height=model.height,
         storey_height=np.diff(model.height, prepend=0.0),
-        weight=model.mass * GRAVITY,
+        weight=model.level_mass * GRAVITY,
         share_of_three=share_of_three,
         other_period=other_period,
+        plan=plan_facts(model.lateral, direction) if isinstance(model.lateral, Floors) else None,
     )
 
 

@@ -3,13 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
-from calcsheet.core.arrays import Array
-from calcsheet.core.chain import Chain
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-
-Lateral = Chain | StiffnessMatrix | FlexibilityMatrix
+from calcsheet.core.arrays import Array, Frozen
+from calcsheet.core.lateral import Lateral
+from calcsheet.core.springs import BaseSprings
 
 
 @dataclass(frozen=True, eq=False)
@@ -31,6 +29,48 @@ class LevelBelow:
     mass: float
 
 
+@dataclass(frozen=True)
+class PlanLine:
+    """Where a line of resistance runs in the plan.
+
+    Parameters
+    ----------
+    name : str
+        Its name.
+    x, y : float
+        A point on it [m].
+    angle : float
+        Its direction, from x towards y [rad].
+    """
+
+    name: str
+    x: float
+    y: float
+    angle: float
+
+
+@dataclass(frozen=True, eq=False)
+class Plan(Frozen):
+    """The plan of floors that are rigid in it.
+
+    Parameters
+    ----------
+    centre : (n, 2) array
+        Centre of mass of each level [m].
+    gyration : (n,) array
+        Radius of gyration of each level's mass about it [m].
+    lines : tuple of PlanLine
+        The lines of resistance.
+    extent : (n, 4) array or None
+        Each floor from and to in x, from and to in y [m]; None where it is not given.
+    """
+
+    centre: Array
+    gyration: Array
+    lines: tuple[PlanLine, ...]
+    extent: Array | None = None
+
+
 @dataclass(frozen=True, eq=False)
 class StiffnessSet:
     """A named set of lateral stiffnesses with the ground it stands on.
@@ -41,8 +81,8 @@ class StiffnessSet:
         Name of the set, such as "cracked".
     ground : str
         Why these values: the engineer's words.
-    lateral : mapping of str to Chain, StiffnessMatrix or FlexibilityMatrix
-        Lateral stiffness by direction, "x" and "y" (one or both).
+    lateral : mapping of str to Chain, StiffnessMatrix, FlexibilityMatrix or Stick
+        Lateral stiffness by direction, "x" and "y" (one or both); of rigid floors by line of resistance.
     """
 
     name: str
@@ -80,6 +120,12 @@ class Storeys:
         Gravity load of each level for second-order effects [kN]; None where the table has none.
     area : (n,) array or None
         Floor area of each level [m²]; None where the table has none.
+    springs : mapping of str to BaseSprings
+        Springs at the base by direction; a direction without any is fixed.
+    second_order : bool
+        Whether the gravity loads are in the stiffness.
+    plan : Plan or None
+        The plan of rigid floors; None where each direction is planar.
     """
 
     base: str
@@ -95,3 +141,6 @@ class Storeys:
     given: str = "mass"
     gravity: Array | None = None
     area: Array | None = None
+    springs: Mapping[str, BaseSprings] = field(default_factory=dict)
+    second_order: bool = False
+    plan: Plan | None = None

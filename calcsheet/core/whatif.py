@@ -8,14 +8,13 @@ from functools import partial
 
 from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.basis import Basis
-from calcsheet.core.chain import Chain
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
+from calcsheet.core.errors import ModelError
 from calcsheet.core.model import Model, models_of
 from calcsheet.core.modes import Modes, modes_of
 from calcsheet.core.participation import Participation, participation
 from calcsheet.core.peaks import peaks
 from calcsheet.core.response import combine, left_over, related
-from calcsheet.core.storeys import Lateral, Storeys
+from calcsheet.core.storeys import Storeys
 
 
 @dataclass(frozen=True, eq=False)
@@ -62,25 +61,17 @@ def multiplied(storeys: Storeys, mass: float, stiffness: str, along: Mapping[str
     Raises
     ------
     ModelError
-        A factor that leaves a mass or stiffness not finite and above 0.
+        Rigid floors, or a factor that leaves a mass or stiffness not finite and above 0.
     """
+    if storeys.plan is not None:
+        raise ModelError("what-if", "rigid floors", "must be a planar model")
     sets = tuple(
-        replace(s, lateral={d: _stiffer(lateral, along.get(d, 1.0)) for d, lateral in s.lateral.items()})
+        replace(s, lateral={d: lateral.times(along.get(d, 1.0)) for d, lateral in s.lateral.items()})
         if s.name == stiffness
         else s
         for s in storeys.stiffness
     )
     return replace(storeys, mass=storeys.mass * mass, stiffness=sets)
-
-
-def _stiffer(lateral: Lateral, factor: float) -> Lateral:
-    match lateral:
-        case Chain():
-            return Chain(lateral.storey * factor)
-        case StiffnessMatrix():
-            return StiffnessMatrix(lateral.matrix * factor)
-        case FlexibilityMatrix():
-            return FlexibilityMatrix(lateral.matrix / factor)
 
 
 def answered(storeys: Storeys, stiffness: str, keep: int | None, basis: Basis | None) -> tuple[Answered, ...]:

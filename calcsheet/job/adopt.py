@@ -69,7 +69,13 @@ def adoption(files: JobFiles, stiffness: str, mass: float, along: Mapping[str, f
     values: dict[tuple[str, ...], float | None] = {}
     basis = files.card.stiffness[stiffness]
     if basis.own:
-        columns |= {stiffness_key(d, stiffness): factor for d, factor in changed.items()}
+        keys = {c.key for c in files.reading.columns if c.used}
+        own = (
+            (stiffness_key(given, d, stiffness), f)
+            for d, f in changed.items()
+            for given in files.reading.ways[d].columns
+        )
+        columns |= {key: factor for key, factor in own if key in keys}
     elif changed and basis.factor is not None and len({*along.values()}) > 1:
         values[("stiffness", stiffness, "factor")] = None
         values |= {("stiffness", stiffness, f"factor_{d}"): rounded(basis.factor * f) for d, f in along.items()}

@@ -59,9 +59,8 @@ def read_basis(card: Card, tables: Mapping[str, TextTable]) -> Basis:
     edition = _edition(EDITIONS[name], given, card, tables)
     combination = _choice("combination", given, edition.combination()[0], f' with edition "{name}"')
     residual = _choice("residual", given, RESIDUALS)
-    if given.get("second_order_in_stiffness", False) is not False:
-        allowed = "must be false: second-order effects in the stiffness are not available"
-        raise _refused("second_order_in_stiffness", given, allowed)
+    if not isinstance(given.get("second_order_in_stiffness", False), bool):
+        raise _refused("second_order_in_stiffness", given, "must be true or false")
     system = card.units.system
     return Basis(
         edition=edition,  # type: ignore[arg-type]

@@ -14,11 +14,12 @@ from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationError
 
+from calcsheet.core.chain import Chain
+from calcsheet.core.lateral import KINDS, Lateral
 from calcsheet.job.errors import InputError
 from calcsheet.job.wording import dotted, refusal, shown
 
 FILE = "job.toml"
-CHAIN = "storey chain"
 
 DIRECTIONS = ("x", "y")
 FILE_NAME = r"^[^\s./\\:][^/\\:]*$"
@@ -35,6 +36,7 @@ Filled = Annotated[str, Field(pattern=_NOT_BLANK, description="a text that is no
 Date = Annotated[dt.date, Field(description="a date without quotation marks, such as 2026-01-31")]
 MaybeDate = Annotated[dt.date | None, Field(description="a date without quotation marks, such as 2026-01-31")]
 Factor = Annotated[Annotated[float, Field(gt=0)] | None, Field(description="a number above 0")]
+Damping = Annotated[Annotated[float, Field(gt=0, lt=1)] | None, Field(description="a number above 0 and below 1")]
 Sentence = Annotated[
     Annotated[str, Field(pattern=_NOT_BLANK)] | None,
     Field(description="a sentence that ties this direction to the drawings' grid"),
@@ -119,8 +121,8 @@ class Directions(_Table):
 class ModelChoice(_Table):
     """Table [model]: how the lateral stiffness is given, the file of each matrix, and that of the members taken off."""
 
-    kind: Literal["storey chain", "stiffness matrix", "flexibility matrix"] = Field(
-        description='"storey chain", "stiffness matrix" or "flexibility matrix"'
+    kind: Literal["storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix", "rigid floors"] = Field(
+        description='"storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix" or "rigid floors"'
     )
     x: FileName = None
     y: FileName = None
@@ -133,6 +135,34 @@ class ModelChoice(_Table):
     def files(self) -> Mapping[str, str]:
         """The file of each direction's matrix."""
         return {d: name for d in DIRECTIONS if (name := getattr(self, d)) is not None}
+
+    @property
+    def lateral(self) -> type[Lateral] | None:
+        """The lateral model that the kind stands for in each direction; None where floors move in both at once."""
+        return KINDS.get(self.kind)
+
+    @property
+    def by_file(self) -> bool:
+        """Whether each direction's stiffness comes from a file of its own."""
+        return self.lateral is not None and bool(self.lateral.table)
+
+
+class Base(_Table):
+    """Table [base]: springs between building and ground, in kN/m and kN·m/rad (SI) or kip/in and kip·ft/rad (US).
+
+    A direction without any is fixed; damping is printed and used nowhere.
+    """
+
+    translation_x: Factor = None
+    translation_y: Factor = None
+    rocking_x: Factor = None
+    rocking_y: Factor = None
+    damping_x: Damping = None
+    damping_y: Damping = None
+
+    def of(self, direction: str) -> tuple[float | None, float | None, float | None]:
+        """Translation, rocking and damping of a direction."""
+        return tuple(getattr(self, f"{name}_{direction}") for name in ("translation", "rocking", "damping"))
 
 
 class SetBasis(_Table):
@@ -273,6 +303,7 @@ class Card(_Table):
     levels: Levels = Field(description="a table [levels]")
     directions: Directions = Field(description="a table [directions]")
     model: ModelChoice = Field(description="a table [model]")
+    base: Base = Field(Base(), description="a table [base]")
     stiffness: Mapping[str, SetBasis] = Field(min_length=1, description="a table [stiffness.NAME] for each set")
     serves: Serves = Field(description="a table [serves]")
     basis: Annotated[Mapping[str, Any] | None, BeforeValidator(_storable_table)] = Field(
@@ -332,22 +363,26 @@ def _contradictions(card: Card) -> Iterator[InputError]:
     analysed = card.directions.analysed
     if not analysed:
         yield InputError(FILE, "directions", "neither x nor y", "must have a sentence for x, y or both")
-    chain = card.model.kind == CHAIN
+    by_file = card.model.by_file
+    if card.model.lateral is None:
+        yield from _floors(card)
     for d in DIRECTIONS:
-        if chain and d in card.model.files:
+        if not by_file and d in card.model.files:
             found = f'got "{card.model.files[d]}"'
-            yield InputError(FILE, f"model.{d}", found, f'must be left out with kind "{CHAIN}"')
-        if not chain and d in analysed and d not in card.model.files:
+            yield InputError(FILE, f"model.{d}", found, f'must be left out with kind "{card.model.kind}"')
+        if by_file and d in analysed and d not in card.model.files:
             allowed = f"must be {ModelChoice.model_fields[d].description}"
             yield InputError(FILE, f"model.{d}", "missing", allowed)
-    if card.model.members is not None and not chain:
+        yield from _springs(card.base, d, analysed)
+    members = card.model.members is not None
+    if members and card.model.lateral is not Chain:
         found = f'got "{card.model.members}"'
-        yield InputError(FILE, "model.members", found, f'must be left out unless model.kind is "{CHAIN}"')
+        yield InputError(FILE, "model.members", found, f'must be left out unless model.kind is "{Chain.kind}"')
     for name, basis in card.stiffness.items():
-        if basis.own and card.model.members is not None:
+        if basis.own and members:
             allowed = "must be left out with model.members, which gives the stiffnesses of every set"
             yield InputError(FILE, dotted(["stiffness", name, "own"]), "got true", allowed)
-        yield from _set_basis(name, basis, analysed, chain)
+        yield from _set_basis(name, basis, analysed, by_file)
     for i, other in enumerate(card.second_model):
         wanted = ("",) if other.quantity == "weight" else analysed
         if other.direction not in wanted:
@@ -366,7 +401,33 @@ def _contradictions(card: Card) -> Iterator[InputError]:
         yield InputError(FILE, "people.checked.name", found, allowed)
 
 
-def _set_basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: bool) -> Iterator[InputError]:
+def _floors(card: Card) -> Iterator[InputError]:
+    """What floors that move in both directions at once ask for, and cannot have."""
+    kind = shown(card.model.kind)
+    for d in DIRECTIONS:
+        if d not in card.directions.analysed:
+            yield InputError(FILE, f"directions.{d}", "missing", f"must have a sentence with model.kind {kind}")
+        if any(value is not None for value in card.base.of(d)):
+            yield InputError(FILE, "base", f"springs in {d}", f"must be left out with model.kind {kind}")
+    for name, basis in card.stiffness.items():
+        if basis.factor_x is not None or basis.factor_y is not None:
+            allowed = f"must have one factor for all lines with model.kind {kind}"
+            yield InputError(FILE, dotted(["stiffness", name]), "has factor_x or factor_y", allowed)
+
+
+def _springs(base: Base, direction: str, analysed: tuple[str, ...]) -> Iterator[InputError]:
+    names = ("translation", "rocking", "damping")
+    given = {name: value for name, value in zip(names, base.of(direction), strict=True) if value is not None}
+    for name, value in given.items():
+        if direction not in analysed:
+            allowed = f"must be left out: {direction} is not analysed"
+            yield InputError(FILE, f"base.{name}_{direction}", f"got {shown(value)}", allowed)
+    if list(given) == ["damping"]:
+        allowed = f"must go with base.translation_{direction} or base.rocking_{direction}"
+        yield InputError(FILE, f"base.damping_{direction}", f"got {shown(given['damping'])}", allowed)
+
+
+def _set_basis(name: str, basis: SetBasis, analysed: tuple[str, ...], by_file: bool) -> Iterator[InputError]:
     where = dotted(["stiffness", name])
     if not name.strip() or set(name) & set("[]"):
         yield InputError(FILE, where, f'got the name "{name}"', "must be a name without square brackets")
@@ -380,6 +441,7 @@ def _set_basis(name: str, basis: SetBasis, analysed: tuple[str, ...], chain: boo
         for d in analysed:
             if basis.factor_of(d) is None:
                 yield InputError(FILE, f"{where}.factor_{d}", "missing", "must be a number above 0")
-    if basis.own and not chain:
-        allowed = f'must be left out unless model.kind is "{CHAIN}"'
+    if basis.own and by_file:
+        kinds = " or ".join(shown(kind) for kind, lateral in KINDS.items() if not lateral.table)
+        allowed = f"must be left out unless model.kind is {kinds}"
         yield InputError(FILE, f"{where}.own", "got true", allowed)

@@ -139,7 +139,7 @@ def export_file(folder: JobFolder, path: Path) -> tuple[str, ...]:
 def _knows(files: JobFiles, table: str) -> Knows:
     """What headings stand for in a table of the job."""
     if table == "storeys":
-        return lambda name: headings.known(name, name, files.card)
+        return lambda name: headings.known(name, name, files.card, files.reading.ways)
     loads = files.takeoff_tables.get(floorfile.LOADS)
     if not isinstance(loads, TextTable):
         what = "no loads.csv in the job folder"

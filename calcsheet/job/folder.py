@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
@@ -10,11 +11,12 @@ from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeycells, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
-from calcsheet.job.card import CHAIN, Card, parse_card
+from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
 from calcsheet.job.errors import InputError
 from calcsheet.job.floorfile import FILES as FLOOR_FILES
 from calcsheet.job.floorfile import FloorReading, read_floors
 from calcsheet.job.memberfile import MemberReading, member_files, read_members
+from calcsheet.job.planfile import LINES, PLAN, read_lines
 from calcsheet.job.storeycells import read_frame
 from calcsheet.job.storeyfile import read_storeys
 from calcsheet.job.storeyreading import StoreyReading
@@ -37,7 +39,7 @@ class JobFiles:
     reading : StoreyReading
         The storey table, with its problems or the storeys.
     matrices : mapping of str to TextTable
-        By direction, the tables of given matrices.
+        The tables beside it: of given matrices by direction, of rigid floors by file.
     stamps : mapping of str to Stamp or None
         By file name, the state of each file on disk; None for one that a basis names and that isn't there.
     basis : Basis or None
@@ -107,10 +109,7 @@ class JobFolder:
         card = parse_card(card_file.text)
         stamps: dict[str, Stamp | None] = {job_card.FILE: card_file.stamp}
         storeys = self._table(storeycells.FILE, "must have a row for each level", stamps)
-        matrices = {
-            d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
-            for d, name in (card.model.files.items() if card.model.kind != CHAIN else ())
-        }
+        matrices = self._beside(card, stamps)
         tables = self._takeoff_tables(card, stamps)
         floors, members = _takeoffs(tables, card, storeys)
         reading = read_storeys(storeys, card, matrices, floors, members)
@@ -205,6 +204,26 @@ class JobFolder:
             return read_basis(card, tables), ""
         except InputError as error:
             return None, str(error)
+
+    def _beside(self, card: Card, stamps: dict[str, Stamp | None]) -> dict[str, TextTable]:
+        """The tables that the storeys are read with: matrices by direction, or those of rigid floors by file."""
+        if card.model.by_file:
+            return {
+                d: self._table(name, f"must be there, since {job_card.FILE} names it in model.{d}", stamps)
+                for d, name in card.model.files.items()
+            }
+        if card.model.lateral is not None:
+            return {}
+        why = f"must be there, since model.kind is {shown(card.model.kind)} ({job_card.FILE})"
+        tables = {name: self._table(name, why, stamps) for name in (LINES, PLAN)}
+        for row in read_lines(tables[LINES])[0]:
+            if row.file:
+                if not re.fullmatch(FILE_NAME, row.file):
+                    allowed = 'must be the name of a file in the job folder, such as "core.csv"'
+                    raise InputError(LINES, f'line "{row.line.name}"', f'file "{row.file}"', allowed)
+                why = f"must be there, since {LINES} names it for line {shown(row.line.name)}"
+                tables[row.file] = self._table(row.file, why, stamps)
+        return tables
 
     def _takeoff_tables(self, card: Card, stamps: dict[str, Stamp | None]) -> dict[str, TextTable | InputError]:
         """The tables of the take-offs that there are; one that comes later is noticed by its state."""

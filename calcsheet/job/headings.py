@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator
+from collections.abc import Container, Iterator, Mapping
 from dataclasses import dataclass, replace
+from itertools import product
 
-from calcsheet.job.card import CHAIN, DIRECTIONS, Card
+from calcsheet.core.given import Given
+from calcsheet.core.lateral import LATERALS, Lateral
+from calcsheet.job.card import DIRECTIONS, Card
 from calcsheet.job.errors import InputError
 from calcsheet.job.table import TextTable
 from calcsheet.units import Unit, UnitError, allowed_units, display, parse_unit
@@ -24,6 +27,9 @@ QUANTITIES = {
 }
 """The headings that stand for one quantity, and that quantity in the unit table."""
 
+Ways = Mapping[str, type[Lateral]]
+"""What resists along each direction, or along each line of resistance."""
+
 
 @dataclass(frozen=True)
 class Column:
@@ -40,7 +46,7 @@ class Column:
     unit : Unit or None
         Its unit; None also where the heading's unit is refused.
     direction : str or None
-        "x" or "y".
+        "x" or "y", or a line of resistance.
     set_name : str or None
         The stiffness set whose own values these are.
     used : bool
@@ -84,14 +90,15 @@ def heading_unit(file: str, heading: str, unit: str | None, quantity: str) -> Un
         raise InputError(file, where, error.found, error.allowed) from None
 
 
-def read_headings(table: TextTable, card: Card) -> Headings:
+def read_headings(table: TextTable, card: Card, ways: Ways) -> Headings:
     """Return the columns of a storey table, every problem with them, and notices of what isn't used."""
     columns: list[Column] = []
+    needed = needed_stiffness(card, ways)
     problems: list[tuple[str | None, InputError]] = []
     notices: list[str] = []
     for i, heading in enumerate(table.headings):
         name, unit = split_heading(heading)
-        column = known(name, heading, card)
+        column = known(name, heading, card, ways, needed)
         if column is None:
             columns.append(Column(f"column {i + 1}", heading))
             if heading.strip() or any(cells[i].strip() for cells in table.rows):
@@ -113,40 +120,50 @@ def read_headings(table: TextTable, card: Card) -> Headings:
         if not column.used and twin is None:
             notices.append(f'{table.file}, column "{heading}" isn\'t used by this model, and is kept')
         columns.append(column)
-    problems += [(None, error) for error in _missing(table.file, {c.key for c in columns}, card)]
+    problems += [(None, error) for error in _missing(table.file, {c.key for c in columns}, card, ways)]
     return Headings(tuple(columns), tuple(problems), tuple(notices))
 
 
-def needed_stiffness(card: Card) -> dict[str, tuple[str, str | None]]:
-    """Return the stiffness columns needed: key -> direction, set (None: what factors apply to)."""
-    if card.model.kind != CHAIN or card.model.members is not None:
+def needed_stiffness(card: Card, ways: Ways) -> dict[str, tuple[Given, str, str | None]]:
+    """Return the stiffness columns of the model: key -> what it gives, way, set (None: what factors apply to)."""
+    if card.model.members is not None:
         return {}
     sets = dict.fromkeys(name if basis.own else None for name, basis in card.stiffness.items())
-    return {stiffness_key(d, name): (d, name) for name in sets for d in card.directions.analysed}
+    return {
+        stiffness_key(given, d, name): (given, d, name)
+        for name in sets
+        for d, lateral in ways.items()
+        for given in lateral.columns
+    }
 
 
-def stiffness_key(direction: str, set_name: str | None) -> str:
+def optional_stiffness(card: Card, ways: Ways) -> tuple[str, ...]:
+    """Keys of the stiffness columns that the model can do without."""
+    return tuple(key for key, (given, _, _) in needed_stiffness(card, ways).items() if given.optional)
+
+
+def stiffness_key(given: Given, direction: str, set_name: str | None) -> str:
     """Return the key of a stiffness column."""
-    return f"stiffness {direction}" + (f" {set_name}" if set_name else "")
+    return f"{given.heading} {direction}" + (f" {set_name}" if set_name else "")
 
 
-def known(name: str, heading: str, card: Card) -> Column | None:
+def known(name: str, heading: str, card: Card, ways: Ways, needed: Container[str] = ()) -> Column | None:
     """Return the column that a heading's name stands for in a storey table, without its unit; None where it's not known."""
     wanted = name.casefold()
     if wanted == LEVEL:
         return Column(LEVEL, heading, used=True)
     if wanted in QUANTITIES:
         return Column(wanted, heading, QUANTITIES[wanted], used=True)
-    for d in DIRECTIONS:
-        for set_name in (None, *(name for name, basis in card.stiffness.items() if basis.own)):
-            key = stiffness_key(d, set_name)
-            if wanted == " ".join(key.split()).casefold():
-                used = key in needed_stiffness(card)
-                return Column(key, heading, "stiffness", None, d, set_name, used)
+    sets = (None, *(name for name, basis in card.stiffness.items() if basis.own))
+    givens = [given for lateral in LATERALS for given in lateral.columns]
+    for given, d, set_name in product(givens, (*ways, *DIRECTIONS), sets):
+        key = stiffness_key(given, d, set_name)
+        if wanted == " ".join(key.split()).casefold():
+            return Column(key, heading, given.heading, None, d, set_name, key in needed)
     return None
 
 
-def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
+def _missing(file: str, keys: set[str], card: Card, ways: Ways) -> Iterator[InputError]:
     def written(key: str, quantity: str) -> str:
         return f'"{key} [{display(quantity, card.units.system).symbol}]"'
 
@@ -163,8 +180,8 @@ def _missing(file: str, keys: set[str], card: Card) -> Iterator[InputError]:
             yield InputError(file, "", f"no column {' or '.join(both)}", "must have exactly one of them")
         elif keys.issuperset(pair):
             yield InputError(file, "", f"columns {' and '.join(both)}", "must have exactly one of them")
-    for key, (d, name) in needed_stiffness(card).items():
-        if key not in keys:
+    for key, (given, d, name) in needed_stiffness(card, ways).items():
+        if key not in keys and not given.optional:
             own = f" and stiffness.{name} has own values" if name else ""
-            why = f"must have it, since {d} is analysed{own} (job.toml)"
-            yield InputError(file, "", f"no column {written(key, 'stiffness')}", why)
+            why = f"must have it, since {d} is {'analysed' if d in DIRECTIONS else 'a line of resistance'}{own} (job.toml)"
+            yield InputError(file, "", f"no column {written(key, given.heading)}", why)

@@ -7,11 +7,13 @@ from collections.abc import Sequence
 import numpy as np
 
 from calcsheet.core.arrays import Array
+from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.job.cells import ANY, read_cell
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import heading_unit, split_heading
 from calcsheet.job.numbers import decimal_mark
 from calcsheet.job.table import TextTable
+from calcsheet.units import UnitError, parse_unit
 
 
 def read_matrix(table: TextTable, levels: Sequence[str], quantity: str) -> tuple[Array, list[InputError]]:
@@ -59,6 +61,15 @@ def read_matrix(table: TextTable, levels: Sequence[str], quantity: str) -> tuple
             except InputError as error:
                 problems.append(error)
     return matrix, problems
+
+
+def matrix_kind(table: TextTable) -> type[StiffnessMatrix] | type[FlexibilityMatrix]:
+    """The matrix that a table holds, by the unit of its first heading: a stiffness, else a flexibility or deflections."""
+    try:
+        parse_unit(split_heading(table.headings[0])[1] or "", "stiffness")
+    except UnitError:
+        return FlexibilityMatrix
+    return StiffnessMatrix
 
 
 def _width(cells: Sequence[str]) -> int:

@@ -9,10 +9,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from calcsheet.core.arrays import Array
+from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.sections import AXES, Material, Section, properties_of
 from calcsheet.core.stiffnesstakeoff import BEAMS, DIAGONAL, KINDS, PINNED_BASE, Member, SetFactor, Takeoff, take_off
-from calcsheet.job.card import CHAIN, Card
+from calcsheet.job.card import Card
 from calcsheet.job.errors import InputError
 from calcsheet.job.listfile import ListColumn, ListRow, read_list
 from calcsheet.job.numbers import readings
@@ -134,7 +135,7 @@ def _takeoff(tables: Sequence[TextTable], card: Card, frame: Frame) -> tuple[Tak
     factors = tuple(
         SetFactor(name, d, basis.factor_of(d) or 1.0)
         for name, basis in card.stiffness.items()
-        if not basis.own and card.model.kind == CHAIN
+        if not basis.own and card.model.lateral is Chain
         for d in card.directions.analysed
     )
     unstated = tuple(

@@ -46,11 +46,34 @@ class Frame:
 
 
 class StoreyCells:
-    """The cells of a storey table: `values` by column key and row in core units, and every problem on the way to them."""
+    """The cells of a storey table: `values` by column key and row in core units, and every problem on the way to them.
 
-    def __init__(self, table: TextTable, card: Card, columns: tuple[Column, ...]) -> None:
+    Parameters
+    ----------
+    table : TextTable
+        The table of storeys.csv.
+    card : Card
+        The job card.
+    columns : tuple of Column
+        Its columns.
+    optional : tuple of str
+        Keys of the columns of stiffness that may be left out.
+    lines_end : bool
+        Whether columns of stiffness are those of lines of resistance, which may end below the top.
+    """
+
+    def __init__(
+        self,
+        table: TextTable,
+        card: Card,
+        columns: tuple[Column, ...],
+        optional: tuple[str, ...] = (),
+        lines_end: bool = False,
+    ) -> None:
         self.table = table
         self.card = card
+        self.optional = (*OPTIONAL, *optional)
+        self.lines_end = lines_end
         self.columns = {column.key: (i, column) for i, column in enumerate(columns) if column.used}
         self.problems: list[CellProblem] = []
         self.notices: list[str] = []
@@ -74,6 +97,10 @@ class StoreyCells:
     def number(self, row: int) -> str:
         """A row's number as a spreadsheet shows it."""
         return str(self.table.row_number(row))
+
+    def may_end(self, row: int) -> bool:
+        """Whether a row needs no stiffness: below the effective base, or where a line of resistance may end."""
+        return self.lines_end or not self.is_above(row)
 
     def is_above(self, row: int) -> bool:
         """Whether a row's level is above the effective base, so in the model."""
@@ -134,12 +161,12 @@ class StoreyCells:
                         column.unit,
                         mark,
                         self.allowed(row, key),
-                        may_be_blank=key in OPTIONAL or (column.quantity == "stiffness" and not self.is_above(row)),
+                        may_be_blank=key in self.optional or (column.direction is not None and self.may_end(row)),
                     )
                 except InputError as error:
                     self.refuse(row, key, error)
         self.check_elevations()
-        for key in OPTIONAL:
+        for key in OPTIONAL if self.lines_end else self.optional:
             self.check_whole(key)
 
     def allowed(self, row: int, key: str) -> str:
@@ -154,7 +181,7 @@ class StoreyCells:
         """A column that may be left out is given for all levels of the model, or for none."""
         above = {row: number for row, number in self.values.get(key, {}).items() if self.is_above(row)}
         blank = [row for row, number in above.items() if np.isnan(number)]
-        if blank and len(blank) == sum(map(self.is_above, self.rows)):
+        if blank and len(blank) == len(self.rows_above):
             heading = self.columns[key][1].heading
             self.notices.append(f'{self.table.file}, column "{heading}" is blank: not used, and kept')
             return
@@ -211,7 +238,12 @@ class StoreyCells:
     @property
     def below(self) -> int:
         """How many levels lie at or below the effective base."""
-        return sum(not self.is_above(row) for row in self.rows)
+        return len(self.rows) - len(self.rows_above)
+
+    @property
+    def rows_above(self) -> list[int]:
+        """The rows of the levels of the model."""
+        return [row for row in self.rows if self.is_above(row)]
 
     @property
     def levels(self) -> tuple[str, ...]:
@@ -248,7 +280,7 @@ def read_frame(table: TextTable, card: Card) -> Frame | None:
     Frame or None
         None where levels or storey heights can't be read; without masses where these can't be.
     """
-    columns = read_headings(table, card).columns
+    columns = read_headings(table, card, {}).columns
     cells = StoreyCells(table, card, tuple(replace(c, used=c.used and c.key in _FRAME + _MASS) for c in columns))
     wrong = {problem.column for problem in cells.problems}
     if not wrong <= {*_MASS} or LEVEL not in cells.columns or not cells.rows:

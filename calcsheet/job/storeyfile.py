@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+import math
+from collections.abc import Iterator, Mapping, Sequence
 
 import numpy as np
 
@@ -10,17 +11,20 @@ from calcsheet.core.arrays import Array
 from calcsheet.core.chain import Chain
 from calcsheet.core.errors import ModelError
 from calcsheet.core.masstakeoff import take_off
-from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
-from calcsheet.core.storeys import Lateral, LevelBelow, StiffnessSet, Storeys
-from calcsheet.job.card import CHAIN, Card
+from calcsheet.core.springs import BaseSprings
+from calcsheet.core.storeys import LevelBelow, Storeys
+from calcsheet.job import card as job_card
+from calcsheet.job.card import Card
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.floorfile import FloorReading, read_floors
-from calcsheet.job.headings import AREA, GRAVITY, read_headings, stiffness_key
-from calcsheet.job.matrixfile import read_matrix
+from calcsheet.job.headings import AREA, GRAVITY, Ways, optional_stiffness, read_headings, stiffness_key
 from calcsheet.job.memberfile import MemberReading, read_members, taken_off
+from calcsheet.job.planfile import LINES, PLAN, LineRow, laterals_of, read_lines, read_plan
+from calcsheet.job.resisting import Resisting
 from calcsheet.job.storeycells import StoreyCells
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
+from calcsheet.units import display
 
 TAKE_OFF = "take-off"
 """How the masses are said to be given where they come from the mass take-off."""
@@ -42,7 +46,7 @@ def read_storeys(
     card : Card
         The job card: base, directions, kind of model and stiffness sets.
     matrices : mapping of str to TextTable, optional
-        By direction, the tables of the matrices that the card names.
+        The tables beside it: of the matrices that the card names, by direction; of rigid floors by file.
     floors : FloorReading, optional
         The mass take-off, needed where the card takes the masses from it.
     members : MemberReading, optional
@@ -53,9 +57,11 @@ def read_storeys(
     StoreyReading
         With every problem; nothing is raised for one.
     """
-    headings = read_headings(table, card)
-    cells = StoreyCells(table, card, headings.columns)
-    messages: list[str] = []
+    beside = matrices or {}
+    ways, lines, wrong = _ways(table, card, beside)
+    headings = read_headings(table, card, ways)
+    cells = StoreyCells(table, card, headings.columns, optional_stiffness(card, ways), lines_end=bool(lines))
+    messages = [str(error) for error in wrong]
     if card.masses is None:
         floors = None
     else:
@@ -66,6 +72,7 @@ def read_storeys(
     else:
         members = members or read_members({}, card, None)
         messages += members.messages
+    messages += [str(error) for error in _gravity_missing(cells)]
     problems = [
         *(CellProblem(None, key, str(error)) for key, error in headings.problems),
         *cells.problems,
@@ -74,8 +81,8 @@ def read_storeys(
     storeys = None
     if not problems:
         with np.errstate(over="ignore"):  # what overflows is refused as infinite
-            builder = _Builder(cells, card, floors, members)
-            storeys = builder.storeys(matrices or {})
+            builder = _Builder(cells, card, ways, lines, floors, members)
+            storeys = builder.storeys(beside)
             problems = builder.problems
     return StoreyReading(
         table,
@@ -88,6 +95,7 @@ def read_storeys(
         len(cells.rows) - cells.below,
         cells.foot,
         cells.numbers(),
+        ways,
     )
 
 
@@ -95,10 +103,18 @@ class _Builder:
     """Puts the storeys together, with the last problems that only the whole shows."""
 
     def __init__(
-        self, cells: StoreyCells, card: Card, floors: FloorReading | None, members: MemberReading | None
+        self,
+        cells: StoreyCells,
+        card: Card,
+        ways: Ways,
+        lines: Sequence[LineRow],
+        floors: FloorReading | None,
+        members: MemberReading | None,
     ) -> None:
         self.cells = cells
         self.card = card
+        self.ways = ways
+        self.lines = lines
         self.floors = None if floors is None else floors.floors
         self.members = None if members is None else members.takeoff
         self.problems: list[CellProblem] = []
@@ -114,8 +130,25 @@ class _Builder:
         except ModelError as error:
             self.refuse(f"mass take-off, {error}")
             return None
-        stiffness = self.chains(n) if self.card.model.kind == CHAIN else self.matrices(levels[n:], matrices)
-        if stiffness is None:
+        plan = None
+        if self.lines:
+            plan, wrong = read_plan(matrices[PLAN], self.lines, levels[n:])
+            for problem in wrong:
+                self.refuse(str(problem))
+        taken = self.taken_off()
+        if taken is None:
+            return None
+
+        def column(key: str) -> Array | None:
+            return taken[key] if key in taken else cells.from_base(key)[n:] if key in cells.values else None
+
+        resisting = Resisting(
+            self.card, self.ways, self.lines, levels[n:], height[n:], column, cells.table.file, matrices
+        )
+        stiffness, found = resisting.sets()
+        for key, text in found:
+            self.refuse(text, key)
+        if self.problems:
             return None
         return Storeys(
             base=levels[n - 1] if n else "base",
@@ -131,56 +164,54 @@ class _Builder:
             given=TAKE_OFF if self.floors else "mass" if "mass" in cells.values else "weight",
             gravity=cells.if_given(GRAVITY, n),
             area=self.floors.area[n:] if self.floors and AREA not in cells.values else cells.if_given(AREA, n),
+            springs=_springs(self.card),
+            second_order=_second_order(self.card),
+            plan=plan,
         )
 
-    def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
-        sets = []
-        taken = self.taken_off()
-        if self.problems:
-            return None
-        for name, basis in self.card.stiffness.items():
-            lateral: dict[str, Lateral] = {}
-            for d in self.card.directions.analysed:
-                key = stiffness_key(d, name if basis.own else None)
-                try:
-                    storey = taken[d] if d in taken else self.cells.from_base(key)[below:]
-                    lateral[d] = Chain(storey=storey * (basis.factor_of(d) or 1.0))
-                except ModelError as error:
-                    self.refuse(f"{self.cells.table.file}, {error}", key)
-            sets.append(StiffnessSet(name, basis.ground, lateral))
-        return None if self.problems else tuple(sets)
-
-    def taken_off(self) -> Mapping[str, Array]:
-        """Storey stiffnesses by direction where they come from members [kN/m]."""
+    def taken_off(self) -> Mapping[str, Array] | None:
+        """Storey stiffnesses that come from members, by the key of the column they stand for [kN/m]; None if refused."""
         if self.members is None or self.card.model.members is None:
             return {}
         try:
-            return taken_off(self.members, self.card.model.members)
+            found = taken_off(self.members, self.card.model.members)
         except InputError as error:
             self.refuse(str(error))
-            return {}
-
-    def matrices(self, levels: tuple[str, ...], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
-        flexible = self.card.model.kind == FlexibilityMatrix.kind
-        given = {}
-        for d in self.card.directions.analysed:
-            matrix, problems = read_matrix(tables[d], levels, "flexibility" if flexible else "stiffness")
-            for error in problems:
-                self.refuse(str(error))
-            given[d] = matrix
-        if self.problems:
             return None
-        sets = []
-        for name, basis in self.card.stiffness.items():
-            lateral: dict[str, Lateral] = {}
-            for d, matrix in given.items():
-                factor = basis.factor_of(d) or 1.0
-                try:
-                    if flexible:
-                        lateral[d] = FlexibilityMatrix(matrix=matrix / factor)
-                    else:
-                        lateral[d] = StiffnessMatrix(matrix=matrix * factor)
-                except ModelError as error:
-                    self.refuse(f"{tables[d].file}, {error}")
-            sets.append(StiffnessSet(name, basis.ground, lateral))
-        return None if self.problems else tuple(sets)
+        return {stiffness_key(Chain.columns[0], d, None): storey for d, storey in found.items()}
+
+
+def _ways(
+    table: TextTable, card: Card, beside: Mapping[str, TextTable]
+) -> tuple[Ways, Sequence[LineRow], list[InputError]]:
+    """What resists along each direction or line, the lines of resistance, and all that is wrong with them."""
+    if card.model.lateral is not None:
+        return dict.fromkeys(card.directions.analysed, card.model.lateral), (), []
+    lines, wrong = read_lines(beside[LINES])
+    found, missing = laterals_of(table, lines, [name for name, basis in card.stiffness.items() if basis.own])
+    return found, lines, [*wrong, *missing]
+
+
+def _second_order(card: Card) -> bool:
+    """Whether the gravity loads are to be in the stiffness."""
+    return (card.basis or {}).get("second_order_in_stiffness") is True
+
+
+def _gravity_missing(cells: StoreyCells) -> Iterator[InputError]:
+    """Gravity loads are given where they are to be in the stiffness."""
+    numbers = cells.values.get(GRAVITY, {})
+    if _second_order(cells.card) and all(math.isnan(numbers.get(row, math.nan)) for row in cells.rows_above):
+        allowed = f'must be false, or {cells.table.file} must have a column "{GRAVITY}"'
+        what = "got true without gravity loads"
+        yield InputError(job_card.FILE, "basis.second_order_in_stiffness", what, allowed)
+
+
+def _springs(card: Card) -> dict[str, BaseSprings]:
+    """The springs at the base of each direction that has any."""
+    units = [display(quantity, card.units.system).factor for quantity in ("stiffness", "rotational stiffness", "ratio")]
+    found = {}
+    for d in card.directions.analysed:
+        given = [None if v is None else v * unit for v, unit in zip(card.base.of(d), units, strict=True)]
+        if any(v is not None for v in given):
+            found[d] = BaseSprings(*given)
+    return found

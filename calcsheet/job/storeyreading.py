@@ -9,7 +9,7 @@ import numpy as np
 
 from calcsheet.core.storeys import Storeys
 from calcsheet.job.errors import CellProblem
-from calcsheet.job.headings import Column
+from calcsheet.job.headings import Column, Ways
 from calcsheet.job.table import TextTable
 
 
@@ -39,6 +39,8 @@ class StoreyReading:
         Elevation of the foot of the lowest storey [m].
     numbers : mapping of str to (n,) array
         The numbers of the levels in core units, roof first, by column key; NaN where a cell is blank or wrong.
+    ways : mapping of str to type
+        What resists along each direction, or along each line of resistance that its columns describe.
     """
 
     table: TextTable
@@ -51,6 +53,7 @@ class StoreyReading:
     above: int
     foot: float
     numbers: Mapping[str, np.ndarray]
+    ways: Ways
 
     @property
     def rows(self) -> tuple[tuple[str, ...], ...]:

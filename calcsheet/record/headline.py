@@ -45,14 +45,21 @@ def in_full(record: Mapping[str, Any]) -> str:
     asked = sum(c["answer"] for c in raised)
     rows.append(("Cautions", f'<a href="#cautions">{len(raised)}</a>, of which {asked} ask for an answer'))
     kinds = {p["kind"] for p in payloads.values()}
-    if "actions" not in kinds:
-        rows.append(("Torsion", f"{outcome('not assessed')}: x and y are planar models"))
+    if not kinds & {"actions", "torsion"}:
+        why = "x and y are planar models" if _planar(payloads) else "no edges of the floors in this record"
+        rows.append(("Torsion", f"{outcome('not assessed')}: {why}"))
     missing = [words for kind, words in LEFT_OUT.items() if kind not in kinds]
     if missing:
         rows.append((", ".join(missing).capitalize(), f"{outcome('not assessed')} in this record"))
     if because := reasons(record):
         rows.append(("Draft because of", "; ".join(escape(reason) for reason in because)))
     return facts(rows)
+
+
+def _planar(payloads: Payloads) -> bool:
+    """Whether every model moves in one direction."""
+    solved = [p["result"] for p in payloads.values() if p["kind"] == "modes" and p["result"]]
+    return not any(model.get("rows") for result in solved for model in result["models"])
 
 
 def _of(key: str, payload: Payload, payloads: Payloads, said: Mapping[str, Rows]) -> Iterator[Row]:
@@ -145,6 +152,16 @@ def _torsion(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
     yield "Torsion", _joined(result, said)
 
 
+def _edges(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
+    def share(item: Mapping[str, Any], i: int) -> str:
+        storey, edge = item["worst"]
+        at = f"/{key}/result/directions/{i}/share/{storey}/{edge}"
+        largest = number(item["share"][storey][edge], "share", system, at)
+        return f"{largest} of its limit, {outcome('passes' if item['share'][storey][edge] <= 1.0 else 'exceeds')}"
+
+    yield "Largest drift at an edge", _joined(result, share)
+
+
 def _drift(key: str, result: Mapping[str, Any], system: str) -> Iterator[Row]:
     def share(item: Mapping[str, Any], i: int) -> str:
         worst = item["worst"]
@@ -184,6 +201,7 @@ BRIEF: Mapping[str, Rows] = {
     "demand": _demand,
     "drift": _drift,
     "actions": _actions,
+    "torsion": _edges,
 }
 MORE: Mapping[str, Rows] = {"actions": _torsion, "drift": _screens}
 LEFT_OUT: Mapping[str, str] = {

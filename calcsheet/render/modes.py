@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from html import escape
 from typing import Any
 
+from calcsheet.render.numbers import number
 from calcsheet.render.table import Column, table, values, words
 from calcsheet.render.view import Choice, Rendered, View, system_of
 from calcsheet.render.words import outcome
@@ -22,6 +23,7 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     for i, model in enumerate(payload["result"]["models"]):
         at = f"/{key}/result/models/{i}/modes"
         parts.append(_periods(model, system, at))
+        parts.append(_beside(model, levels, system, f"/{key}/result/models/{i}"))
         if options["energy"] == "shown":
             title = f"of each mode in {model['name']}"
             parts.append(_shares(f"Kinetic energy {title}, share by level", model, "kinetic", levels, system, at))
@@ -46,6 +48,20 @@ def _periods(model: Mapping[str, Any], system: str, at: str) -> str:
         words("note", [_note(i + 1, modes) for i in order]),
     ]
     return table(columns, kind="values", caption=f"Modes in {model['name']}")
+
+
+def _beside(model: Mapping[str, Any], levels: list[str], system: str, at: str) -> str:
+    """What springs at the base and gravity loads mean for the model, where it has any."""
+    said = []
+    if model.get("fixed") is not None:
+        ratio = number(model["fixed"]["lengthening"], "ratio", system, f"{at}/fixed/lengthening")
+        period = number(model["fixed"]["period"], "period", system, f"{at}/fixed/period")
+        said.append(f"The springs at the base make the first period {ratio} times that on a fixed base, {period}.")
+    if model.get("critical") is not None:
+        factor = number(model["critical"]["factor"], "ratio", system, f"{at}/critical/factor")
+        level = escape(levels[model["critical"]["storey"]])
+        said.append(f"Elastic critical load factor of the gravity loads: {factor}, storey below level {level}.")
+    return f"<p>{' '.join(said)}</p>" if said else ""
 
 
 def _note(mode: int, modes: Mapping[str, Any]) -> str:

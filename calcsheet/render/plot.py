@@ -26,46 +26,65 @@ SCALES = {"largest": "largest = 1", "roof": "top level = 1", "mass": "ψᵀMψ =
 def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]) -> Rendered:
     storeys = payloads[payloads[key]["needs"]["storeys"]]["inputs"]
     system, models = system_of(payloads), payloads[key]["result"]["models"]
-    parts = (
-        []
-        if options["values"] == "hidden"
-        else [_ordinates(m, i, storeys, system, key, options) for i, m in enumerate(models)]
-    )
+    sides = [(i, model, name, rows) for i, model in enumerate(models) for name, rows in _sides(model)]
+    parts = []
+    if options["values"] != "hidden":
+        parts = [
+            _ordinates(model, name, rows, storeys, system, f"/{key}/result/models/{i}")
+            for i, model, name, rows in sides
+        ]
     return Rendered(
         "".join(parts),
-        lambda: tuple(_drawn(m, storeys, system, options["normalise"], key, i) for i, m in enumerate(models)),
+        lambda: tuple(_drawn(m, name, rows, storeys, system, options["normalise"]) for _, m, name, rows in sides),
     )
+
+
+def _sides(model: Mapping[str, Any]) -> list[tuple[str, list[int]]]:
+    """Each direction that a model moves in, with the rows of its shapes that are translations in it, lowest first."""
+    return list((model.get("rows") or {model["name"]: list(range(len(model["modes"]["psi"])))}).items())
 
 
 def _ordinates(
-    model: Mapping[str, Any], i: int, storeys: Mapping[str, Any], system: str, key: str, options: Mapping[str, Any]
+    model: Mapping[str, Any], name: str, rows: list[int], storeys: Mapping[str, Any], system: str, at: str
 ) -> str:
     order = list(range(len(storeys["level"])))[::-1]
-    shapes = scaled(np.array(model["modes"]["psi"]), "mass")
+    shapes = np.array(model["modes"]["psi"])
     columns = [words("level", [storeys["level"][j] for j in order])]
-    at = f"/{key}/result/models/{i}/modes/psi/{{}}"
+    at = f"{at}/modes/psi/{{}}"
     for mode in range(_drawn_count(model)):
         column = shapes[:, mode].tolist()
-        columns.append(values(f"ψ{mode + 1}", column, "normalised shape", system, f"{at}/{mode}", order=order))
-    return table(columns, kind="values", caption=f"Mass-normalised shapes in {model['name']}, ψᵀMψ = 1")
+        shown = [rows[j] for j in order]
+        columns.append(values(f"ψ{mode + 1}", column, "normalised shape", system, f"{at}/{mode}", order=shown))
+    return table(columns, kind="values", caption=f"Mass-normalised shapes in {name}, ψᵀMψ = 1")
 
 
 def _drawn_count(model: Mapping[str, Any]) -> int:
     return min(len(model["modes"]["omega"]), MANY if len(model["modes"]["omega"]) <= MANY else MANY - 1)
 
 
+def _at_scale(model: Mapping[str, Any], rows: list[int], normalise: str, drawn: int) -> tuple[np.ndarray, np.ndarray]:
+    """Shapes drawn, and whether the top level stands still in each, so that it can't scale them.
+
+    Where a model moves in several directions, their shares of a mode are to be seen: the largest of all is 1.
+    """
+    psi = np.array(model["modes"]["psi"])
+    if model.get("rows") and normalise != "mass":
+        moving = sorted(row for every in model["rows"].values() for row in every)
+        at_scale = psi[rows, :drawn] / np.abs(psi[moving, :drawn]).max(axis=0)
+        return at_scale, np.full(drawn, normalise == "roof")
+    at_scale = scaled(psi[rows], normalise)[:, :drawn]  # type: ignore[arg-type]
+    still = np.asarray(np.isnan(at_scale).any(axis=0))
+    return np.where(still, scaled(psi[rows], "largest")[:, :drawn], at_scale), still
+
+
 def _drawn(
-    model: Mapping[str, Any], storeys: Mapping[str, Any], system: str, normalise: str, key: str, index: int
+    model: Mapping[str, Any], name: str, rows: list[int], storeys: Mapping[str, Any], system: str, normalise: str
 ) -> Drawing:
     how = display("elevation", system)
     elevation = np.array([storeys["base_elevation"], *storeys["elevation"]]) / how.factor
-    shapes = np.array(model["modes"]["psi"])
     drawn = _drawn_count(model)
-    at_scale = scaled(shapes, normalise)[:, :drawn]  # type: ignore[arg-type]
-    still = np.asarray(np.isnan(at_scale).any(axis=0))
-    at_scale = np.where(still, scaled(shapes, "largest")[:, :drawn], at_scale)
+    at_scale, still = _at_scale(model, rows, normalise, drawn)
     periods = [text(t, decimals_for([t], 3)) for t in model["modes"]["period"][:drawn]]
-    name = model["name"]
     named = len(storeys["level"]) <= LABELLED
     labels = text_heights(elevation, storeys, how.digits) if named else ["0000"]
     left = 0.05 + 0.0105 * max(map(len, labels))  # room for the labels and the axis's title, without a layout pass
@@ -79,7 +98,7 @@ def _drawn(
             ax.axvline(0.0, color=GREY, linewidth=0.6, linestyle=(0, (1, 2)))
             ax.plot(shape, elevation, color=colour, linestyle=dash, linewidth=1.4)
             ax.plot(shape[1:], elevation[1:], color=colour, linestyle="none", marker="o", markersize=2.6)
-            reach = 1.12 * np.abs(shape).max()
+            reach = 1.12 * (1.0 if model.get("rows") and normalise != "mass" else np.abs(shape).max() or 1.0)
             ax.set_xlim(-reach, reach)
             ax.set_title(f"mode {n + 1}{' (largest = 1)' if still[n] else ''}\nT = {periods[n]} s")
             ax.set_ylim(elevation[0], elevation[-1] + 0.03 * (elevation[-1] - elevation[0]))

@@ -15,9 +15,11 @@ from calcsheet.render.modes import MODES
 from calcsheet.render.motion import MOTION
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
+from calcsheet.render.plan import PLAN
 from calcsheet.render.plot import PLOT
 from calcsheet.render.stiffnesstakeoff import MEMBERS, STIFFNESSES
 from calcsheet.render.storeys import STOREYS
+from calcsheet.render.torsion import TORSION
 from calcsheet.render.view import View
 from calcsheet.render.whatif import WHAT_IF
 
@@ -31,12 +33,14 @@ VIEWS: Mapping[str, View] = {
         STOREYS,
         MODES,
         PLOT,
+        PLAN,
         PARTICIPATION,
         DEMAND,
         PEAKS,
         DRIFT,
         ACTIONS,
         COMPARISON,
+        TORSION,
         CAUTIONS,
         CHANGES,
         MOTION,

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from html import escape
 from typing import Any
 
+from calcsheet.core.lateral import KINDS
 from calcsheet.render.numbers import number
 from calcsheet.render.table import Column, facts, table, values, words
 from calcsheet.render.view import Rendered, View, system_of
@@ -58,25 +59,20 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
     members = payloads["card"]["inputs"]["model"].get("members")
     for i, named in enumerate(given["stiffness"]):
         for direction, lateral in named["lateral"].items():
-            at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", f"stiffness {direction}"
+            at, title = f"/{key}/inputs/stiffness/{i}/lateral/{direction}", direction
             if len(given["stiffness"]) > 1:
                 title += f", {named['name']}"
-            if lateral["kind"] == "storey chain":
-                columns.append(
-                    values(
-                        title,
-                        lateral["storey"],
-                        "stiffness",
-                        system,
-                        f"{at}/storey",
-                        order=roof_first,
-                        as_given=not members,
+            kind = KINDS[lateral["kind"]]
+            for c in kind.columns:
+                numbers, name = lateral[c.field], f"{c.heading} {title}"
+                if numbers is not None:
+                    numbers, at_storey = _filled(numbers, given["level"]), f"{at}/{c.field}"
+                    columns.append(
+                        values(name, numbers, c.heading, system, at_storey, order=roof_first, as_given=not members)
                     )
-                )
-            else:
-                matrices.append(
-                    _matrix(f"{lateral['kind']} {direction}, {named['name']}", given["level"], lateral, system, at)
-                )
+            if kind.table:
+                caption = f"{lateral['kind']} {direction}, {named['name']}"
+                matrices.append(_matrix(caption, kind.table, given["level"], lateral, system, at))
     rows = [
         ("total mass above the base", number(sums["mass"], "mass", system, f"/{key}/result/mass")),
         ("total weight above the base", number(sums["weight"], "weight", system, f"/{key}/result/weight")),
@@ -97,8 +93,44 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
         )
         for named in given["stiffness"]
     ]
+    rows += [
+        _springs(d, springs, system, f"/{key}/inputs/springs/{d}") for d, springs in given.get("springs", {}).items()
+    ]
+    if given.get("second_order"):
+        rows.append(("second-order effects", "in the stiffness, by the gravity loads"))
     below = _below(given, system, key) if given["below"] else ""
+    if given.get("plan") is not None:
+        matrices = [*_plan(given["plan"], given["level"], system, f"/{key}/inputs/plan"), *matrices]
     return Rendered(table(columns, kind="values") + below + "".join(matrices) + facts(rows))
+
+
+def _plan(plan: Mapping[str, Any], levels: list[str], system: str, at: str) -> list[str]:
+    """The plan of rigid floors: its levels and its lines of resistance."""
+    order = list(range(len(levels)))[::-1]
+
+    def column(name: str, field: str, i: int) -> Column:
+        numbers = [row[i] for row in plan[field]]
+        return values(name, numbers, "length", system, f"{at}/{field}/{{}}/{i}", order=order, as_given=True)
+
+    floors = [words("level", [levels[i] for i in order])]
+    floors += [column(f"centre of mass {d}", "centre", i) for i, d in enumerate("xy")]
+    at_level = f"{at}/gyration"
+    floors.append(
+        values("radius of gyration", plan["gyration"], "length", system, at_level, order=order, as_given=True)
+    )
+    if plan["extent"] is not None:
+        sides = ("plan x from", "plan x to", "plan y from", "plan y to")
+        floors += [column(name, "extent", i) for i, name in enumerate(sides)]
+    lines = plan["lines"]
+    resisting = [words("line", [line["name"] for line in lines])]
+    for name, field, quantity in (("x", "x", "length"), ("y", "y", "length"), ("direction", "angle", "angle")):
+        numbers = [line[field] for line in lines]
+        given = quantity == "length"
+        resisting.append(values(name, numbers, quantity, system, f"{at}/lines/{{}}/{field}", as_given=given))
+    return [
+        table(floors, kind="values", caption="Floors in plan"),
+        table(resisting, kind="values", caption="Lines of resistance, directions from x towards y"),
+    ]
 
 
 def _masses(given: Mapping[str, Any], sums: Mapping[str, Any], system: str, key: str, order: list[int]) -> list[Column]:
@@ -119,6 +151,22 @@ def _serves(name: str, given: Mapping[str, Any]) -> str:
     return f"serves {' and '.join(served)}; " if served else ""
 
 
+def _filled(numbers: list[float], levels: list[str]) -> list[float | None]:
+    """A cell a level: a line of resistance may end below the top."""
+    return [*numbers, *[None] * (len(levels) - len(numbers))]
+
+
+def _springs(direction: str, springs: Mapping[str, Any], system: str, at: str) -> tuple[str, str]:
+    """Springs at the base of one direction."""
+    said = []
+    for name, quantity in (("translation", "stiffness"), ("rocking", "rotational stiffness")):
+        value = springs[name]
+        said.append(f"{name} {'fixed' if value is None else number(value, quantity, system, f'{at}/{name}')}")
+    if springs["damping"] is not None:
+        said.append(f"damping {number(springs['damping'], 'share', system, f'{at}/damping')}, not used")
+    return f"base springs {direction}", "; ".join(said)
+
+
 def _below(given: Mapping[str, Any], system: str, key: str) -> str:
     below = given["below"]
     order, at = list(range(len(below)))[::-1], f"/{key}/inputs/below"
@@ -131,9 +179,8 @@ def _below(given: Mapping[str, Any], system: str, key: str) -> str:
     return table(columns, kind="values", caption="Not in the model: at or below the effective base")
 
 
-def _matrix(title: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
-    quantity = "stiffness" if lateral["kind"] == "stiffness matrix" else "flexibility"
-    order = list(range(len(levels)))[::-1]
+def _matrix(title: str, quantity: str, levels: list[str], lateral: Mapping[str, Any], system: str, at: str) -> str:
+    order = list(range(len(lateral["matrix"])))[::-1]
     columns = [words("level", [levels[i] for i in order])]
     for j in order:
         entries = [row[j] for row in lateral["matrix"]]

@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from html import escape
 
-INDEX = re.compile(r"(?<=[A-Za-z\u0370-\u03ff\u0304])_([A-Za-z0-9]+)")
+INDEX = re.compile(r"(?<=[A-Za-z\u0370-\u03ff\u0304])_([A-Za-z0-9\u03b1-\u03c9]+)")
 POWER = re.compile(r"\^(\d+(?:\.\d+)?|[a-z])")
 
 

@@ -8,6 +8,8 @@ from dataclasses import dataclass
 
 from calcsheet.job.basis import spectrum_files
 from calcsheet.job.card import Card, SetBasis
+from calcsheet.job.floorfile import LOADS
+from calcsheet.job.planfile import LINES, PLAN
 from calcsheet.steps.step import Caution, Outcome, Step, plain
 
 GENERAL = (
@@ -63,9 +65,42 @@ class CardResult:
     to_confirm: tuple[int, ...]
 
 
+ROTATING = (
+    Caution(
+        "rigid-floors",
+        "Each level moves as one: floors are taken as rigid in their plane, masses as lumped at the levels; x, y and the "
+        "rotation are analysed together.",
+    ),
+    Caution(
+        "left-out",
+        "Left out: load combinations, combination of directions but at the edges of the floors, vertical motion, parts and "
+        "components, design of diaphragms, foundation uplift, wind.",
+    ),
+)
+"""What holds instead where floors move in both directions at once."""
+
+
+def _general(card: Card) -> list[Caution]:
+    """The cautions that always hold, in the words that fit the model."""
+    instead = {c.key: c for c in ROTATING} if card.model.lateral is None else {}
+    fixed = [d for d in card.directions.analysed if card.base.of(d)[:2] == (None, None)]
+    if len(fixed) < len(card.directions.analysed):
+        said = f"In {' and '.join(fixed)} the effective base is taken as fixed." if fixed else ""
+        text = f"{said} Springs at the base are linear: uplift and yielding of the ground are left out.".strip()
+        instead["fixed-base"] = Caution("fixed-base", text)
+    return [instead.get(c.key, c) for c in GENERAL]
+
+
+def _tables(card: Card) -> tuple[str, ...]:
+    """The files whose origin is to be stated."""
+    taken_off = () if card.masses is None else (card.masses.source, LOADS)
+    plan = (LINES, PLAN) if card.model.lateral is None else ()
+    return ("storeys.csv", *taken_off, *plan, *card.model.files.values(), *spectrum_files(card).values())
+
+
 def run(card: Card) -> Outcome:
     waiting = tuple(i for i, a in enumerate(card.assumptions, 1) if a.confirm_by.strip())
-    cautions = list(GENERAL)
+    cautions = _general(card)
     if card.basis is None:
         cautions.append(Caution("no-demand", "Design demand, drift and second-order effects are not in this record."))
     for i in waiting:
@@ -73,8 +108,7 @@ def run(card: Card) -> Outcome:
         cautions.append(
             Caution("to-confirm", f"Assumption {i} is to be confirmed: {plain(assumption.confirm_by)}.", subject=str(i))
         )
-    taken_off = () if card.masses is None else (card.masses.source, "loads.csv")
-    for name in ("storeys.csv", *taken_off, *card.model.files.values(), *spectrum_files(card).values()):
+    for name in _tables(card):
         if not (name in card.origins and card.origins[name].source.strip()):
             cautions.append(
                 Caution(

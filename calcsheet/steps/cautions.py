@@ -145,6 +145,47 @@ CAUTIONS: Mapping[str, Why] = {
         "Members at an angle turn a push in x into a force in y.",
         "The coupling is shown to be small, or rigid floors with lines of resistance are used.",
     ),
+    # ---- cantilever sticks, springs at the base, rigid floors
+    "deformation-neglected": Why(
+        "A wall that is short beside its height shears as well as it bends, and periods and drifts come out short without it.",
+        "The missing stiffness is given, or shown by hand to add little to the displacement of the top.",
+    ),
+    "critical-load": Why(
+        "Near its elastic critical load a building is softer than its first-order stiffness says, and sways further.",
+        "Gravity loads are taken into the stiffness, or sways and forces are amplified as the edition asks.",
+    ),
+    "base-springs": Why(
+        "Stiffnesses of the ground are known within a factor of two or so, and they move periods, forces and drifts.",
+        "The analysis is repeated with a soft and a stiff bound, and both are kept for design.",
+    ),
+    "lines-along-one-another": Why(
+        "Two lines in one place are often one element entered twice, which doubles its stiffness and moves the centre.",
+        "The lines are compared with the plan, and equal ones are made one or their difference is noted.",
+    ),
+    "centre-of-mass-outside": Why(
+        "A centre of mass outside the plan points to another origin or unit, and its eccentricity twists every result.",
+        "Coordinates of masses, lines and edges are brought to one origin and compared with the drawings.",
+    ),
+    "slender-floor": Why(
+        "Long narrow floors bend in their plane and share forces by tributary area more than by stiffness.",
+        "The floor's own flexibility is compared with that of the lines, or both distributions are designed for.",
+    ),
+    "no-centres-of-stiffness": Why(
+        "Eccentricities and torsional radii by storey, which codes ask for, are defined by storey stiffnesses alone.",
+        "They are judged from the static edge ratios or from an equivalent storey stiffness under lateral load.",
+    ),
+    "coupled-modes": Why(
+        "Modes that translate and twist together load the edges beyond what either direction alone shows.",
+        "Both directions are combined with correlated modes, and stiff lines are moved towards the edges where possible.",
+    ),
+    "edge-drift-exceeds": Why(
+        "Partitions, façades and columns at the edge meet the drift there, however small it is at the centre of mass.",
+        "Lines at the edges are stiffened, or the eccentricity is reduced.",
+    ),
+    "torsional-irregularity": Why(
+        "Where one edge moves much further than the other, elements there yield first and the twist grows.",
+        "The edition's consequences, such as a larger accidental eccentricity, are followed, or the plan is balanced.",
+    ),
     # ---- modes and participation
     "repeated-modes": Why(
         "Single shapes of a repeated frequency are arbitrary, so values of one of them alone mean nothing.",

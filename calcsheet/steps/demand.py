@@ -13,13 +13,16 @@ from calcsheet.core.codes.en1998_2004 import EN1998
 from calcsheet.core.model import models_of
 from calcsheet.core.participation import Participation
 from calcsheet.core.response import facts_of
-from calcsheet.steps.relations import line_of
+from calcsheet.steps.relations import line_of, numbered
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
 
 DRAWN = 160
 """Points along the spectrum's curve."""
 BEYOND = 4.0
 """Period beyond which displacements of a design spectrum need a second look [s] (EN 1998-1:2004, 3.2.2.2(3))."""
+
+ROTATING = Answer("floors rotate in the model; accidental eccentricities are a step of their own", "model", "judgement")
+"""What is said of accidental torsion where floors rotate."""
 
 
 @dataclass(frozen=True)
@@ -50,9 +53,11 @@ class Demand(Frozen):
     ordinate_relations, static_force_relations : tuple of Relation
         How the ordinate at the first period comes about, and the static force at the top level.
     first_effective_mass : float
-        Effective mass of the first mode [t].
+        Effective mass of the direction's main mode [t].
     first_base_shear : float
-        Base shear of the first mode, effective mass times ordinate [kN].
+        Base shear of that mode, effective mass times ordinate [kN].
+    main : int
+        That mode, from 0: the first of a planar model.
     """
 
     direction: str
@@ -67,6 +72,7 @@ class Demand(Frozen):
     static_force_relations: tuple[Relation, ...]
     first_effective_mass: float = field(metadata=agrees(rtol=1e-8))
     first_base_shear: float = field(metadata=agrees(rtol=1e-7))
+    main: int = 0
 
 
 @dataclass(frozen=True, eq=False)
@@ -94,10 +100,10 @@ def run(options: DemandOptions, storeys: Done, modes: Done, parts: Done, basis: 
             others = [p for p in parts.result.directions if p.direction != direction]
             facts = facts_of(
                 model,
-                float(part.period[0]),
+                float(part.period[part.main]),
                 direction,
                 share_of_three=float(part.cumulative[min(3, part.cumulative.size) - 1]),
-                other_period=float(others[0].period[0]) if others else None,
+                other_period=float(others[0].period[others[0].main]) if others else None,
             )
             demand = _of(given.edition, facts, part)
             at = f"result/directions/{len(found)}"
@@ -120,12 +126,13 @@ def _of(edition: Edition, facts: Facts, part: Participation) -> Demand:
         curve_period=periods,
         curve=edition.ordinates(facts.direction, periods),
         permitted=edition.permitted(facts),
-        torsion=edition.torsion(facts.direction)[1],
+        torsion=edition.torsion(facts.direction)[1] if facts.plan is None else ROTATING,
         static=static,
         ordinate_relations=edition.ordinate_relation(facts.direction, facts.period),
         static_force_relations=() if static is None else edition.distribution_relation(facts, static),
-        first_effective_mass=float(part.effective_mass[0]),
-        first_base_shear=float(part.effective_mass[0] * ordinate[0]),
+        first_effective_mass=float(part.effective_mass[part.main]),
+        first_base_shear=float(part.effective_mass[part.main] * ordinate[part.main]),
+        main=part.main,
     )
 
 
@@ -141,12 +148,13 @@ def _lines(demand: Demand, at: str) -> list[Line]:
         for i, relation in enumerate(relations)
     ]
     mass = Number(demand.first_effective_mass, "mass", f"{at}/first_effective_mass")
-    ordinate = Number(float(demand.ordinate[0]), "acceleration", f"{at}/ordinate/0")
+    n = demand.main
+    ordinate = Number(float(demand.ordinate[n]), "acceleration", f"{at}/ordinate/{n}")
     shear = Number(demand.first_base_shear, "force", f"{at}/first_base_shear")
     lines.append(
         Line(
-            f"Base shear of mode 1, {demand.direction}",
-            "V₁ = M₁* S_a(T₁)",
+            f"Base shear of mode {n + 1}, {demand.direction}",
+            numbered("V₁ = M₁* S_a(T₁)", n),
             "{0} × {1}",
             (mass, ordinate),
             shear,

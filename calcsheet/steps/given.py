@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import dataclasses
-from collections.abc import Callable, Iterable, Iterator, Mapping
+from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from typing import Any
 
 from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.core.floors import PLACES
+from calcsheet.core.lateral import KINDS
 from calcsheet.job.sectionfile import HEADINGS
 from calcsheet.job.wording import dotted
 from calcsheet.steps.headlines import Payloads
@@ -44,8 +45,10 @@ OF_PARTS: Mapping[str, Mapping[str, str]] = {
 """What a stiffness take-off is made from, with the quantities of its numbers; the others stand as they were typed."""
 SPOKEN = {field: heading for heading, field in HEADINGS.items()} | {"factor": "stiffness factor"}
 """Fields of sections and members that go by other words than their own."""
-OF_LATERAL = {"storey chain": "stiffness", "stiffness matrix": "stiffness", "flexibility matrix": "flexibility"}
-"""Quantity of the numbers of a lateral stiffness, by its kind."""
+OF_PLAN = {"x": "length", "y": "length", "angle": "angle"}
+"""Quantities of a line of resistance."""
+EXTENT = ("plan x from", "plan x to", "plan y from", "plan y to")
+"""Edges of a floor."""
 OF_SECOND_MODEL = {"period": "period", "weight": "weight", "base shear": "force"}
 LEFT_OUT = ("format", "people", "answers", "levels")
 """Tables of the job card that are no inputs of the calculation, or that the storeys hold."""
@@ -120,6 +123,8 @@ def _storeys(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
         for direction, lateral in named["lateral"].items():
             place = f"{at}/stiffness/{i}/lateral/{direction}"
             yield from _lateral(inputs, f"{direction}, {named['name']}", lateral, place)
+    if inputs.get("plan"):
+        yield from _plan(inputs, inputs["plan"], f"{at}/plan")
     for i, below in enumerate(inputs["below"]):
         for name, quantity in (("elevation", "elevation"), ("mass", "mass")):
             label = f"{name}, at or below the base"
@@ -127,29 +132,39 @@ def _storeys(key: str, payload: Payload, with_basis: bool) -> Iterator[Given]:
 
 
 def _lateral(inputs: Mapping[str, Any], of: str, lateral: Mapping[str, Any], at: str) -> Iterator[Given]:
-    kind, quantity = lateral["kind"], OF_LATERAL.get(lateral["kind"], PLAIN)
-    for name, numbers in lateral.items():
-        if name == "kind" or numbers is None:
-            continue
-        if kind == "storey chain":
-            yield from _by_level(inputs, f"stiffness {of}", f"stiffness {of}", quantity, numbers, f"{at}/{name}")
-        elif name == "matrix":
-            for j, column in enumerate(inputs["level"]):
-                entries, label = [row[j] for row in numbers], f"{kind} {of}, column {column}"
-                yield from _by_level(inputs, label, label, quantity, entries, f"{at}/{name}/{{}}/{j}")
-        else:
-            label = f"{kind} {of}, {_spoken(name)}"
-            if isinstance(numbers, list) and len(numbers) == len(inputs["level"]):
-                yield from _by_level(inputs, label, label, quantity, numbers, f"{at}/{name}")
-            else:
-                yield from _leaves((label,), numbers, f"{at}/{name}")
+    """Columns or matrix of a direction or a line, whose storeys may end below the top."""
+    model = KINDS[lateral["kind"]]
+    for column in model.columns:
+        if lateral[column.field] is not None:
+            label = f"{column.heading} {of}"
+            yield from _by_level(inputs, label, label, column.heading, lateral[column.field], f"{at}/{column.field}")
+    if model.table:
+        for j, level in enumerate(inputs["level"][: len(lateral["matrix"])]):
+            entries, label = [row[j] for row in lateral["matrix"]], f"{model.kind} {of}, column {level}"
+            yield from _by_level(inputs, label, label, model.table, entries, f"{at}/matrix/{{}}/{j}")
+
+
+def _plan(inputs: Mapping[str, Any], plan: Mapping[str, Any], at: str) -> Iterator[Given]:
+    """Floors in plan by level, lines of resistance by name."""
+    columns = [
+        (f"centre of mass {d}", [row[i] for row in plan["centre"]], f"centre/{{}}/{i}") for i, d in enumerate("xy")
+    ]
+    columns.append(("radius of gyration", plan["gyration"], "gyration"))
+    if plan["extent"] is not None:
+        columns += [(name, [row[i] for row in plan["extent"]], f"extent/{{}}/{i}") for i, name in enumerate(EXTENT)]
+    for label, numbers, place in columns:
+        yield from _by_level(inputs, label, label, "length", numbers, f"{at}/{place}")
+    for i, line in enumerate(plan["lines"]):
+        for field, quantity in OF_PLAN.items():
+            label = f"line “{line['name']}”, {'direction' if field == 'angle' else field}"
+            yield _leaf(label, label, line[field], f"{at}/lines/{i}/{field}", quantity)
 
 
 def _by_level(
-    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Iterable[float | None], at: str
+    inputs: Mapping[str, Any], key: str, label: str, quantity: str, numbers: Sequence[float | None], at: str
 ) -> Iterator[Given]:
     place = at if "{}" in at else f"{at}/{{}}"
-    for i, (level, number) in enumerate(zip(inputs["level"], numbers, strict=True)):
+    for i, (level, number) in enumerate(zip(inputs["level"], numbers, strict=False)):
         yield _leaf(key, label, number, place.format(i), quantity, str(level))
 
 

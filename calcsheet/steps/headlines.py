@@ -167,6 +167,18 @@ def _actions(result: Result) -> Iterator[Headline]:
             yield Headline(f"torsion/{d}", label, "ratio", item["torsion"], f"{at}/torsion")
 
 
+def _edges(result: Result) -> Iterator[Headline]:
+    for d, item, at in _each(result):
+        storey, edge = item["worst"]
+        label, place = f"Largest share of the drift limit at an edge, {d}", f"{at}/share/{storey}/{edge}"
+        yield Headline(f"share/{d}", label, "share", item["share"][storey][edge], place)
+        if item["static"] is not None:
+            ratio = item["static"]["ratio"]
+            most = int(np.argmax(ratio))
+            label, place = f"Largest static edge ratio of drifts, {d}", f"{at}/static/ratio/{most}"
+            yield Headline(f"static ratio/{d}", label, "ratio", ratio[most], place)
+
+
 HEADLINES: Mapping[str, Callable[[Result], Iterator[Headline]]] = {
     "storeys": _storeys,
     "modes": _modes,
@@ -174,6 +186,7 @@ HEADLINES: Mapping[str, Callable[[Result], Iterator[Headline]]] = {
     "demand": _demand,
     "drift": _drift,
     "actions": _actions,
+    "torsion": _edges,
 }
 
 
@@ -231,12 +244,20 @@ def _about_actions(payload: Payload, payloads: Payloads) -> Iterator[Conclusion]
         yield Conclusion(f"scaled/{d}", f"Modal forces to the static base shear, {d}", scaled)
 
 
+def _about_edges(payload: Payload, payloads: Payloads) -> Iterator[Conclusion]:
+    for d, item, _ in _each(payload["result"]):
+        storey, edge = item["worst"]
+        verdict = "passes" if item["share"][storey][edge] <= 1.0 else "exceeds"
+        yield Conclusion(f"limit/{d}", f"Drift limit at the edges, {d}", verdict)
+
+
 CONCLUSIONS: Mapping[str, Callable[[Payload, Payloads], Iterator[Conclusion]]] = {
     "modes": _about_modes,
     "participation": _about_participation,
     "demand": _about_demand,
     "drift": _about_drift,
     "actions": _about_actions,
+    "torsion": _about_edges,
 }
 
 

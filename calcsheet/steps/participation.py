@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from calcsheet.core.evidence import Evidence, evidence_of_participation
 from calcsheet.core.model import models_of
 from calcsheet.core.participation import SINGLE, Participation, participation
+from calcsheet.steps.relations import numbered
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
 
 SOURCE = "Chopra, Dynamics of Structures, section 13.2 (from memory)"
@@ -60,22 +61,25 @@ def _lines(part: Participation, at: str) -> list[Line]:
         return []
     excitation = Number(part.first_excitation, "mass", f"{at}/first_excitation")
     mass = Number(part.first_mass, "mass", f"{at}/first_mass")
-    gamma = Number(float(part.gamma_roof[0]), "ratio", f"{at}/gamma_roof/0")
-    effective = Number(float(part.effective_mass[0]), "mass", f"{at}/effective_mass/0")
+    n = part.main
+    gamma = Number(float(part.gamma_roof[n]), "ratio", f"{at}/gamma_roof/{n}")
+    effective = Number(float(part.effective_mass[n]), "mass", f"{at}/effective_mass/{n}")
     total = Number(part.total_mass, "mass", f"{at}/total_mass")
-    share = Number(float(part.share[0]), "share", f"{at}/share/0")
-    of = f"mode 1, {part.direction}"
+    share = Number(float(part.share[n]), "share", f"{at}/share/{n}")
+    of = f"mode {n + 1}, {part.direction}"
     return [
         Line(
-            f"Participation factor, {of} (φ₁ = 1 at the top)",
-            "Γ₁ = Σ m φ₁ / Σ m φ₁²",
+            f"Participation factor, {of} ({numbered('φ₁', n)} = 1 at the top)",
+            numbered("Γ₁ = Σ m φ₁ / Σ m φ₁²", n),
             "{0} / {1}",
             (excitation, mass),
             gamma,
             SOURCE,
         ),
-        Line(f"Effective mass, {of}", "M₁* = Γ₁ Σ m φ₁", "{0} × {1}", (gamma, excitation), effective, SOURCE),
-        Line(f"Share of the mass, {of}", "M₁* / Σ m", "{0} / {1}", (effective, total), share, SOURCE),
+        Line(
+            f"Effective mass, {of}", numbered("M₁* = Γ₁ Σ m φ₁", n), "{0} × {1}", (gamma, excitation), effective, SOURCE
+        ),
+        Line(f"Share of the mass, {of}", numbered("M₁* / Σ m", n), "{0} / {1}", (effective, total), share, SOURCE),
     ]
 
 

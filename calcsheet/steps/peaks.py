@@ -91,7 +91,7 @@ def run(options: PeaksOptions, storeys: Done, modes: Done, parts: Done, basis: D
     served, drifting = modes.result.stiffness, storeys.inputs.drifts
     participations = {p.direction: p for p in parts.result.directions}
     demands: dict[str, Demand] = {d.direction: d for d in demand.result.directions}
-    softer = {m.direction: m for m in models_of(storeys.inputs, drifting)}
+    softer = {} if drifting == served else {m.direction: m for m in models_of(storeys.inputs, drifting)}
     found: list[DirectionPeaks] = []
     lines: list[Line] = []
     cautions: list[Caution] = []

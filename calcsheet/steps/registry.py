@@ -14,9 +14,11 @@ from calcsheet.steps.masses import MASSES
 from calcsheet.steps.modes import MODES
 from calcsheet.steps.participation import PARTICIPATION
 from calcsheet.steps.peaks import PEAKS
+from calcsheet.steps.plan import PLAN
 from calcsheet.steps.step import Step
 from calcsheet.steps.stiffnesstakeoff import STIFFNESSES
 from calcsheet.steps.storeys import STOREYS
+from calcsheet.steps.torsion import TORSION
 
 STEPS: Mapping[str, Step] = {
     step.kind: step
@@ -26,12 +28,14 @@ STEPS: Mapping[str, Step] = {
         STIFFNESSES,
         STOREYS,
         MODES,
+        PLAN,
         PARTICIPATION,
         BASIS,
         DEMAND,
         PEAKS,
         DRIFT,
         ACTIONS,
+        TORSION,
         EARLIER,
     )
 }

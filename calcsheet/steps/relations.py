@@ -5,6 +5,13 @@ from __future__ import annotations
 from calcsheet.core.codes.edition import Relation
 from calcsheet.steps.step import Line, Number
 
+SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
+
+
+def numbered(symbols: str, mode: int) -> str:
+    """Symbols of mode 1, such as "Γ₁", as those of another mode, counted from 0."""
+    return symbols.replace("₁", str(mode + 1).translate(SUBSCRIPTS))
+
 
 def line_of(relation: Relation, of: str, at: str) -> Line:
     """A worked line.

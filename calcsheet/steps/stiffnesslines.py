@@ -116,10 +116,10 @@ class _Work:
             return []
         both = storey > 0 and member.beam_below != member.beam
         lines = [self.end(member.beam, "beams_above", storey, of)] if storey == member.first else []
-        ends = [self.value("beams_above", "rotational stiffness", storey)]
+        ends = [self.value("beams_above", "joint stiffness", storey)]
         if both:
             lines.append(self.end(member.beam_below, "beams_below", storey, of))
-            ends.append(self.value("beams_below", "rotational stiffness", storey))
+            ends.append(self.value("beams_below", "joint stiffness", storey))
         column = (
             self.field("factor", "ratio"),
             self.modulus(member.section),
@@ -146,7 +146,7 @@ class _Work:
             f"{symbol} = c_b E I_b {'(1/L_1 + 1/L_2)' if two else '/L_1'}",
             "{0} × {1} × {2} " + ("× (1/{3} + 1/{4})" if two else "/ {3}"),
             tuple(numbers),
-            self.value(name, "rotational stiffness", storey),
+            self.value(name, "joint stiffness", storey),
             "definition",
         )
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 import itertools
 import re
 
-from calcsheet.core.chain import Chain
 from calcsheet.core.storeys import StiffnessSet, Storeys
 from calcsheet.core.totals import Totals, totals
+from calcsheet.steps.planned import cautions_of_plan
 from calcsheet.steps.step import Caution, Number, Outcome, Step, plain
 
 JUMP = 20.0
@@ -33,6 +33,7 @@ def run(storeys: Storeys) -> Outcome:
     cautions = [*_order(storeys.level), *_heights(storeys), *_weights(sums, storeys), *cautions]
     for i, given in enumerate(storeys.stiffness):
         cautions += _of_set(given, storeys.level, f"inputs/stiffness/{i}")
+    cautions += [*_left_out(storeys), *_springs(storeys), *cautions_of_plan(storeys)]
     return Outcome(sums, cautions=tuple(cautions))
 
 
@@ -109,10 +110,12 @@ def unusual_weights(found: list[float], levels: tuple[str, ...], below: int = 0,
 def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Caution]:
     cautions: list[Caution] = []
     for direction, lateral in given.lateral.items():
-        if isinstance(lateral, Chain):
-            what = f"stiffness {direction} ({given.name})"
-            cautions += _jumps(what, lateral.storey.tolist(), levels, f"{at}/lateral/{direction}/storey", "stiffness")
-        elif lateral.asymmetry > 0.0:
+        for column in lateral.columns:
+            values = getattr(lateral, column.field)
+            if values is not None:
+                what, place = f"{column.heading} {direction} ({given.name})", f"{at}/lateral/{direction}/{column.field}"
+                cautions += _jumps(what, values.tolist(), levels, place, column.heading)
+        if lateral.asymmetry > 0.0:
             cautions.append(
                 Caution(
                     "unsymmetric",
@@ -121,6 +124,37 @@ def _of_set(given: StiffnessSet, levels: tuple[str, ...], at: str) -> list[Cauti
                     subject=f"{given.name}-{direction}",
                 )
             )
+    return cautions
+
+
+def _left_out(storeys: Storeys) -> list[Caution]:
+    """Columns that a model may do without, and does in some set."""
+    missing = {
+        (column.heading, direction)
+        for given in storeys.stiffness
+        for direction, lateral in given.lateral.items()
+        for column in lateral.columns
+        if getattr(lateral, column.field) is None
+    }
+    return [
+        Caution(
+            "deformation-neglected",
+            f"No {heading} is given in {direction}: that deformation is neglected, and the model is stiffer than the building.",
+            subject=f"{heading.replace(' ', '-')}-{direction}",
+        )
+        for heading, direction in sorted(missing)
+    ]
+
+
+def _springs(storeys: Storeys) -> list[Caution]:
+    cautions = []
+    for direction, springs in storeys.springs.items():
+        at, numbers = f"inputs/springs/{direction}", []
+        if springs.damping is not None:
+            numbers.append(Number(springs.damping, "share", f"{at}/damping"))
+        said = " Its damping, {0}, is used nowhere: ordinates keep the edition's." if numbers else ""
+        text = f"The base in {direction} stands on springs, without mass of its own.{said}"
+        cautions.append(Caution("base-springs", text, tuple(numbers), subject=direction))
     return cautions
 
 

@@ -12,11 +12,15 @@ from calcsheet.core.evidence import evidence_of_modes, evidence_of_participation
 from calcsheet.core.matrix import FlexibilityMatrix, StiffnessMatrix
 from calcsheet.core.modes import modes_of
 from calcsheet.core.participation import participation
+from calcsheet.core.springs import BaseSprings
+from calcsheet.core.standing import standing
+from calcsheet.core.stick import Stick
 
+HEIGHT = np.array([4.1, 3.2, 3.2, 3.4, 3.0])
 MASS, STOREY = [320.0, 280.0, 280.0, 260.0, 150.0], [4.1e5, 5.2e5, 4.4e5, 3.9e5, 2.2e5]
 
 
-@pytest.fixture(params=["chain", "stiffness", "flexibility"])
+@pytest.fixture(params=["chain", "stiffness", "flexibility", "stick", "on springs under gravity"])
 def model(planar, request):
     chain = planar(MASS, STOREY)
     unit = np.eye(5)
@@ -24,6 +28,12 @@ def model(planar, request):
         return planar(MASS, StiffnessMatrix(chain.lateral.force(unit)))
     if request.param == "flexibility":
         return planar(MASS, FlexibilityMatrix(chain.lateral.displacement(unit)))
+    if request.param == "stick":
+        return planar(MASS, Stick(np.array([9e6, 9e6, 8e6, 8e6, 5e6]), np.array(STOREY) * 3.0, HEIGHT))
+    if request.param == "on springs under gravity":
+        load = np.array([15000.0, 12000.0, 9000.0, 6000.0, 2000.0])
+        springs = BaseSprings(translation=8e5, rocking=9e7)
+        return planar(MASS, standing(chain.lateral, HEIGHT, springs, load, chain.level), np.cumsum(HEIGHT))
     return chain
 
 

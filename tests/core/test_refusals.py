@@ -98,9 +98,16 @@ def test_rounding_is_taken_as_symmetric_and_measured(kind):
     assert lateral.symmetric[0, 1] == lateral.symmetric[1, 0] == pytest.approx(-1000.95)
 
 
+@pytest.mark.parametrize(("kind", "name"), MATRICES)
+@pytest.mark.parametrize(("values", "found"), [(np.diag([2.0, -3.0]), "-3"), (np.diag([2.0, 0.0]), "0")])
+def test_a_diagonal_that_is_not_above_zero(kind, name, values, found):
+    expected = f"entry (2, 2) from the base: {found}; must be above 0: a force moves its own level its own way"
+    assert refusal(kind, values) == f"{name}, {expected}"
+
+
 @pytest.mark.filterwarnings("error")
 @pytest.mark.parametrize(("kind", "name"), MATRICES)
-@pytest.mark.parametrize("values", [np.array([[1.0, -1.0], [-1.0, 1.0]]), -np.eye(2), np.zeros((2, 2))])
+@pytest.mark.parametrize("values", [np.array([[1.0, -1.0], [-1.0, 1.0]]), np.array([[1.0, 2.0], [2.0, 1.0]])])
 def test_a_mechanism(kind, name, values):
     expected = "a matrix that is not positive definite; every displacement must meet resistance (no mechanism)"
     assert refusal(kind, values) == f"{name}: {expected}"

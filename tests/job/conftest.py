@@ -119,7 +119,7 @@ def read(card: Callable[..., Card], table: Callable[..., TextTable]) -> Callable
         text: str = STOREYS,
     ) -> StoreyReading:
         chosen = card(*on)
-        tables = {d: table(content, f"{d}.csv") for d, content in (matrices or {}).items()}
+        tables = {d: table(content, f"{d.removesuffix('.csv')}.csv") for d, content in (matrices or {}).items()}
         return read_storeys(table(changed(text, changes)), chosen, tables)
 
     return build

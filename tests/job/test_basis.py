@@ -274,8 +274,8 @@ CORNERS = "must be a list of 4 numbers above 0 (own S, T_B, T_C, T_D)"
         (
             "EN",
             "q_x = 3",
-            "q_x = 3\nsecond_order_in_stiffness = true",
-            "second_order_in_stiffness: got true; must be false: second-order effects in the stiffness are not available",
+            'q_x = 3\nsecond_order_in_stiffness = "yes"',
+            'second_order_in_stiffness: got "yes"; must be true or false',
         ),
         ("7-16", "s_ds = 1.1", "s_ds = 0", "s_ds: got 0; must be a number above 0 and up to 5 (S_DS over g)"),
         ("7-16", "s_1 = 0.4", "s_1 = -0.1", "s_1: got -0.1; must be a number from 0 to 5 (S_1 over g)"),

@@ -2,12 +2,14 @@ from __future__ import annotations
 
 import datetime as dt
 import json
+from typing import get_args
 
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from calcsheet.job.card import Card, card_of, parse_card, parse_toml
+from calcsheet.core.lateral import KINDS
+from calcsheet.job.card import Card, ModelChoice, card_of, parse_card, parse_toml
 from calcsheet.job.errors import InputError
 from calcsheet.job.wording import dotted
 from calcsheet.steps.serial import fingerprint, from_json, to_json
@@ -107,7 +109,8 @@ FILE = 'must be the name of a file in the job folder, such as "stiffness_x.csv"'
         (
             '"storey chain"',
             '"stick"',
-            'model.kind: got "stick"; must be "storey chain", "stiffness matrix" or "flexibility matrix"',
+            'model.kind: got "stick"; must be "storey chain", "cantilever stick", "stiffness matrix", "flexibility matrix" or '
+            '"rigid floors"',
         ),
         (
             '"storey chain"',
@@ -235,8 +238,44 @@ def test_a_card_without_a_basis(card):
 def test_matrices_have_no_sets_of_own_values(card):
     message = refusal(card, MATRIX, ("factor = 0.5", "own = true"))
     assert message == (
-        'job.toml, stiffness.cracked.own: got true; must be left out unless model.kind is "storey chain"'
+        "job.toml, stiffness.cracked.own: got true; must be left out unless model.kind is "
+        '"storey chain" or "cantilever stick"'
     )
+
+
+def test_the_kinds_of_the_card_are_those_of_the_core():
+    kinds = {*get_args(ModelChoice.model_fields["kind"].annotation)}
+    assert {kind for kind in kinds if ModelChoice(kind=kind).lateral} == set(KINDS)
+    assert kinds - {*KINDS} == {"rigid floors"}
+
+
+def test_springs_at_the_base(card):
+    got = card(("[model]", "[base]\ntranslation_x = 4.5e5\nrocking_x = 6e7\ndamping_x = 0.04\n[model]"))
+    assert got.base.of("x") == (4.5e5, 6e7, 0.04)
+    assert got.base.of("y") == (None, None, None)
+    assert card().base.of("x") == (None, None, None)
+
+
+@pytest.mark.parametrize(
+    ("given", "message"),
+    [
+        ("rocking_x = 0", "base.rocking_x: got 0; must be a number above 0"),
+        ("damping_y = 1.5\nrocking_y = 1", "base.damping_y: got 1.5; must be a number above 0 and below 1"),
+        ("damping_y = 0.1", "base.damping_y: got 0.1; must go with base.translation_y or base.rocking_y"),
+        (
+            "spring = 1",
+            "base.spring: unknown key; must be one of translation_x, translation_y, rocking_x, rocking_y, damping_x, "
+            "damping_y",
+        ),
+    ],
+)
+def test_springs_that_cannot_be(card, given, message):
+    assert refusal(card, ("[model]", f"[base]\n{given}\n[model]")) == f"job.toml, {message}"
+
+
+def test_springs_of_a_direction_that_is_not_analysed(card):
+    message = refusal(card, ('y = "y runs along grid A"\n', ""), ("[model]", "[base]\nrocking_y = 2.0\n[model]"))
+    assert message == "job.toml, base.rocking_y: got 2.0; must be left out: y is not analysed"
 
 
 def test_long_values_are_cut_in_messages(card):

@@ -278,7 +278,7 @@ cells = st.one_of(
 def target(job_folder):
     """The storey table, and what its headings stand for."""
     files = JobFolder(job_folder()).load()
-    return files.reading.table, lambda name: headings.known(name, name, files.card)
+    return files.reading.table, lambda name: headings.known(name, name, files.card, files.reading.ways)
 
 
 QUIET = settings(suppress_health_check=[HealthCheck.function_scoped_fixture], deadline=None, max_examples=150)

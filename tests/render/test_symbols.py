@@ -16,6 +16,7 @@ from calcsheet.render.symbols import symbols
         ("C_t h_n^x", "C<sub>t</sub> h<sub>n</sub><sup>x</sup>"),
         ("h^0.75/√A_w", "h<sup>0.75</sup>/√A<sub>w</sub>"),
         ("T^2.", "T<sup>2</sup>."),
+        ("√(k_θ / k_y)", "√(k<sub>θ</sub> / k<sub>y</sub>)"),
         ("ρ_ij V_i V_j", "ρ<sub>ij</sub> V<sub>i</sub> V<sub>j</sub>"),
         ("S_DS/(R/I_e)", "S<sub>DS</sub>/(R/I<sub>e</sub>)"),
         ("{0}^0.75", "{0}<sup>0.75</sup>"),

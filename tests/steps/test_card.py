@@ -66,6 +66,28 @@ def test_braces_in_a_set_name_are_words(card_with):
     assert 'set "{0}"' in run(card).cautions[-1].text.format()
 
 
+def texts(card) -> dict[str, str]:
+    return {c.key: c.text for c in run(card).cautions}
+
+
+def test_general_cautions_fit_the_model(card_with):
+    planar, floors = card_with(), card_with(('kind = "storey chain"', 'kind = "rigid floors"'))
+    assert "without torsion" in texts(planar)["rigid-floors"]
+    assert "analysed together" in texts(floors)["rigid-floors"]
+    assert "torsion of the plan" not in texts(floors)["left-out"]
+    assert {"no-origin-lines.csv", "no-origin-plan.csv"} <= texts(floors).keys()
+    assert list(texts(floors))[: len(GENERAL)] == [c.key for c in GENERAL]
+
+
+def test_a_base_on_springs_is_not_called_fixed(card_with):
+    one = card_with(("[model]", "[base]\nrocking_x = 1e6\n[model]"))
+    assert texts(one)["fixed-base"].startswith(
+        "In y the effective base is taken as fixed. Springs at the base are linear"
+    )
+    both = card_with(("[model]", "[base]\nrocking_x = 1e6\ntranslation_y = 1e5\n[model]"))
+    assert texts(both)["fixed-base"].startswith("Springs at the base are linear")
+
+
 @pytest.mark.parametrize(
     ("name", "given", "key"),
     [

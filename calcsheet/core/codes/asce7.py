@@ -371,11 +371,15 @@ class ASCE7(Edition):
         )  # fmt: skip
         return limit, relation
 
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder:
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder:
         c_d, i_e = self._c_d(facts.direction), self.importance().value
         entering = drift * i_e / c_d
-        theta = stability(gravity, entering, shear, facts.storey_height)
+        theta = stability(gravity, entering, shear, facts.storey_height, in_stiffness)
         limit = min(0.5 / (self.shear_ratio * c_d), 0.25)
+        if in_stiffness:
+            return self._in_stiffness(theta, entering, limit)
         worst = float(theta.max())
         verdict: Verdict = "exceeds" if worst > limit else "passes"
         if worst > limit:
@@ -386,6 +390,16 @@ class ASCE7(Edition):
             text = "displacements and forces are multiplied by 1/(1 − θ)"
         clause = self._eq("12.8.7", "12.8-16")
         return SecondOrder(theta, entering, 0.1, limit, amplified(theta, 0.1), verdict, text, clause)
+
+    def _in_stiffness(self, theta: Array, drift: Array, limit: float) -> SecondOrder:
+        """θ of drifts that hold second-order effects: θ/(1 + θ) ≤ θ_max is θ ≤ θ_max/(1 − θ_max)."""
+        below = f"θ/(1 + θ) is held against θ_max = {limit:.3g}"
+        verdict: Verdict = "exceeds" if float(theta.max()) > limit / (1.0 - limit) else "passes"
+        text = f"second-order effects are in the stiffness, and {below}"
+        if verdict == "exceeds":
+            text = f"potentially unstable, to be redesigned: {below}"
+        clause = self._eq("12.8.7", "12.8-17")
+        return SecondOrder(theta, drift, 0.1, limit / (1.0 - limit), np.ones(theta.size), verdict, text, clause)
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
         return vertical(facts, stiffness, drift / facts.storey_height, self.category, self.mass_irregularity)

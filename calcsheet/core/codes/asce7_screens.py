@@ -57,7 +57,12 @@ def vertical(
         ("vertical geometry", "plan dimensions of the lateral system at each level"),
         ("in-plane discontinuity", "the layout of the lateral system"),
         ("weak storey", "storey strengths"),
-        ("horizontal irregularities", "a model with rotation and the plan"),
+        ("horizontal irregularities", "a model with rotation and the plan")
+        if facts.plan is None
+        else (
+            "horizontal irregularities beside torsion",
+            "the layout of floors and lines; torsion stands with the edges",
+        ),
     )
     screens += [Screen(name, "not assessed", f"missing: {what}", "", "Tables 12.3-1, 12.3-2") for name, what in missing]
     return tuple(screens)

@@ -76,7 +76,7 @@ def up_to_static(static: float, modal: float) -> float:
     return max(1.0, static / modal)
 
 
-def stability(gravity: Array, drift: Array, shear: Array, storey_height: Array) -> Array:
+def stability(gravity: Array, drift: Array, shear: Array, storey_height: Array, in_stiffness: bool = False) -> Array:
     """Stability coefficient θ = P Δ/(V h) of each storey.
 
     Parameters
@@ -89,6 +89,8 @@ def stability(gravity: Array, drift: Array, shear: Array, storey_height: Array) 
         Shear V of each storey, of the same set as the drift [kN].
     storey_height : (n,) array
         h [m].
+    in_stiffness : bool
+        The drift holds second-order effects: θ has no bound of its own, the stiffness has been found to hold its load.
 
     Returns
     -------
@@ -106,7 +108,7 @@ def stability(gravity: Array, drift: Array, shear: Array, storey_height: Array) 
             f"shear of storey {i + 1} from the base", f"{shear[i]:g} kN", "must be above 0 for θ = P Δ/(V h)"
         )
     theta = gravity * drift / (shear * storey_height)
-    if not (theta < 1.0).all():
+    if not in_stiffness and not (theta < 1.0).all():
         i = int(np.argmin(theta < 1.0))
         raise ModelError(
             f"stability coefficient of storey {i + 1} from the base",

@@ -132,6 +132,25 @@ class Factor:
 
 
 @dataclass(frozen=True, eq=False)
+class PlanFacts(Frozen):
+    """The plan of rigid floors as it matters to one direction.
+
+    Parameters
+    ----------
+    eccentricity : (n,) array or None
+        Centre of mass beside the centre of stiffness, square to the direction [m]; None where storeys have no centres.
+    radius : (n,) array or None
+        Torsional radius: √(torsional stiffness over stiffness in the direction) [m].
+    gyration : (n,) array
+        Radius of gyration of each level's mass [m].
+    """
+
+    eccentricity: Array | None = field(metadata=agrees(rtol=1e-8, atol=1e-8))
+    radius: Array | None = field(metadata=agrees(rtol=1e-8))
+    gyration: Array = field(metadata=agrees(rtol=1e-12))
+
+
+@dataclass(frozen=True, eq=False)
 class Facts(Frozen):
     """What a checklist item may ask about a building in one direction.
 
@@ -151,6 +170,8 @@ class Facts(Frozen):
         Share of the mass that the first three modes move in this direction; None where it is not known.
     other_period : float or None
         First period in the other direction [s]; None where it is not known.
+    plan : PlanFacts or None
+        What rigid floors say of their plan; None of a planar model.
     """
 
     direction: str
@@ -160,6 +181,7 @@ class Facts(Frozen):
     weight: Array = field(metadata=agrees(rtol=1e-12))
     share_of_three: float | None = field(default=None, metadata=agrees(rtol=1e-8))
     other_period: float | None = field(default=None, metadata=agrees(rtol=1e-9))
+    plan: PlanFacts | None = None
 
     @property
     def total(self) -> float:
@@ -370,11 +392,13 @@ class Edition(ABC):
         """Limit of the design drift of each storey of `facts`, (n,) [m], and how it comes about in the lowest."""
 
     @abstractmethod
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder | None:
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder | None:
         """Stability of each storey of `facts`, None where the edition has no such check.
 
         From the gravity load at and above it [kN], its shear [kN] and its design drift [m], (n,) each, the last two of one
-        unscaled set.
+        unscaled set. With second-order effects `in_stiffness` the drift holds them, and no factor follows.
         """
 
     @abstractmethod

@@ -173,10 +173,11 @@ class EN1998(Edition):
         t_c = self._corners[2]
         limit = min(4.0 * t_c, 2.0)
         alone = "would" if facts.period <= limit else "would not"
+        planar = " Two planar models ask for regularity in plan, or for what 4.3.3.1(8) says in its place."
         return Answer(
             f"Modal response spectrum analysis applies to every building. The lateral force method {alone} meet its limit "
-            f"on the period, T₁ = {facts.period:.3g} s against min(4 T_C, 2.0 s) = {limit:.3g} s. Two planar models ask for "
-            "regularity in plan, or for what 4.3.3.1(8) says in its place.",
+            f"on the period, T₁ = {facts.period:.3g} s against min(4 T_C, 2.0 s) = {limit:.3g} s."
+            f"{planar if facts.plan is None else ''}",
             "4.3.3.1(3), (7), 4.3.3.2.1(2)",
         )
 
@@ -344,12 +345,16 @@ class EN1998(Edition):
         )  # fmt: skip
         return limit, relation
 
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder:
-        theta = stability(gravity, drift, shear, facts.storey_height)
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder:
+        theta = stability(gravity, drift, shear, facts.storey_height, in_stiffness)
         worst = float(theta.max())
         verdict: Verdict = "passes"
         if worst <= 0.1:
             text = "second-order effects need not be taken into account"
+        elif in_stiffness and worst <= 0.3:
+            text = "second-order effects are in the stiffness"
         elif worst <= 0.2:
             text = "actions are multiplied by 1/(1 − θ)"
         elif worst <= 0.3:
@@ -357,7 +362,8 @@ class EN1998(Edition):
             text = "an explicit second-order analysis is called for; the values here are multiplied by 1/(1 − θ)"
         else:
             verdict, text = "exceeds", "not allowed: stiffen the building"
-        return SecondOrder(theta, drift, 0.1, 0.3, amplified(theta, 0.1), verdict, text, "4.4.2.2(2) to (4)")
+        factor = np.ones(theta.size) if in_stiffness else amplified(theta, 0.1)
+        return SecondOrder(theta, drift, 0.1, 0.3, factor, verdict, text, "4.4.2.2(2) to (4)")
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
         reduced = "reference value of q times 0.8 (4.2.3.1(7))"
@@ -367,17 +373,25 @@ class EN1998(Edition):
             Screen("strength along the height", "not assessed", "missing: storey strengths", reduced, "4.2.3.3(4)"),
             Screen("lateral systems to the top", "not assessed", "missing: their layout", reduced, "4.2.3.3(2)"),
             Screen("setbacks", "not assessed", "missing: plan dimensions of the levels", reduced, "4.2.3.3(5)"),
-            Screen(
-                "regularity in plan",
-                "not assessed",
-                "missing: eccentricities and torsional radii, as the model is planar",
-                "a spatial model (4.2.3.1(3))",
-                "4.2.3.2",
-            ),
+            _in_plan(facts),
         )
 
     def separation(self, displacement: float) -> tuple[float | None, str]:
         return displacement, "4.4.2.7(2)"
+
+
+def _in_plan(facts: Facts) -> Screen:
+    """Eccentricity within 0.30 of the torsional radius, and that at or above the radius of gyration."""
+    name, consequence = "regularity in plan", "a spatial model (4.2.3.1(3))"
+    plan = facts.plan
+    if plan is None or plan.eccentricity is None or plan.radius is None:
+        why = "as the model is planar" if plan is None else "as lines that bend have no centres of stiffness"
+        text = f"missing: eccentricities and torsional radii, {why}"
+        return Screen(name, "not assessed", text, consequence, "4.2.3.2")
+    share, stiff = float((np.abs(plan.eccentricity) / plan.radius).max()), float((plan.radius / plan.gyration).min())
+    exceeds = share > 0.3 or stiff < 1.0
+    text = f"e_0/r up to {share:.2f}, against 0.30; r/l_s from {stiff:.2f}, against 1"
+    return Screen(name, "exceeds" if exceeds else "passes", text, consequence if exceeds else "", "4.2.3.2(6)")
 
 
 def _along(what: str, ratio: str, found: Array, consequence: str) -> Screen:

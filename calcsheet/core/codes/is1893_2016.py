@@ -277,7 +277,9 @@ class IS1893(Edition):
         )  # fmt: skip
         return limit, relation
 
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder | None:
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder | None:
         return None
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:
@@ -297,7 +299,12 @@ class IS1893(Edition):
         missing = (
             ("vertical geometry", "plan dimensions of the lateral system at each level"),
             ("strength (weak storey)", "storey strengths"),
-            ("torsion and plan irregularities", "a model with rotation and the plan"),
+            ("torsion and plan irregularities", "a model with rotation and the plan")
+            if facts.plan is None
+            else (
+                "plan irregularities beside torsion",
+                "the layout of floors and lines; torsion stands with the edges",
+            ),
         )
         return (
             *screens,

@@ -220,7 +220,9 @@ class GivenPoints(Edition):
         )  # fmt: skip
         return limit, relation
 
-    def second_order(self, facts: Facts, gravity: Array, shear: Array, drift: Array) -> SecondOrder | None:
+    def second_order(
+        self, facts: Facts, gravity: Array, shear: Array, drift: Array, in_stiffness: bool = False
+    ) -> SecondOrder | None:
         return None
 
     def irregularities(self, facts: Facts, stiffness: Array, drift: Array) -> tuple[Screen, ...]:

@@ -1,6 +1,6 @@
 """A second route, from the stored numbers alone: frequencies, shapes, the first mode's demand, storey forces.
 
-Nothing of the core is used. Lateral flexibilities are sums of storey flexibilities; frequencies are eigenvalues of FM by
+Nothing of the core is used. Lateral flexibilities are found by statics; frequencies are eigenvalues of FM by
 the unsymmetric QR algorithm; the rest is statics.
 
 Sources
@@ -18,6 +18,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding
+from calcsheet.record.check.flexible import standing_flexibility
 
 PART = "second route"
 CLOSE = 1e-6
@@ -82,21 +83,6 @@ def second_route(payloads: Payloads) -> Iterator[Finding]:
         yield Finding(PART, NOT_ASSESSED, "the record holds no modes")
 
 
-def flexibility(lateral: Mapping[str, Any]) -> Array:
-    """Flexibility matrix, (n, n) [m/kN], of a stored lateral stiffness.
-
-    In a storey chain a force at a level strains the storeys below it alone: F_ij is the sum of 1/k over those that levels
-    i and j both stand on.
-    """
-    if lateral["kind"] == "storey chain":
-        climbed = np.cumsum(1.0 / np.array(lateral["storey"], dtype=float))
-        n = np.arange(climbed.size)
-        return climbed[np.minimum(n[:, None], n[None, :])]
-    given = np.array(lateral["matrix"], dtype=float)
-    given = (given + given.T) / 2.0
-    return np.linalg.inv(given) if lateral["kind"] == "stiffness matrix" else given
-
-
 def sheet_of(payloads: Payloads, key: str, direction: str) -> Sheet | None:
     """What the modes step `key` and its storeys hold of a direction; None where it is no planar model."""
     step = payloads[key]
@@ -109,7 +95,7 @@ def sheet_of(payloads: Payloads, key: str, direction: str) -> Sheet | None:
     return Sheet(
         mass=np.array(given["mass"], dtype=float),
         height=np.diff(elevation, prepend=given["base_elevation"]),
-        flexibility=flexibility(used["lateral"][direction]),
+        flexibility=standing_flexibility(given, used["lateral"][direction], direction),
         omega=np.array(model["modes"]["omega"], dtype=float),
         psi=np.array(model["modes"]["psi"], dtype=float),
     )

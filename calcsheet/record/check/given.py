@@ -6,6 +6,7 @@ from collections.abc import Iterator, Mapping
 from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, Finding
 from calcsheet.record.check.takenoff import Wrong, masses, missing, stiffnesses
@@ -13,9 +14,12 @@ from calcsheet.record.check.takenoff import Wrong, masses, missing, stiffnesses
 PART = "data"
 CLOSE = 1e-9
 """Relative difference that conversion of units and sums leave."""
+SCALED = ("storey", "bending", "shear", "matrix")
+"""Numbers of a lateral stiffness that a factor applies to."""
 IN_FEET = (1.0, 0.3048, 0.3048**2)
 """What a value of the card in US units may be multiplied by: none, a length, an area."""
 
+Array = NDArray[np.float64]
 Payloads = Mapping[str, Mapping[str, Any]]
 
 
@@ -57,19 +61,24 @@ def _heights(key: str, given: Mapping[str, Any]) -> Iterator[Wrong]:
 
 def _factors(key: str, given: Mapping[str, Any], card: Mapping[str, Any]) -> Iterator[Wrong]:
     """Stiffness sets without values of their own are factors on one table."""
-    for direction in ("x", "y"):
+    ways = dict.fromkeys(way for named in given["stiffness"] for way in named["lateral"])
+    for direction in ways:
         before: tuple[str, Any] | None = None
         for i, named in enumerate(given["stiffness"]):
             basis, lateral = card["stiffness"].get(named["name"]), named["lateral"].get(direction)
             if basis is None or lateral is None or basis["own"]:
                 continue
             factor = basis["factor"] if basis["factor"] is not None else basis[f"factor_{direction}"]
-            values = np.array(lateral.get("storey", lateral.get("matrix")), dtype=float)
+            values = np.concatenate([np.ravel(lateral[name]) for name in SCALED if lateral.get(name) is not None])
             table = values * factor if lateral["kind"] == "flexibility matrix" else values / factor
-            if before is not None and not np.allclose(table, before[1], rtol=CLOSE, atol=0.0):
+            if before is not None and not _alike(table, before[1]):
                 text = f'sets "{before[0]}" and "{named["name"]}" in {direction} are not their factors times one table'
                 yield f"/{key}/inputs/stiffness/{i}/lateral/{direction}", text
             before = before or (named["name"], table)
+
+
+def _alike(one: Array, other: Array) -> bool:
+    return one.shape == other.shape and np.allclose(one, other, rtol=CLOSE, atol=0.0)
 
 
 def _edition(key: str, edition: Mapping[str, Any], card: Mapping[str, Any]) -> Iterator[Wrong]:

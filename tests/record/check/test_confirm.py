@@ -8,8 +8,9 @@ import math
 import numpy as np
 import pytest
 
-from calcsheet.record.check.confirm import flexibility, second_route
+from calcsheet.record.check.confirm import second_route
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED
+from calcsheet.record.check.flexible import flexibility
 
 
 def test_a_record_is_confirmed_with_figures(record):
@@ -24,15 +25,6 @@ def test_a_record_is_confirmed_with_figures(record):
         "V\u2081 =",
     ):
         assert text.count(said) == 2, said  # x and y
-
-
-def test_flexibility_of_a_uniform_chain_is_the_smaller_number_of_storeys_over_k():
-    """Statics: a unit force at level j shears storeys 1 to j; F_ij = min(i, j)/k."""
-    found = flexibility({"kind": "storey chain", "storey": [250.0] * 4})
-    assert found == pytest.approx(np.minimum.outer([1, 2, 3, 4], [1, 2, 3, 4]) / 250.0, rel=1e-15)
-    k = np.array([[3.0, -1.0], [-1.0, 2.0]])
-    assert flexibility({"kind": "stiffness matrix", "matrix": k.tolist()}) @ k == pytest.approx(np.eye(2), abs=1e-15)
-    assert flexibility({"kind": "flexibility matrix", "matrix": k.tolist()}) == pytest.approx(k)
 
 
 def uniform(n, k=5e4, m=100.0, ratio=1.0):
