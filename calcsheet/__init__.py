@@ -18,6 +18,7 @@ if TYPE_CHECKING:
         JobCard,
         MassTakeoff,
         ModalTable,
+        ModeMotion,
         ModePlot,
         ModeSolver,
         ParticipationSummary,
@@ -26,6 +27,7 @@ if TYPE_CHECKING:
         StoreyActions,
         StoreyTable,
         WhatChanged,
+        WhatIf,
     )
 
 __version__ = "0.1.0"
@@ -38,6 +40,7 @@ __all__ = [
     "JobCard",
     "MassTakeoff",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -46,6 +49,7 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
     "__version__",
 ]
 

@@ -221,10 +221,15 @@ def parse_unit(text: str, quantity: str) -> Unit:
         if _spelling(unit.symbol) == wanted:
             return unit
     allowed = f"must be {allowed_units(quantity)}"
-    for other, units in UNITS.items():
-        if any(_spelling(unit.symbol) == wanted for unit in units):
-            raise UnitError(f'"{text}" is a unit of {other}, not of {quantity}', allowed)
+    for other in quantities_of(text):
+        raise UnitError(f'"{text}" is a unit of {other}, not of {quantity}', allowed)
     raise UnitError(f'"{text}" is no unit of {quantity}' if text.strip() else "names no unit", allowed)
+
+
+def quantities_of(text: str) -> tuple[str, ...]:
+    """Return the quantities that a unit is one of, in any of its usual spellings: none where it is no unit."""
+    wanted = _spelling(text)
+    return tuple(q for q, units in UNITS.items() if any(_spelling(unit.symbol) == wanted for unit in units))
 
 
 def allowed_units(quantity: str) -> str:

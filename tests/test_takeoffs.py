@@ -12,6 +12,7 @@ from click.testing import CliRunner
 
 from calcsheet.blocks import JobCard, MassTakeoff, StiffnessTakeoff
 from calcsheet.cli import main
+from calcsheet.job.adopt import adoption
 from calcsheet.job.edits import set_number
 from calcsheet.job.errors import InputError
 from calcsheet.record.check.finding import AGREES, DIFFERS
@@ -194,3 +195,31 @@ def test_neither_is_adopted_where_it_feeds_the_table(both):
     for block, said in ((MassTakeoff, "masses.source"), (StiffnessTakeoff, "model.members")):
         with pytest.raises(InputError, match=f"^job.toml, {said}: "):
             block(card).adopt()
+
+
+def test_factors_are_adopted_on_the_set_and_never_on_masses_taken_off(both):
+    files = Job(both()).files
+    assert adoption(files, "cracked", 1.0, {"x": 0.5, "y": 0.5}).values == {
+        ("stiffness", "cracked", "factor_x"): 0.3,
+        ("stiffness", "cracked", "factor_y"): 0.25,
+    }
+    with pytest.raises(
+        InputError, match=r"^job\.toml, masses\.source: the masses come from floors\.csv; must be changed"
+    ):
+        adoption(files, "cracked", 1.1, {"x": 0.5, "y": 0.5})
+
+
+def test_a_what_if_on_masses_taken_off_is_answered_and_not_adopted(shell, both, monkeypatch):
+    folder = both()
+    monkeypatch.chdir(folder)
+    before = {name: (folder / name).read_bytes() for name in ("job.toml", "storeys.csv")}
+    shell.run("from calcsheet import JobCard, ModeSolver, StoreyTable, WhatIf")
+    shell.run('job = JobCard(".")\nmodes = ModeSolver(StoreyTable(job))')
+    shell.run("WhatIf(modes)", "what if")
+    link = shell.link("what if")
+    assert link.say(op="factors", mass=1.21, x=0.9, y=1.0)["ok"]
+    assert "masses × 1.21" in link.state["html"]
+    assert link.state["adopting"] == ""
+    assert link.state["note"]["text"].startswith("job.toml, masses.source: the masses come from floors.csv")
+    assert not link.say(op="adopt", sentence="")["ok"]
+    assert {name: (folder / name).read_bytes() for name in before} == before

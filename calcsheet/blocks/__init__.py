@@ -7,9 +7,11 @@ from calcsheet.blocks.cautions import Cautions
 from calcsheet.blocks.demand import DemandSpectrum, DriftCheck, EdgeDrifts, ModalTable, StaticComparison, StoreyActions
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.blocks.masstakeoff import MassTakeoff
+from calcsheet.blocks.motion import ModeMotion
 from calcsheet.blocks.stiffnesstakeoff import StiffnessTakeoff
 from calcsheet.blocks.storeytable import StoreyTable
 from calcsheet.blocks.whatchanged import WhatChanged
+from calcsheet.blocks.whatif import WhatIf
 
 __all__ = [
     "Cautions",
@@ -20,6 +22,7 @@ __all__ = [
     "JobCard",
     "MassTakeoff",
     "ModalTable",
+    "ModeMotion",
     "ModePlot",
     "ModeSolver",
     "ParticipationSummary",
@@ -28,4 +31,5 @@ __all__ = [
     "StoreyActions",
     "StoreyTable",
     "WhatChanged",
+    "WhatIf",
 ]

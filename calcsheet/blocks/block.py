@@ -22,6 +22,10 @@ STATIC = "CALCSHEET_STATIC"
 """Environment variable: "1" leaves the live widgets out, as when a record is issued."""
 
 
+REST = 0.06
+"""Time [s] that the page is given to show the numbers before the processor goes to drawing figures."""
+
+
 class Block:
     """A view of a step.
 
@@ -99,6 +103,7 @@ class Shown:
         """Show widget and twin below each other, and listen to the job from now on."""
         with self.block.job.telling:
             if os.environ.get(STATIC) != "1":
+                self.block.job.rest = REST
                 self.widget = self.make_widget()
                 self.show_numbers()
                 display(self.widget)
@@ -145,15 +150,14 @@ class Shown:
             }
             for c in self.block.view.choices
         ]
-        if payload["state"] != "ok":
-            note = {"kind": payload["state"], "text": payload["why"]}
-            self.widget.set_trait("note", note)
-        else:
-            with self.widget.hold_sync():
-                self.widget.set_trait("note", {})
+        ok = payload["state"] == "ok"
+        with self.widget.hold_sync():  # one message a block: the page takes longest over their number
+            self.widget.set_trait("note", {} if ok else {"kind": payload["state"], "text": payload["why"]})
+            if ok:
                 self.widget.set_trait("choices", choices)
                 self.widget.set_trait("html", self.rendered(payloads, self.options).html)
-        self.widget.set_trait("revision", revision)
+            self.widget.set_trait("revision", revision)
+        self.widget.answered()
 
     def show_live_figures(self, drawings: tuple[Drawing, ...], revision: int) -> None:
         if self.widget is not None:
@@ -167,7 +171,7 @@ class Shown:
         block = self.block
         revision, payloads = block.job.now()
         payload = payloads[block.key]
-        if payload["state"] == "ok":
+        if payload["state"] == "ok" or not block.view.printed:
             html = self.rendered(payloads, block.options).html + images(self.drawn(payloads, block.options))
             self.show_live_figures(self.drawn(payloads, self.options), revision)
         else:

@@ -6,7 +6,7 @@ from calcsheet.blocks.block import Block, must_be
 from calcsheet.blocks.jobcard import JobCard
 from calcsheet.job import edits
 from calcsheet.job.errors import InputError
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.steps.graph import MASSES, Job
 from calcsheet.units import UNITS
@@ -60,4 +60,4 @@ class MassTakeoff(Block):
                 raise InputError(reading.table.file, "", "no column for masses", f"must have one, such as {wanted}")
             return edits.set_columns(reading, {column.key: dict(zip(given["level"], found[column.key], strict=True))})
 
-        self.job.edit(change)
+        self.job.edit(change, "masses taken off")

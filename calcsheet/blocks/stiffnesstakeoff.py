@@ -65,4 +65,4 @@ class StiffnessTakeoff(Block):
             stiffness_key(Chain.columns[0], item.direction, None): dict(zip(levels, item.storey.tolist(), strict=True))
             for item in result.directions
         }
-        self.job.edit(lambda reading: edits.set_columns(reading, numbers))
+        self.job.edit(lambda reading: edits.set_columns(reading, numbers), "stiffnesses taken off")

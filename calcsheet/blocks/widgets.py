@@ -6,6 +6,7 @@ the engineer does through the ``answer`` function that it gives.
 
 from __future__ import annotations
 
+import threading
 from collections.abc import Callable, Mapping
 from importlib.resources import files
 from typing import Any
@@ -54,17 +55,28 @@ class LiveWidget(AnyWidget):
     def __init__(self, answer: Answer, **traits: Any) -> None:
         super().__init__(**traits)
         self._answer = answer
+        self._asked = threading.local()  # what the thread's message is, until it is answered
         self.on_msg(self._receive)
 
     def _receive(self, _widget: object, message: Message, _buffers: object) -> None:
         if message["op"] == "ping":
             self.send({"op": "pong", "n": message["n"]})
             return
+        self._asked.seq = message["seq"]
         why_not: str | None = "this failed inside the program; its log has the traceback"
         try:
             why_not = self._answer(message)
         finally:
-            self.send({"op": "ack", "seq": message["seq"], "ok": why_not is None, "message": why_not or ""})
+            self._acknowledge(why_not)
+
+    def answered(self) -> None:
+        """Tell the page already now that the message which this thread answers is done: what is still to do is drawing."""
+        self._acknowledge(None)
+
+    def _acknowledge(self, why_not: str | None) -> None:
+        seq, self._asked.seq = getattr(self._asked, "seq", None), None
+        if seq is not None:
+            self.send({"op": "ack", "seq": seq, "ok": why_not is None, "message": why_not or ""})
 
     def __repr__(self) -> str:
         # Stored in the notebook as the text of the widget's output.
@@ -74,9 +86,11 @@ class LiveWidget(AnyWidget):
 class TableWidget(LiveWidget):
     """A table with an input in each editable cell.
 
-    Messages: ``set`` and ``paste`` (row, key, text), ``insert`` (row: below it; None: at the top), ``delete`` (row),
-    ``load`` and ``keep`` (the answers to a conflict), ``look`` (whether the file was changed by somebody else; sent when
-    the engineer comes to the table or back to the page).
+    Messages: ``set`` (row, key, text), ``paste`` (the same, with the size of the range pasted into: rows, columns),
+    ``clear`` and ``fill`` (row, last: the first and last row; keys), ``insert`` (row: below it; None: at the top; count),
+    ``delete`` (row, last), ``move`` (row, last, by: -1 or 1), ``undo``, ``redo``, ``load`` and ``keep`` (the answers to a
+    conflict), ``look`` (whether the file was changed by somebody else; sent when the engineer comes to the table or back
+    to the page).
 
     Attributes
     ----------
@@ -86,13 +100,19 @@ class TableWidget(LiveWidget):
         A row keeps its id for as long as the widget lives.
     status : dict
         ``kind``: saved, changed, conflict, error or waiting; ``text``.
+    history : dict
+        ``undo`` and ``redo``: what they would take back or do again, in words; empty where there is nothing.
+    differences : dict
+        ``cells``: list of {row, column, here, there}, what differs from the file in a conflict; ``more``: how many beside.
     """
 
-    _esm = front("link.js", "cell.js", "table.js")
+    _esm = front("link.js", "cell.js", "range.js", "words.js", "tools.js", "hands.js", "table.js")
     _css = front("calcsheet.css")
 
     table = Dict().tag(sync=True)
     status = Dict().tag(sync=True)
+    history = Dict().tag(sync=True)
+    differences = Dict().tag(sync=True)
 
 
 class ViewWidget(LiveWidget):

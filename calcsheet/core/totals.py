@@ -4,8 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 
-import numpy as np
-
+from calcsheet.core.alongside import at_and_above
 from calcsheet.core.arrays import Array, Frozen, agrees
 from calcsheet.core.storeys import Storeys
 
@@ -56,7 +55,7 @@ def totals(storeys: Storeys) -> Totals:
     -------
     Totals
     """
-    above = np.cumsum(storeys.mass[::-1])[::-1]
+    above = at_and_above(storeys.mass)
     return Totals(
         mass=float(above[0]),
         weight=float(above[0]) * GRAVITY,

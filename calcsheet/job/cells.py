@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import math
-import re
 
+from calcsheet.job.amounts import split_amount
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import format_number, is_ambiguous, parse_number, readings
 from calcsheet.job.wording import shorten
-from calcsheet.units import Unit
+from calcsheet.units import Unit, quantities_of
 
 ANY, POSITIVE, NOT_NEGATIVE = "a finite number", "above 0", "0 or above"
 """What a number must be."""
@@ -73,10 +73,11 @@ def _number_wanted(text: str, unit: Unit, mark: str | None) -> str:
     wanted = _wanted(unit)
     if mark is not None and readings(text):
         return f'{wanted} with the decimal mark "{mark}", as in the other cells'
-    amount = re.fullmatch(r"(.*[0-9])(?:\s*[^\W\d_]\D*|\s+[^\W\d_].*)", text)
-    if amount and unit.symbol and readings(amount[1]):
-        return f"{wanted}, the heading's unit, without a unit of its own"
-    return wanted
+    symbol = split_amount(text)[1] if unit.symbol else ""
+    others = quantities_of(symbol)
+    if others and not {*others} & {*quantities_of(unit.symbol)}:
+        return f'{wanted}, and "{symbol}" is a unit of {others[0]}'
+    return f"{wanted}, the heading's unit, without a unit of its own" if symbol else wanted
 
 
 def _wanted(unit: Unit) -> str:

@@ -5,33 +5,39 @@ A row is given by its index, roof first, or by its level; a column by its key.
 
 from __future__ import annotations
 
-import csv
 import math
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
 
 from calcsheet.job import table as text_table
+from calcsheet.job.amounts import as_written
+from calcsheet.job.clipboard import mark_of, read_block
 from calcsheet.job.errors import InputError
 from calcsheet.job.numbers import decimal_mark, format_number
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 
 DIGITS = 6
 """Significant digits of numbers that the program writes into a table of the engineer's."""
 
+Row = int | str
 
-def set_text(reading: StoreyReading, row: int | str, column: str, text: str) -> TextTable:
-    """Return the table with a cell's text changed.
+
+def set_text(reading: StoreyReading, row: Row, column: str, text: str) -> TextTable:
+    """Return the table with a cell set to a text as typed; a number is written as its column writes numbers.
 
     Raises
     ------
     InputError
         There is no such row or column.
     """
-    return text_table.set_cell(reading.table, row_index(reading, row), column_index(reading, column), text)
+    place, at = column_index(reading, column), row_index(reading, row)
+    mark, usual = _marks(reading, place, {at})
+    text = as_written(text, reading.columns[place], mark, usual)
+    return text_table.set_cell(reading.table, at, place, text)
 
 
-def set_number(reading: StoreyReading, row: int | str, column: str, value: float) -> TextTable:
+def set_number(reading: StoreyReading, row: Row, column: str, value: float) -> TextTable:
     """Return the table with a cell set to a number, in the heading's unit and with the table's decimal mark.
 
     Raises
@@ -42,11 +48,8 @@ def set_number(reading: StoreyReading, row: int | str, column: str, value: float
     if not math.isfinite(value):
         raise InputError(reading.table.file, f'column "{column}"', f"got {value}", "must be a finite number")
     place = column_index(reading, column)
-    columns = list(zip(*reading.rows, strict=True))
-    # the column itself decides, else the first other column that does
-    marks = (decimal_mark(cells, reading.table.delimiter) for cells in (columns[place : place + 1] + columns))
-    mark = next((mark for mark in marks if mark), ".")
-    return set_text(reading, row, column, format_number(value, mark))
+    text = format_number(value, _marks(reading, place)[1])
+    return text_table.set_cell(reading.table, row_index(reading, row), place, text)
 
 
 def set_columns(reading: StoreyReading, numbers: Mapping[str, Mapping[str, float]]) -> TextTable:
@@ -74,25 +77,47 @@ def set_columns(reading: StoreyReading, numbers: Mapping[str, Mapping[str, float
     return reading.table
 
 
-def insert_row(reading: StoreyReading, below: int | str | None) -> TextTable:
-    """Return the table with a blank row below a row, or (None) above all rows."""
+def insert_rows(reading: StoreyReading, below: Row | None, count: int = 1) -> TextTable:
+    """Return the table with blank rows below a row, or (None) above all rows."""
     place = 0 if below is None else row_index(reading, below) + 1
-    return text_table.insert_row(reading.table, place)
+    table = reading.table
+    for _ in range(count):
+        table = text_table.insert_row(table, place)
+    return table
 
 
-def delete_row(reading: StoreyReading, row: int | str) -> TextTable:
-    """Return the table without a row."""
-    return text_table.delete_row(reading.table, row_index(reading, row))
+def delete_rows(reading: StoreyReading, first: Row, last: Row) -> TextTable:
+    """Return the table without the rows from `first` to `last`, both included."""
+    table, top = reading.table, row_index(reading, first)
+    for _ in range(top, row_index(reading, last) + 1):
+        table = text_table.delete_row(table, top)
+    return table
 
 
-def move_row(reading: StoreyReading, row: int | str, to: int) -> TextTable:
-    """Return the table with a row moved to another place among the rows."""
-    if not 0 <= to < len(reading.rows):
-        raise InputError(reading.table.file, "", f"no row {to}", f"must be from 0 to {len(reading.rows) - 1}")
-    return text_table.move_row(reading.table, row_index(reading, row), to)
+def move_rows(reading: StoreyReading, first: Row, last: Row, by: int) -> TextTable:
+    """Return the table with the rows from `first` to `last` one place up (`by` -1) or down (1), where there is one."""
+    top, bottom = row_index(reading, first), row_index(reading, last)
+    over = top - 1 if by < 0 else bottom + 1
+    if not 0 <= over < len(reading.rows):
+        return reading.table
+    return text_table.move_row(reading.table, over, bottom if by < 0 else top)
 
 
-def paste(reading: StoreyReading, row: int | str, column: str, text: str) -> TextTable:
+def clear(reading: StoreyReading, first: Row, last: Row, columns: Iterable[str]) -> TextTable:
+    """Return the table with the cells of some columns blank, from row `first` to `last`, both included."""
+    blank = dict.fromkeys((column_index(reading, key) for key in columns), "")
+    rows = range(row_index(reading, first), row_index(reading, last) + 1)
+    return text_table.set_cells(reading.table, dict.fromkeys(rows, blank))
+
+
+def fill_down(reading: StoreyReading, first: Row, last: Row, columns: Iterable[str]) -> TextTable:
+    """Return the table with the cells of row `first` copied into the rows below it up to `last`."""
+    top, bottom = row_index(reading, first), row_index(reading, last)
+    above = {(place := column_index(reading, key)): reading.rows[top][place] for key in columns}
+    return text_table.set_cells(reading.table, dict.fromkeys(range(top + 1, bottom + 1), above))
+
+
+def paste(reading: StoreyReading, row: Row, column: str, text: str, rows: int = 1, columns: int = 1) -> TextTable:
     """Return the table with a block pasted from a cell to the right and down; rows are added as needed.
 
     Parameters
@@ -102,7 +127,10 @@ def paste(reading: StoreyReading, row: int | str, column: str, text: str) -> Tex
     row, column : int or str, str
         The block's first cell.
     text : str
-        Rows of cells separated by tabs, as a spreadsheet copies them.
+        Rows of cells separated by tabs, as a spreadsheet copies them. Numbers may have units and another decimal mark
+        than the table's: they are written as their column writes numbers.
+    rows, columns : int
+        Size of the range pasted into: where the block goes into it a whole number of times, it is repeated.
 
     Raises
     ------
@@ -110,25 +138,24 @@ def paste(reading: StoreyReading, row: int | str, column: str, text: str) -> Tex
         There is no such row or column, or the block is wider than the columns from there on.
     """
     first, left = row_index(reading, row), column_index(reading, column)
-    lines = text.removesuffix("\n").removesuffix("\r").splitlines(keepends=True)
-    try:
-        block = [cells or [""] for cells in csv.reader(lines, delimiter="\t")]
-    except csv.Error as error:
-        raise InputError("", "pasted cells", f"can't be read ({error})", "must be rows of cells") from None
+    block = _repeated(read_block(text), rows, columns)
     room = len(reading.columns) - left
     if (widest := max(map(len, block), default=0)) > room:
         found = f"{widest} columns pasted from {column}"
         raise InputError(reading.table.file, "", found, f"must be at most {room}, the columns from there on")
     table = reading.table
-    for i, cells in enumerate(block, first):
-        if i == len(table.rows):
-            table = text_table.insert_row(table, i)
-        for j, cell in enumerate(cells, left):
-            table = text_table.set_cell(table, i, j, cell)
-    return table
+    for _ in range(first + len(block) - len(table.rows)):
+        table = text_table.insert_row(table, len(table.rows))
+    own, covered = mark_of(block), range(first, first + len(block))
+    marks = {left + j: _marks(reading, left + j, covered) for j in range(widest)}
+    texts = {
+        i: {j: as_written(cell, reading.columns[j], *marks[j], own) for j, cell in enumerate(cells, left)}
+        for i, cells in enumerate(block, first)
+    }
+    return text_table.set_cells(table, texts)
 
 
-def row_index(reading: StoreyReading, row: int | str) -> int:
+def row_index(reading: StoreyReading, row: Row) -> int:
     """Return the index of a row that is given by index or level, refusing (InputError) what isn't there."""
     if isinstance(row, int):
         if 0 <= row < len(reading.rows):
@@ -147,3 +174,24 @@ def column_index(reading: StoreyReading, key: str) -> int:
         return keys.index(key)
     names = ", ".join(f'"{name}"' for name in keys)
     raise InputError(reading.table.file, "", f'no column "{key}"', f"must be one of {names}")
+
+
+def _marks(reading: StoreyReading, place: int, without: Iterable[int] = ()) -> tuple[str | None, str]:
+    """The decimal mark that a column's rows but some tell, and the one to write: else that of the first column with one."""
+    rows = [cells for i, cells in enumerate(reading.rows) if i not in {*without}]
+    delimiter = reading.table.delimiter
+    own = decimal_mark((cells[place] for cells in rows), delimiter)
+    if own:
+        return own, own
+    others = (decimal_mark(column, delimiter) for column in zip(*rows, strict=True))
+    return None, next(filter(None, others), "." if delimiter == "," else ",")
+
+
+def _repeated(block: Sequence[Sequence[str]], rows: int, columns: int) -> list[list[str]]:
+    """A block repeated to fill a range that it goes into a whole number of times; else the block alone."""
+    width = max(map(len, block), default=0)
+    down = rows // len(block) if block and rows % len(block) == 0 else 1
+    across = columns // width if width and columns % width == 0 else 1
+    if across > 1:
+        block = [[*cells, *[""] * (width - len(cells))] * across for cells in block]
+    return [list(cells) for _ in range(down) for cells in block]

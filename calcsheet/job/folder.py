@@ -11,16 +11,19 @@ from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeycells, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
-from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
+from calcsheet.job.card import Card, parse_card
+from calcsheet.job.cardtables import FILE_NAME
 from calcsheet.job.errors import InputError
 from calcsheet.job.floorfile import FILES as FLOOR_FILES
 from calcsheet.job.floorfile import FloorReading, read_floors
 from calcsheet.job.memberfile import MemberReading, member_files, read_members
 from calcsheet.job.planfile import LINES, PLAN, read_lines
 from calcsheet.job.storeycells import read_frame
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.storeyfile import read_storeys
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
+from calcsheet.job.wording import shown
 
 
 @dataclass(frozen=True, eq=False)
@@ -170,6 +173,23 @@ class JobFolder:
         basis, problem = self._basis(card, kept)
         files = files.with_storeys(files.reading.table, card)
         return replace(files, card_text=text, stamps=kept, basis=basis, basis_problem=problem)
+
+    def storeys_on_disk(self) -> TextTable:
+        """The storey table as it now is on disk, refusing (InputError) what is no table."""
+        return self._table(storeycells.FILE, "must have a row for each level", {})
+
+    def save_both(self, files: JobFiles, table: TextTable, text: str) -> JobFiles:
+        """Write storey table and job card: both, or neither; arguments and errors are those of the two above."""
+        parse_card(text)
+        saved = files if table == files.reading.table else self.save_storeys(files, table)
+        if text == files.card_text:
+            return saved
+        try:
+            return self.save_card(saved, text)
+        except InputError:
+            if saved is not files:
+                self.save_storeys(saved, files.reading.table)
+            raise
 
     def changed_on_disk(self, files: JobFiles) -> tuple[str, ...]:
         """Return the names of the files that are no longer on disk as they were read or saved."""

@@ -8,6 +8,7 @@ from itertools import pairwise
 
 import numpy as np
 
+from calcsheet.core.alongside import elevations, heights
 from calcsheet.core.arrays import Array
 from calcsheet.job import card as job_card
 from calcsheet.job.card import Card
@@ -217,6 +218,14 @@ class StoreyCells:
         """Elevation of the foot of the lowest storey [m]."""
         return self.card.levels.base_elevation * display("elevation", self.card.units.system).factor
 
+    def numbers(self) -> dict[str, Array]:
+        """Every column's numbers, roof first, NaN where the cell is blank or wrong."""
+        wrong = {(problem.row, problem.column) for problem in self.problems}
+        return {
+            key: np.array([np.nan if (row, key) in wrong else numbers.get(row, np.nan) for row in self.rows])
+            for key, numbers in self.values.items()
+        }
+
     def from_base(self, key: str) -> Array:
         """A column's numbers from the lowest row up, NaN where blank."""
         return np.array([self.values[key][row] for row in self.rows[::-1]])
@@ -245,9 +254,9 @@ class StoreyCells:
         """Elevations and storey heights from the lowest level up [m]."""
         if "elevation" in self.values:
             elevation = self.from_base("elevation")
-            return elevation, np.diff(elevation, prepend=self.foot)
+            return elevation, heights(elevation, self.foot)
         height = self.from_base("storey height")
-        return self.foot + np.cumsum(height), height
+        return elevations(height, self.foot), height
 
     def mass(self) -> Array:
         """Masses from the lowest level up [t], as mass or weight gives them."""

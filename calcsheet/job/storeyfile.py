@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -18,52 +17,17 @@ from calcsheet.job import card as job_card
 from calcsheet.job.card import Card
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.floorfile import FloorReading, read_floors
-from calcsheet.job.headings import AREA, GRAVITY, Column, Ways, optional_stiffness, read_headings, stiffness_key
+from calcsheet.job.headings import AREA, GRAVITY, Ways, optional_stiffness, read_headings, stiffness_key
 from calcsheet.job.memberfile import MemberReading, read_members, taken_off
 from calcsheet.job.planfile import LINES, PLAN, LineRow, laterals_of, read_lines, read_plan
 from calcsheet.job.resisting import Resisting
 from calcsheet.job.storeycells import StoreyCells
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
 from calcsheet.units import display
 
 TAKE_OFF = "take-off"
 """How the masses are said to be given where they come from the mass take-off."""
-
-
-@dataclass(frozen=True, eq=False)
-class StoreyReading:
-    """What a storey table holds: every problem with it, or the storeys.
-
-    Parameters
-    ----------
-    table : TextTable
-        The table read.
-    columns : tuple of Column
-        Its columns.
-    levels : tuple of str
-        The level of each row; "" where it has no name.
-    problems : tuple of CellProblem
-        All that is wrong.
-    notices : tuple of str
-        What is left out, a sentence each.
-    storeys : Storeys or None
-        In core units; None where there is any problem.
-    ways : mapping of str to type
-        What resists along each direction, or along each line of resistance that its columns describe.
-    """
-
-    table: TextTable
-    columns: tuple[Column, ...]
-    levels: tuple[str, ...]
-    problems: tuple[CellProblem, ...]
-    notices: tuple[str, ...]
-    storeys: Storeys | None
-    ways: Ways
-
-    @property
-    def rows(self) -> tuple[tuple[str, ...], ...]:
-        """The cells of each row, a cell a column."""
-        return tuple(cells[: len(self.columns)] for cells in self.table.rows)
 
 
 def read_storeys(
@@ -127,6 +91,10 @@ def read_storeys(
         tuple(problems),
         (*headings.notices, *cells.notices),
         None if problems else storeys,
+        tuple(cells.rows),
+        len(cells.rows) - cells.below,
+        cells.foot,
+        cells.numbers(),
         ways,
     )
 

@@ -8,7 +8,7 @@ from __future__ import annotations
 import csv
 import io
 import re
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -109,10 +109,19 @@ def parse_table(source: TextFile, file: str) -> TextTable:
 
 def set_cell(table: TextTable, row: int, column: int, text: str) -> TextTable:
     """Return the table with one cell changed; setting what is there already changes nothing."""
-    cells = table.rows[row]
-    if cells[column] == text:
-        return table
-    return _with_cells(table, row, (*cells[:column], text, *cells[column + 1 :]))
+    return set_cells(table, {row: {column: text}})
+
+
+def set_cells(table: TextTable, texts: Mapping[int, Mapping[int, str]]) -> TextTable:
+    """Return the table with cells changed, by row and column; setting what is there already changes nothing."""
+    lines = list(table.lines)
+    for row, changes in texts.items():
+        before = table.rows[row]
+        cells = tuple(changes.get(column, text) for column, text in enumerate(before))
+        if cells != before:
+            place = table._places[row]
+            lines[place] = replace(lines[place], cells=cells, text=_write(cells, table.delimiter, lines[place]))
+    return table if lines == list(table.lines) else replace(table, lines=tuple(lines))
 
 
 def insert_row(table: TextTable, row: int, cells: Iterable[str] = ()) -> TextTable:
@@ -157,13 +166,6 @@ def _place(table: TextTable, row: int) -> int:
     if row < len(table._places):
         return table._places[row]
     return (table._places[-1] if table._places else table.heading) + 1
-
-
-def _with_cells(table: TextTable, row: int, cells: tuple[str, ...]) -> TextTable:
-    place = table._places[row]
-    old = table.lines[place]
-    new = replace(old, cells=cells, text=_write(cells, table.delimiter, old))
-    return replace(table, lines=(*table.lines[:place], new, *table.lines[place + 1 :]))
 
 
 def _write(cells: tuple[str, ...], delimiter: str, like: Line) -> str:

@@ -148,16 +148,18 @@ def _refuse_two_of_a_name(notebook: NotebookNode) -> None:
 
 
 def _of_code(number: int, cell: NotebookNode, payloads: Mapping[str, Payload]) -> list[Shown | Own]:
-    shown, others = [], []
+    shown, others, on_screen = [], [], False
     for output in cell.outputs:
         if output.output_type == "error":
             raise RecordError(f"cell {number} failed when the notebook was run: {output.ename}: {output.evalue}")
         data = output.get("data", {}).get(MIME)
-        if data is not None:
+        if data is not None and data["view"] in VIEWS and not VIEWS[data["view"]].printed:
+            on_screen = True
+        elif data is not None:
             shown.append(_shown(number, cell, data, payloads))
         elif "application/vnd.jupyter.widget-view+json" not in output.get("data", {}):
             others.append(output)
-    if shown and not others:
+    if (shown or on_screen) and not others:
         return list(shown)
     if not others and _is_set_up(cell.source):
         return []

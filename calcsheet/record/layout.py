@@ -15,7 +15,30 @@ from calcsheet.steps.serial import fingerprint
 DRAWS = ("matplotlib", "jinja2", "markupsafe", "mistune", "bleach", "latex2mathml", "ziamath", "fonttools", "pypdf")
 """Libraries whose version may show in print."""
 SOURCES = ("units.py", "steps", "render", "record")
-NOT_PRINTING = ("record/check",)
+NOT_PRINTING = (
+    "record/check",
+    *(
+        f"record/{name}.py"
+        for name in (
+            "answering",
+            "commenting",
+            "comparison",
+            "execute",
+            "exporter",
+            "issue",
+            "opened",
+            "place",
+            "recordfile",
+            "register",
+            "schema",
+            "sign",
+            "strictjson",
+            "tables",
+        )
+    ),
+    "record/record.schema.json",
+)
+"""Sources among these that no page is made with."""
 TEXTS = (".py", ".css", ".j2", ".svg", ".json", ".txt")
 
 
@@ -51,9 +74,11 @@ def code() -> str:
 
 
 def _sources(place: Traversable, path: str) -> Iterator[tuple[str, Traversable]]:
+    if path in NOT_PRINTING:
+        return
     if place.is_file():
         yield path, place
-    elif not place.name.startswith(("__pycache__", ".")) and path not in NOT_PRINTING:
+    elif not place.name.startswith(("__pycache__", ".")):
         for child in place.iterdir():
             if not (child.is_file() and child.name.endswith((".pyc", ".pyo"))):
                 yield from _sources(child, f"{path}/{child.name}")

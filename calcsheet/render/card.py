@@ -41,7 +41,7 @@ def assumptions(card: Mapping[str, Any]) -> str:
         return "<p>None stated.</p>"
     return table(
         (
-            Column("", tuple(str(i) for i in range(1, len(rows) + 1))),
+            Column("no.", tuple(str(i) for i in range(1, len(rows) + 1))),
             words("assumption", [a["text"] for a in rows]),
             words("ground", [a["ground"] for a in rows]),
             words("to be confirmed by", [a["confirm_by"] or "\u2013" for a in rows]),

@@ -12,6 +12,7 @@ from calcsheet.render.demand import DEMAND
 from calcsheet.render.drift import DRIFT
 from calcsheet.render.masses import MASSES
 from calcsheet.render.modes import MODES
+from calcsheet.render.motion import MOTION
 from calcsheet.render.participation import PARTICIPATION
 from calcsheet.render.peaks import PEAKS
 from calcsheet.render.plan import PLAN
@@ -20,6 +21,7 @@ from calcsheet.render.stiffnesstakeoff import MEMBERS, STIFFNESSES
 from calcsheet.render.storeys import STOREYS
 from calcsheet.render.torsion import TORSION
 from calcsheet.render.view import View
+from calcsheet.render.whatif import WHAT_IF
 
 VIEWS: Mapping[str, View] = {
     view.name: view
@@ -41,6 +43,8 @@ VIEWS: Mapping[str, View] = {
         TORSION,
         CAUTIONS,
         CHANGES,
+        MOTION,
+        WHAT_IF,
     )
 }
 """Every view by its name."""

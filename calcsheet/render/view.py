@@ -68,6 +68,8 @@ class View:
     covers : callable
         ``covers(payloads, key)`` gives the plain JSON that the view shows, by whose fingerprint a twin in a saved notebook is
         known to be current: the step's payload where omitted.
+    printed : bool
+        Whether a record prints it. A view on screen only has a notice for its twin, rendered whatever the step's state.
     """
 
     name: str
@@ -76,6 +78,7 @@ class View:
     render: Callable[[Mapping[str, Payload], str, Mapping[str, Any]], Rendered]
     choices: tuple[Choice, ...] = field(default=())
     covers: Callable[[Mapping[str, Payload], str], Any] = _own_step
+    printed: bool = True
 
     def chosen(self, options: Mapping[str, Any]) -> dict[str, Any]:
         """The options with defaults filled in.

@@ -56,7 +56,7 @@ def evidence(found: Iterable[Located]) -> str:
             words("measure", [e["relation"] for _, e in rows]),
             Column("figure", tuple(exponent(e["value"], f"{at}/value") for at, e in rows)),
             Column("limit", tuple(exponent(e["limit"], f"{at}/limit") for at, e in rows)),
-            Column("", tuple(verdicts), numeric=False),
+            Column("judged", tuple(verdicts), numeric=False),
         ),
         kind="evidence",
         marked=[i for i, (_, e) in enumerate(rows) if not e["within"]],

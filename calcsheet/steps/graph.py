@@ -8,59 +8,34 @@ from __future__ import annotations
 
 import re
 import threading
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
-from typing import Any, ClassVar, Protocol
+from typing import Any, ClassVar
 
 import numpy as np
 
+from calcsheet.job.differences import Difference, differences
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
 from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
-from calcsheet.job.storeyfile import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
+from calcsheet.steps.history import History
+from calcsheet.steps.listen import Listener, Status, clock, few
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
 from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinished
 
 KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
-LISTED = 3
-"""Problems quoted where a step says why it can't be done; the others are counted."""
-
+Values = Mapping[tuple[str, ...], Value | None]
 
 MASSES, STIFFNESSES = "masses", "stiffness take-off"
 """The take-offs, which may feed the storeys."""
 FROM_FILES = ("card", MASSES, STIFFNESSES, "storeys", "basis")
 """Steps whose inputs are the job's files."""
-
-
-class Listener(Protocol):
-    """Somebody who shows the job."""
-
-    def show_numbers(self) -> None:
-        """Show the present numbers: quick."""
-
-    def show_figures(self) -> None:
-        """Draw the present figures, and what is kept of them."""
-
-
-@dataclass(frozen=True)
-class Status:
-    """How the storey table in memory stands to its file.
-
-    Parameters
-    ----------
-    kind : str
-        "saved", "conflict" (another edit is on disk) or "error" (can't be written or read).
-    text : str
-        The same in words.
-    """
-
-    kind: str
-    text: str
 
 
 class _RefusedError(Exception):
@@ -101,11 +76,14 @@ class Job:
         self.revision = 0
         self.status = Status("error", "not read yet")
         self.files: JobFiles | None = None
+        self.history = History()
         self._problem = ""
         self._unsaved = False
         self._nodes: dict[str, _Node] = {}
         self._listeners: list[Listener] = []
         self._told = 0
+        self.rest = 0.0  # s between numbers and figures, for who shows them to take the numbers in
+        self._newer = threading.Event()  # ends the rest
         self._nodes["card"] = _Node(STEPS["card"], {}, None)
         self._nodes["storeys"] = _Node(STEPS["storeys"], {}, None)
         self.load()
@@ -190,25 +168,30 @@ class Job:
     # ---- files -----------------------------------------------------------------------------------------------------
 
     def load(self) -> None:
-        """Read the files from disk; what is unsaved here is given up."""
+        """Read the files from disk; what is unsaved here is given up, but can be had again by undoing."""
         with self.lock:
-            self._unsaved = False
+            before, self._unsaved = self.files, False
             try:
                 self.files, self._problem = self.folder.load(), ""
-                self.status = Status("saved", f"{self.files.reading.table.file}: as on disk")
+                table = self.files.reading.table
+                self.status = Status("saved", f"{table.file}: as read from disk at {clock()}")
+                if before is not None and before.reading.table.content() != table.content():
+                    self.history.did(f"{table.file} loaded from disk", before.reading.table)
             except InputError as error:
                 self._problem = str(error)
                 self.status = Status("error", self._problem)
             self._update()
         self._tell()
 
-    def edit(self, change: Callable[[StoreyReading], TextTable]) -> None:
+    def edit(self, change: Callable[[StoreyReading], TextTable], what: str = "edit") -> None:
         """Edit the storey table and write it through to its file.
 
         Parameters
         ----------
         change : callable
             From the table as read to the table wanted.
+        what : str
+            The edit in words, for who undoes it.
 
         Raises
         ------
@@ -217,7 +200,22 @@ class Job:
             and the storeys say what is wrong.
         """
         with self.lock:
+            before = self._read().reading.table
             self._save(change(self._read().reading), overwrite=False)
+            if self._read().reading.table.content() != before.content():
+                self.history.did(what, before)
+        self._tell()
+
+    def undo(self) -> None:
+        """Take back the last edit of the storey table (InputError where none is remembered)."""
+        with self.lock:
+            self._save(self.history.back(self._read().reading.table), overwrite=False)
+        self._tell()
+
+    def redo(self) -> None:
+        """Do again what was undone last (InputError where there is nothing)."""
+        with self.lock:
+            self._save(self.history.forth(self._read().reading.table), overwrite=False)
         self._tell()
 
     def set_value(self, key: str | Sequence[str | int], value: Value | None) -> None:
@@ -241,15 +239,51 @@ class Job:
             self._update()
         self._tell()
 
-    def keep(self) -> None:
-        """Write the table in memory over what is on disk; what else changed there is read."""
+    def edit_both(self, change: Callable[[JobFiles], tuple[TextTable, Values]]) -> None:
+        """Edit the storey table and set keys of the job card: both are written through, or neither.
+
+        Parameters
+        ----------
+        change : callable
+            From the files as read to the table wanted and the values wanted, by key as in `set_value`.
+
+        Raises
+        ------
+        InputError
+            The card would not be valid, or a file is not saved or was changed on disk; nothing has changed.
+        """
         with self.lock:
+            files = self._read()
+            if self.status.kind != "saved":
+                raise InputError("", "", self.status.text, "put that right first")
+            (table, values), text = change(files), files.card_text
+            for key, value in values.items():
+                text = with_value(text, key, value)
+            self.files = self.folder.save_both(files, table, text)
+            if table.content() != files.reading.table.content():
+                self.history.did("adopted", files.reading.table)
+            self.status = Status("saved", f"saved to {table.file} at {clock()}")
+            self._update()
+        self._tell()
+
+    def keep(self) -> None:
+        """Write the table in memory over what is on disk, which undoing brings back; what else changed there is read."""
+        with self.lock:
+            theirs = self._on_disk()
             self._save(self._read().reading.table, overwrite=True)
+            if theirs is not None:
+                self.history.did("keeping what was here", theirs)
             others = not self._unsaved and self.folder.changed_on_disk(self._read())
         if others:
             self.load()
         else:
             self._tell()
+
+    def differences(self) -> tuple[Difference, ...]:
+        """What differs between the storey table here and on disk; nothing where there is no table on disk."""
+        with self.lock:
+            theirs = self._on_disk()
+            return () if theirs is None else differences(self._read().reading.table, theirs)
 
     def look(self) -> None:
         """See whether somebody else changed the files on disk, and say so."""
@@ -263,6 +297,12 @@ class Job:
             self._update()
         self._tell()
 
+    def _on_disk(self) -> TextTable | None:
+        try:
+            return self.folder.storeys_on_disk()
+        except InputError:
+            return None  # gone, or no table: there is nothing to compare with
+
     def _read(self) -> JobFiles:
         if self.files is None or self._problem:
             raise InputError("", "", self._problem or "the job can't be read", "put that right first")
@@ -272,7 +312,7 @@ class Job:
         files = self._read()
         try:
             self.files = self.folder.save_storeys(files, table, overwrite)
-            self.status, self._unsaved = Status("saved", f"{table.file}: saved"), False
+            self.status, self._unsaved = Status("saved", f"saved to {table.file} at {clock()}"), False
         except NotSavedError as error:
             self.files, self._unsaved = files.with_storeys(table), True
             self.status = Status("conflict" if isinstance(error, ConflictError) else "error", str(error))
@@ -283,6 +323,7 @@ class Job:
     def _update(self) -> None:
         """Bring every step up to date, upstream first; the lock is held."""
         self.revision += 1
+        self._newer.set()
         card = None if self.files is None else self.files.card
         if card is not None:  # what the storeys are made from is to be traced
             for key, feeds in ((MASSES, card.masses), (STIFFNESSES, card.model.members)):
@@ -364,10 +405,12 @@ class Job:
             while True:
                 with self.lock:
                     revision, listeners = self.revision, list(self._listeners)
+                    self._newer.clear()
                 if self._told == revision:
                     return
                 for listener in listeners:
                     listener.show_numbers()
+                self._newer.wait(self.rest)
                 for listener in listeners:
                     if self.revision != revision:
                         break
@@ -379,8 +422,7 @@ class Job:
 def _refuse_any(problems: Sequence[str]) -> None:
     """Refuse what has problems, the first of them quoted."""
     if problems:
-        more = f" (and {len(problems) - LISTED} more)" if len(problems) > LISTED else ""
-        raise _RefusedError("; ".join(problems[:LISTED]) + more)
+        raise _RefusedError(few(problems))
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

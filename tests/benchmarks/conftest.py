@@ -2,11 +2,31 @@
 
 from __future__ import annotations
 
+import importlib.util
 import statistics
+import sys
 from collections.abc import Callable
+from pathlib import Path
 from time import perf_counter
 
 import pytest
+
+# The server and the browser of the browser tests.
+_place = Path(__file__).parents[1] / "browser" / "conftest.py"
+_spec = importlib.util.spec_from_file_location("browser_fixtures", _place)
+assert _spec is not None
+assert _spec.loader is not None
+_browser = importlib.util.module_from_spec(_spec)
+sys.modules["browser_fixtures"] = _browser  # dataclasses look their module up
+_spec.loader.exec_module(_browser)
+chromium, lab, opener, new_job = _browser.chromium, _browser.lab, _browser.opener, _browser.new_job
+
+
+@pytest.fixture(scope="module")
+def flavour() -> str:
+    """JupyterLab."""
+    return "lab"
+
 
 _ROWS: list[tuple[str, float, str]] = []
 

@@ -52,7 +52,7 @@ def table():
     shown = []
     elevation = 0.0
     for row in reversed(rows):
-        elevation += float(row["height"])
+        elevation += float(row["height"] or 0)
         cells = {**row, "elevation": f"{elevation:.2f}"}
         shown.insert(0, {"id": row["id"], "cells": cells, "errors": {"mass": wrong(row)}})
     totals = {"level": "total", "mass": f"{sum(float(row['mass']) for row in rows):.1f}"} if good else {}
@@ -72,7 +72,12 @@ def answer(message):
     elif op == "insert":
         rows.insert(0 if message["row"] is None else place(message["row"]) + 1, row("new"))
     elif op == "delete":
-        del rows[place(message["row"])]
+        del rows[place(message["row"]) : place(message["last"]) + 1]
+    elif op in ("undo", "redo"):
+        return f"nothing to {op}"
+    elif op == "clear":
+        for each in rows[place(message["row"]) : place(message["last"]) + 1]:
+            each.update(dict.fromkeys(message["keys"], ""))
     elif op == "paste":
         paste(place(message["row"]), message["key"], message["text"])
     renew()

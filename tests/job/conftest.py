@@ -7,7 +7,8 @@ from collections.abc import Callable
 import pytest
 
 from calcsheet.job.card import Card, parse_card
-from calcsheet.job.storeyfile import StoreyReading, read_storeys
+from calcsheet.job.storeyfile import read_storeys
+from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Stamp, TextFile, decode
 

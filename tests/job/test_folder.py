@@ -194,3 +194,25 @@ def test_the_basis_follows_the_card_that_is_saved(with_basis):
     again = with_basis.save_card(back, with_value(back.card_text, "basis.combination", "SRSS"))
     assert again.basis.combination == "SRSS"
     assert watched(again) == ["job.toml", "sa.csv", "storeys.csv"]
+
+
+def test_table_and_card_are_saved_together(folder, card_text):
+    files = folder.load()
+    table = edits.set_number(files.reading, "Roof", "mass", 199.5)
+    after = folder.save_both(files, table, with_value(card_text, "stiffness.cracked.factor", 0.45))
+    again = folder.load()
+    assert again.reading.storeys.mass[-1] == after.reading.storeys.mass[-1] == 199.5
+    assert again.card.stiffness["cracked"].factor == after.card.stiffness["cracked"].factor == 0.45
+    assert folder.changed_on_disk(after) == ()
+
+
+def test_neither_is_saved_where_one_can_not_be(folder, card_text, storeys_text):
+    files = folder.load()
+    table = edits.set_number(files.reading, "Roof", "mass", 199.5)
+    with pytest.raises(InputError, match=r"stiffness\.cracked\.factor: got -1"):
+        folder.save_both(files, table, with_value(card_text, "stiffness.cracked.factor", -1))
+    (folder.path / "job.toml").write_text(card_text + "# by hand\n")
+    with pytest.raises(ConflictError, match=r"^job\.toml: not saved, changed on disk"):
+        folder.save_both(files, table, with_value(card_text, "stiffness.cracked.factor", 0.45))
+    assert (folder.path / "storeys.csv").read_text() == storeys_text
+    assert (folder.path / "job.toml").read_text() == card_text + "# by hand\n"

@@ -124,22 +124,7 @@ def test_a_step_of_another_version_is_a_payload_alone(record):
 
 
 def test_records_of_one_name_are_kept_apart():
-    """A name in the definitions stands for one type."""
-    from calcsheet.core.codes.edition import Facts
-    from calcsheet.steps.earlier import EARLIER
-
-    inner = {hint.__name__: hint for hint in _types(EARLIER.inputs)}
-    if "Facts" in inner and inner["Facts"] is not Facts:
-        assert sum(name.rpartition(".")[2] == "Facts" for name in published()["$defs"]) == 2
-
-
-def _types(hint):
-    from dataclasses import is_dataclass
-    from typing import get_args, get_type_hints
-
-    if isinstance(hint, type) and is_dataclass(hint):
-        yield hint
-        for inner in get_type_hints(hint).values():
-            yield from _types(inner)
-    for inner in get_args(hint):
-        yield from _types(inner)
+    """The facts that an edition asks for, and those that two revisions are compared by."""
+    definitions = published()["$defs"]
+    assert "share_of_three" in definitions["Facts"]["properties"]
+    assert "share_of_three" not in definitions["compare.Facts"]["properties"]

@@ -444,3 +444,32 @@ def test_states_that_change_from_threads_never_break_a_telling(job):
     assert not any(thread.is_alive() for thread in threads)
     assert failed == []
     assert reader.numbers[-1] == reader.figures[-1] == job.revision
+
+
+def test_table_and_card_edited_together_are_one_revision(job, folder):
+    revision, heard = job.revision, []
+
+    class Heard:
+        def show_numbers(self):
+            heard.append((job.revision, first_period(job)))
+
+        def show_figures(self):
+            pass
+
+    before = first_period(job)
+    job.listen(Heard())
+    job.edit_both(lambda files: (set_mass("Roof", 200.0)(files.reading), {("stiffness", "cracked", "factor_x"): 0.3}))
+    assert heard == [(revision + 1, first_period(job))]
+    assert first_period(job) > before
+    assert "Roof,2.95,200," in (folder / "storeys.csv").read_text(encoding="utf-8")
+    assert "factor_x = 0.3" in (folder / "job.toml").read_text(encoding="utf-8")
+
+
+def test_nothing_is_edited_together_while_the_table_conflicts_with_its_file(job, folder):
+    file = folder / "storeys.csv"
+    file.write_text(file.read_text(encoding="utf-8").replace("141.5", "150"), encoding="utf-8")
+    job.look()
+    before = [path.read_bytes() for path in sorted(folder.iterdir())]
+    with pytest.raises(InputError, match=r"storeys\.csv: changed on disk"):
+        job.edit_both(lambda files: (files.reading.table, {("stiffness", "cracked", "factor_x"): 0.3}))
+    assert [path.read_bytes() for path in sorted(folder.iterdir())] == before

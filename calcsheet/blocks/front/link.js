@@ -9,6 +9,8 @@ const fresh = () => `${PAGE}-${++counted}`;
 function make(tag, className, attributes = {}) {
   const node = document.createElement(tag);
   if (className) node.className = className;
+  // Looked for on the node with the focus itself: its own keys must not delete a cell of the notebook.
+  if (["button", "input", "select"].includes(tag)) node.setAttribute("data-lm-suppress-shortcuts", "true");
   for (const [name, value] of Object.entries(attributes)) node.setAttribute(name, value);
   return node;
 }
@@ -118,8 +120,8 @@ function watchTwin(model, root, signal) {
     const twin = root.closest(".jp-OutputArea-child")?.nextElementSibling?.querySelector(".calcsheet-twin");
     const stored = twin?.dataset.revision;
     banner.hidden = stored === undefined || Number(stored) === model.get("revision");
-    setText(banner, banner.hidden ? "" : "The copy stored in this notebook is older than what is shown here: "
-      + "run this cell again before you save the notebook.");
+    setText(banner, banner.hidden ? "" : "The outputs stored in this notebook are older than what is shown here: "
+      + "run all cells again before you save it.");
   };
   const soon = () => {
     clearTimeout(timer);
