@@ -8,6 +8,7 @@ from functools import partial
 
 from calcsheet.core.arrays import Array, Frozen
 from calcsheet.core.basis import Basis
+from calcsheet.core.errors import ModelError
 from calcsheet.core.model import Model, models_of
 from calcsheet.core.modes import Modes, modes_of
 from calcsheet.core.participation import Participation, participation
@@ -60,8 +61,10 @@ def multiplied(storeys: Storeys, mass: float, stiffness: str, along: Mapping[str
     Raises
     ------
     ModelError
-        A factor that leaves a mass or stiffness not finite and above 0.
+        Rigid floors, or a factor that leaves a mass or stiffness not finite and above 0.
     """
+    if storeys.plan is not None:
+        raise ModelError("what-if", "rigid floors", "must be a planar model")
     sets = tuple(
         replace(s, lateral={d: lateral.times(along.get(d, 1.0)) for d, lateral in s.lateral.items()})
         if s.name == stiffness

@@ -10,7 +10,7 @@ from calcsheet.job import storeycells
 from calcsheet.job import table as text_table
 from calcsheet.job.errors import InputError
 from calcsheet.job.folder import JobFiles
-from calcsheet.job.headings import GRAVITY, needed_stiffness
+from calcsheet.job.headings import GRAVITY, stiffness_key
 from calcsheet.job.numbers import decimal_mark, format_number, parse_number
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
@@ -69,9 +69,13 @@ def adoption(files: JobFiles, stiffness: str, mass: float, along: Mapping[str, f
     values: dict[tuple[str, ...], float | None] = {}
     basis = files.card.stiffness[stiffness]
     if basis.own:
-        there = {c.key for c in files.reading.columns if c.used}
-        needed = needed_stiffness(files.card, files.reading.ways).items()
-        columns |= {k: changed[d] for k, (_, d, name) in needed if name == stiffness and d in changed and k in there}
+        keys = {c.key for c in files.reading.columns if c.used}
+        own = (
+            (stiffness_key(given, d, stiffness), f)
+            for d, f in changed.items()
+            for given in files.reading.ways[d].columns
+        )
+        columns |= {key: factor for key, factor in own if key in keys}
     elif changed and basis.factor is not None and len({*along.values()}) > 1:
         values[("stiffness", stiffness, "factor")] = None
         values |= {("stiffness", stiffness, f"factor_{d}"): rounded(basis.factor * f) for d, f in along.items()}

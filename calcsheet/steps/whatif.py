@@ -6,7 +6,6 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from calcsheet.core.basis import Basis
-from calcsheet.core.errors import ModelError
 from calcsheet.core.storeys import Storeys
 from calcsheet.core.whatif import Answered, answered, multiplied
 from calcsheet.steps.registry import STEPS
@@ -98,18 +97,10 @@ class Asked:
 
 
 def asked(payloads: Mapping[str, Payload], key: str) -> Asked:
-    """The saved model behind the modes of a key, whose state is "ok".
-
-    Raises
-    ------
-    ModelError
-        Rigid floors, which have no stiffness of one direction alone.
-    """
+    """The saved model behind the modes of a key, whose state is "ok"."""
     payload = payloads[key]
     inputs, result = payload["inputs"], payload["result"]
     storeys = from_json(Storeys, payloads[payload["needs"]["storeys"]]["inputs"])
-    if storeys.plan is not None:
-        raise ModelError("what if", "rigid floors", "must be planar models: its stiffness factors are by direction")
     demand = _demand(payloads, key)
     basis, waits = None, ""
     if demand is not None and demand["state"] == "ok":
