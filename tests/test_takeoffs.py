@@ -20,7 +20,8 @@ from calcsheet.record.check.given import said_twice
 from calcsheet.record.collect import collect, refuse_stale
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue
-from calcsheet.steps.graph import MASSES, STIFFNESSES, Job
+from calcsheet.steps.fromfiles import MASSES, STIFFNESSES
+from calcsheet.steps.graph import Job
 from calcsheet.steps.replay import replay
 
 FILES = {

@@ -8,7 +8,8 @@ from calcsheet.job import edits
 from calcsheet.job.errors import InputError
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
-from calcsheet.steps.graph import MASSES, Job
+from calcsheet.steps.fromfiles import MASSES
+from calcsheet.steps.graph import Job
 from calcsheet.units import UNITS
 
 

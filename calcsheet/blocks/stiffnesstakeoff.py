@@ -11,7 +11,8 @@ from calcsheet.job.card import FILE
 from calcsheet.job.errors import InputError
 from calcsheet.job.headings import stiffness_key
 from calcsheet.job.storeycells import FILE as STOREYS
-from calcsheet.steps.graph import STIFFNESSES, Job
+from calcsheet.steps.fromfiles import STIFFNESSES
+from calcsheet.steps.graph import Job
 from calcsheet.steps.serial import from_json
 
 

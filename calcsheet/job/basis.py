@@ -14,7 +14,8 @@ from calcsheet.core.basis import RESIDUALS, Basis, MassShare, SecondModel
 from calcsheet.core.codes.edition import Edition
 from calcsheet.core.codes.registry import EDITIONS
 from calcsheet.core.errors import ModelError
-from calcsheet.job.card import FILE, FILE_NAME, Card, number_of
+from calcsheet.job.card import FILE, Card, number_of
+from calcsheet.job.cardtables import FILE_NAME
 from calcsheet.job.errors import InputError
 from calcsheet.job.spectrumfile import read_points
 from calcsheet.job.table import TextTable

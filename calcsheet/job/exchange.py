@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from calcsheet.job import columns, floorfile, headings, storeycells
-from calcsheet.job.card import Import
+from calcsheet.job.cardtables import Import
 from calcsheet.job.errors import CellProblem, InputError
 from calcsheet.job.folder import JobFiles, JobFolder
 from calcsheet.job.headings import LEVEL

@@ -12,7 +12,8 @@ import numpy as np
 from calcsheet.core.arrays import Array
 from calcsheet.core.floors import KINDS, PERMANENT, PLACES, Floors, Load, OtherMass
 from calcsheet.job.card import FILE as CARD
-from calcsheet.job.card import Card, LoadShare
+from calcsheet.job.card import Card
+from calcsheet.job.cardtables import LoadShare
 from calcsheet.job.cells import ANY, NOT_NEGATIVE
 from calcsheet.job.columns import Column, Columns, read_columns
 from calcsheet.job.errors import CellProblem, InputError

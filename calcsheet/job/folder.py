@@ -11,7 +11,8 @@ from calcsheet.core.basis import Basis
 from calcsheet.job import card as job_card
 from calcsheet.job import storeycells, textfile
 from calcsheet.job.basis import read_basis, spectrum_files
-from calcsheet.job.card import FILE_NAME, Card, parse_card, shown
+from calcsheet.job.card import Card, parse_card
+from calcsheet.job.cardtables import FILE_NAME
 from calcsheet.job.errors import InputError
 from calcsheet.job.floorfile import FILES as FLOOR_FILES
 from calcsheet.job.floorfile import FloorReading, read_floors
@@ -22,6 +23,7 @@ from calcsheet.job.storeyfile import read_storeys
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable, parse_table
 from calcsheet.job.textfile import Encoding, Stamp, TextFile
+from calcsheet.job.wording import shown
 
 
 @dataclass(frozen=True, eq=False)

@@ -9,7 +9,8 @@ from itertools import product
 
 from calcsheet.core.given import Given
 from calcsheet.core.lateral import LATERALS, Lateral
-from calcsheet.job.card import DIRECTIONS, Card
+from calcsheet.job.card import Card
+from calcsheet.job.cardtables import DIRECTIONS
 from calcsheet.job.errors import InputError
 from calcsheet.job.table import TextTable
 from calcsheet.units import Unit, UnitError, allowed_units, display, parse_unit

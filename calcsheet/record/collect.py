@@ -16,7 +16,8 @@ from calcsheet.record.errors import RecordError
 from calcsheet.record.own import printable
 from calcsheet.record.parts import Own, Part, Shown, Words
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import MASSES, STIFFNESSES, Job
+from calcsheet.steps.fromfiles import MASSES, STIFFNESSES
+from calcsheet.steps.graph import Job
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import fingerprint, to_json
 from calcsheet.steps.step import Payload

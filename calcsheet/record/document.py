@@ -33,7 +33,7 @@ from calcsheet.render.table import facts
 from calcsheet.render.view import system_of
 from calcsheet.render.words import evidence, worked
 from calcsheet.steps.compare import EARLIER
-from calcsheet.steps.graph import FROM_FILES, MASSES, STIFFNESSES
+from calcsheet.steps.fromfiles import FROM_FILES, MASSES, STIFFNESSES
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.step import Payload
 

@@ -38,17 +38,28 @@ def motion(payloads: Mapping[str, Payload], key: str) -> dict[str, Any]:
         "levels": [
             {"name": name, "elevation": e, "label": text(e, places)} for name, e in zip(names, elevation, strict=True)
         ],
-        "models": [{"name": m["name"], "modes": _modes(m["modes"])} for m in payloads[key]["result"]["models"]],
+        "models": [item for m in payloads[key]["result"]["models"] for item in _directions(m)],
     }
 
 
-def _modes(modes: Mapping[str, Any]) -> list[dict[str, Any]]:
-    shapes = scaled(np.array(modes["psi"]), "largest")
-    count = min(shapes.shape[1], SHOWN)
+def _directions(model: Mapping[str, Any]) -> list[dict[str, Any]]:
+    """Each direction that a model moves in, of one scale: the largest translation in any is 1."""
+    modes, name = model["modes"], model["name"]
+    psi = np.array(modes["psi"])
+    rows = model.get("rows") or {name: list(range(len(psi)))}
+    shapes = scaled(psi[[row for along in rows.values() for row in along]], "largest")
+    levels = len(shapes) // len(rows)
     digits = display("period", "SI").digits
+    periods = [text(t, decimals_for([t], digits)) for t in modes["period"][:SHOWN]]
     return [
-        {"period": text(t, decimals_for([t], digits)), "shape": [0.0, *shapes[:, n].tolist()]}
-        for n, t in enumerate(modes["period"][:count])
+        {
+            "name": along,
+            "modes": [
+                {"period": t, "shape": [0.0, *shapes[i * levels : (i + 1) * levels, n].tolist()]}
+                for n, t in enumerate(periods)
+            ],
+        }
+        for i, along in enumerate(rows)
     ]
 
 

@@ -7,7 +7,8 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from calcsheet.job.basis import spectrum_files
-from calcsheet.job.card import Card, SetBasis
+from calcsheet.job.card import Card
+from calcsheet.job.cardtables import SetBasis
 from calcsheet.job.floorfile import LOADS
 from calcsheet.job.planfile import LINES, PLAN
 from calcsheet.steps.step import Caution, Outcome, Step, plain

@@ -18,12 +18,19 @@ import numpy as np
 from calcsheet.job.differences import Difference, differences
 from calcsheet.job.errors import ConflictError, InputError, NotSavedError
 from calcsheet.job.folder import JobFiles, JobFolder
-from calcsheet.job.memberfile import FILE as MEMBERS
 from calcsheet.job.rewrite import Value, with_value
 from calcsheet.job.storeyreading import StoreyReading
 from calcsheet.job.table import TextTable
+from calcsheet.steps.fromfiles import (
+    FROM_FILES,
+    MASSES,
+    STIFFNESSES,
+    RefusedError,
+    WaitsError,
+    inputs_from_files,
+)
 from calcsheet.steps.history import History
-from calcsheet.steps.listen import Listener, Status, clock, few
+from calcsheet.steps.listen import Listener, Status, clock
 from calcsheet.steps.registry import STEPS
 from calcsheet.steps.serial import to_json
 from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinished
@@ -31,19 +38,6 @@ from calcsheet.steps.step import Done, Payload, Step, calculated, done, unfinish
 KEY = re.compile(r"\w([\w. -]*\w)?")
 """Names that steps may have: they stand in JSON pointers."""
 Values = Mapping[tuple[str, ...], Value | None]
-
-MASSES, STIFFNESSES = "masses", "stiffness take-off"
-"""The take-offs, which may feed the storeys."""
-FROM_FILES = ("card", MASSES, STIFFNESSES, "storeys", "basis")
-"""Steps whose inputs are the job's files."""
-
-
-class _RefusedError(Exception):
-    """The files hold no such inputs, for the reason given."""
-
-
-class _WaitsError(Exception):
-    """The inputs wait for another file."""
 
 
 @dataclass
@@ -354,38 +348,14 @@ class Job:
     def _from_files(self, key: str, node: _Node) -> Payload:
         """The payload of a step whose inputs are the job's files."""
         try:
-            node.inputs = self._inputs(key)
-        except _RefusedError as error:
+            node.inputs = inputs_from_files(key, self.files, self._problem, self.status)
+        except RefusedError as error:
             return unfinished(node.step, {}, "refused", str(error))
-        except _WaitsError as error:
+        except WaitsError as error:
             return unfinished(node.step, {}, "waiting", str(error))
         if node.payload and node.payload["state"] == "ok" and node.payload["inputs"] == to_json(node.inputs):
             return node.payload
         return _calculated(node, ())
-
-    def _inputs(self, key: str) -> Any:
-        if self._problem or self.files is None:
-            raise _RefusedError(self._problem) if key == "card" else _WaitsError(f"waits for job card: {self._problem}")
-        if key == "card":
-            return self.files.card
-        if key == "basis":
-            if self.files.basis is None:
-                raise _RefusedError(self.files.basis_problem)
-            return self.files.basis
-        if self.status.kind != "saved":
-            raise _RefusedError(self.status.text)
-        if key == MASSES:
-            if self.files.floors is None:
-                raise _RefusedError("no floors.csv and loads.csv in the job folder; the mass take-off needs both")
-            _refuse_any(self.files.floors.messages)
-            return self.files.floors.floors
-        if key == STIFFNESSES:
-            if self.files.members is None:
-                raise _RefusedError(f"no {MEMBERS} in the job folder; the stiffness take-off needs it")
-            _refuse_any(self.files.members.messages)
-            return self.files.members.takeoff
-        _refuse_any(self.files.problems)
-        return self.files.reading.storeys
 
     # ---- listeners -------------------------------------------------------------------------------------------------
 
@@ -417,12 +387,6 @@ class Job:
                     listener.show_figures()
                 else:
                     self._told = revision
-
-
-def _refuse_any(problems: Sequence[str]) -> None:
-    """Refuse what has problems, the first of them quoted."""
-    if problems:
-        raise _RefusedError(few(problems))
 
 
 def _calculated(node: _Node, upstream: tuple[Done, ...]) -> Payload:

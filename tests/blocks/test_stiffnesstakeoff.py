@@ -8,7 +8,7 @@ import pytest
 
 from calcsheet.blocks import JobCard, StiffnessTakeoff
 from calcsheet.job.errors import InputError
-from calcsheet.steps.graph import STIFFNESSES
+from calcsheet.steps.fromfiles import STIFFNESSES
 
 
 def test_a_cell_shows_it_with_its_twin(shell, members_folder, monkeypatch):

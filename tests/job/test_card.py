@@ -9,7 +9,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from calcsheet.core.lateral import KINDS
-from calcsheet.job.card import Card, ModelChoice, card_of, parse_card, parse_toml
+from calcsheet.job.card import Card, card_of, parse_card, parse_toml
+from calcsheet.job.cardtables import ModelChoice
 from calcsheet.job.errors import InputError
 from calcsheet.job.wording import dotted
 from calcsheet.steps.serial import fingerprint, from_json, to_json

@@ -12,7 +12,7 @@ from calcsheet.record.equations import to_svg
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue
 from calcsheet.record.markdown import to_html
-from calcsheet.steps.graph import STIFFNESSES
+from calcsheet.steps.fromfiles import STIFFNESSES
 from calcsheet.steps.replay import replay
 from calcsheet.steps.stiffnesstakeoff import METHOD
 

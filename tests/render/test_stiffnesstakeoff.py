@@ -7,7 +7,8 @@ import re
 import pytest
 
 from calcsheet.render.registry import VIEWS
-from calcsheet.steps.graph import STIFFNESSES, Job
+from calcsheet.steps.fromfiles import STIFFNESSES
+from calcsheet.steps.graph import Job
 
 KIP, INCH = 4.4482216152605, 0.0254  # kN and m, exact by definition
 ONE = {

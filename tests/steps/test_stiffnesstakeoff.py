@@ -10,8 +10,9 @@ import pytest
 
 from calcsheet.core.sections import Material, Section
 from calcsheet.core.stiffnesstakeoff import Member, SetFactor, Takeoff
+from calcsheet.steps.fromfiles import STIFFNESSES
 from calcsheet.steps.given import inputs_of
-from calcsheet.steps.graph import STIFFNESSES, Job
+from calcsheet.steps.graph import Job
 from calcsheet.steps.replay import replay
 from calcsheet.steps.serial import from_json, to_json
 from calcsheet.steps.stiffnesstakeoff import run

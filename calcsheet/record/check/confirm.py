@@ -18,7 +18,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Finding
-from calcsheet.record.check.flexible import standing_flexibility
+from calcsheet.record.check.flexible import base_flexibility, counted_load, heights, standing_flexibility
 
 PART = "second route"
 CLOSE = 1e-6
@@ -43,6 +43,10 @@ class Sheet:
         Height of the storey below each level [m].
     flexibility : (n, n) array
         Displacement of a level under a unit force at another [m/kN].
+    load : (n,) array
+        Gravity load at and above each storey that is in the stiffness [kN].
+    moved : float
+        Movement of the base under a unit force [m/kN].
     omega : (m,) array
         Stored circular frequencies [rad/s].
     psi : (n, m) array
@@ -52,6 +56,8 @@ class Sheet:
     mass: Array
     height: Array
     flexibility: Array
+    load: Array
+    moved: float
     omega: Array
     psi: Array
 
@@ -91,11 +97,12 @@ def sheet_of(payloads: Payloads, key: str, direction: str) -> Sheet | None:
     used = next((s for s in given["stiffness"] if s["name"] == step["result"]["stiffness"]), None)
     if model is None or used is None or direction not in used["lateral"]:
         return None
-    elevation = np.array(given["elevation"], dtype=float)
     return Sheet(
         mass=np.array(given["mass"], dtype=float),
-        height=np.diff(elevation, prepend=given["base_elevation"]),
+        height=heights(given),
         flexibility=standing_flexibility(given, used["lateral"][direction], direction),
+        load=counted_load(given),
+        moved=base_flexibility(given, direction)[0],
         omega=np.array(model["modes"]["omega"], dtype=float),
         psi=np.array(model["modes"]["psi"], dtype=float),
     )
@@ -211,13 +218,17 @@ def _peaks(payloads: Payloads, key: str) -> Iterator[Finding]:
 
 
 def _first_mode(sheet: Sheet, item: Mapping[str, Any], demand: Mapping[str, Any], place: str) -> Iterator[Finding]:
-    """Γ, M*, Sa at T₁ as the demand stores it, f = ΓmψSa; its sums are the stored shears and moments."""
+    """Γ, M*, Sa at T₁ as the demand stores it, f = ΓmψSa; its sums are the stored shears and moments.
+
+    Gravity loads that are in the stiffness add their own moment, load at and above a storey times its drift.
+    """
     ordinate = float(demand["ordinate"][0])
     force = sheet.gamma[0] * sheet.mass * sheet.psi[:, 0] * ordinate
     base = sheet.gamma[0] ** 2 * ordinate
     shear = np.cumsum(force[::-1])[::-1]
-    moment = np.cumsum((shear * sheet.height)[::-1])[::-1]
-    roof = sheet.gamma[0] * sheet.psi[-1, 0] * ordinate / sheet.omega[0] ** 2
+    moved = sheet.gamma[0] * sheet.psi[:, 0] * ordinate / sheet.omega[0] ** 2
+    drift = np.diff(moved, prepend=sheet.moved * shear[0])
+    moment = np.cumsum((shear * sheet.height + sheet.load * drift)[::-1])[::-1]
     wrong = []
     checks = (
         ("ordinate", np.array(item["ordinate"], dtype=float)[:1], np.array([ordinate]), ordinate, "m/s²"),
@@ -235,7 +246,7 @@ def _first_mode(sheet: Sheet, item: Mapping[str, Any], demand: Mapping[str, Any]
         text = (
             f"{item['direction']}: first mode from first principles, M₁* = {sheet.gamma[0] ** 2:.6g} t times S_a = "
             f"{ordinate:.6g} m/s² gives V₁ = {base:.6g} kN, which its storey forces add up to within "
-            f"{abs(force.sum() / base - 1.0) if base else 0.0:.1e}; roof displacement {1000.0 * roof:.6g} mm; "
+            f"{abs(force.sum() / base - 1.0) if base else 0.0:.1e}; roof displacement {1000.0 * moved[-1]:.6g} mm; "
             "stored storey shears and moments are these"
         )
         yield Finding(PART, AGREES, text)

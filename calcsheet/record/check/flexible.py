@@ -31,21 +31,37 @@ def standing_flexibility(given: Mapping[str, Any], lateral: Mapping[str, Any], d
     direction : str
         "x" or "y".
     """
-    elevation = np.array(given["elevation"], dtype=float)
-    height = np.diff(elevation, prepend=given["base_elevation"])
-    springs = given.get("springs", {}).get(direction, {})
-    moved, turned = (0.0 if springs.get(name) is None else 1.0 / springs[name] for name in ("translation", "rocking"))
+    height, load = heights(given), counted_load(given)
+    moved, turned = base_flexibility(given, direction)
     above_base = np.append(np.cumsum(height), 0.0)
     whole: Array = np.zeros((height.size + 1, height.size + 1))
     whole[:-1, :-1] = flexibility(lateral)
     whole += moved + turned * np.outer(above_base, above_base)
-    if given.get("second_order"):
-        load = np.cumsum(np.array(given["gravity"], dtype=float)[::-1])[::-1]
+    if load.any():
         drift = np.eye(height.size, height.size + 1) - np.eye(height.size, height.size + 1, k=-1)
         drift[0, -1] = -1.0
         pushed = drift.T @ ((load / height)[:, None] * drift)
         whole = np.array(np.linalg.solve(np.eye(height.size + 1) - whole @ pushed, whole), dtype=float)
     return whole[:-1, :-1]
+
+
+def heights(given: Mapping[str, Any]) -> Array:
+    """Height of the storey below each level, (n,) [m]."""
+    return np.diff(np.array(given["elevation"], dtype=float), prepend=given["base_elevation"])
+
+
+def counted_load(given: Mapping[str, Any]) -> Array:
+    """Gravity load at and above each storey that is in the stiffness, (n,) [kN]; zero where none is."""
+    if not given.get("second_order"):
+        return np.zeros(len(given["elevation"]))
+    return np.cumsum(np.array(given["gravity"], dtype=float)[::-1])[::-1]
+
+
+def base_flexibility(given: Mapping[str, Any], direction: str) -> tuple[float, float]:
+    """Movement [m/kN] and turning [rad/kN·m] of the base under a unit force and a unit moment."""
+    springs = given.get("springs", {}).get(direction, {})
+    moved, turned = (springs.get(name) for name in ("translation", "rocking"))
+    return 1.0 / moved if moved else 0.0, 1.0 / turned if turned else 0.0
 
 
 def flexibility(lateral: Mapping[str, Any]) -> Array:
