@@ -19,7 +19,7 @@ from calcsheet.job.headings import AREA, GRAVITY, read_headings, stiffness_key
 from calcsheet.job.matrixfile import read_matrix
 from calcsheet.job.memberfile import MemberReading, read_members, taken_off
 from calcsheet.job.storeycells import StoreyCells
-from calcsheet.job.storeyreading import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading, TakenOff
 from calcsheet.job.table import TextTable
 
 TAKE_OFF = "take-off"
@@ -55,17 +55,8 @@ def read_storeys(
     """
     headings = read_headings(table, card)
     cells = StoreyCells(table, card, headings.columns)
-    messages: list[str] = []
-    if card.masses is None:
-        floors = None
-    else:
-        floors = floors or read_floors({}, card, None)
-        messages += floors.messages
-    if card.model.members is None:
-        members = None
-    else:
-        members = members or read_members({}, card, None)
-        messages += members.messages
+    with np.errstate(over="ignore"):  # what overflows is refused as infinite
+        taken, messages = _taken(cells, card, floors, members)
     problems = [
         *(CellProblem(None, key, str(error)) for key, error in headings.problems),
         *cells.problems,
@@ -73,8 +64,8 @@ def read_storeys(
     ]
     storeys = None
     if not problems:
-        with np.errstate(over="ignore"):  # what overflows is refused as infinite
-            builder = _Builder(cells, card, floors, members)
+        with np.errstate(over="ignore"):  # as above
+            builder = _Builder(cells, card, taken)
             storeys = builder.storeys(matrices or {})
             problems = builder.problems
     return StoreyReading(
@@ -88,19 +79,52 @@ def read_storeys(
         len(cells.rows) - cells.below,
         cells.foot,
         cells.numbers(),
+        taken,
     )
+
+
+def _taken(
+    cells: StoreyCells, card: Card, floors: FloorReading | None, members: MemberReading | None
+) -> tuple[dict[str, TakenOff], list[str]]:
+    """What the card takes from take-offs, by column key, also beside cells that are wrong; and what is wrong with it."""
+    taken: dict[str, TakenOff] = {}
+    messages: list[str] = []
+    unknown = np.full(len(cells.rows), np.nan)
+    if card.masses is not None:
+        floors = floors or read_floors({}, card, None)
+        messages += floors.messages
+        mass = area = unknown
+        if floors.floors is not None:
+            area = floors.floors.area
+            try:
+                mass = take_off(floors.floors).mass
+            except ModelError as error:
+                messages.append(f"mass take-off, {error}")
+        taken["mass"] = TakenOff(card.masses.source, mass[::-1])
+        if AREA not in cells.values:
+            taken[AREA] = TakenOff(card.masses.source, area[::-1])
+    if card.model.members is not None:
+        members = members or read_members({}, card, None)
+        messages += members.messages
+        storey: Mapping[str, Array] = {}
+        if members.takeoff is not None:
+            try:
+                storey = taken_off(members.takeoff, card.model.members)
+            except InputError as error:
+                messages.append(str(error))
+        for d in card.directions.analysed:
+            given = np.concatenate((unknown[: cells.below], storey[d])) if d in storey else unknown
+            taken[stiffness_key(d, None)] = TakenOff(card.model.members, given[::-1])
+    return taken, messages
 
 
 class _Builder:
     """Puts the storeys together, with the last problems that only the whole shows."""
 
-    def __init__(
-        self, cells: StoreyCells, card: Card, floors: FloorReading | None, members: MemberReading | None
-    ) -> None:
+    def __init__(self, cells: StoreyCells, card: Card, taken: Mapping[str, TakenOff]) -> None:
         self.cells = cells
         self.card = card
-        self.floors = None if floors is None else floors.floors
-        self.members = None if members is None else members.takeoff
+        self.taken = {key: found.numbers[::-1] for key, found in taken.items()}
         self.problems: list[CellProblem] = []
 
     def refuse(self, message: str, column: str | None = None) -> None:
@@ -109,11 +133,7 @@ class _Builder:
     def storeys(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
         cells, n, levels = self.cells, self.cells.below, self.cells.levels
         elevation, height = cells.heights()
-        try:
-            mass = cells.mass() if self.floors is None else take_off(self.floors).mass
-        except ModelError as error:
-            self.refuse(f"mass take-off, {error}")
-            return None
+        mass = self.taken["mass"] if "mass" in self.taken else cells.mass()
         stiffness = self.chains(n) if self.card.model.kind == CHAIN else self.matrices(levels[n:], matrices)
         if stiffness is None:
             return None
@@ -128,37 +148,24 @@ class _Builder:
             stiffness=stiffness,
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
-            given=TAKE_OFF if self.floors else "mass" if "mass" in cells.values else "weight",
+            given=TAKE_OFF if "mass" in self.taken else "mass" if "mass" in cells.values else "weight",
             gravity=cells.if_given(GRAVITY, n),
-            area=self.floors.area[n:] if self.floors and AREA not in cells.values else cells.if_given(AREA, n),
+            area=self.taken[AREA][n:] if AREA in self.taken else cells.if_given(AREA, n),
         )
 
     def chains(self, below: int) -> tuple[StiffnessSet, ...] | None:
         sets = []
-        taken = self.taken_off()
-        if self.problems:
-            return None
         for name, basis in self.card.stiffness.items():
             lateral: dict[str, Lateral] = {}
             for d in self.card.directions.analysed:
                 key = stiffness_key(d, name if basis.own else None)
                 try:
-                    storey = taken[d] if d in taken else self.cells.from_base(key)[below:]
+                    storey = (self.taken[key] if key in self.taken else self.cells.from_base(key))[below:]
                     lateral[d] = Chain(storey=storey * (basis.factor_of(d) or 1.0))
                 except ModelError as error:
                     self.refuse(f"{self.cells.table.file}, {error}", key)
             sets.append(StiffnessSet(name, basis.ground, lateral))
         return None if self.problems else tuple(sets)
-
-    def taken_off(self) -> Mapping[str, Array]:
-        """Storey stiffnesses by direction where they come from members [kN/m]."""
-        if self.members is None or self.card.model.members is None:
-            return {}
-        try:
-            return taken_off(self.members, self.card.model.members)
-        except InputError as error:
-            self.refuse(str(error))
-            return {}
 
     def matrices(self, levels: tuple[str, ...], tables: Mapping[str, TextTable]) -> tuple[StiffnessSet, ...] | None:
         flexible = self.card.model.kind == FlexibilityMatrix.kind
