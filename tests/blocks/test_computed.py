@@ -41,7 +41,11 @@ def shown(job):
 
 def test_masses_and_areas_taken_off_are_columns_and_sums_follow(floors_job):
     headings, cells, totals = shown(floors_job())
-    assert list(headings.values())[:3] == ["mass from floors.csv [t]", "floor area from floors.csv [m²]", "elevation [m]"]
+    assert list(headings.values())[:3] == [
+        "mass from floors.csv [t]",
+        "floor area from floors.csv [m²]",
+        "elevation [m]",
+    ]
     # by hand: 250·8.1/9.80665 = 206.49, 300·8.1/9.80665 = 247.79, 310·8.1/9.80665 = 256.05 t
     assert cells["=mass"] == ["206.5", "247.8", "247.8", "247.8", "256.1"]
     assert cells["=floor area"] == ["250.0", "300.0", "300.0", "300.0", "310.0"]
