@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcsheet.core.arrays import agrees
 from calcsheet.core.design import Actions, actions
 from calcsheet.steps.demand import Demand
 from calcsheet.steps.secondmodel import apart
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
+
 
 @dataclass(frozen=True)
 class ActionsOptions:
