@@ -161,12 +161,13 @@ def _copied(source: Path, folder: Path) -> None:
 
 
 def _issued(folder: Path, to: tuple[str, ...] | None, paper: Paper) -> None:
-    from rich.progress import BarColumn, Progress, TextColumn
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn
 
     from calcsheet.record.issue import issue as issue_record
     from calcsheet.record.status import UNANSWERED
 
-    columns = (TextColumn("executing"), BarColumn(30), TextColumn("cell {task.completed:.0f} of {task.total:.0f}"))
+    # the number of cells isn't known until the first one runs
+    columns = (TextColumn("executing"), BarColumn(30), TextColumn("cell"), MofNCompleteColumn(" of "))
     with Progress(*columns, transient=True, disable=not sys.stderr.isatty()) as bar:
         task = bar.add_task("cells", total=None)
         done = issue_record(
