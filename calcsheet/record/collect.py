@@ -96,8 +96,8 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
             job.attach(key, None)
     now = job.payloads()
     if "basis" in content.payloads:
-        here = None if job.files is None else job.files.basis
-        _refuse_other("the basis", to_json(here), content.payloads["basis"]["inputs"])
+        basis = None if job.files is None else job.files.basis
+        _refuse_other("the basis", to_json(basis), content.payloads["basis"]["inputs"])
     files = {
         "card": "job.toml",
         MASSES: "storeys.csv or a table of the mass take-off",
