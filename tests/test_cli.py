@@ -2,10 +2,15 @@
 
 from __future__ import annotations
 
+import contextlib
 import csv
 import datetime as dt
 import json
+import os
+import re
 import shutil
+import subprocess
+import sys
 import tomllib
 from pathlib import Path
 
@@ -117,6 +122,20 @@ def test_a_draft_for_its_cautions_says_how_to_list_them(run, folder, new_noteboo
     assert said.startswith("Issued, status DRAFT, because of cautions that need an answer: target-not-reached-x (open)")
     assert said.endswith(f"Cautions wait for an answer: `calcsheet answer {folder}` lists them.\n")
     assert "target-not-reached-y (open), finding " in run("answer", folder).stdout
+def test_issue_counts_the_cells_on_a_terminal(folder):
+    pty = pytest.importorskip("pty")
+    ours, theirs = pty.openpty()
+    command = [sys.executable, "-c", "from calcsheet.cli import main; main()", "issue", str(folder), "--to", "html"]
+    with subprocess.Popen(command, stdin=subprocess.DEVNULL, stdout=theirs, stderr=theirs) as issuing:
+        os.close(theirs)
+        said = b""
+        with contextlib.suppress(OSError):  # how Linux says that the other side has closed
+            while part := os.read(ours, 4096):
+                said += part
+    os.close(ours)
+    assert issuing.returncode == 0, said.decode()
+    assert "cell 0 of ?" in re.sub(r"\x1b\[[0-9;?]*[A-Za-z]", "", said.decode())
+    assert "Issued, status" in said.decode()
 
 
 def test_issue_on_letter(run, folder):
