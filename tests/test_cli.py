@@ -109,6 +109,16 @@ def test_issue_says_what_it_made(run, folder):
     assert "is issued already" in refused(run("issue", folder, "--to", "html"))
 
 
+def test_a_draft_for_its_cautions_says_how_to_list_them(run, folder, new_notebook):
+    cells = ("from calcsheet import *", 'job = JobCard(".")\njob', "storeys = StoreyTable(job)\nstoreys")
+    few = ("modes = ModeSolver(storeys, keep=1)\nmodes", "ParticipationSummary(modes)")
+    nbformat.write(new_notebook([*cells, *few]), folder / "calc.ipynb")
+    said = run("issue", folder, "--to", "html").stdout
+    assert said.startswith("Issued, status DRAFT, because of cautions that need an answer: target-not-reached-x (open)")
+    assert said.endswith(f"Cautions wait for an answer: `calcsheet answer {folder}` lists them.\n")
+    assert "target-not-reached-y (open), finding " in run("answer", folder).stdout
+
+
 def test_issue_on_letter(run, folder):
     assert run("issue", folder, "--to", "html", "--paper", "letter").exit_code == 0
     assert "size: letter" in (folder / "issued" / "A" / "HR-S-21-rev-A.html").read_text(encoding="utf-8")

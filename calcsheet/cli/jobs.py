@@ -133,6 +133,8 @@ def answer(
             click.echo(f"{one.key} ({one.said}), finding {one.finding}\n  {one.plain}")
         if not found:
             click.echo("No caution asks for an answer.")
+        for notice in answering.unasked(folder):
+            click.echo(f"Note: {notice}.", err=True)
         return
     if text is None or by is None:
         raise Refusal("an answer needs --text and --by")
@@ -159,11 +161,13 @@ def _copied(source: Path, folder: Path) -> None:
 
 
 def _issued(folder: Path, to: tuple[str, ...] | None, paper: Paper) -> None:
-    from rich.progress import BarColumn, Progress, TextColumn
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn
 
     from calcsheet.record.issue import issue as issue_record
+    from calcsheet.record.status import UNANSWERED
 
-    columns = (TextColumn("executing"), BarColumn(30), TextColumn("cell {task.completed:.0f} of {task.total:.0f}"))
+    # the number of cells isn't known until the first one runs
+    columns = (TextColumn("executing"), BarColumn(30), TextColumn("cell"), MofNCompleteColumn(" of "))
     with Progress(*columns, transient=True, disable=not sys.stderr.isatty()) as bar:
         task = bar.add_task("cells", total=None)
         done = issue_record(
@@ -176,5 +180,7 @@ def _issued(folder: Path, to: tuple[str, ...] | None, paper: Paper) -> None:
     click.echo(f"Issued, status {done.status}{because}:")
     for path in done.files:
         click.echo(f"  {path}")
+    if any(reason.startswith(UNANSWERED) for reason in done.reasons):
+        click.echo(f"Cautions wait for an answer: `calcsheet answer {folder}` lists them.")
     if done.note:
         click.echo(f"Note: {done.note}.", err=True)

@@ -6,7 +6,7 @@ import json
 import math
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -15,6 +15,8 @@ from calcsheet.job.errors import InputError
 FOLDER = "issued"
 LARGEST = 32 * 1024 * 1024
 """Bytes of the largest file that is read."""
+DRAFT = "DRAFT"
+"""Status of a record that nobody is to rely on."""
 
 
 @dataclass(frozen=True)
@@ -29,12 +31,15 @@ class IssuedRecord:
         Revision, and day as ISO 8601 has it, of its job card.
     record : mapping
         Its data: those of another program's file where somebody put one there, so trusted by nobody.
+    drafts : tuple of str
+        Revisions of the drafts issued after it, where a revision is held against it in their place.
     """
 
     path: Path
     revision: str
     date: str
     record: Mapping[str, Any]
+    drafts: tuple[str, ...] = ()
 
 
 def issued_records(folder: Path) -> tuple[IssuedRecord, ...]:
@@ -71,7 +76,7 @@ def issued_record(folder: Path, revision: str, against: str | None = None) -> Is
     revision : str
         The job's present revision, which is not held against itself.
     against : str, optional
-        The revision asked for; the newest other one where omitted.
+        The revision asked for; where omitted, the newest other one that is no draft, or the newest draft if all are.
 
     Returns
     -------
@@ -85,7 +90,11 @@ def issued_record(folder: Path, revision: str, against: str | None = None) -> Is
     """
     records = issued_records(folder)
     if against is None:
-        return next((r for r in reversed(records) if r.revision != revision), None)
+        others = [r for r in records if r.revision != revision]
+        firm = [i for i, r in enumerate(others) if r.record.get("status") != DRAFT]
+        if not firm:
+            return others[-1] if others else None
+        return replace(others[firm[-1]], drafts=tuple(r.revision for r in others[firm[-1] + 1 :]))
     for found in records:
         if found.revision == against:
             return found

@@ -22,7 +22,7 @@ from calcsheet.job.memberfile import MemberReading, read_members, taken_off
 from calcsheet.job.planfile import LINES, PLAN, LineRow, laterals_of, read_lines, read_plan
 from calcsheet.job.resisting import Resisting
 from calcsheet.job.storeycells import StoreyCells
-from calcsheet.job.storeyreading import StoreyReading
+from calcsheet.job.storeyreading import StoreyReading, TakenOff
 from calcsheet.job.table import TextTable
 from calcsheet.units import display
 
@@ -62,16 +62,9 @@ def read_storeys(
     headings = read_headings(table, card, ways)
     cells = StoreyCells(table, card, headings.columns, optional_stiffness(card, ways), lines_end=bool(lines))
     messages = [str(error) for error in wrong]
-    if card.masses is None:
-        floors = None
-    else:
-        floors = floors or read_floors({}, card, None)
-        messages += floors.messages
-    if card.model.members is None:
-        members = None
-    else:
-        members = members or read_members({}, card, None)
-        messages += members.messages
+    with np.errstate(over="ignore"):  # what overflows is refused as infinite
+        taken, found = _taken(cells, card, floors, members)
+    messages += found
     messages += [str(error) for error in _gravity_missing(cells)]
     problems = [
         *(CellProblem(None, key, str(error)) for key, error in headings.problems),
@@ -80,8 +73,8 @@ def read_storeys(
     ]
     storeys = None
     if not problems:
-        with np.errstate(over="ignore"):  # what overflows is refused as infinite
-            builder = _Builder(cells, card, ways, lines, floors, members)
+        with np.errstate(over="ignore"):  # as above
+            builder = _Builder(cells, card, ways, lines, taken)
             storeys = builder.storeys(beside)
             problems = builder.problems
     return StoreyReading(
@@ -96,7 +89,43 @@ def read_storeys(
         cells.foot,
         cells.numbers(),
         ways,
+        taken,
     )
+
+
+def _taken(
+    cells: StoreyCells, card: Card, floors: FloorReading | None, members: MemberReading | None
+) -> tuple[dict[str, TakenOff], list[str]]:
+    """What the card takes from take-offs, by column key, also beside cells that are wrong; and what is wrong with it."""
+    taken: dict[str, TakenOff] = {}
+    messages: list[str] = []
+    unknown = np.full(len(cells.rows), np.nan)
+    if card.masses is not None:
+        floors = floors or read_floors({}, card, None)
+        messages += floors.messages
+        mass = area = unknown
+        if floors.floors is not None:
+            area = floors.floors.area
+            try:
+                mass = take_off(floors.floors).mass
+            except ModelError as error:
+                messages.append(f"mass take-off, {error}")
+        taken["mass"] = TakenOff(card.masses.source, mass[::-1])
+        if AREA not in cells.values:
+            taken[AREA] = TakenOff(card.masses.source, area[::-1])
+    if card.model.members is not None:
+        members = members or read_members({}, card, None)
+        messages += members.messages
+        storey: Mapping[str, Array] = {}
+        if members.takeoff is not None:
+            try:
+                storey = taken_off(members.takeoff, card.model.members)
+            except InputError as error:
+                messages.append(str(error))
+        for d in card.directions.analysed:
+            given = np.concatenate((unknown[: cells.below], storey[d])) if d in storey else unknown
+            taken[stiffness_key(Chain.columns[0], d, None)] = TakenOff(card.model.members, given[::-1])
+    return taken, messages
 
 
 class _Builder:
@@ -108,15 +137,13 @@ class _Builder:
         card: Card,
         ways: Ways,
         lines: Sequence[LineRow],
-        floors: FloorReading | None,
-        members: MemberReading | None,
+        taken: Mapping[str, TakenOff],
     ) -> None:
         self.cells = cells
         self.card = card
         self.ways = ways
         self.lines = lines
-        self.floors = None if floors is None else floors.floors
-        self.members = None if members is None else members.takeoff
+        self.taken = {key: found.numbers[::-1] for key, found in taken.items()}
         self.problems: list[CellProblem] = []
 
     def refuse(self, message: str, column: str | None = None) -> None:
@@ -125,22 +152,17 @@ class _Builder:
     def storeys(self, matrices: Mapping[str, TextTable]) -> Storeys | None:
         cells, n, levels = self.cells, self.cells.below, self.cells.levels
         elevation, height = cells.heights()
-        try:
-            mass = cells.mass() if self.floors is None else take_off(self.floors).mass
-        except ModelError as error:
-            self.refuse(f"mass take-off, {error}")
-            return None
+        mass = self.taken["mass"] if "mass" in self.taken else cells.mass()
         plan = None
         if self.lines:
             plan, wrong = read_plan(matrices[PLAN], self.lines, levels[n:])
             for problem in wrong:
                 self.refuse(str(problem))
-        taken = self.taken_off()
-        if taken is None:
-            return None
 
         def column(key: str) -> Array | None:
-            return taken[key] if key in taken else cells.from_base(key)[n:] if key in cells.values else None
+            if key in self.taken:
+                return self.taken[key][n:]
+            return cells.from_base(key)[n:] if key in cells.values else None
 
         resisting = Resisting(
             self.card, self.ways, self.lines, levels[n:], height[n:], column, cells.table.file, matrices
@@ -161,24 +183,13 @@ class _Builder:
             stiffness=stiffness,
             forces=self.card.serves.forces,
             drifts=self.card.serves.drifts,
-            given=TAKE_OFF if self.floors else "mass" if "mass" in cells.values else "weight",
+            given=TAKE_OFF if "mass" in self.taken else "mass" if "mass" in cells.values else "weight",
             gravity=cells.if_given(GRAVITY, n),
-            area=self.floors.area[n:] if self.floors and AREA not in cells.values else cells.if_given(AREA, n),
+            area=self.taken[AREA][n:] if AREA in self.taken else cells.if_given(AREA, n),
             springs=_springs(self.card),
             second_order=_second_order(self.card),
             plan=plan,
         )
-
-    def taken_off(self) -> Mapping[str, Array] | None:
-        """Storey stiffnesses that come from members, by the key of the column they stand for [kN/m]; None if refused."""
-        if self.members is None or self.card.model.members is None:
-            return {}
-        try:
-            found = taken_off(self.members, self.card.model.members)
-        except InputError as error:
-            self.refuse(str(error))
-            return None
-        return {stiffness_key(Chain.columns[0], d, None): storey for d, storey in found.items()}
 
 
 def _ways(

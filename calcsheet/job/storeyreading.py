@@ -14,6 +14,22 @@ from calcsheet.job.table import TextTable
 
 
 @dataclass(frozen=True, eq=False)
+class TakenOff:
+    """What a take-off gives for a column that the storey table then doesn't have.
+
+    Parameters
+    ----------
+    file : str
+        The table of the take-off.
+    numbers : (n,) array
+        A number for each level in core units, roof first; NaN where the take-off gives none or can't be read.
+    """
+
+    file: str
+    numbers: np.ndarray
+
+
+@dataclass(frozen=True, eq=False)
 class StoreyReading:
     """What a storey table holds: every problem with it, or the storeys.
 
@@ -41,6 +57,8 @@ class StoreyReading:
         The numbers of the levels in core units, roof first, by column key; NaN where a cell is blank or wrong.
     ways : mapping of str to type
         What resists along each direction, or along each line of resistance that its columns describe.
+    taken : mapping of str to TakenOff
+        What comes from take-offs instead, by the key that its column would have.
     """
 
     table: TextTable
@@ -54,6 +72,7 @@ class StoreyReading:
     foot: float
     numbers: Mapping[str, np.ndarray]
     ways: Ways
+    taken: Mapping[str, TakenOff]
 
     @property
     def rows(self) -> tuple[tuple[str, ...], ...]:

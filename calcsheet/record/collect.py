@@ -12,7 +12,9 @@ import rfc8785
 from nbformat import NotebookNode
 
 from calcsheet.blocks.twin import FORMAT, MIME
-from calcsheet.record.errors import RecordError
+from calcsheet.job.wording import dotted
+from calcsheet.record.errors import RecordError, StaleError
+from calcsheet.record.fingerprints import sparse
 from calcsheet.record.own import printable
 from calcsheet.record.parts import Own, Part, Shown, Words
 from calcsheet.render.registry import VIEWS
@@ -68,7 +70,7 @@ def collect(notebook: NotebookNode) -> Content:
 
 
 def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> None:
-    """Refuse content whose inputs are not those of the job folder.
+    """Refuse content whose inputs are not those of the job folder, empty entries aside.
 
     Parameters
     ----------
@@ -81,20 +83,21 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
 
     Raises
     ------
+    StaleError
+        Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere, and the
+        first key that differs.
     RecordError
-        Naming the file that has changed since the notebook was run, or that the notebook took from elsewhere.
+        A file of the folder that can't be read.
     """
     job = Job(folder.resolve())
+    refuse_unfinished("card", job.payload("card"))
     for key in (MASSES, STIFFNESSES):
         if key in content.payloads:
             job.attach(key, None)
     now = job.payloads()
     if "basis" in content.payloads:
-        here = None if job.files is None else job.files.basis
-        if fingerprint(to_json(here)) != fingerprint(content.payloads["basis"]["inputs"]):
-            raise RecordError(
-                "the notebook is stale: the basis in this folder isn't what it shows; run all its cells and save it"
-            )
+        basis = None if job.files is None else job.files.basis
+        _refuse_other("the basis", to_json(basis), content.payloads["basis"]["inputs"])
     files = {
         "card": "job.toml",
         MASSES: "storeys.csv or a table of the mass take-off",
@@ -102,13 +105,37 @@ def refuse_stale(content: Content, folder: Path, but: Collection[str] = ()) -> N
         "storeys": "storeys.csv or job.toml",
     }
     for key in (key for key in files if key in content.payloads):
-        if now[key]["state"] != "ok":
-            raise RecordError(f"{STEPS[key].title} is {now[key]['state']}: {now[key]['why']}")
-        compared = ({k: v for k, v in p["inputs"].items() if k not in but} for p in (now[key], content.payloads[key]))
-        if len({fingerprint(inputs) for inputs in compared}) > 1:
-            raise RecordError(
-                f"the notebook is stale: {files[key]} in this folder isn't what it shows; run all its cells and save it"
-            )
+        refuse_unfinished(key, now[key])
+        here, shown = (
+            {k: v for k, v in p["inputs"].items() if k not in but} for p in (now[key], content.payloads[key])
+        )
+        _refuse_other(files[key], here, shown)
+
+
+def refuse_unfinished(key: str, payload: Payload) -> None:
+    """Refuse a step that is refused or waiting, for its own reason (RecordError)."""
+    if payload["state"] != "ok":
+        raise RecordError(f"{STEPS[key].title} is {payload['state']}: {payload['why']}")
+
+
+def _refuse_other(what: str, here: Any, shown: Any) -> None:
+    """Refuse inputs that differ by more than empty entries, which a later version may have added."""
+    here, shown = sparse(here), sparse(shown)
+    if fingerprint(here) == fingerprint(shown):
+        return
+    at = dotted(_first_difference(here, shown))
+    where = f" ({at})" if at else ""
+    raise StaleError(
+        f"the notebook is stale: {what} in this folder isn't what it shows{where}", "run all its cells and save it"
+    )
+
+
+def _first_difference(one: Any, other: Any) -> tuple[str, ...]:
+    """Keys that lead to the first difference of two inputs, down to what is no table."""
+    if not (isinstance(one, Mapping) and isinstance(other, Mapping)):
+        return ()
+    key = next(k for k in sorted({*one, *other}) if fingerprint(one.get(k)) != fingerprint(other.get(k)))
+    return (key, *_first_difference(one.get(key), other.get(key)))
 
 
 def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
@@ -119,8 +146,8 @@ def _payloads(notebook: NotebookNode) -> Mapping[str, Payload]:
             raise RecordError(f"the notebook was run by another version of calcsheet (twin format {data['format']})")
         found = data.get("payloads", found)
     if found is None:
-        raise RecordError(
-            "the notebook shows no JobCard, or was not run; show the job card in a cell and run all cells"
+        raise StaleError(
+            "the notebook shows no JobCard, or was not run", "show the job card in a cell and run all cells"
         )
     kinds = list(STEPS)
     unknown = {payload["kind"] for payload in found.values()} - {*kinds}
@@ -178,7 +205,7 @@ def _shown(number: int, cell: NotebookNode, data: Mapping[str, Any], payloads: M
     if data["source"] != fingerprint(cell.source.rstrip("\n")):
         raise RecordError(f"the notebook is stale: cell {number} was changed and not run again")
     if data["fingerprint"] != fingerprint(VIEWS[data["view"]].covers(payloads, data["step"])):
-        raise RecordError(
-            f"the notebook is stale: cell {number} shows older results than the job card holds; run all cells"
+        raise StaleError(
+            f"the notebook is stale: cell {number} shows older results than the job card holds", "run all cells"
         )
     return Shown(data["view"], data["step"], data["options"])

@@ -24,6 +24,7 @@ from calcsheet.record.register import note_of
 from calcsheet.record.status import reasons
 from calcsheet.record.tables import FOLDER as TABLES
 from calcsheet.record.tables import INDEX, csv_files
+from calcsheet.render.answers import unasked_words
 from calcsheet.steps.compare import EARLIER
 from calcsheet.steps.earlier import earlier_payload
 from calcsheet.steps.graph import Job
@@ -52,7 +53,7 @@ class Issued:
     reasons : tuple of str
         What keeps it a draft.
     note : str
-        What could not be made and the remedy; empty where nothing is missing.
+        What could not be made and the remedy, and answers that no caution asks for; empty where there is neither.
     """
 
     folder: Path
@@ -117,7 +118,7 @@ def issue(
     if with_tables:
         files |= {f"{TABLES}/{name}": table for name, table in csv_files(html_of(record), record).items()}
     made = tuple(path for path in placed(target, files) if path.parent == target or path.name == INDEX)
-    note = "; ".join(filter(None, (note, note_of(folder))))
+    note = "; ".join(filter(None, (note, note_of(folder), *unasked_words(record["payloads"]))))
     strange = missing_characters(json.dumps(record, ensure_ascii=False))
     if strange:
         lacking = f"no font of the record has {' '.join(strange)}: they print only where the system has one"

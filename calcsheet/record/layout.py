@@ -30,6 +30,7 @@ NOT_PRINTING = (
             "place",
             "recordfile",
             "register",
+            "rules",
             "schema",
             "sign",
             "strictjson",

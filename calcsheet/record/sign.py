@@ -21,9 +21,9 @@ from calcsheet.record.opened import opened
 from calcsheet.record.pdf import FULL, NoEngine, choose_engine
 from calcsheet.record.place import placed_beside
 from calcsheet.record.register import note_of
+from calcsheet.record.rules import asked_of, why_not
 from calcsheet.record.signature import signature
-from calcsheet.record.status import APPROVED_ROLE, CHECKED_ROLE, PREPARED, ROLES, held, open_comments, valid
-from calcsheet.render.answers import raised
+from calcsheet.record.status import APPROVED_ROLE, CHECKED_ROLE, ROLES, held, open_comments, valid
 from calcsheet.steps.serial import from_json, to_json
 
 ALL = "all"
@@ -87,10 +87,15 @@ def sign(
         raise RecordError(f"{path.name} can't be signed: it does not agree with itself; `calcsheet check` says where")
     record = _with_comments(opened(path), path)
     keys = _agreed(record, role, tuple(agree))
-    _refuse(record, role, name, registration)
     who = {"name": name, "initials": initials, "qualification": qualification, "registration": registration}
-    day = (date or datetime.date.today()).isoformat()
-    made = signature(record, role, **who, date=day, scope=scope, remark=remark, agreed=keys)
+    day = date or datetime.date.today()
+    if day > datetime.date.today():
+        raise RecordError(f"date {day.isoformat()}; must not be after today")
+    if not name.strip():
+        raise RecordError("name: got a blank; must be the signer's name")
+    made = signature(record, role, **who, date=day.isoformat(), scope=scope, remark=remark, agreed=keys)
+    if why := why_not(record, tuple(valid(record).values()), made) or _not_yet(record, role):
+        raise RecordError(why)
     new = settled({**record, "signatures": [*record["signatures"], made]})
     kinds, note = _kinds(path, new)
     stem = f"{SIGNED.sub('', path.stem)}-{role}"
@@ -113,53 +118,24 @@ def _with_comments(record: Mapping[str, Any], path: Path) -> dict[str, Any]:
 
 
 def _agreed(record: Mapping[str, Any], role: str, agree: tuple[str, ...]) -> tuple[str, ...]:
-    keys = [one.key for one in raised(record["payloads"]) if one.caution["answer"]]
+    keys = asked_of(record)
     if agree and role != CHECKED_ROLE:
         raise RecordError(f"only who checks agrees to answers; leave --agree out for role {role}")
-    given = keys if agree == (ALL,) else list(agree)
-    if strange := [key for key in given if key not in keys]:
-        raise RecordError(
-            f"no caution that needs an answer is called {', '.join(strange)}; there are {', '.join(keys)}"
-        )
-    if role == CHECKED_ROLE and (left := [key for key in keys if key not in given]):
-        raise RecordError(
-            f"answers to cautions that the checker has yet to agree to: {', '.join(left)}; --agree KEY each, or --agree all"
-        )
-    return tuple(given)
+    if agree == (ALL,):
+        return keys
+    if strange := [key for key in agree if key not in keys]:
+        there = f"there are {', '.join(keys)}" if keys else "there are none"
+        raise RecordError(f"no caution that needs an answer is called {', '.join(strange)}; {there}")
+    return agree
 
 
-def _refuse(record: Mapping[str, Any], role: str, name: str, registration: str) -> None:
-    signed, people = valid(record), record["payloads"]["card"]["inputs"]["people"]
-    if not name.strip():
-        raise RecordError("name: got a blank; must be the signer's name")
-    if role in signed:
-        raise RecordError(f"it is signed already: {role} by {signed[role]['name']}; the next revision is signed anew")
-    before = ROLES[: ROLES.index(role)]
-    if missing := [other for other in before if other not in signed]:
-        raise RecordError(f"out of order: {role} comes after {missing[0]}, which nobody has signed")
+def _not_yet(record: Mapping[str, Any], role: str) -> str:
+    """Why a record can't be signed as it stands: a draft beyond its missing signature, or comments left open."""
     if because := held(record):
-        raise RecordError(f"it is a draft: {'; '.join(because)}")
-    author = signed.get(PREPARED)
-    if (
-        role == CHECKED_ROLE
-        and author
-        and not people.get("same_person_may_check")
-        and _same(author, name, registration)
-    ):
-        raise RecordError(
-            f"{name} prepared it; the checker must be another person (people.same_person_may_check in job.toml)"
-        )
+        return f"it is a draft: {'; '.join(because)}"
     if role == APPROVED_ROLE and (left := open_comments(record)):
-        raise RecordError(f"open comments: {', '.join(str(c['number']) for c in left)}; close them before approval")
-
-
-def _same(author: Mapping[str, Any], name: str, registration: str) -> bool:
-    def plain(text: str) -> str:
-        return " ".join(text.split()).casefold()
-
-    return plain(author["name"]) == plain(name) or bool(
-        registration.strip() and plain(author["registration"]) == plain(registration)
-    )
+        return f"open comments: {', '.join(str(c['number']) for c in left)}; close them before approval"
+    return ""
 
 
 def _kinds(path: Path, record: Mapping[str, Any]) -> tuple[list[str], str]:

@@ -14,6 +14,7 @@ from calcsheet.steps.step import Payload
 DRAFT, FOR_CHECKING, CHECKED, APPROVED = "DRAFT", "FOR CHECKING", "CHECKED", "APPROVED"
 ROLES = PREPARED, CHECKED_ROLE, APPROVED_ROLE = "prepared", "checked", "approved"
 NOT_SIGNED = "not signed by who prepared it: people.prepared has no date"
+UNANSWERED = "cautions that need an answer"
 TEMPLATE_TEXT = re.compile(r"Project name|Name of the engineer|0000-S-001|Say (what|where|which|why)\b.*", re.DOTALL)
 """A text of a new job's card that waits for the engineer's own."""
 
@@ -34,7 +35,7 @@ def held_back(payloads: Mapping[str, Payload], words: Iterable[str] = ()) -> tup
         reasons.append(f"evidence beyond its limit: {'; '.join(beyond)}")
     unanswered = [f"{one.key} ({one.said})" for one in raised(payloads) if one.waits]
     if unanswered:
-        reasons.append(f"cautions that need an answer: {', '.join(unanswered)}")
+        reasons.append(f"{UNANSWERED}: {', '.join(unanswered)}")
     left = [*_left_in_card(card), *_left_in_words(words)]
     if left:
         reasons.append(f"texts of the template: {', '.join(left)}")

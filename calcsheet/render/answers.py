@@ -6,6 +6,7 @@ An answer counts where it has a text, a name and a date, and was given to the fi
 from __future__ import annotations
 
 import datetime as dt
+import difflib
 import hashlib
 import re
 from collections.abc import Mapping
@@ -116,6 +117,21 @@ def unasked(payloads: Mapping[str, Payload]) -> tuple[str, ...]:
     """Keys of the job's answers that none of its cautions has."""
     keys = {one.key for one in raised(payloads)}
     return tuple(key for key in payloads["card"]["inputs"]["answers"] if key not in keys)
+
+
+def unasked_words(payloads: Mapping[str, Payload]) -> tuple[str, ...]:
+    """A clause for each answer that no caution asks for, with the most like key of a caution that has no answer."""
+    answers = payloads["card"]["inputs"]["answers"]
+    free = [one.key for one in raised(payloads) if one.key not in answers]
+    said = []
+    for key in unasked(payloads):
+        nearest = "".join(f"; the nearest that has no answer is {dotted([k])}" for k in _nearest(key, free))
+        said.append(f"{FILE}, {dotted(['answers', key])}: no caution has this key{nearest}")
+    return tuple(said)
+
+
+def _nearest(key: str, keys: list[str]) -> list[str]:
+    return difflib.get_close_matches(key, keys, n=1)
 
 
 def answer_to(

@@ -46,13 +46,15 @@ def render(payloads: Mapping[str, Payload], key: str, options: Mapping[str, Any]
 
 def _against(earlier: Earlier) -> str:
     signed = f" ({escape('; '.join(earlier.signatures))})" if earlier.signatures else ""
+    names = escape(", ".join(earlier.drafts))
+    after = f", passing over draft{'s' if len(earlier.drafts) > 1 else ''} {names} issued after it" if names else ""
     prints = ", ".join(
         f"{escape(name)} <code>{escape(earlier.fingerprints[name][:SHORT])}</code>"
         for name in ("inputs", "results")
         if name in earlier.fingerprints
     )
     return (
-        f"<p>Against revision {escape(earlier.revision)} of {escape(earlier.date)}, {escape(earlier.status)}{signed}"
+        f"<p>Against revision {escape(earlier.revision)} of {escape(earlier.date)}, {escape(earlier.status)}{signed}{after}"
         f"{f'; its fingerprints: {prints}' if prints else ''}.</p>"
     )
 

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 from calcsheet.core.design import Actions, actions
 from calcsheet.steps.demand import Demand
+from calcsheet.steps.secondmodel import apart
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
 
 
@@ -40,6 +41,12 @@ def run(options: ActionsOptions, basis: Done, demand: Done, peaks: Done, drift: 
         found.append(result)
         lines += _lines(result, at)
         cautions += _cautions(result, at)
+    cautions += apart(basis.inputs, "weight", {"": Number(found[0].weight, "weight", "result/directions/0/weight")})
+    shears = {
+        item.direction: Number(item.design_base_shear, "force", f"result/directions/{i}/design_base_shear")
+        for i, item in enumerate(found)
+    }
+    cautions += apart(basis.inputs, "base shear", shears)
     return Outcome(ActionsResult(tuple(found)), tuple(lines), tuple(cautions))
 
 

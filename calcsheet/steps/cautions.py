@@ -285,6 +285,10 @@ CAUTIONS: Mapping[str, Why] = {
         "A model softer than the empirical period supposes, or one with little mass in its first mode, gives low forces.",
         "Masses, stiffnesses and the modes kept are looked at again; many engineers design for the larger of both.",
     ),
+    "second-model-differs": Why(
+        "Two models of one building that disagree cannot both be right, and the difference may be an error in either.",
+        "Masses, stiffnesses and supports of both are compared until the difference is explained, or either is corrected.",
+    ),
     # ---- earlier issue
     "lapsed-signatures": Why(
         "A signature speaks for the numbers that were signed, not for those that replaced them.",

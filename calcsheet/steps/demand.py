@@ -14,6 +14,7 @@ from calcsheet.core.model import models_of
 from calcsheet.core.participation import Participation
 from calcsheet.core.response import facts_of
 from calcsheet.steps.relations import line_of, numbered
+from calcsheet.steps.secondmodel import apart
 from calcsheet.steps.step import Caution, Done, Line, Number, Outcome, Step
 
 DRAWN = 160
@@ -110,6 +111,11 @@ def run(options: DemandOptions, storeys: Done, modes: Done, parts: Done, basis: 
             found.append(demand)
             lines += _lines(demand, at)
             cautions += _cautions(demand, given.edition, at)
+    periods = {
+        d.direction: Number(d.facts.period, "period", f"result/directions/{i}/facts/period")
+        for i, d in enumerate(found)
+    }
+    cautions += apart(given, "period", periods)
     return Outcome(DemandResult(tuple(found)), tuple(lines), tuple(cautions))
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 import numpy as np
@@ -136,9 +137,20 @@ def _cautions(item: Drifts, levels: tuple[str, ...], at: str) -> list[Caution]:
             cautions.append(Caution("second-order", text, (number,), answer=asked, subject=d))
     for i, screen in enumerate(item.screens):
         if screen.verdict == "exceeds":
-            text = f"Irregularity in {d}, {screen.name}: {screen.text}. {screen.consequence} ({screen.clause})."
+            found, follows = _named(screen.text, levels), screen.consequence[:1].upper() + screen.consequence[1:]
+            text = f"Irregularity in {d}, {screen.name}: {found}. {follows} ({screen.clause})."
             cautions.append(Caution("screen", plain(text), answer=True, subject=f"{d}-{i + 1}"))
     return cautions + _open_screens(item)
+
+
+def _named(text: str, levels: tuple[str, ...]) -> str:
+    """A screen's text with storeys and levels by their names in the place of their numbers from the base."""
+
+    def names(match: re.Match[str]) -> str:
+        named = ", ".join(f'"{levels[int(i) - 1]}"' for i in match[2].split(", "))
+        return f"{match[1]} below {named}" if match[1].startswith("storey") else f"{match[1]} {named}"
+
+    return re.sub(r"((?:storey|level)s?) (\d+(?:, \d+)*) from the base", names, text)
 
 
 def _open_screens(item: Drifts) -> list[Caution]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -35,6 +35,8 @@ class Earlier:
         Who signed it, such as "checked by A. Name, 2026-01-31".
     facts : Facts
         What can be said of it.
+    drafts : tuple of str
+        Revisions of the drafts issued after it.
     """
 
     revision: str
@@ -43,6 +45,7 @@ class Earlier:
     fingerprints: Mapping[str, str]
     signatures: tuple[str, ...]
     facts: Facts
+    drafts: tuple[str, ...] = ()
 
 
 NOTHING = Earlier("", "", "", {}, (), Facts((), (), (), ()))
@@ -115,7 +118,7 @@ def last_issued(folder: Path, revision: str, against: str | None = None) -> Earl
     Arguments and errors are those of `calcsheet.job.issued.issued_record`.
     """
     found = issued_record(folder, revision, against)
-    return NOTHING if found is None else earlier_of(found.record, found.path.name)
+    return NOTHING if found is None else replace(earlier_of(found.record, found.path.name), drafts=found.drafts)
 
 
 def earlier_payload(folder: Path, revision: str) -> Payload | None:

@@ -120,7 +120,7 @@ def _participation(result: Result) -> Iterator[Headline]:
         )
         if needed is not None:
             yield Headline(f"modes needed/{d}", f"Modes for the target share in {d}", "count", needed, f"{at}/needed")
-        label, reached = f"Share of the mass that they reach in {d}", part["cumulative"][last]
+        label, reached = f"Share of the mass by the modes that reach the target in {d}", part["cumulative"][last]
         if needed is None:
             label = f"Share of the mass that all modes kept reach in {d}"
         yield Headline(f"share reached/{d}", label, "share", reached, f"{at}/cumulative/{last}")
@@ -231,11 +231,17 @@ def _about_drift(payload: Payload, payloads: Payloads) -> Iterator[Conclusion]:
         verdict = "not assessed" if second is None else second["verdict"]
         yield Conclusion(f"second order/{d}", f"Second order, {d}", verdict)
         if second is not None:
-            amplified = "amplified" if max(second["factor"]) > 1.0 else "ignored"
-            yield Conclusion(f"amplified/{d}", f"Second-order effects, {d}", amplified)
+            yield Conclusion(f"amplified/{d}", f"Second-order effects, {d}", _effects(second))
         for screen in item["screens"]:
             name = screen["name"]
             yield Conclusion(f"screen/{d}/{name}", f"Irregularity in {d}: {name}", screen["verdict"])
+
+
+def _effects(second: Result) -> str:
+    """What becomes of second-order effects; a building beyond the edition's limit is redesigned, whatever its factor."""
+    if second["verdict"] == "exceeds":
+        return "to be redesigned"
+    return "amplified" if max(second["factor"]) > 1.0 else "ignored"
 
 
 def _about_actions(payload: Payload, payloads: Payloads) -> Iterator[Conclusion]:

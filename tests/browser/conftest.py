@@ -193,6 +193,7 @@ def lab(tmp_path_factory: pytest.TempPathFactory) -> Iterator[Lab]:
         port = probe.getsockname()[1]
     environment = os.environ | {
         "HOME": str(home),
+        "PATH": os.pathsep.join((str(Path(sys.executable).parent), os.environ["PATH"])),  # as where it is activated
         "IPYTHONDIR": str(home),
         "JUPYTER_CONFIG_DIR": str(home),
         "JUPYTER_DATA_DIR": str(home),

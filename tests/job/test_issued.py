@@ -46,6 +46,20 @@ def test_the_order_is_by_date_then_by_revision(tmp_path, issue):
     assert issued_record(tmp_path, "A", against="A").revision == "A"
 
 
+def test_a_draft_is_held_against_only_where_nothing_else_is_issued(tmp_path, issue):
+    issue("0", "2026-03-01", status="DRAFT")
+    issue("1", "2026-03-02", status="DRAFT")
+    assert (issued_record(tmp_path, "2").revision, issued_record(tmp_path, "2").drafts) == ("1", ())
+    issue("A", "2026-04-01", status="CHECKED")
+    issue("B", "2026-05-01", status="DRAFT")
+    issue("C", "2026-06-01", status="DRAFT")
+    found = issued_record(tmp_path, "D")
+    assert (found.revision, found.drafts) == ("A", ("B", "C"))
+    assert issued_record(tmp_path, "C").drafts == ("B",)  # the job's own revision is none of them
+    asked = issued_record(tmp_path, "D", against="B")
+    assert (asked.revision, asked.drafts) == ("B", ())
+
+
 def test_names_in_natural_order():
     order = ["0", "2", "9", "10", "10a", "A", "b", "C2", "C10"]
     assert sorted(reversed(order), key=natural) == order

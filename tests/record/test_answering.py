@@ -12,7 +12,7 @@ from calcsheet.cli import main
 from calcsheet.record.answering import answer, asked
 from calcsheet.record.collect import collect
 from calcsheet.record.errors import RecordError
-from calcsheet.record.issue import notebook_of
+from calcsheet.record.issue import issue, notebook_of
 
 CELLS = (
     "from calcsheet import *",
@@ -63,6 +63,7 @@ def test_a_notebook_of_older_inputs_is_stale(folder):
     found = run(folder, X, "--text", "A first look.", "--by", "O. Quist")
     assert found.exit_code == 2
     assert "the notebook is stale" in found.stderr
+    assert "; run all cells of calc.ipynb and save it, or issue" in found.stderr
     assert "[answers." not in (folder / "job.toml").read_text(encoding="utf-8")
 
 
@@ -80,6 +81,69 @@ def test_the_record_after_answers_in_the_notebook(static, in_folder):
     assert [one.state for one in asked(in_folder)] == ["answered", "answered"]
     content = collect(notebook_of(in_folder))
     assert set(content.payloads["card"]["inputs"]["answers"]) == {X, Y}
+
+
+@pytest.fixture
+def issued(quick_kernel, new_notebook, in_folder):
+    """A job whose notebook nobody but the program has run."""
+    nbformat.write(new_notebook(CELLS), in_folder / "calc.ipynb")
+    issue(in_folder, to=["html"])
+    return in_folder
+
+
+def test_after_issuing_alone_the_record_raises_them(issued):
+    assert [(one.key, one.state) for one in asked(issued)] == [(X, "open"), (Y, "open")]
+    assert answer(issued, X, "A first look.", "O. Quist").state == "answered"
+    assert [one.state for one in asked(issued)] == ["answered", "open"]
+    card = issued / "job.toml"
+    card.write_text(card.read_text(encoding="utf-8").replace("Remy Aalto", "Remi Aalto"), encoding="utf-8")
+    assert [one.state for one in asked(issued)] == ["answered", "open"]
+
+
+@pytest.mark.parametrize(
+    ("file", "old", "new"),
+    [
+        ("job.toml", 'revision = "A"', 'revision = "B"'),
+        ("job.toml", "Heron Row", "Heron Lane"),
+        ("storeys.csv", "141.5", "151.5"),
+    ],
+)
+def test_a_record_of_other_inputs_raises_none(issued, file, old, new):
+    path = issued / file
+    text = path.read_text(encoding="utf-8")
+    assert old in text
+    path.write_text(text.replace(old, new), encoding="utf-8")
+    with pytest.raises(RecordError) as caught:
+        asked(issued)
+    assert str(caught.value) == (
+        "the notebook shows no JobCard, or was not run; run all cells of calc.ipynb and save it, or issue"
+    )
+
+
+def test_a_cell_changed_since_it_was_run_is_for_no_record_to_answer(issued, static):
+    notebook = static.executed(CELLS)
+    notebook.cells[3].source = notebook.cells[3].source.replace("keep=1", "keep=2")
+    nbformat.write(notebook, issued / "calc.ipynb")
+    with pytest.raises(RecordError, match=r"cell 4 was changed and not run again"):
+        asked(issued)
+
+
+def test_a_wrong_card_is_the_cause_that_is_named(folder, new_notebook):
+    card = folder / "job.toml"
+    card.write_text(card.read_text(encoding="utf-8").replace('system = "SI"', 'system = "XY"'), encoding="utf-8")
+    assert 'Job card is refused: job.toml, units.system: got "XY"' in run(folder).stderr
+    nbformat.write(new_notebook(CELLS), folder / "calc.ipynb")
+    assert 'Job card is refused: job.toml, units.system: got "XY"' in run(folder).stderr
+
+
+def test_a_mistyped_key_is_told_the_nearest(folder):
+    card = folder / "job.toml"
+    text = card.read_text(encoding="utf-8")
+    card.write_text(text + '[answers."target-not-reachd-x"]\ntext = "Seen."\n', encoding="utf-8")
+    assert run(folder).stderr == (
+        f"Note: job.toml, answers.target-not-reachd-x: no caution has this key; "
+        f"the nearest that has no answer is {X}.\n"
+    )
 
 
 @pytest.mark.parametrize(

@@ -10,8 +10,8 @@ import nbformat
 import pytest
 
 from calcsheet.blocks.twin import MIME
-from calcsheet.record.collect import Own, Shown, Words, collect, refuse_stale
-from calcsheet.record.errors import RecordError
+from calcsheet.record.collect import Content, Own, Shown, Words, collect, refuse_stale
+from calcsheet.record.errors import RecordError, StaleError
 
 
 @pytest.fixture
@@ -167,4 +167,26 @@ def test_files_that_changed_since_are_named(notebook, in_folder):
         refuse_stale(content, in_folder)
     os.remove(card)
     with pytest.raises(RecordError, match=r"Job card is refused: no job\.toml in"):
+        refuse_stale(content, in_folder)
+
+
+def test_empty_entries_of_another_version_are_no_change(notebook, in_folder):
+    content = collect(notebook)
+    given = content.payloads["card"]["inputs"]
+    later = given | {"imports": {}, "later": {"floors": {}, "storeys": []}, "people": given["people"] | {"seen": None}}
+    refuse_stale(Content((), {**content.payloads, "card": content.payloads["card"] | {"inputs": later}}), in_folder)
+    later["later"] = {"floors": {"a": 1}}
+    with pytest.raises(StaleError, match=r"job\.toml in this folder isn't what it shows \(later\); run all its cells"):
+        refuse_stale(Content((), {**content.payloads, "card": content.payloads["card"] | {"inputs": later}}), in_folder)
+
+
+def test_a_wrong_card_is_named_before_what_follows_from_it(notebook, in_folder):
+    content = collect(notebook)
+    basis = {"kind": "basis", "state": "ok", "inputs": {"system": "any"}}
+    content = Content(content.parts, {**content.payloads, "basis": basis})
+    with pytest.raises(StaleError, match="the basis in this folder isn't what it shows"):
+        refuse_stale(content, in_folder)
+    card = in_folder / "job.toml"
+    card.write_text(card.read_text().replace('system = "SI"', 'system = "XY"'))
+    with pytest.raises(RecordError, match=r"Job card is refused: job\.toml, units\.system: got \"XY\""):
         refuse_stale(content, in_folder)

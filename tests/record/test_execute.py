@@ -45,8 +45,8 @@ def test_the_template_runs_as_it_is(tmp_path, job_folder):
         "modes",
         "mode plot",
         "participation",
-        "cautions",
         "what changed",
+        "cautions",
     }
     code = sum(cell.cell_type == "code" for cell in notebook.cells)
     assert told == [(i, code) for i in range(1, code + 1)]

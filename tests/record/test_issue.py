@@ -184,12 +184,18 @@ def test_a_notebook_that_leaves_a_wrong_row_gives_no_record(folder, new_notebook
     assert left(folder) == []
 
 
+def test_an_answer_that_no_caution_asks_for_is_noted(folder):
+    card = folder / "job.toml"
+    card.write_text(card.read_text(encoding="utf-8") + '[answers.hunch]\ntext = "Seen."\n', encoding="utf-8")
+    assert issue(folder, to=["html"]).note == "job.toml, answers.hunch: no caution has this key"
+
+
 def test_a_notebook_of_another_job_gives_no_record(folder, job_folder, new_notebook, calculation):
     other = job_folder([('number = "HR/S 21"', 'number = "OTHER"')], name="other")
     elsewhere = [s.replace('JobCard(".")', f"JobCard({str(other)!r})") for s in calculation]
     nbformat.write(new_notebook(elsewhere), folder / "calc.ipynb")
     assert refusal(folder) == (
-        "the notebook is stale: job.toml in this folder isn't what it shows; run all its cells and save it"
+        "the notebook is stale: job.toml in this folder isn't what it shows (job.number); run all its cells and save it"
     )
     assert left(folder) == []
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import datetime as dt
 import json
 
 import nbformat
@@ -10,8 +11,11 @@ import pytest
 from calcsheet.job.comment import Named, closed, raised
 from calcsheet.job.comments import edited
 from calcsheet.job.errors import InputError
+from calcsheet.record.check.report import checked
+from calcsheet.record.document import settled
 from calcsheet.record.errors import RecordError
 from calcsheet.record.issue import issue
+from calcsheet.record.rules import same_person
 from calcsheet.record.sign import sign
 
 CHECKER = {"name": "Remy Aalto", "registration": "RA-7"}
@@ -135,3 +139,50 @@ def test_the_checker_agrees_to_each_answer(issued, monkeypatch):
     unanswered = issued(('ground = "cracked beams"', 'ground = ""'))
     (caution,) = [c for p in data(unanswered)["payloads"].values() for c in p["cautions"] if c["kind"] == "no-ground"]
     assert caution["subject"] == "cracked"
+
+
+@pytest.mark.parametrize(
+    ("role", "who", "said"),
+    [
+        ("checked", {"name": "O. Quist"}, "prepared it; the checker must be another person"),
+        ("checked", {"name": "Remy Aalto", "date": dt.date(2026, 3, 8)}, "must not be before 2026-03-09"),
+        ("checked", {"name": "Remy Aalto", "date": dt.date(2999, 1, 1)}, "must not be after today"),
+        ("checked", {"name": " "}, "must be the signer's name"),
+    ],
+    ids=["initial", "before", "after", "blank"],
+)
+def test_who_and_when_are_held_to_the_rules(issued, role, who, said):
+    assert said in refusal(issued(), role, agree=["all"], **who)
+
+
+def test_who_prepared_it_does_not_approve_it(issued):
+    one = sign(issued(), "checked", **CHECKER, agree=["all"])
+    assert "the approver must be another person" in refusal(one.files[0], "approved", name="Odile Quist")
+
+
+@pytest.mark.parametrize(
+    "forged",
+    [
+        {"name": "Odile Quist", "registration": ""},
+        {"date": "1900-01-01"},
+        {"name": " "},
+        {"role": "prepared"},
+    ],
+    ids=["originator", "date", "blank", "role"],
+)
+def test_a_signature_changed_with_its_fingerprint_is_found(issued, forged):
+    one = sign(issued(), "checked", **CHECKER, agree=["all"])
+    path = one.files[0].with_suffix(".json")
+    record = json.loads(path.read_text(encoding="utf-8"))
+    assert not checked(path).differs
+    record["signatures"][1] |= forged
+    path.write_text(json.dumps(settled(record)), encoding="utf-8")
+    found = [str(f) for f in checked(path).findings if f.verdict == "differs"]
+    assert any("breaks the rules of signing" in text for text in found)
+
+
+def test_a_brother_is_another_person():
+    one = {"name": "Ines Brandvik", "registration": "SE 1"}
+    assert not same_person(one, {"name": "Ivar Brandvik", "registration": "SE 2"})
+    assert same_person(one, {"name": "I. Brandvik", "registration": ""})
+    assert same_person(one, {"name": "Somebody Else", "registration": "se 1"})

@@ -9,7 +9,7 @@ from hashlib import sha256
 import pytest
 
 from calcsheet.job.errors import InputError
-from calcsheet.render.answers import answer_to, finding, raised, unasked
+from calcsheet.render.answers import answer_to, finding, raised, unasked, unasked_words
 
 DAY = dt.date(2026, 3, 9)
 DRIFT = {
@@ -77,6 +77,16 @@ def test_a_step_of_another_name_has_keys_of_its_own():
 def test_answers_that_no_caution_asks_for():
     answers = {"drift-exceeds-x": answer(), "hunch": answer(), "drift-exceeds-y": answer()}
     assert unasked(job(DRIFT, answers=answers)) == ("hunch", "drift-exceeds-y")
+    assert unasked_words(job(DRIFT, answers=answers)) == (
+        "job.toml, answers.hunch: no caution has this key",
+        "job.toml, answers.drift-exceeds-y: no caution has this key",
+    )
+
+
+def test_a_mistyped_key_is_told_the_nearest_that_waits():
+    assert unasked_words(job(DRIFT, answers={"drift-exeeds-x": answer()})) == (
+        "job.toml, answers.drift-exeeds-x: no caution has this key; the nearest that has no answer is drift-exceeds-x",
+    )
 
 
 def test_an_answer_to_what_is_found_now():

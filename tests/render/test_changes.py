@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import re
+from dataclasses import replace
 
 import pytest
 
@@ -182,6 +183,21 @@ def test_texts_stay_texts(demand_job, shown, document):
     assert {tag for tag, _ in seen.tags} <= set("p table caption thead tbody tr th td span data code sub sup".split())
     for text in ("<script>R_1</script> (added)", "<img src=x onerror=y> {0}", "checked by <b>R</b>", "<i>"):
         assert text in seen.words
+
+
+@pytest.mark.parametrize(
+    ("drafts", "said"),
+    [
+        ((), "FOR CHECKING; its fingerprints"),
+        (("B",), "FOR CHECKING, passing over draft B issued after it; its fingerprints"),
+        (("B", "<C>"), "FOR CHECKING, passing over drafts B, <C> issued after it; its fingerprints"),
+    ],
+)
+def test_drafts_passed_over_are_named_in_the_first_sentence(demand_job, plain_record, document, drafts, said):
+    job = demand_job("EN")
+    job.attach("earlier", replace(earlier_of(plain_record(job)), drafts=drafts))
+    html = VIEWS["what changed"].render(job.payloads(), "earlier", {}).html
+    assert said in document(html[: html.index("</p>")]).words
 
 
 def test_the_first_issue(demand_job):

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import json
 import math
 
 import pytest
 
 from calcsheet.core.codes.common import up_to_static
+from calcsheet.steps.replay import replay
 
 G = 9.80665
 W = 300.0 * G
@@ -132,3 +134,33 @@ def test_a_modal_base_shear_above_the_static_one_raises_nothing(demand_job):
     assert found["static"]["shear"] == pytest.approx(0.85 * 300 * EN_A, rel=1e-9)
     assert found["modal_base_shear"] > 0.914 * 300 * EN_A
     assert job.payload("actions")["cautions"] == []
+
+
+def second(quantity, value, direction="x"):
+    parts = f'quantity = "{quantity}"\ndirection = "{direction}"\nvalue = {value}\norigin = "Model {{2}}, 5 % damped"\n'
+    return f"[[second_model]]\n{parts}"
+
+
+# by hand: T₁ = 2π √(200/50 000) s; weight 300 t; base shear 268.74 t of two modes by SRSS, times the plateau's ordinate
+@pytest.mark.parametrize(
+    ("quantity", "direction", "here", "subject"),
+    [
+        ("period", "x", 2 * math.pi * math.sqrt(200 / 50_000), "period-x"),
+        ("weight", "", W, "weight"),
+        ("base shear", "x", SHEAR[0] * EN_A, "base-shear-x"),
+    ],
+)
+def test_a_second_model_more_than_a_tenth_away_asks_for_an_answer(demand_job, quantity, direction, here, subject):
+    shares = (1.101, 0.899, 1.099, 0.901)
+    tables = "".join(second(quantity, share * here, direction) for share in shares)
+    job = demand_job("EN", SRSS, card=[("[answers]", f"{tables}[answers]")])
+    raised = [c for step in ("demand", "actions") for c in job.payload(step)["cautions"]]
+    found = [c for c in raised if c["kind"] == "second-model-differs"]
+    assert [(c["subject"], c["answer"]) for c in found] == [(subject, True), (f"{subject}-2", True)]
+    of = f"{quantity} in {direction}" if direction else quantity
+    for caution, side in zip(found, ("above", "below"), strict=True):
+        (number,) = caution["numbers"]
+        assert number["value"] == pytest.approx(here, rel=1e-9)
+        said = f"The {of} is A here; that of the second model (Model {{2}}, 5 % damped) lies 10.1 % {side} it."
+        assert caution["text"].format("A") == said
+    assert replay(json.loads(json.dumps(job.payloads()))) == []

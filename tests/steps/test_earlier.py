@@ -95,6 +95,15 @@ def test_the_newest_other_revision_is_held(demand_job, issued):
     assert last_issued(job.folder.path, "C", "A").revision == "A"
 
 
+def test_signatures_before_a_draft_lapse(demand_job, issued):
+    job = demand_job("EN")
+    issued(job, "A", "2026-03-09", status="CHECKED", signatures=SIGNED)
+    issued(job, "B", "2026-04-01", status="DRAFT")
+    payload = earlier_payload(job.folder.path, "C")
+    assert (payload["inputs"]["revision"], list(payload["inputs"]["drafts"])) == ("A", ["B"])
+    assert [c["kind"] for c in payload["cautions"]] == ["lapsed-signatures"]
+
+
 def test_the_first_issue_holds_nothing():
     payload = calculated(EARLIER, {}, NOTHING, ())
     assert payload["state"] == "ok"

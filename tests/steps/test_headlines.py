@@ -84,6 +84,17 @@ def test_conclusions_of_the_demand(demand_job):
     assert no_static["drift/second order/x"] == "not assessed"
 
 
+@pytest.mark.parametrize(
+    ("load", "word"),
+    # θ = P d_r/(V h) = P q/(k h) = P · 3/(1e5 · 4) in the lower storey: 0.075, 0.15 and 0.375, of which 0.3 is allowed
+    [(10_000, "ignored"), (20_000, "amplified"), (50_000, "to be redesigned")],
+)
+def test_second_order_beyond_its_limit_is_redesigned(demand_job, load, word):
+    table = "level,storey height [m],mass [t],stiffness x [kN/m],stiffness y [kN/m],gravity load [kN]\n"
+    job = demand_job("EN", storeys=table + f"Roof,3,100,50000,80000,0\n1,4,200,100000,160000,{load}\n")
+    assert words(job.payloads())["drift/amplified/x"] == word
+
+
 def test_evidence_beyond_its_limit_is_concluded(demand_job):
     payloads = demand_job("EN").payloads()
     modes = payloads["modes"]

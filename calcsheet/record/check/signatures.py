@@ -9,6 +9,7 @@ from calcsheet.record.check.finding import AGREES, DIFFERS, NOT_ASSESSED, Findin
 from calcsheet.record.check.layout import same_layout
 from calcsheet.record.fingerprints import SHORT, covered, fingerprints_of
 from calcsheet.record.recordfile import Read
+from calcsheet.record.rules import why_not
 from calcsheet.record.status import APPROVED, APPROVED_ROLE, CHECKED, CHECKED_ROLE, status_of, valid
 
 PART = "signatures"
@@ -17,7 +18,7 @@ NEEDED = {CHECKED: CHECKED_ROLE, APPROVED: APPROVED_ROLE}
 
 
 def signature_findings(read: Read, record: Mapping[str, Any]) -> Iterator[Finding]:
-    """What the signatures cover, and whether the status follows from them.
+    """What the signatures cover, and whether they keep the rules, and whether the status follows.
 
     Parameters
     ----------
@@ -40,6 +41,8 @@ def signature_findings(read: Read, record: Mapping[str, Any]) -> Iterator[Findin
         else:
             text = f"{who} covers {signature['covers'][:SHORT]}, the data are {now[:SHORT]}: it holds no longer"
             yield Finding(PART, DIFFERS, text, place)
+        if why := why_not(record, tuple(record["signatures"][:i]), signature):
+            yield Finding(PART, DIFFERS, f"{who} breaks the rules of signing: {why}", place)
     if not record["signatures"]:
         yield Finding(PART, NOT_ASSESSED, "nobody has signed")
     follows, asked = status_of(record), NEEDED.get(record["status"])
