@@ -15,6 +15,12 @@ from calcsheet.units import DISPLAY
 
 FACTORS: Mapping[str, float] = {how.symbol: how.factor for pair in DISPLAY.values() for how in pair.values()}
 """Core units to a unit of print, by its symbol."""
+LATER = ("bending stiffness", "shear stiffness", "rotational stiffness", "angle")
+"""Quantities that records which say no units do not have."""
+UNSAID = tuple(
+    dict.fromkeys(how.factor for name, pair in DISPLAY.items() if name not in LATER for how in pair.values())
+)
+"""Factors that a number may have whose unit is not said."""
 PLAIN = re.compile(r"\u2212?\d{1,3}(?:\u202f?\d{3})*(?:\.(\d{1,12}))?")
 BRACKETED = re.compile(r"\[([^\]]+)\]$")
 EVIDENCE = re.compile(r"^/[^/]+/evidence/\d+/(value|limit)$")
@@ -136,7 +142,7 @@ def wrong_with(number: Printed, value: Any, *, units_said: bool) -> str:
     if not plain:
         return f"{shown}, which is no number of a record"
     decimals = len(plain[1] or "")
-    factors = [FACTORS[number.unit]] if units_said else list(dict.fromkeys(FACTORS.values()))
+    factors = [FACTORS[number.unit]] if units_said else list(UNSAID)
     should_be = [text(value / factor, decimals) for factor in factors]
     return "" if number.text in should_be else f"{shown}, should be {should_be[0]}"
 
