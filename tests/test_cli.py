@@ -122,6 +122,8 @@ def test_a_draft_for_its_cautions_says_how_to_list_them(run, folder, new_noteboo
     assert said.startswith("Issued, status DRAFT, because of cautions that need an answer: target-not-reached-x (open)")
     assert said.endswith(f"Cautions wait for an answer: `calcsheet answer {folder}` lists them.\n")
     assert "target-not-reached-y (open), finding " in run("answer", folder).stdout
+
+
 def test_issue_counts_the_cells_on_a_terminal(folder):
     pty = pytest.importorskip("pty")
     ours, theirs = pty.openpty()

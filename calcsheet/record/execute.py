@@ -23,6 +23,9 @@ Progress = Callable[[int, int], None]
 QUOTED = 3
 """Lines quoted of a cell that fails."""
 
+ISSUING = "CALCSHEET_ISSUING"
+"""Environment variable of the kernel that executes a notebook to issue it: a cell of it can't issue it again."""
+
 
 class _Here(KernelSpecManager):
     """Every kernel name means this environment's Python: a foreign one in the notebook is not followed."""
@@ -72,7 +75,7 @@ def execute(notebook: NotebookNode, folder: Path, progress: Progress = lambda ce
         ),
     )
     try:
-        client.execute(env={**os.environ, STATIC: "1"})
+        client.execute(env={**os.environ, STATIC: "1", ISSUING: "1"})
     except CellExecutionError:
         raise RecordError(_failure(notebook)) from None
     except DeadKernelError:

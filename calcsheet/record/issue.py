@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import os
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
@@ -14,7 +15,7 @@ from calcsheet.job.comments import comments_of
 from calcsheet.record.collect import Content, collect, refuse_stale
 from calcsheet.record.document import record_of
 from calcsheet.record.errors import RecordError
-from calcsheet.record.execute import Progress, execute
+from calcsheet.record.execute import ISSUING, Progress, execute
 from calcsheet.record.files import files_of, html_of
 from calcsheet.record.fonts import missing_characters
 from calcsheet.record.page import Paper
@@ -90,6 +91,8 @@ def issue(
         No notebook, a cell that fails, a step that is refused or waiting, a revision that is issued already, or no PDF
         engine where a PDF is asked for.
     """
+    if os.environ.get(ISSUING):
+        raise RecordError("the notebook is being issued; take the cell that issues it out of the notebook")
     job = Job(folder.resolve())
     for payload in job.payloads().values():
         if payload["state"] == "refused":

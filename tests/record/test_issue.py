@@ -248,3 +248,9 @@ def test_a_pdf_asked_for_without_an_engine_is_refused_before_anything_runs(folde
     assert sentence == 'no PDF: PDF engine: got "Gutenberg"; must be one of WeasyPrint, PlutoPrint'
     assert told == []
     assert left(folder) == []
+
+
+def test_a_cell_that_issues_its_own_notebook_is_refused(folder, monkeypatch):
+    monkeypatch.setenv("CALCSHEET_ISSUING", "1")
+    assert refusal(folder, to=["html"]).startswith("the notebook is being issued; take the cell")
+    assert left(folder) == []
