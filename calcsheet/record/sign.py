@@ -23,7 +23,7 @@ from calcsheet.record.place import placed_beside
 from calcsheet.record.register import note_of
 from calcsheet.record.rules import asked_of, why_not
 from calcsheet.record.signature import signature
-from calcsheet.record.status import APPROVED_ROLE, CHECKED_ROLE, ROLES, held, open_comments, valid
+from calcsheet.record.status import APPROVED_ROLE, CHECKED_ROLE, PREPARED, ROLES, held, open_comments, valid
 from calcsheet.steps.serial import from_json, to_json
 
 ALL = "all"
@@ -91,8 +91,6 @@ def sign(
     day = date or datetime.date.today()
     if day > datetime.date.today():
         raise RecordError(f"date {day.isoformat()}; must not be after today")
-    if not name.strip():
-        raise RecordError("name: got a blank; must be the signer's name")
     made = signature(record, role, **who, date=day.isoformat(), scope=scope, remark=remark, agreed=keys)
     if why := why_not(record, tuple(valid(record).values()), made) or _not_yet(record, role):
         raise RecordError(why)
@@ -130,8 +128,11 @@ def _agreed(record: Mapping[str, Any], role: str, agree: tuple[str, ...]) -> tup
 
 
 def _not_yet(record: Mapping[str, Any], role: str) -> str:
-    """Why a record can't be signed as it stands: a draft beyond its missing signature, or comments left open."""
-    if because := held(record):
+    """Why a record can't be signed as it stands, beyond the rules that a signature keeps ever after.
+
+    The job card's own signature may stand on a draft; nobody signs one by command. A comment may be opened later.
+    """
+    if role == PREPARED and (because := held(record)):
         return f"it is a draft: {'; '.join(because)}"
     if role == APPROVED_ROLE and (left := open_comments(record)):
         return f"open comments: {', '.join(str(c['number']) for c in left)}; close them before approval"
